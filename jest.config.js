@@ -1,0 +1,26 @@
+/** @type {import('jest').Config} */
+const alias = {
+  "^@/(.*)$": "<rootDir>/src/$1",
+  "^~shared/(.*)$": "<rootDir>/shared/$1",
+  "^~server/(.*)$": "<rootDir>/server/$1",
+  "^~graphql/(.*)$": "<rootDir>/graphql/$1",
+  "^@expo/vector-icons(/.*)?$": "<rootDir>/src/components/Icon.tsx",
+};
+const node = {
+  testEnvironment: "node",
+  transform: { "^.+\\.[cm]?[jt]sx?$": ["@swc/jest", {}] },
+  moduleNameMapper: alias,
+};
+module.exports = {
+  projects: [
+    { ...node, displayName: "shared", testMatch: ["<rootDir>/tests/shared/**/*.test.ts"] },
+    { ...node, displayName: "server", testMatch: ["<rootDir>/tests/server/**/*.test.ts"] },
+    {
+      displayName: "client",
+      preset: "jest-expo/web",
+      testMatch: ["<rootDir>/tests/client/**/*.test.tsx"],
+      moduleNameMapper: alias,
+    },
+    { ...node, displayName: "e2e", testMatch: ["<rootDir>/tests/e2e/**/*.test.ts"] },
+  ],
+};

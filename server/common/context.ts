@@ -1,0 +1,34 @@
+import type { DataSource } from "typeorm";
+
+import type { Role } from "~shared/review/states";
+
+/** The person behind a request, as resolvers and policies see them. */
+export interface ViewerIdentity {
+  id: string;
+  email: string;
+  nameOnPapers: string;
+  orcid: string | null;
+  roles: readonly Role[];
+}
+
+/** What every resolver receives. */
+export interface RequestContext {
+  requestId: string;
+  /** Address of the caller, for limits only; never logged with content. */
+  ip: string;
+  viewer: ViewerIdentity | null;
+  database: DataSource;
+  /** Starts a session under a new id; set by the HTTP layer. */
+  signIn(userId: string): Promise<void>;
+  signOut(): Promise<void>;
+}
+
+export function hasRole(viewer: ViewerIdentity | null, role: Role): boolean {
+  return viewer?.roles.includes(role) ?? false;
+}
+
+/** The signed-in person; call it only behind @Authorized(). */
+export function requireViewer(ctx: RequestContext): ViewerIdentity {
+  if (!ctx.viewer) throw new Error("resolver reached without a viewer");
+  return ctx.viewer;
+}

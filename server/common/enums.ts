@@ -1,0 +1,50 @@
+import { registerEnumType } from "type-graphql";
+
+import { METHOD_FAMILIES, type MethodFamily } from "~shared/methods/vocabulary";
+import {
+  RECORD_STATES,
+  REVISION_STATES,
+  ROLES,
+  type RecordState,
+  type RevisionState,
+  type Role,
+} from "~shared/review/states";
+import * as fields from "~shared/statement/fields";
+
+/** A GraphQL enum from one of shared's word lists; value and name are the same word. */
+function enumOf<T extends string>(name: string, words: readonly T[]): Record<T, T> {
+  const map = Object.fromEntries(words.map((word) => [word, word])) as Record<T, T>;
+  registerEnumType(map, { name });
+  return map;
+}
+
+export const QuantityEnum = enumOf<fields.Quantity>("Quantity", fields.QUANTITIES);
+export const SpeciesEnum = enumOf<fields.Species>("Species", fields.SPECIES);
+export const HeliumEnum = enumOf<fields.Helium>("Helium", fields.HELIUM);
+export const ScaleEnum = enumOf<fields.Scale>("Scale", fields.SCALES);
+export const WeightingEnum = enumOf<fields.Weighting>("Weighting", fields.WEIGHTINGS);
+export const RedshiftRoleEnum = enumOf<fields.RedshiftRole>("RedshiftRole", fields.REDSHIFT_ROLES);
+export const StatementKindEnum = enumOf<fields.StatementKind>(
+  "StatementKind",
+  fields.STATEMENT_KINDS,
+);
+export const LevelEnum = enumOf<fields.Level>("Level", fields.LEVELS);
+export const EstimatorEnum = enumOf<fields.Estimator>("Estimator", fields.ESTIMATORS);
+export const CosmicVarianceEnum = enumOf<fields.CosmicVariance>(
+  "CosmicVariance",
+  fields.COSMIC_VARIANCES,
+);
+export const VersionReadEnum = enumOf<fields.VersionRead>("VersionRead", fields.VERSIONS_READ);
+export const DurationUnitEnum = enumOf<fields.DurationUnit>("DurationUnit", fields.DURATION_UNITS);
+export const MethodFamilyEnum = enumOf<MethodFamily>("MethodFamily", METHOD_FAMILIES);
+export const RevisionStateEnum = enumOf<RevisionState>("RevisionState", REVISION_STATES);
+export const RecordStateEnum = enumOf<RecordState>("RecordState", RECORD_STATES);
+export const RoleEnum = enumOf<Role>("Role", ROLES);
+export const FindingGradeEnum = enumOf("FindingGrade", ["error", "mustAnswer", "note"] as const);
+export const ConstraintSortEnum = enumOf("ConstraintSort", [
+  "redshift",
+  "redshiftDescending",
+  "newest",
+  "year",
+  "number",
+] as const);
