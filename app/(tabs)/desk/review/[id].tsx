@@ -1,0 +1,1 @@
+export { ReviewScreen as default } from "@/features/review/ReviewScreen";

@@ -1,0 +1,1 @@
+export { SubmitScreen as default } from "@/features/submission/SubmitScreen";

@@ -1,0 +1,23 @@
+/** Dates and times in words, in the person's own time zone. */
+
+const TIME: Intl.DateTimeFormatOptions = { hour: "2-digit", minute: "2-digit", hour12: false };
+
+/** "12:04" */
+export function clockTime(iso: string): string {
+  return new Date(iso).toLocaleTimeString("en-GB", TIME);
+}
+
+/** "21 March 2026, 16:00" */
+export function dateTime(iso: string): string {
+  const at = new Date(iso);
+  const day = at.toLocaleDateString("en-GB", { day: "numeric", month: "long", year: "numeric" });
+  return `${day}, ${clockTime(iso)}`;
+}
+
+/** "4 days", "3 hours", "less than an hour": how long something has waited. */
+export function waitingTime(since: string, now: Date = new Date()): string {
+  const hours = Math.floor((now.getTime() - new Date(since).getTime()) / 3_600_000);
+  if (hours < 1) return "less than an hour";
+  if (hours < 48) return hours === 1 ? "1 hour" : `${hours} hours`;
+  return `${Math.floor(hours / 24)} days`;
+}
