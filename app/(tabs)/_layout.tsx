@@ -1,0 +1,1 @@
+export { TabsLayout as default } from "@/layout/TabsLayout";

@@ -1,0 +1,2 @@
+export { RootLayout as default } from "@/layout/RootLayout";
+export { BrokenPage as ErrorBoundary } from "@/features/problem/BrokenPage";

@@ -1,0 +1,9 @@
+import type { ConstraintFields } from "~shared/statement/fields";
+
+export function PointPreview(_props: {
+  fields: ConstraintFields;
+  width?: number;
+  height?: number;
+}) {
+  return null;
+}

@@ -1,0 +1,1 @@
+export { Divider } from "./Card";

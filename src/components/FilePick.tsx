@@ -1,0 +1,78 @@
+import { useId, useState } from "react";
+import { View } from "react-native";
+import { useColors } from "@/theme/ThemeProvider";
+import { fonts, radius } from "@/theme/tokens";
+import Icon from "./Icon";
+import { Caption, Label } from "./Text";
+
+/** A text file from the device, read in the browser. Dropping it on the frame works too. */
+export function FilePick({
+  label,
+  accept,
+  onPick,
+}: {
+  label: string;
+  accept: string;
+  onPick: (file: { name: string; text: string }) => void;
+}) {
+  const colors = useColors();
+  const id = useId();
+  const [name, setName] = useState<string | null>(null);
+  const [problem, setProblem] = useState<string | null>(null);
+
+  async function take(file: File | undefined) {
+    if (file === undefined) return;
+    try {
+      const text = new TextDecoder("utf-8", { fatal: true }).decode(await file.arrayBuffer());
+      setName(file.name);
+      setProblem(null);
+      onPick({ name: file.name, text });
+    } catch {
+      setProblem(`${file.name} is not a UTF-8 text file.`);
+    }
+  }
+
+  return (
+    <View>
+      <label
+        htmlFor={id}
+        className="fogline-file"
+        onDragOver={(event) => event.preventDefault()}
+        onDrop={(event) => {
+          event.preventDefault();
+          void take(event.dataTransfer.files[0]);
+        }}
+        style={{
+          position: "relative",
+          display: "flex",
+          alignItems: "center",
+          gap: 12,
+          minHeight: 56,
+          padding: "8px 16px",
+          boxSizing: "border-box",
+          border: `1px dashed ${colors.outline}`,
+          borderRadius: radius.chip,
+          backgroundColor: colors.surface,
+          fontFamily: fonts.sans,
+          cursor: "pointer",
+        }}
+      >
+        <Icon name="upload-outline" color={colors.primary} />
+        <View style={{ flex: 1, minWidth: 0 }}>
+          <Label style={{ color: colors.primary }}>{label}</Label>
+          <Caption>{name ?? `${accept.replaceAll(",", ", ")}, or drop it here`}</Caption>
+        </View>
+        <input
+          id={id}
+          type="file"
+          accept={accept}
+          onChange={(event) => void take(event.target.files?.[0])}
+          style={{ position: "absolute", inset: 0, opacity: 0, cursor: "pointer" }}
+        />
+      </label>
+      {problem ? (
+        <Caption style={{ color: colors.emberText, paddingTop: 4 }}>{problem}</Caption>
+      ) : null}
+    </View>
+  );
+}

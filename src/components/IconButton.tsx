@@ -1,0 +1,1 @@
+export { IconButton } from "./Button";

@@ -1,0 +1,1 @@
+export { RadioRows } from "./CheckRow";

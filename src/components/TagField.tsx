@@ -1,0 +1,91 @@
+import { useId, useState } from "react";
+import { StyleSheet, View } from "react-native";
+import { space } from "@/theme/tokens";
+import { Chip } from "./Chip";
+import { Field } from "./Field";
+import { IconButton } from "./Button";
+
+/** Several words, each a chip: Enter or a comma adds what is typed, a press takes one out. */
+export function TagField({
+  label,
+  values,
+  onChange,
+  suggestions = [],
+  hint,
+  error,
+  words,
+}: {
+  label: string;
+  values: readonly string[];
+  onChange: (values: string[]) => void;
+  suggestions?: readonly string[];
+  hint?: string;
+  error?: string | null;
+  /** How a stored value reads; itself unless said. */
+  words?: (value: string) => string;
+}) {
+  const [typed, setTyped] = useState("");
+  const groupId = useId();
+  const read = words ?? ((value: string) => value);
+
+  function add(text: string) {
+    const parts = text
+      .split(",")
+      .map((part) => part.trim())
+      .filter((part) => part !== "" && !values.includes(part));
+    if (parts.length > 0) onChange([...values, ...new Set(parts)]);
+    setTyped("");
+  }
+
+  const lower = typed.trim().toLowerCase();
+  const offered = suggestions
+    .filter((value) => !values.includes(value))
+    .filter((value) => lower === "" || read(value).toLowerCase().includes(lower))
+    .slice(0, 8);
+  return (
+    <View role="group" aria-labelledby={groupId} style={styles.all}>
+      <View style={styles.entry}>
+        <View style={styles.field}>
+          <Field
+            label={label}
+            value={typed}
+            onChangeText={(text) => (text.includes(",") ? add(text) : setTyped(text))}
+            onSubmit={() => add(typed)}
+            onBlur={() => typed.trim() !== "" && add(typed)}
+            hint={hint}
+            error={error}
+          />
+        </View>
+        <View style={styles.add}>
+          <IconButton icon="plus" label={`Add to ${label}`} onPress={() => add(typed)} />
+        </View>
+      </View>
+      {values.length > 0 ? (
+        <View style={styles.chips}>
+          {values.map((value) => (
+            <Chip
+              key={value}
+              label={read(value)}
+              onRemove={() => onChange(values.filter((other) => other !== value))}
+            />
+          ))}
+        </View>
+      ) : null}
+      {offered.length > 0 ? (
+        <View style={styles.chips} aria-label={`Suggestions for ${label}`} role="group">
+          {offered.map((value) => (
+            <Chip key={value} label={read(value)} icon="plus" onPress={() => add(value)} />
+          ))}
+        </View>
+      ) : null}
+    </View>
+  );
+}
+
+const styles = StyleSheet.create({
+  all: { alignSelf: "stretch" },
+  entry: { flexDirection: "row", alignItems: "flex-start", gap: space.xxs },
+  field: { flex: 1, minWidth: 0 },
+  add: { paddingTop: 14 },
+  chips: { flexDirection: "row", flexWrap: "wrap", columnGap: space.xs },
+});

@@ -1,0 +1,10 @@
+import { Slot } from "expo-router";
+import { Shell } from "./Shell";
+
+export function TabsLayout() {
+  return (
+    <Shell>
+      <Slot />
+    </Shell>
+  );
+}

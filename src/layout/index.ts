@@ -1,0 +1,1 @@
+export { useLayoutClass, type LayoutClass } from "./useLayoutClass";
