@@ -1,0 +1,42 @@
+import { Arg, Authorized, Ctx, ID, Int, Mutation, Query, Resolver } from "type-graphql";
+
+import type { RequestContext } from "~server/common/context";
+import { acting } from "~server/event/acting";
+
+import { Citation } from "./citation.entity";
+import * as citations from "./citation.service";
+import { CitationPreview, CitationType, KeepCitationsResult, citationType } from "./citation.type";
+
+@Resolver()
+export class CitationResolver {
+  @Authorized("contributor")
+  @Query(() => [CitationPreview])
+  previewCitations(
+    @Ctx() ctx: RequestContext,
+    @Arg("bibtex", () => String) bibtex: string,
+  ): Promise<CitationPreview[]> {
+    return citations.previewCitations(ctx.database.manager, bibtex);
+  }
+
+  @Authorized("contributor")
+  @Query(() => CitationType, { nullable: true })
+  async myCitation(
+    @Ctx() ctx: RequestContext,
+    @Arg("id", () => ID) id: string,
+  ): Promise<CitationType | null> {
+    const citation = await ctx.database.manager.findOneBy(Citation, { id });
+    return citation && citationType(citation);
+  }
+
+  @Authorized("contributor")
+  @Mutation(() => KeepCitationsResult, {
+    description: "Keeps the readable entries; a paper that is already there is found and used.",
+  })
+  keepCitations(
+    @Ctx() ctx: RequestContext,
+    @Arg("bibtex", () => String) bibtex: string,
+    @Arg("indices", () => [Int], { nullable: true }) indices: number[] | null,
+  ): Promise<typeof KeepCitationsResult> {
+    return citations.keepCitations(acting(ctx), bibtex, indices);
+  }
+}
