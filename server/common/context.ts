@@ -1,5 +1,7 @@
 import type { DataSource } from "typeorm";
 
+import type { Config } from "~server/config/config";
+import type { RateLimits } from "~server/security/rateLimits";
 import type { Role } from "~shared/review/states";
 
 /** The person behind a request, as resolvers and policies see them. */
@@ -18,8 +20,10 @@ export interface RequestContext {
   ip: string;
   viewer: ViewerIdentity | null;
   database: DataSource;
+  config: Config;
+  limits: RateLimits;
   /** Starts a session under a new id; set by the HTTP layer. */
-  signIn(userId: string): Promise<void>;
+  signIn(userId: string, epoch: number): Promise<void>;
   signOut(): Promise<void>;
 }
 

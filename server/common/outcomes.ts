@@ -1,7 +1,9 @@
-import { Field, ObjectType } from "type-graphql";
+import { createUnionType, Field, ObjectType } from "type-graphql";
 
 /** A stated outcome that is not success; the message is a sentence for the person. */
-@ObjectType({ description: "A stated outcome that is not success. The message is a sentence for the person." })
+@ObjectType({
+  description: "A stated outcome that is not success. The message is a sentence for the person.",
+})
 export class Refusal {
   @Field(() => String) code!: string;
   @Field(() => String) message!: string;
@@ -12,6 +14,11 @@ export class Refusal {
 export class Done {
   @Field(() => String) message!: string;
 }
+
+export const DoneResult = createUnionType({
+  name: "DoneResult",
+  types: () => [Done, Refusal] as const,
+});
 
 export function refuse(code: string, message: string, field: string | null = null): Refusal {
   return Object.assign(new Refusal(), { code, message, field });

@@ -1,12 +1,21 @@
 import type { EntityManager } from "typeorm";
 
+import { OutboxMail } from "./outboxMail.entity";
+
 export interface OutgoingMail {
   to: string;
   subject: string;
   text: string;
 }
 
+const SUBJECT_LENGTH = 200;
+
 /** Stores a mail in the caller's transaction; a worker delivers it and retries. */
-export async function queueMail(_manager: EntityManager, _mail: OutgoingMail): Promise<void> {
-  throw new Error("outbox not wired yet");
+export async function queueMail(manager: EntityManager, mail: OutgoingMail): Promise<void> {
+  await manager.insert(OutboxMail, {
+    to: mail.to,
+    // A subject may quote what a person typed: a line break in it would start another header.
+    subject: mail.subject.replace(/[\u0000-\u001f\u007f]+/g, " ").slice(0, SUBJECT_LENGTH),
+    text: mail.text,
+  });
 }

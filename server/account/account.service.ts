@@ -1,0 +1,287 @@
+import { createHash } from "node:crypto";
+
+import type { EntityManager } from "typeorm";
+
+import { requireViewer, type RequestContext } from "~server/common/context";
+import { tooManySentence } from "~server/common/errors";
+import { done, refuse, type Done, type Refusal } from "~server/common/outcomes";
+import { queueMail } from "~server/mail/outbox";
+import type { LimitName } from "~server/security/rateLimits";
+import { normalizeOrcid } from "~shared/identifiers/orcid";
+
+import { viewerType, type Viewer } from "./account.type";
+import { alreadyRegisteredMail, confirmMail, passwordChangedMail, resetMail } from "./mails";
+import { MailToken } from "./mailToken.entity";
+import { hashPassword, passwordMatches } from "./password";
+import {
+  emailProblem,
+  nameProblem,
+  normalEmail,
+  normalName,
+  PASSWORD_MAX,
+  passwordProblem,
+} from "./rules";
+import { issueToken, spendToken, tokenOwner } from "./tokens";
+import { User } from "./user.entity";
+import { viewerOf } from "./viewer";
+
+/** Counters keep digests, so that the table of limits is no list of who comes here. */
+function keyOf(text: string): string {
+  return createHash("sha256").update(text, "utf8").digest("base64url");
+}
+
+/** Counts one against each limit; a refusal when any of them is used up. */
+async function overLimit(
+  ctx: RequestContext,
+  counts: readonly (readonly [name: LimitName, key: string])[],
+): Promise<Refusal | null> {
+  const waits = await Promise.all(counts.map(([name, key]) => ctx.limits[name].take(keyOf(key))));
+  const wait = Math.max(...waits);
+  return wait > 0 ? refuse("TOO_MANY_REQUESTS", tooManySentence(wait)) : null;
+}
+
+export async function register(
+  ctx: RequestContext,
+  input: { email: string; nameOnPapers: string; password: string },
+): Promise<Done | Refusal> {
+  const nameOnPapers = normalName(input.nameOnPapers);
+  const email = normalEmail(input.email);
+  const problem =
+    nameProblem(nameOnPapers) ??
+    emailProblem(email) ??
+    passwordProblem(input.password, email, "password") ??
+    (await overLimit(ctx, [
+      ["registerPerCaller", ctx.ip],
+      ["mailPerAddress", email],
+    ]));
+  if (problem) return problem;
+
+  const passwordHash = await hashPassword(ctx.config.passwordCost, input.password);
+  const store = (): Promise<void> =>
+    ctx.database.transaction((manager) =>
+      storeRegistration(manager, ctx.config.publicUrl, { email, nameOnPapers, passwordHash }),
+    );
+  try {
+    await store();
+  } catch (error) {
+    // Two registrations of one address at once: the later one finds the account of the earlier.
+    if ((error as { code?: string }).code !== "ER_DUP_ENTRY") throw error;
+    await store();
+  }
+  return done(`We sent a mail to ${email}. Open the link in it to go on.`);
+}
+
+/** The same to see from outside, whether or not the address has an account. */
+async function storeRegistration(
+  manager: EntityManager,
+  publicUrl: string,
+  given: { email: string; nameOnPapers: string; passwordHash: string },
+): Promise<void> {
+  const existing = await manager.findOne(User, {
+    where: { email: given.email },
+    lock: { mode: "pessimistic_write" },
+  });
+  if (existing?.confirmedAt) {
+    await queueMail(manager, alreadyRegisteredMail(existing, publicUrl));
+    return;
+  }
+  // Until an address is confirmed, whoever registers it last is taken to be its owner: the link
+  // goes to the address, and must not open an account whose password somebody else chose before.
+  const id =
+    existing?.id ??
+    (await manager.insert(User, { ...given, confirmedAt: null, orcid: null })).identifiers[0]?.id;
+  if (existing) await manager.update(User, { id }, given);
+  const token = await issueToken(manager, String(id), "confirm");
+  await queueMail(manager, confirmMail(given, publicUrl, token));
+}
+
+const BAD_LINK = "This link has been used already, or is too old. Ask for a new one.";
+
+export async function confirmEmail(ctx: RequestContext, token: string): Promise<Done | Refusal> {
+  return ctx.database.transaction(async (manager) => {
+    const userId = await tokenOwner(manager, token, "confirm");
+    if (userId === null || !(await spendToken(manager, token, "confirm"))) {
+      return refuse("LINK_INVALID", BAD_LINK);
+    }
+    await manager.update(User, { id: userId }, { confirmedAt: new Date() });
+    return done("Your address is confirmed. You can sign in now.");
+  });
+}
+
+export async function resendConfirmation(
+  ctx: RequestContext,
+  address: string,
+): Promise<Done | Refusal> {
+  const email = normalEmail(address);
+  const problem = emailProblem(email) ?? (await mailLimit(ctx, email));
+  if (problem) return problem;
+  await ctx.database.transaction(async (manager) => {
+    const user = await manager.findOneBy(User, { email });
+    if (!user || user.confirmedAt) return;
+    const token = await issueToken(manager, user.id, "confirm");
+    await queueMail(manager, confirmMail(user, ctx.config.publicUrl, token));
+  });
+  return done(`If ${email} waits to be confirmed, a new link is on its way to it.`);
+}
+
+function mailLimit(ctx: RequestContext, email: string): Promise<Refusal | null> {
+  return overLimit(ctx, [
+    ["mailPerCaller", ctx.ip],
+    ["mailPerAddress", email],
+  ]);
+}
+
+export async function signIn(
+  ctx: RequestContext,
+  address: string,
+  password: string,
+): Promise<Viewer | Refusal> {
+  const email = normalEmail(address);
+  const over = await overLimit(ctx, [
+    ["signInPerCaller", ctx.ip],
+    ["signInPerAddress", email],
+  ]);
+  if (over) return over;
+
+  const user = await ctx.database.manager.findOne(User, {
+    where: { email: email.slice(0, 254) },
+    relations: { roles: true },
+  });
+  // Twice the limit in code units: a character outside the basic plane takes two.
+  const plausible = password.length <= 2 * PASSWORD_MAX;
+  const matches =
+    plausible &&
+    (await passwordMatches(ctx.config.passwordCost, user?.passwordHash ?? null, password));
+  if (!user || !matches) return refuse("SIGN_IN_WRONG", "The address or the password is wrong.");
+  if (!user.confirmedAt) {
+    return refuse(
+      "NOT_CONFIRMED",
+      "Confirm your address first: open the link in the mail we sent you, or ask for a new one.",
+      "email",
+    );
+  }
+  // Only failures count.
+  await Promise.all([
+    ctx.limits.signInPerAddress.forget(keyOf(email)),
+    ctx.limits.signInPerCaller.giveBack(keyOf(ctx.ip)),
+  ]);
+  await ctx.signIn(user.id, user.sessionEpoch);
+  return viewerType(viewerOf(user));
+}
+
+export async function changePassword(
+  ctx: RequestContext,
+  current: string,
+  next: string,
+): Promise<Done | Refusal> {
+  const viewer = requireViewer(ctx);
+  const problem =
+    passwordProblem(next, viewer.email, "next") ??
+    // A borrowed session must not be a way to try passwords.
+    (await overLimit(ctx, [["signInPerAddress", viewer.email]]));
+  if (problem) return problem;
+
+  const user = await ctx.database.manager.findOneByOrFail(User, { id: viewer.id });
+  const matches =
+    current.length <= 2 * PASSWORD_MAX &&
+    (await passwordMatches(ctx.config.passwordCost, user.passwordHash, current));
+  if (!matches)
+    return refuse("PASSWORD_WRONG", "Your present password is not this one.", "current");
+  if (current === next) {
+    return refuse("PASSWORD_SAME", "The new password is the old one.", "next");
+  }
+  const passwordHash = await hashPassword(ctx.config.passwordCost, next);
+  const sessionEpoch = user.sessionEpoch + 1;
+  const changed = await ctx.database.transaction(async (manager) => {
+    const { affected } = await manager
+      .createQueryBuilder()
+      .update(User)
+      .set({ passwordHash, sessionEpoch })
+      .where("id = :id and sessionEpoch = :epoch", { id: user.id, epoch: user.sessionEpoch })
+      .execute();
+    if (affected !== 1) return false;
+    await manager.delete(MailToken, { userId: user.id, purpose: "reset" });
+    await queueMail(manager, passwordChangedMail(user, ctx.config.publicUrl));
+    return true;
+  });
+  if (!changed) {
+    return refuse("PASSWORD_MOVED", "Your password was changed a moment ago. Sign in again.");
+  }
+  await ctx.limits.signInPerAddress.forget(keyOf(viewer.email));
+  await ctx.signIn(user.id, sessionEpoch);
+  return done("Your password is changed, and your other sessions are ended.");
+}
+
+export async function requestPasswordReset(
+  ctx: RequestContext,
+  address: string,
+): Promise<Done | Refusal> {
+  const email = normalEmail(address);
+  const problem = emailProblem(email) ?? (await mailLimit(ctx, email));
+  if (problem) return problem;
+  await ctx.database.transaction(async (manager) => {
+    const user = await manager.findOneBy(User, { email });
+    if (!user) return;
+    const token = await issueToken(manager, user.id, "reset");
+    await queueMail(manager, resetMail(user, ctx.config.publicUrl, token));
+  });
+  return done(`If ${email} has an account, a link to set a new password is on its way to it.`);
+}
+
+export async function resetPassword(
+  ctx: RequestContext,
+  token: string,
+  next: string,
+): Promise<Done | Refusal> {
+  const { manager } = ctx.database;
+  const userId = await tokenOwner(manager, token, "reset");
+  const user = userId === null ? null : await manager.findOneBy(User, { id: userId });
+  if (!user) return refuse("LINK_INVALID", BAD_LINK);
+  // Before the link is used up: a password that is too short costs no new mail.
+  const problem = passwordProblem(next, user.email, "next");
+  if (problem) return problem;
+
+  const passwordHash = await hashPassword(ctx.config.passwordCost, next);
+  const changed = await ctx.database.transaction(async (inside) => {
+    if (!(await spendToken(inside, token, "reset"))) return false;
+    await inside
+      .createQueryBuilder()
+      .update(User)
+      .set({
+        passwordHash,
+        sessionEpoch: () => "sessionEpoch + 1",
+        // The link came by mail, so it confirms the address too.
+        confirmedAt: user.confirmedAt ?? new Date(),
+      })
+      .where("id = :id", { id: user.id })
+      .execute();
+    await inside.delete(MailToken, { userId: user.id });
+    await queueMail(inside, passwordChangedMail(user, ctx.config.publicUrl));
+    return true;
+  });
+  if (!changed) return refuse("LINK_INVALID", BAD_LINK);
+  await ctx.limits.signInPerAddress.forget(keyOf(user.email));
+  return done("Your new password is set. You can sign in with it now.");
+}
+
+export async function updateProfile(
+  ctx: RequestContext,
+  name: string,
+  orcid: string | null,
+): Promise<Viewer | Refusal> {
+  const viewer = requireViewer(ctx);
+  const nameOnPapers = normalName(name);
+  const problem = nameProblem(nameOnPapers);
+  if (problem) return problem;
+  const given = orcid?.trim() ?? "";
+  const normal = given === "" ? null : normalizeOrcid(given.slice(0, 100));
+  if (given !== "" && normal === null) {
+    return refuse(
+      "ORCID_INVALID",
+      "That is not an ORCID: sixteen characters in groups of four, the last one a check.",
+      "orcid",
+    );
+  }
+  await ctx.database.manager.update(User, { id: viewer.id }, { nameOnPapers, orcid: normal });
+  return viewerType({ ...viewer, nameOnPapers, orcid: normal });
+}

@@ -1,0 +1,40 @@
+import { GraphQLError } from "graphql";
+
+/**
+ * An answer over plain HTTP that is not success; the message is a sentence for the person.
+ * Anything else that is thrown leaves the server as INTERNAL, without a word about why.
+ */
+export class HttpProblem extends Error {
+  override readonly name = "HttpProblem";
+
+  constructor(
+    readonly status: number,
+    readonly code: string,
+    message: string,
+    readonly headers: Readonly<Record<string, string>> = {},
+  ) {
+    super(message);
+  }
+}
+
+export function unauthenticated(): GraphQLError {
+  return new GraphQLError("Sign in first.", { extensions: { code: "UNAUTHENTICATED" } });
+}
+
+export function forbidden(): GraphQLError {
+  return new GraphQLError("Your account may not do this.", { extensions: { code: "FORBIDDEN" } });
+}
+
+export function tooMany(seconds: number): GraphQLError {
+  return new GraphQLError(tooManySentence(seconds), {
+    extensions: { code: "TOO_MANY_REQUESTS", retryAfterSeconds: seconds },
+  });
+}
+
+export function tooManySentence(seconds: number): string {
+  const wait =
+    seconds < 90
+      ? `${Math.max(1, Math.ceil(seconds))} seconds`
+      : `${Math.ceil(seconds / 60)} minutes`;
+  return `Too many requests. Try again in ${wait}.`;
+}

@@ -1,0 +1,61 @@
+import type { Request, Response } from "express";
+import type { DataSource } from "typeorm";
+
+import { User } from "~server/account/user.entity";
+import { viewerOf } from "~server/account/viewer";
+import { hasRole, type RequestContext, type ViewerIdentity } from "~server/common/context";
+import { HttpProblem } from "~server/common/errors";
+import type { Config } from "~server/config/config";
+import type { RateLimits } from "~server/security/rateLimits";
+import type { Role } from "~shared/review/states";
+
+import { requestId } from "./requestId";
+import { endSession, SESSION_COOKIE, startSession } from "./session";
+
+export interface ContextParts {
+  config: Config;
+  database: DataSource;
+  limits: RateLimits;
+}
+
+/** Who asks, and what the answer may use. The person is read anew for each request. */
+export async function buildContext(
+  parts: ContextParts,
+  req: Request,
+  res: Response,
+): Promise<RequestContext> {
+  return {
+    requestId: requestId(),
+    ip: req.ip ?? "unknown",
+    viewer: await findViewer(parts.database, req),
+    database: parts.database,
+    config: parts.config,
+    limits: parts.limits,
+    signIn: (userId, epoch) => startSession(req, userId, epoch),
+    signOut: async () => {
+      await endSession(req);
+      res.clearCookie(SESSION_COOKIE, { httpOnly: true, sameSite: "lax", path: "/" });
+    },
+  };
+}
+
+async function findViewer(database: DataSource, req: Request): Promise<ViewerIdentity | null> {
+  const userId = req.session?.userId;
+  if (userId === undefined) return null;
+  const user = await database.manager.findOne(User, {
+    where: { id: userId },
+    relations: { roles: true },
+  });
+  // A changed or reset password moves the epoch on, and every older session ends with it.
+  if (!user || user.sessionEpoch !== req.session.epoch) return null;
+  return viewerOf(user);
+}
+
+/** Guard of a plain HTTP address, with the answers that @Authorized gives in GraphQL. */
+export function requireRole(ctx: RequestContext, role: Role): ViewerIdentity {
+  if (!ctx.viewer) throw new HttpProblem(401, "UNAUTHENTICATED", "Sign in first.");
+  if (!hasRole(ctx.viewer, role)) {
+    throw new HttpProblem(403, "FORBIDDEN", "Your account may not do this.");
+  }
+  return ctx.viewer;
+}

@@ -1,0 +1,48 @@
+import pino, { type Logger } from "pino";
+import pinoHttp, { type HttpLogger } from "pino-http";
+
+export type { Logger };
+
+export function createLogger(level: string): Logger {
+  return pino({ level, base: null });
+}
+
+/**
+ * One line a request: id, method, path, status, time. No query (links in mails carry tokens
+ * there), no headers, no bodies, no addresses.
+ */
+export function requestLog(logger: Logger): HttpLogger {
+  return pinoHttp({
+    logger,
+    genReqId: (req) => req.id, // withRequestId has given it
+    quietReqLogger: true,
+    customLogLevel: (_req, res, error) => {
+      if (error || res.statusCode >= 500) return "error";
+      return res.statusCode >= 400 ? "warn" : "info";
+    },
+    serializers: {
+      req: (req: { id: string; method: string; url: string }) => ({
+        id: req.id,
+        method: req.method,
+        path: req.url.split("?", 1)[0],
+      }),
+      res: (res: { statusCode: number }) => ({ status: res.statusCode }),
+      err: (error: { type?: string }) => ({ type: error.type }),
+    },
+    customSuccessMessage: () => "request",
+    customErrorMessage: () => "request",
+  });
+}
+
+/** What may be written about a failure: its kind, its place in our code and what caused it. */
+export function failure(error: unknown): Record<string, unknown> {
+  if (!(error instanceof Error)) return { error: String(error) };
+  const { code, errno } = error as { code?: unknown; errno?: unknown };
+  return {
+    error: error.name,
+    // A driver's message quotes the row, and with it addresses and hashes.
+    message: typeof errno === "number" ? String(code) : error.message,
+    code,
+    stack: error.stack?.split("\n").filter((line) => /^\s+at /.test(line)),
+  };
+}

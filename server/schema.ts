@@ -1,0 +1,30 @@
+import "reflect-metadata";
+
+import type { GraphQLSchema } from "graphql";
+import { buildSchema, type BuildSchemaOptions } from "type-graphql";
+
+import { AccountResolver } from "~server/account/account.resolver";
+import { PeopleResolver } from "~server/account/people.resolver";
+import { SessionResolver } from "~server/account/session.resolver";
+import { CitationResolver } from "~server/citation/citation.resolver";
+import { RoleChecker } from "~server/common/authChecker";
+import { CaughtMailResolver } from "~server/mail/caughtMail.resolver";
+
+/** Every resolver of the server; each folder adds its own here. */
+export const resolvers = [
+  SessionResolver,
+  AccountResolver,
+  PeopleResolver,
+  CitationResolver,
+  CaughtMailResolver,
+] as const satisfies BuildSchemaOptions["resolvers"];
+
+/** Builds the schema; needs no database. With a path it also writes the SDL there, sorted. */
+export function createSchema(emitTo?: string): Promise<GraphQLSchema> {
+  return buildSchema({
+    resolvers,
+    authChecker: RoleChecker,
+    validate: { forbidUnknownValues: false },
+    ...(emitTo === undefined ? {} : { emitSchemaFile: { path: emitTo, sortedSchema: true } }),
+  });
+}

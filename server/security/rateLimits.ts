@@ -1,0 +1,93 @@
+import { createPool } from "mysql2";
+import {
+  RateLimiterMemory,
+  RateLimiterMySQL,
+  RateLimiterRes,
+  type RateLimiterAbstract,
+} from "rate-limiter-flexible";
+
+import type { Config } from "~server/config/config";
+
+/** One counter; keys are addresses of people or callers. */
+export interface Limit {
+  /** Counts one; returns 0 when allowed, else the seconds to wait. */
+  take(key: string): Promise<number>;
+  /** Takes one back, for an attempt that turned out well. */
+  giveBack(key: string): Promise<void>;
+  forget(key: string): Promise<void>;
+}
+
+export type LimitName =
+  | "signInPerAddress"
+  | "signInPerCaller"
+  | "registerPerCaller"
+  | "mailPerAddress"
+  | "mailPerCaller"
+  | "upload"
+  | "download"
+  | "graphql";
+
+export type RateLimits = Record<LimitName, Limit> & { close(): Promise<void> };
+
+const HOUR_S = 3600;
+const MINUTE_S = 60;
+
+/**
+ * The limits. Those that guard accounts and uploads count in MariaDB, across processes and
+ * restarts. The two on plain traffic count in memory: they protect this process, and a write to
+ * disk for each read would cost more than the read.
+ */
+export function createRateLimits(config: Config): RateLimits {
+  const { limits } = config;
+  const url = new URL(config.databaseUrl);
+  // The limiter speaks callbacks: a promise pool does not work here.
+  const pool = createPool({ uri: config.databaseUrl, connectionLimit: 6 });
+  const shared = (keyPrefix: LimitName, points: number, duration: number): Limit =>
+    wrap(
+      new RateLimiterMySQL({
+        storeClient: pool,
+        storeType: "pool",
+        dbName: decodeURIComponent(url.pathname.slice(1)),
+        tableName: "rate_limit",
+        tableCreated: true, // a migration makes it
+        keyPrefix,
+        points,
+        duration,
+      }),
+    );
+  const own = (keyPrefix: LimitName, points: number): Limit =>
+    wrap(new RateLimiterMemory({ keyPrefix, points, duration: MINUTE_S }));
+  return {
+    signInPerAddress: shared("signInPerAddress", limits.signInPerAddress, limits.signInWindowS),
+    signInPerCaller: shared("signInPerCaller", limits.signInPerCaller, limits.signInWindowS),
+    registerPerCaller: shared("registerPerCaller", limits.registerPerCaller, HOUR_S),
+    mailPerAddress: shared("mailPerAddress", limits.mailPerAddress, HOUR_S),
+    mailPerCaller: shared("mailPerCaller", limits.mailPerCaller, HOUR_S),
+    upload: shared("upload", limits.uploadsPerMinute, MINUTE_S),
+    download: own("download", limits.downloadsPerMinute),
+    graphql: own("graphql", limits.graphqlPerMinute),
+    close: () =>
+      new Promise((resolve, reject) => pool.end((error) => (error ? reject(error) : resolve()))),
+  };
+}
+
+function wrap(limiter: RateLimiterAbstract): Limit {
+  return {
+    async take(key) {
+      try {
+        await limiter.consume(key);
+        return 0;
+      } catch (refused) {
+        // Anything else is a broken store: no count, no entry.
+        if (!(refused instanceof RateLimiterRes)) throw refused;
+        return Math.max(1, refused.msBeforeNext / 1000);
+      }
+    },
+    async giveBack(key) {
+      await limiter.reward(key);
+    },
+    async forget(key) {
+      await limiter.delete(key);
+    },
+  };
+}
