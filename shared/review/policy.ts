@@ -1,0 +1,87 @@
+/** Who may do what: the server enforces this table, the client reads it to offer buttons. */
+import { NEXT_STATES } from "./states";
+import type { RevisionState, Role } from "./states";
+
+export const ACTIONS = [
+  "keepCitations",
+  "startDraft",
+  "saveDraft",
+  "discardDraft",
+  "submitDraft",
+  "reviseSubmission",
+  "runImport",
+  "readSubmission",
+  "readQueue",
+  "claimSubmission",
+  "releaseClaim",
+  "storeReading",
+  "correctReading",
+  "acceptAnswer",
+  "returnSubmission",
+  "approveSubmission",
+  "saveTable",
+  "deleteTable",
+  "readPeople",
+  "grantRole",
+  "revokeRole",
+  "readCaughtMail",
+] as const;
+export type Action = (typeof ACTIONS)[number];
+
+export interface Permission {
+  /** One of these roles is needed; null means any signed-in person. */
+  roles: readonly Role[] | null;
+  /** Whether the thing acted on must be one's own, must not be, or either. */
+  own: "only" | "never" | "any";
+}
+
+const CONTRIBUTOR: readonly Role[] = ["contributor"];
+const EDITOR: readonly Role[] = ["editor"];
+const MAINTAINER: readonly Role[] = ["maintainer"];
+
+/** Adding an action without a row does not compile. */
+export const MAY: Record<Action, Permission> = {
+  keepCitations: { roles: CONTRIBUTOR, own: "any" },
+  startDraft: { roles: CONTRIBUTOR, own: "any" },
+  saveDraft: { roles: CONTRIBUTOR, own: "only" },
+  discardDraft: { roles: CONTRIBUTOR, own: "only" },
+  submitDraft: { roles: CONTRIBUTOR, own: "only" },
+  reviseSubmission: { roles: CONTRIBUTOR, own: "only" },
+  runImport: { roles: CONTRIBUTOR, own: "any" },
+  readSubmission: { roles: CONTRIBUTOR, own: "only" },
+  readQueue: { roles: EDITOR, own: "any" },
+  claimSubmission: { roles: EDITOR, own: "never" },
+  releaseClaim: { roles: EDITOR, own: "never" },
+  storeReading: { roles: EDITOR, own: "never" },
+  correctReading: { roles: EDITOR, own: "never" },
+  acceptAnswer: { roles: EDITOR, own: "never" },
+  returnSubmission: { roles: EDITOR, own: "never" },
+  approveSubmission: { roles: EDITOR, own: "never" },
+  saveTable: { roles: null, own: "any" },
+  deleteTable: { roles: null, own: "only" },
+  readPeople: { roles: MAINTAINER, own: "any" },
+  grantRole: { roles: MAINTAINER, own: "any" },
+  revokeRole: { roles: MAINTAINER, own: "any" },
+  readCaughtMail: { roles: MAINTAINER, own: "any" },
+};
+
+/**
+ * Whether a person may do something.
+ *
+ * @param roles - The signed-in person's roles; null when nobody is signed in.
+ * @param own - Whether the thing is theirs; leave it out where nothing is acted on yet.
+ */
+export function may(action: Action, roles: readonly Role[] | null, own?: boolean): boolean {
+  if (roles === null) return false;
+  const permission = MAY[action];
+  if (permission.roles !== null && !permission.roles.some((role) => roles.includes(role))) {
+    return false;
+  }
+  if (permission.own === "only") return own !== false;
+  return permission.own === "any" || own !== true;
+}
+
+/** Whether a revision may move from one state to another. */
+export function canMove(from: RevisionState, to: RevisionState): boolean {
+  return NEXT_STATES[from].includes(to);
+}
