@@ -36,3 +36,16 @@ export async function grant(
     if (dataSource.isInitialized) await dataSource.destroy();
   }
 }
+
+if (require.main === module) {
+  grant(process.argv.slice(2), process.env).then(
+    ({ ok, sentence }) => {
+      (ok ? process.stdout : process.stderr).write(`${sentence}\n`);
+      process.exitCode = ok ? 0 : 1;
+    },
+    (error: unknown) => {
+      process.stderr.write(`${error instanceof Error ? error.message : String(error)}\n`);
+      process.exitCode = 1;
+    },
+  );
+}

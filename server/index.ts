@@ -1,0 +1,117 @@
+import "reflect-metadata";
+
+import { createServer, type Server } from "node:http";
+
+import { buildApp } from "~server/app";
+import { ConfigError, readConfig, type Config } from "~server/config/config";
+import { createDataSource } from "~server/database/dataSource";
+import { DatabaseProblem, prepareDatabase } from "~server/database/prepare";
+import { isDemonstration } from "~server/database/settings";
+import { createLogger, failure } from "~server/logging/logger";
+import { startMailCatcher } from "~server/mail/catcher";
+import { startOutbox } from "~server/mail/outboxWorker";
+import { hasWebExport } from "~server/static/webClient";
+
+/** The server can't start; the message is a sentence for whoever started it. */
+class StartProblem extends Error {
+  override readonly name = "StartProblem";
+}
+
+/** Requests under way have this long to end once the server was told to stop. */
+const GRACE_MS = 8000;
+const REQUEST_MS = 120_000;
+
+type Closing = () => Promise<unknown>;
+
+/** Starts everything; what it opened is added to `open`, in order. */
+async function start(config: Config, open: Closing[]): Promise<void> {
+  if (!hasWebExport(config.webRoot)) {
+    throw new StartProblem(
+      `The web client is not exported: there is no index.html in ${config.webRoot}. ` +
+        "Run npm start, which exports it.",
+    );
+  }
+  const logger = createLogger(config.logLevel);
+  const dataSource = createDataSource(config.databaseUrl);
+  open.push(async () => {
+    if (dataSource.isInitialized) await dataSource.destroy();
+  });
+  await prepareDatabase(dataSource);
+
+  const { app, close } = await buildApp(config, dataSource, logger);
+  open.push(close);
+
+  let { smtpUrl } = config;
+  if (smtpUrl === null && (await isDemonstration(dataSource.manager))) {
+    const catcher = await startMailCatcher(dataSource);
+    open.push(catcher.close);
+    smtpUrl = catcher.url;
+  }
+  if (smtpUrl === null) {
+    logger.warn("SMTP_URL is not set: mails wait in the outbox until it is.");
+  } else {
+    open.push(startOutbox({ dataSource, logger, smtpUrl, from: config.mailFrom }).close);
+  }
+
+  const server = createServer(app);
+  server.requestTimeout = REQUEST_MS;
+  await listen(server, config);
+  open.push(() => closeServer(server));
+  logger.info({ host: config.host, port: config.port }, "listening");
+}
+
+function listen(server: Server, { host, port }: Config): Promise<void> {
+  return new Promise((resolve, reject) => {
+    server.once("error", (error: NodeJS.ErrnoException) => {
+      if (error.code === "EADDRINUSE") {
+        reject(new StartProblem(`Port ${port} is taken by another program: choose one with PORT.`));
+      } else if (error.code === "EACCES") {
+        reject(new StartProblem(`This user may not open port ${port}: choose one above 1023.`));
+      } else {
+        reject(new StartProblem(`The address ${host}:${port} can't be opened (${error.code}).`));
+      }
+    });
+    server.listen(port, host, resolve);
+  });
+}
+
+async function closeServer(server: Server): Promise<void> {
+  const ended = new Promise<void>((resolve) => server.close(() => resolve()));
+  server.closeIdleConnections();
+  const timer = setTimeout(() => server.closeAllConnections(), GRACE_MS);
+  await ended;
+  clearTimeout(timer);
+}
+
+async function main(): Promise<void> {
+  const open: Closing[] = [];
+  let stopping: Promise<void> | null = null;
+  /** Ends everything, last opened first; the exit code says whether it was meant to end. */
+  const stop = (code: number): Promise<void> => {
+    stopping ??= (async () => {
+      for (const close of open.reverse()) {
+        await close().catch((error: unknown) => console.error(failure(error)));
+      }
+      process.exit(code);
+    })();
+    return stopping;
+  };
+  for (const signal of ["SIGTERM", "SIGINT"] as const) process.on(signal, () => void stop(0));
+  process.on("uncaughtException", (error) => {
+    console.error(failure(error));
+    void stop(1);
+  });
+
+  try {
+    await start(readConfig(process.env), open);
+  } catch (error) {
+    const expected =
+      error instanceof ConfigError ||
+      error instanceof DatabaseProblem ||
+      error instanceof StartProblem;
+    console.error(expected ? error.message : failure(error));
+    await stop(1);
+  }
+}
+
+void main();
