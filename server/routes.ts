@@ -4,6 +4,7 @@ import type { DataSource } from "typeorm";
 import type { RequestContext } from "~server/common/context";
 import type { Config } from "~server/config/config";
 import type { RateLimits } from "~server/security/rateLimits";
+import { uploadRoutes } from "~server/upload/upload.routes";
 
 /** What a plain HTTP address may use beside its request. */
 export interface RouteParts {
@@ -21,4 +22,4 @@ export type RouteInstaller = (router: Router, parts: RouteParts) => void;
  * ("/api/uploads"). Sessions, the same-origin check and the general limits are in front of it;
  * throw an HttpProblem for an answer in words.
  */
-export const routes: RouteInstaller[] = [];
+export const routes: RouteInstaller[] = [uploadRoutes];
