@@ -20,6 +20,8 @@ import {
   VERSIONS_READ,
   WEIGHTINGS,
 } from "~shared/statement/fields";
+import { isNumberField } from "~shared/statement/relevant";
+import { PRINTED_TEXT_LONGEST } from "~shared/statement/rules";
 import {
   COSMIC_VARIANCE_WORDS,
   DURATION_UNIT_WORDS,
@@ -65,34 +67,12 @@ const SPECIES_SHORT: Record<(typeof SPECIES)[number], string> = {
   electron: "Electron",
 };
 
-const NUMBERS: ReadonlySet<FieldName> = new Set<FieldName>([
-  "value",
-  "plus",
-  "minus",
-  "limitBase",
-  "limitSigma",
-  "bandLow",
-  "bandHigh",
-  "levelPercent",
-  "rangeLow",
-  "rangeHigh",
-  "fraction",
-  "fractionFrom",
-  "fractionTo",
-  "z",
-  "zLow",
-  "zHigh",
-  "digitizingError",
-]);
-
 const LONG: ReadonlySet<FieldName> = new Set<FieldName>([
   "printedText",
   "furtherIntervals",
   "historyAssumed",
   "remark",
 ]);
-
-export const PRINTED_TEXT_MAX = 300;
 
 interface Words {
   values: readonly string[];
@@ -224,7 +204,7 @@ function EnumChoice({ name, fields, set, error, hint, label }: FieldInputProps &
 
 function TextInput({ name, fields, set, error, hint, label, onBlur }: FieldInputProps & { label: string }) {
   const text = (fields[name] as string | null) ?? "";
-  const numeric = NUMBERS.has(name);
+  const numeric = isNumberField(name) || name === "digitizingError";
   return (
     <Field
       name={name}
@@ -233,8 +213,8 @@ function TextInput({ name, fields, set, error, hint, label, onBlur }: FieldInput
       numeric={numeric}
       inputMode={numeric ? "decimal" : undefined}
       multiline={LONG.has(name)}
-      maxLength={name === "printedText" ? PRINTED_TEXT_MAX : undefined}
-      hint={hint ?? (name === "printedText" ? `Exactly as it stands, ${text.length} of ${PRINTED_TEXT_MAX}` : undefined)}
+      maxLength={name === "printedText" ? PRINTED_TEXT_LONGEST : undefined}
+      hint={hint ?? (name === "printedText" ? `Exactly as it stands, ${text.length} of ${PRINTED_TEXT_LONGEST}` : undefined)}
       error={error}
       onBlur={onBlur}
       onChangeText={(next) => set(name, (next === "" ? null : next) as never)}

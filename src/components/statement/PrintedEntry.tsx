@@ -6,7 +6,7 @@ import { Block } from "@/components/Text";
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
 
 import { FieldInput, type SetField } from "./FieldInput";
-import { isRelevant } from "./relevantFields";
+import { isRelevant } from "./printedFields";
 
 export interface PrintedEntryProps {
   fields: ConstraintFields;

@@ -128,9 +128,7 @@ function BibtexEntry({
         onChangeText={typed}
         autoComplete="off"
       />
-      <View style={{ flexDirection: "row" }}>
-        <FilePick label="Pick a .bib file" accept=".bib,.txt" onPick={({ text }) => typed(text)} />
-      </View>
+      <FilePick label="Pick a .bib file" accept=".bib,.txt" onPick={({ text }) => typed(text)} />
       {refusal ? <Notice grade="error">{refusal}</Notice> : null}
       <View aria-live="polite" style={{ gap: 16 }}>
         {loading ? <Loading label="Reading the entries" rows={2} /> : null}

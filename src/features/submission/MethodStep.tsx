@@ -3,7 +3,7 @@ import { View } from "react-native";
 
 import { FieldInput, type SetField } from "@/components/statement/FieldInput";
 import { EntryGroup } from "@/components/statement/PrintedEntry";
-import { isRelevant } from "@/components/statement/relevantFields";
+import { isRelevant } from "@/components/statement/printedFields";
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
 
 /** Where the statement comes from: method, data, dependence, groups, provenance. */

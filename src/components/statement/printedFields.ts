@@ -1,9 +1,5 @@
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
-
-type Shape = Pick<
-  ConstraintFields,
-  "quantity" | "kind" | "species" | "level" | "versionRead" | "readOffFigure"
->;
+import { relevantFields } from "~shared/statement/relevant";
 
 /** Fields of "what the paper prints"; which of them are asked depends on quantity and statement. */
 export const PRINTED_FIELDS: readonly FieldName[] = [
@@ -60,59 +56,25 @@ export const METHOD_FIELDS: readonly FieldName[] = [
   "remark",
 ];
 
+const BY_CHOICE: ReadonlySet<FieldName> = new Set<FieldName>(
+  PRINTED_FIELDS.filter((name) => !["historyAssumed", "furtherIntervals", "printedText"].includes(name)),
+);
+
 /**
- * Whether a field has a meaning for this quantity and statement.
+ * Whether a field has a meaning for the quantity, statement and other choices made so far.
  * Fields of the method step always have one, save those that hang on another answer.
  */
-export function isRelevant(name: FieldName, shape: Shape): boolean {
-  const { quantity, kind, species, level } = shape;
-  const fraction = quantity === "neutralFraction";
-  const limit = kind === "upperLimit" || kind === "lowerLimit";
-  const numbers = kind !== null && kind !== "qualitative";
+export function isRelevant(name: FieldName, fields: ConstraintFields): boolean {
+  if (BY_CHOICE.has(name)) return relevantFields(fields).includes(name);
   switch (name) {
-    case "species":
-      return fraction || quantity === "redshiftAtFraction" || quantity === "duration";
-    case "helium":
-      return species === "electron" && isRelevant("species", shape);
-    case "scale":
-    case "weighting":
-    case "z":
-    case "zLow":
-    case "zHigh":
-    case "zRole":
-      return fraction;
-    case "rangeLow":
-    case "rangeHigh":
-      return quantity === "opticalDepthRange";
-    case "fraction":
-      return quantity === "redshiftAtFraction";
-    case "fractionFrom":
-    case "fractionTo":
-    case "durationUnit":
-      return quantity === "duration";
     case "historyAssumed":
-      return quantity !== null && !fraction;
-    case "value":
-      return kind === "twoSided" || limit;
-    case "plus":
-    case "minus":
-    case "estimator":
-      return kind === "twoSided";
-    case "limitBase":
-    case "limitSigma":
-      return limit;
-    case "bandLow":
-    case "bandHigh":
-      return kind === "band";
-    case "level":
+      return fields.quantity !== null && fields.quantity !== "neutralFraction";
     case "furtherIntervals":
-      return numbers;
-    case "levelPercent":
-      return numbers && level === "other";
+      return fields.kind !== null && fields.kind !== "qualitative";
     case "preprintVersion":
-      return shape.versionRead === "preprint";
+      return fields.versionRead === "preprint";
     case "digitizingError":
-      return shape.readOffFigure === true;
+      return fields.readOffFigure === true;
     default:
       return true;
   }
