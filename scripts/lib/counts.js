@@ -8,14 +8,17 @@ function countReport(report, { skippedFails }) {
   const skipped = report.numPendingTests + report.numTodoTests;
   return {
     passed: report.numPassedTests,
-    failed:
-      report.numFailedTests + report.numRuntimeErrorTestSuites + (skippedFails ? skipped : 0),
+    failed: report.numFailedTests + report.numRuntimeErrorTestSuites + (skippedFails ? skipped : 0),
     skipped,
   };
 }
 
 function addCounts(a, b) {
-  return { passed: a.passed + b.passed, failed: a.failed + b.failed, skipped: a.skipped + b.skipped };
+  return {
+    passed: a.passed + b.passed,
+    failed: a.failed + b.failed,
+    skipped: a.skipped + b.skipped,
+  };
 }
 
 module.exports = { countReport, addCounts };

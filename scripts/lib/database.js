@@ -51,7 +51,13 @@ function optionArgument(folder, connection) {
 
 /** Runs SQL and returns the rows, each an array of texts. */
 async function query(options, database, sql) {
-  const args = [options, "--batch", "--skip-column-names", "--raw", ...(database ? [database] : [])];
+  const args = [
+    options,
+    "--batch",
+    "--skip-column-names",
+    "--raw",
+    ...(database ? [database] : []),
+  ];
   const output = await run(findProgram("mariadb"), args, {
     input: sql,
     sentence: "The database did not answer as expected.",

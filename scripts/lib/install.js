@@ -49,14 +49,19 @@ async function ensurePrograms({ title, programs, packages }, log) {
     const [apt, asRoot] = installer(title, packages);
     const environment = ["DEBIAN_FRONTEND=noninteractive", "LC_ALL=C.UTF-8"];
     // sudo may have to ask for the password, so it keeps the terminal.
-    const stdio = asRoot.length > 0 && process.stdin.isTTY ? ["inherit", "pipe", "pipe"] : undefined;
+    const stdio =
+      asRoot.length > 0 && process.stdin.isTTY ? ["inherit", "pipe", "pipe"] : undefined;
     const aptGet = (args, sentence, allowFailure) =>
-      run(asRoot[0] ?? "env", [...asRoot.slice(1), ...(asRoot.length ? ["env"] : []), ...environment, apt, ...args], {
-        sentence,
-        log,
-        stdio,
-        allowFailure,
-      });
+      run(
+        asRoot[0] ?? "env",
+        [...asRoot.slice(1), ...(asRoot.length ? ["env"] : []), ...environment, apt, ...args],
+        {
+          sentence,
+          log,
+          stdio,
+          allowFailure,
+        },
+      );
     // A failed update may leave lists that still serve; the install then tells.
     await aptGet(["-q", "update"], "", true);
     await aptGet(
@@ -66,7 +71,9 @@ async function ensurePrograms({ title, programs, packages }, log) {
     );
     const still = programs.filter((name) => findProgram(name) === null);
     if (still.length > 0)
-      throw new PlainFailure(`${title}: ${still.join(", ")} is missing even after the installation.`);
+      throw new PlainFailure(
+        `${title}: ${still.join(", ")} is missing even after the installation.`,
+      );
   });
 }
 
@@ -112,7 +119,8 @@ async function ensureModules(log) {
     const [command, first] = viaNode ? [process.execPath, [npm]] : ["npm", []];
     await run(command, [...first, "ci", "--include=dev", "--no-audit", "--no-fund"], {
       cwd: ROOT,
-      sentence: "npm ci could not install the packages. Check the network, then run the command again.",
+      sentence:
+        "npm ci could not install the packages. Check the network, then run the command again.",
       log,
     });
     fs.writeFileSync(MODULES_STAMP, contentStamp([LOCKFILE]));

@@ -16,9 +16,13 @@ const HELD_ELSEWHERE = 75;
  */
 async function takeLock(place, { wait }) {
   const how = wait ? [] : ["--nonblock", "--conflict-exit-code", String(HELD_ELSEWHERE)];
-  const holder = startChild("flock", [...how, place, "sh", "-c", "echo held; exec cat >/dev/null"], {
-    stdio: ["pipe", "pipe", "ignore"],
-  });
+  const holder = startChild(
+    "flock",
+    [...how, place, "sh", "-c", "echo held; exec cat >/dev/null"],
+    {
+      stdio: ["pipe", "pipe", "ignore"],
+    },
+  );
   holder.stdin.on("error", () => {});
   const outcome = await Promise.race([
     new Promise((resolve) => holder.stdout.once("data", () => resolve("held"))),

@@ -198,7 +198,10 @@ async function endLeftover({ data, running }) {
 /** True if the process is a MariaDB over exactly this data directory. */
 function servesFrom(pid, data) {
   try {
-    return fs.readFileSync(`/proc/${pid}/cmdline`, "utf8").split("\0").includes(`--datadir=${data}`);
+    return fs
+      .readFileSync(`/proc/${pid}/cmdline`, "utf8")
+      .split("\0")
+      .includes(`--datadir=${data}`);
   } catch {
     return false;
   }

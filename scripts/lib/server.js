@@ -58,7 +58,9 @@ function portFailure(error, port, host) {
         `PORT=${port + 1} npm start`,
     );
   if (error.code === "EACCES")
-    return new PlainFailure(`This user may not open port ${port}. Choose one above 1023 with PORT.`);
+    return new PlainFailure(
+      `This user may not open port ${port}. Choose one above 1023 with PORT.`,
+    );
   return new PlainFailure(`The address ${host}:${port} can't be opened (${error.code}).`);
 }
 

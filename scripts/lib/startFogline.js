@@ -5,7 +5,13 @@ const path = require("node:path");
 const { buildClient, buildServer } = require("./build");
 const { parseDatabaseUrl } = require("./database");
 const { PlainFailure } = require("./failure");
-const { MARIADB_SERVER, ensureModules, ensurePrograms, requireSpace, spaceNeeded } = require("./install");
+const {
+  MARIADB_SERVER,
+  ensureModules,
+  ensurePrograms,
+  requireSpace,
+  spaceNeeded,
+} = require("./install");
 const { lockDirectory, lockProject } = require("./lock");
 const { hasDatabase, startMariaDb } = require("./mariadb");
 const { program } = require("./program");
@@ -88,7 +94,8 @@ function announce(environment, url, { demonstration, accounts }, logs, tookMs) {
     if (!environment.SMTP_URL) say("Mail goes nowhere: a maintainer reads it under Desk, Mail.");
   } else {
     say("The first maintainer: register in the browser, then npm run grant -- ADDRESS maintainer");
-    if (!environment.SMTP_URL) say("No mail leaves this machine until SMTP_URL names a mail server.");
+    if (!environment.SMTP_URL)
+      say("No mail leaves this machine until SMTP_URL names a mail server.");
   }
   say();
   say(`Log: ${path.relative(fromRoot(), logs.server)}. Stop with Ctrl-C.`);

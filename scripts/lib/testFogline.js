@@ -28,8 +28,7 @@ function main() {
       atLast(code) {
         // A run that broke off has failed, even if all its tests so far have passed.
         const failed = code !== 0 && total.failed === 0 ? 1 : total.failed;
-        if (total.skipped > 0)
-          say(`${total.skipped} skipped${inCi ? ", counted as failed" : ""}`);
+        if (total.skipped > 0) say(`${total.skipped} skipped${inCi ? ", counted as failed" : ""}`);
         say(`${total.passed} passed, ${failed} failed`);
       },
     },

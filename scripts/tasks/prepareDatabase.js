@@ -53,9 +53,10 @@ async function isUntouched(dataSource) {
 
 /** Addresses and roles of the invented people, for the start command to print. */
 async function accountsOf(dataSource) {
-  const rows = await dataSource.query("SELECT email FROM `user` WHERE email LIKE ? ORDER BY email", [
-    "%@fogline.example",
-  ]);
+  const rows = await dataSource.query(
+    "SELECT email FROM `user` WHERE email LIKE ? ORDER BY email",
+    ["%@fogline.example"],
+  );
   return rows.map((row) => row.email);
 }
 
