@@ -1,0 +1,127 @@
+import { markOf, nearestMark, WIDE_SIZES } from "~shared/chart/marks";
+import { planePoint } from "~shared/chart/points";
+import { linearScale, logScale } from "~shared/chart/scales";
+import { asUsed } from "~shared/statement/asUsed";
+import { type ConstraintFields, emptyFields } from "~shared/statement/fields";
+
+function point(fields: Partial<ConstraintFields>) {
+  const used = asUsed({
+    ...emptyFields(),
+    quantity: "neutralFraction",
+    species: "neutral",
+    scale: "linear",
+    z: "7",
+    level: "oneSigma",
+    ...fields,
+  });
+  if (used === null) throw new Error("the fields of the test are not usable");
+  return planePoint(used);
+}
+
+const box = { left: 0, right: 600, top: 0, bottom: 1060 };
+const zScale = linearScale([5, 11], [0, 600]);
+const xScale = linearScale([-0.03, 1.03], [1060, 0]);
+
+describe("planePoint", () => {
+  it("draws an ionized value at its neutral one, with the sides of its bar swapped", () => {
+    const drawn = point({
+      species: "ionized",
+      kind: "twoSided",
+      value: "0.37",
+      plus: "0.23",
+      minus: "0.17",
+    });
+    expect(drawn?.x).toBe(0.63);
+    expect(drawn?.xEnds?.[0]).toBeCloseTo(0.4, 12);
+    expect(drawn?.xEnds?.[1]).toBeCloseTo(0.8, 12);
+  });
+
+  it("points an upper limit of the ionized fraction upwards", () => {
+    const drawn = point({ species: "ionized", kind: "upperLimit", value: "0.4" });
+    expect(drawn?.arrow).toEqual({ along: "x", direction: 1 });
+    expect(drawn?.hollow).toBe(true);
+  });
+
+  it("opens a value printed as log10 to its fraction, with unequal sides", () => {
+    const drawn = point({ scale: "log10", kind: "twoSided", value: "-1", plus: "0.3", minus: "0.3" });
+    expect(drawn?.x).toBeCloseTo(0.1, 12);
+    expect(drawn?.xEnds?.[1]).toBeCloseTo(10 ** -0.7, 12);
+  });
+
+  it("draws a redshift at a fraction at its fraction, with the error along the redshift", () => {
+    const drawn = point({
+      quantity: "redshiftAtFraction",
+      fraction: "0.5",
+      kind: "twoSided",
+      value: "7.5",
+      plus: "0.6",
+      minus: "0.6",
+    });
+    expect(drawn).toMatchObject({ z: 7.5, x: 0.5, xEnds: null, bin: false });
+    expect(drawn?.zEnds?.[0]).toBeCloseTo(6.9, 12);
+    expect(drawn?.zEnds?.[1]).toBeCloseTo(8.1, 12);
+  });
+
+  it("gives a band no best value", () => {
+    const drawn = point({ kind: "band", bandLow: "0.2", bandHigh: "0.6" });
+    expect(drawn?.hollow).toBe(true);
+    expect(drawn?.band).toEqual({ along: "x", ends: [0.2, 0.6] });
+  });
+
+  it("has no place for an optical depth", () => {
+    expect(
+      point({ quantity: "opticalDepth", kind: "twoSided", value: "0.05", plus: "0.01", minus: "0.01" }),
+    ).toBeNull();
+  });
+});
+
+describe("markOf", () => {
+  it("cuts the arrow of an upper limit at a fraction of zero", () => {
+    const drawn = point({ kind: "upperLimit", value: "0.02" });
+    const mark = drawn && markOf(drawn, zScale, xScale, box, WIDE_SIZES);
+    // x = 0 stands 1000 / 1.06 units per fraction above the lower edge: 0.03 × 1000 = 30 above it.
+    const tip = mark?.arrow?.head[2]?.[1] ?? NaN;
+    expect(tip).toBeCloseTo(1030, 9);
+  });
+
+  it("lets a free arrow reach its full length", () => {
+    const drawn = point({ kind: "lowerLimit", value: "0.40" });
+    const mark = drawn && markOf(drawn, zScale, xScale, box, WIDE_SIZES);
+    const tip = mark?.arrow?.head[2]?.[1] ?? NaN;
+    expect((mark?.y ?? NaN) - tip).toBeCloseTo(WIDE_SIZES.arrowLength, 9);
+  });
+
+  it("gives a bin end ticks and an uncertain redshift none", () => {
+    const fields = { kind: "twoSided", value: "0.5", plus: "0.1", minus: "0.1", zLow: "6.8", zHigh: "7.2" } as const;
+    const bin = point({ ...fields, zRole: "binAverage" });
+    const uncertain = point({ ...fields, zRole: "uncertain" });
+    expect(bin && markOf(bin, zScale, xScale, box, WIDE_SIZES)?.ends).toHaveLength(2);
+    expect(uncertain && markOf(uncertain, zScale, xScale, box, WIDE_SIZES)?.ends).toHaveLength(0);
+  });
+
+  it("dashes what states no level", () => {
+    const drawn = point({ kind: "twoSided", value: "0.5", plus: "0.1", minus: "0.1", level: "notStated" });
+    expect(drawn && markOf(drawn, zScale, xScale, box, WIDE_SIZES)?.dashed).toBe(true);
+  });
+
+  it("leaves out what stands outside the frame", () => {
+    const drawn = point({ z: "12", kind: "twoSided", value: "0.5", plus: "0.1", minus: "0.1" });
+    expect(drawn && markOf(drawn, zScale, xScale, box, WIDE_SIZES)).toBeNull();
+  });
+
+  it("ends a bar that reaches zero at the frame of a logarithmic axis", () => {
+    const drawn = point({ kind: "twoSided", value: "0.1", plus: "0.1", minus: "0.1" });
+    const mark = drawn && markOf(drawn, zScale, logScale([1e-3, 1], [1060, 0]), box, WIDE_SIZES);
+    expect(mark?.bars[0]?.y1).toBe(1060);
+  });
+});
+
+describe("nearestMark", () => {
+  const marks = [{ x: 10, y: 10 }, null, { x: 20, y: 10 }, { x: 20, y: 10 }];
+  it("finds the nearest one, the first of equals", () => {
+    expect(nearestMark(marks, 17, 10, 44)).toBe(2);
+  });
+  it("finds none beyond its reach", () => {
+    expect(nearestMark(marks, 100, 100, 44)).toBeNull();
+  });
+});
