@@ -31,7 +31,8 @@ export function powerLawHistory({
 }): History {
   requireWithin("zEnd", zEnd, 0, 1000);
   requirePositive("alpha", alpha);
-  if (!(zEarly > zEnd && zEarly < Infinity)) throw new DomainError("zEarly", zEarly, `above zEnd, ${zEnd}`);
+  if (!(zEarly > zEnd && zEarly < Infinity))
+    throw new DomainError("zEarly", zEarly, `above zEnd, ${zEnd}`);
   const span = zEarly - zEnd;
 
   const ionized = (z: number): number =>
@@ -92,7 +93,10 @@ function powerDepth(
   // Halving towards v = 0 meets the branch point there; the last sliver holds below 1e-13.
   let high = vHigh;
   for (let p = 0; p < 60 && high > vLow; p++) {
-    let low = p < 59 ? Math.max(vLow, 0.5 * high) : vLow;
+    // H(z) bends on the scale of 1 + z: no panel may more than double it.
+    const a = 1 + zEarly - span * high * high;
+    const doubled = Math.sqrt(Math.max(0, 1 + zEarly - 2 * a) / span);
+    let low = p < 59 ? Math.max(vLow, 0.5 * high, doubled) : vLow;
     if (low - vLow < 1e-3 * high) low = vLow;
     const half = 0.5 * (high - low);
     const centre = 0.5 * (high + low);

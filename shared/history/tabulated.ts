@@ -23,7 +23,8 @@ export function tabulatedHistory(z: readonly number[], x: readonly number[]): Hi
   const zs = Float64Array.from(z);
   const xs = Float64Array.from(x);
   for (let i = 0; i < n; i++) {
-    if (!(zs[i]! >= 0 && zs[i]! < Infinity)) throw new DomainError(`z[${i}]`, z[i], "zero or positive");
+    if (!(zs[i]! >= 0 && zs[i]! < Infinity))
+      throw new DomainError(`z[${i}]`, z[i], "zero or positive");
     if (!(xs[i]! >= 0 && xs[i]! <= 1)) throw new DomainError(`x[${i}]`, x[i], "from 0 to 1");
   }
   const slopes = pchipSlopes(zs, xs);

@@ -9,10 +9,15 @@ export const DEFAULT_DELTA_Z = 0.5;
 
 /**
  * Where the deviation from a sharp step is cut into panels, in units of Δ_y from the place where it
- * starts; it falls as e^(−2s) and is nothing beyond the last.
+ * starts. It falls as e^(−2s), so that later panels need fewer nodes and 1e-12 of it lies beyond the last.
  */
-const PANEL_ENDS = [0.8, 1.8, 3.2, 5.2, 8, 12, 19] as const;
-const RULE = gaussLegendre(10);
+const PANELS = [
+  { end: 0.9, rule: gaussLegendre(10) },
+  { end: 2.2, rule: gaussLegendre(10) },
+  { end: 4, rule: gaussLegendre(9) },
+  { end: 7, rule: gaussLegendre(8) },
+  { end: 14, rule: gaussLegendre(8) },
+] as const;
 
 /**
  * The symmetric history Q = ½[1 + tanh((y_re − y)/Δ_y)], y = (1+z)^1.5, Δ_y = 1.5 √(1+z_re) Δz.
@@ -92,13 +97,14 @@ function deviation(
 ): number {
   const direction = stop > start ? 1 : -1;
   const yStart = start * start * start;
-  const { nodes, weights } = RULE;
   const rate = (2 / deltaY) * direction;
   let from = start;
   let total = 0;
-  for (let p = 0; from !== stop; ) {
-    if (p === PANEL_ENDS.length) break;
-    const y = yStart + direction * deltaY * PANEL_ENDS[p]!;
+  for (let p = 0; from !== stop;) {
+    const panel = PANELS[p];
+    if (!panel) break;
+    const { nodes, weights } = panel.rule;
+    const y = yStart + direction * deltaY * panel.end;
     let to = y > 1 ? Math.cbrt(y) : 1;
     if ((to - stop) * direction >= 0) to = stop;
     // H(z) bends on the scale of u near today: wide steps are cut there.
