@@ -1,6 +1,8 @@
 /** From as printed to as used: every conversion a record needs before a likelihood can take it. */
 import Big from "big.js";
 
+import { sigmasOfLevel } from "~shared/numerics/special";
+
 import { computedText, decimalPlaces, decimalText, oneMinus, parseDecimal } from "./decimal";
 import type {
   ConstraintFields,
@@ -11,7 +13,7 @@ import type {
   StatementKind,
   Weighting,
 } from "./fields";
-import { levelProbability, sigmasAtLevel } from "./level";
+import { levelProbability } from "./level";
 
 /** Mass fraction of primordial helium (Planck 2018 VI, table 2). */
 export const HELIUM_MASS_FRACTION = 0.2454;
@@ -104,7 +106,7 @@ export function asUsed(fields: ConstraintFields): AsUsed | null {
   const evaluatedIn = "evaluatedIn" in converted ? converted.evaluatedIn : "linear";
   const valueDerived = ("derived" in converted && converted.derived) || ends.derived;
   const level = levelProbability(fields.level, fields.levelPercent);
-  const k = level === null ? null : sigmasAtLevel(level);
+  const k = level === null ? null : sigmasOfLevel(level);
   const sigmas = oneSigma(numbers, k);
   const sigmaDerived = sigmas.minus !== null && fields.level !== "oneSigma";
   describeLevel(fields, numbers, k, steps);
