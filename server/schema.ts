@@ -8,7 +8,11 @@ import { PeopleResolver } from "~server/account/people.resolver";
 import { SessionResolver } from "~server/account/session.resolver";
 import { CitationResolver } from "~server/citation/citation.resolver";
 import { RoleChecker } from "~server/common/authChecker";
+import { ConstraintResolver } from "~server/constraint/constraint.resolver";
+import { SubmissionResolver } from "~server/constraint/submission.resolver";
 import { CaughtMailResolver } from "~server/mail/caughtMail.resolver";
+import { ReviewResolver } from "~server/review/review.resolver";
+import { TableResolver } from "~server/table/table.resolver";
 
 /** Every resolver of the server; each folder adds its own here. */
 export const resolvers = [
@@ -17,6 +21,10 @@ export const resolvers = [
   PeopleResolver,
   CitationResolver,
   CaughtMailResolver,
+  ConstraintResolver,
+  SubmissionResolver,
+  ReviewResolver,
+  TableResolver,
 ] as const satisfies BuildSchemaOptions["resolvers"];
 
 /** Builds the schema; needs no database. With a path it also writes the SDL there, sorted. */

@@ -2,10 +2,16 @@ import { MailToken } from "~server/account/mailToken.entity";
 import { RoleGrant } from "~server/account/roleGrant.entity";
 import { User } from "~server/account/user.entity";
 import { Citation, CitationGate } from "~server/citation/citation.entity";
+import { Constraint } from "~server/constraint/constraint.entity";
+import { Revision, RevisionData } from "~server/constraint/revision.entity";
 import { EventHead, EventRecord } from "~server/event/event.entity";
 import { CaughtMailRow } from "~server/mail/caughtMail.entity";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
+import { FieldCommentRecord } from "~server/review/comment.entity";
+import { Reading } from "~server/review/reading.entity";
 import { RateLimitRow } from "~server/security/rateLimit.entity";
+import { SavedTable } from "~server/table/table.entity";
+import { Upload } from "~server/upload/upload.entity";
 import { SessionRow } from "~server/http/session.entity";
 
 import { Setting } from "./setting.entity";
@@ -22,6 +28,13 @@ export const entities = [
   Setting,
   Citation,
   CitationGate,
+  Upload,
   EventRecord,
   EventHead,
+  Constraint,
+  Revision,
+  RevisionData,
+  Reading,
+  FieldCommentRecord,
+  SavedTable,
 ];

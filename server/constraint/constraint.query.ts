@@ -1,0 +1,158 @@
+import type { EntityManager, SelectQueryBuilder } from "typeorm";
+
+import { Citation } from "~server/citation/citation.entity";
+import type { RequestContext } from "~server/common/context";
+import { withoutRecordsReadBlind } from "~server/review/blindness";
+import type { ConstraintFilter, ConstraintSort } from "~shared/filter/filter";
+
+import { Constraint } from "./constraint.entity";
+import { Revision } from "./revision.entity";
+
+/** A record as the public sees it: the revision in use, and the paper it reads. */
+export interface ApprovedRow {
+  constraint: Constraint;
+  revision: Revision;
+  citation: Citation;
+}
+
+/** What a query needs of a request: whose eyes, which database. */
+export type Asking = Pick<RequestContext, "database" | "viewer">;
+
+/** Rows handed out at once through the API; downloads ask for more. */
+export const MOST_ROWS = 500;
+
+/**
+ * Approved records that match a filter, as far as this viewer may see them (blindness.ts).
+ *
+ * @param limit - Null for all of them.
+ */
+export async function findApproved(
+  ctx: Asking,
+  filter: ConstraintFilter,
+  sort: ConstraintSort = "redshift",
+  offset = 0,
+  limit: number | null = null,
+): Promise<ApprovedRow[]> {
+  const query = filtered(ctx, filter);
+  order(query, sort);
+  if (offset > 0 || limit !== null) query.offset(offset).limit(limit ?? Number.MAX_SAFE_INTEGER);
+  return (await query.getMany()).map(approvedRow);
+}
+
+/** How many approved records match, over all pages. */
+export async function countApproved(ctx: Asking, filter: ConstraintFilter): Promise<number> {
+  return filtered(ctx, filter).getCount();
+}
+
+/** One approved record by its number, or null: unknown, not approved yet, or being read blind. */
+export async function findApprovedByNumber(
+  ctx: Asking,
+  number: number,
+): Promise<ApprovedRow | null> {
+  const [row] = await findApprovedByNumbers(ctx, [number]);
+  return row ?? null;
+}
+
+export async function findApprovedByNumbers(
+  ctx: Asking,
+  numbers: readonly number[],
+): Promise<ApprovedRow[]> {
+  if (numbers.length === 0) return [];
+  const query = approved(ctx).andWhere("record.id IN (:...numbers)", { numbers });
+  return (await query.getMany()).map(approvedRow);
+}
+
+/** Revisions in use with record and citation, without those that the viewer is reading blind. */
+export function approved(ctx: Asking): SelectQueryBuilder<Revision> {
+  return approvedFor(ctx.database.manager, ctx.viewer);
+}
+
+export function approvedFor(
+  manager: EntityManager,
+  viewer: Asking["viewer"],
+): SelectQueryBuilder<Revision> {
+  const query = manager
+    .createQueryBuilder(Revision, "revision")
+    .innerJoinAndSelect("revision.constraint", "record", "record.approvedRevisionId = revision.id")
+    .innerJoinAndSelect("revision.citation", "citation")
+    .where("record.state <> 'withdrawn'");
+  return withoutRecordsReadBlind(query, "record", viewer, new Date());
+}
+
+export function approvedRow(revision: Revision): ApprovedRow {
+  if (!revision.citation) throw new Error(`approved revision ${revision.id} has no citation`);
+  return { constraint: revision.constraint, revision, citation: revision.citation };
+}
+
+function filtered(ctx: Asking, filter: ConstraintFilter): SelectQueryBuilder<Revision> {
+  const query = approved(ctx);
+  anyWord(query, "revision.families", "family", filter.families);
+  anyWord(query, "revision.tags", "tag", filter.tags);
+  oneOf(query, "revision.quantity", "quantities", filter.quantities);
+  oneOf(query, "revision.kind", "kinds", filter.kinds);
+  oneOf(query, "revision.weighting", "weightings", filter.weightings);
+  oneOf(query, "revision.versionRead", "versions", filter.versions);
+  const bounds = [
+    ["revision.zUsed >= :zFrom", "zFrom"],
+    ["revision.zUsed <= :zTo", "zTo"],
+    ["revision.year >= :yearFrom", "yearFrom"],
+    ["revision.year <= :yearTo", "yearTo"],
+  ] as const;
+  for (const [condition, name] of bounds) {
+    const bound = filter[name];
+    if (bound !== null && bound !== undefined) query.andWhere(condition, { [name]: bound });
+  }
+  // Each word must be found; a word is at most as long as what a person would type.
+  const words = (filter.text ?? "").trim().split(/\s+/).filter(Boolean).slice(0, 12);
+  words.forEach((word, index) => {
+    query.andWhere(`revision.searchText LIKE :word${index} ESCAPE '!'`, {
+      [`word${index}`]: `%${escapeLike(word.slice(0, 100))}%`,
+    });
+  });
+  return query;
+}
+
+/** Makes %, _ and ! stand for themselves in a pattern with ESCAPE '!'. */
+export function escapeLike(text: string): string {
+  return text.replace(/[!%_]/g, "!$&");
+}
+
+function oneOf(
+  query: SelectQueryBuilder<Revision>,
+  column: string,
+  name: string,
+  words: readonly string[] | null | undefined,
+): void {
+  if (words && words.length > 0) query.andWhere(`${column} IN (:...${name})`, { [name]: words });
+}
+
+/** The column holds ",a,b,": one of the words must stand in it as a whole. */
+function anyWord(
+  query: SelectQueryBuilder<Revision>,
+  column: string,
+  name: string,
+  words: readonly string[] | null | undefined,
+): void {
+  if (!words || words.length === 0) return;
+  const parameters: Record<string, string> = {};
+  const conditions = words.slice(0, 100).map((word, index) => {
+    parameters[`${name}${index}`] = `%,${escapeLike(word)},%`;
+    return `${column} LIKE :${name}${index} ESCAPE '!'`;
+  });
+  query.andWhere(`(${conditions.join(" OR ")})`, parameters);
+}
+
+function order(query: SelectQueryBuilder<Revision>, sort: ConstraintSort): void {
+  // Quantities without a redshift stand last in either direction.
+  const byRedshift = (direction: "ASC" | "DESC"): void => {
+    query
+      .addSelect("revision.zUsed IS NULL", "no_redshift")
+      .orderBy("no_redshift", "ASC")
+      .addOrderBy("revision.zUsed", direction);
+  };
+  if (sort === "redshift") byRedshift("ASC");
+  else if (sort === "redshiftDescending") byRedshift("DESC");
+  else if (sort === "newest") query.orderBy("revision.decidedAt", "DESC");
+  else if (sort === "year") query.orderBy("revision.year", "DESC");
+  query.addOrderBy("record.id", sort === "newest" ? "DESC" : "ASC");
+}

@@ -1,0 +1,48 @@
+import type { EntityManager } from "typeorm";
+
+import type { ViewerIdentity } from "~server/common/context";
+import { formatRecordNumber } from "~shared/identifiers/recordNumber";
+import type { ConstraintFields } from "~shared/statement/fields";
+import {
+  fieldFindings,
+  registryFindings,
+  sortFindings,
+  type Finding,
+} from "~shared/statement/rules";
+
+import { approvedFor, approvedRow, type ApprovedRow } from "./constraint.query";
+
+/**
+ * The approved records that findings compare with, as far as this person may see them: a
+ * near-duplicate's number in a warning would otherwise give away a record being read blind.
+ */
+export async function neighbours(
+  manager: EntityManager,
+  viewer: ViewerIdentity | null,
+): Promise<ApprovedRow[]> {
+  return (await approvedFor(manager, viewer).getMany()).map(approvedRow);
+}
+
+/**
+ * Everything to say about content: the rules of one statement, then those over the registry.
+ *
+ * @param own - Number of the record itself, which is no neighbour of its own; null when it has none yet.
+ */
+export function allFindings(
+  fields: ConstraintFields,
+  citationId: string | null,
+  own: number | null,
+  among: readonly ApprovedRow[],
+): Finding[] {
+  const others = among
+    .filter((row) => row.constraint.id !== own)
+    .map((row) => ({
+      number: formatRecordNumber(row.constraint.id),
+      sameCitation: row.citation.id === citationId,
+      fields: row.revision.fields,
+    }));
+  return sortFindings([
+    ...fieldFindings(fields, { citation: citationId !== null }),
+    ...registryFindings(fields, others),
+  ]);
+}

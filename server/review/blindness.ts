@@ -1,0 +1,145 @@
+import { Brackets, type EntityManager, type SelectQueryBuilder, type ObjectLiteral } from "typeorm";
+
+import { hasRole, type ViewerIdentity } from "~server/common/context";
+import type { Revision } from "~server/constraint/revision.entity";
+import { formatRecordNumber } from "~shared/identifiers/recordNumber";
+import type { Finding } from "~shared/statement/rules";
+
+import { Reading } from "./reading.entity";
+
+/**
+ * Who may see what of a record: the one place that says so. Everything that sends a record's
+ * content anywhere (resolvers, lists, downloads, findings, tables) asks here.
+ *
+ * 1. An approved revision is public, to nobody in particular too.
+ * 2. An unapproved revision is open to its owner, and to an editor who has stored a reading of it.
+ * 3. While some revision of the record is submitted or in review and an editor has not stored a
+ *    reading of it, that editor sees no unapproved revision of the record: not even an earlier
+ *    one that they have read.
+ * 4. While an editor holds the claim on a revision and has not stored the reading, that editor
+ *    doesn't see the record's approved revision either, nor a file that contains it. Before the
+ *    claim they do: it is public, and an editor may sign out.
+ * 5. No role widens this. A maintainer sees no number that another person wouldn't.
+ */
+
+/** Unread work on a record that stands between an editor and its earlier revisions. */
+const PENDING = ["submitted", "inReview"] as const;
+
+/**
+ * Whether a person sees the content of a revision, with its findings, answers, comments and readings.
+ *
+ * @param viewer - The person, or null for nobody.
+ * @param revision - With its record loaded (`constraint.ownerId`).
+ */
+export async function seesRevision(
+  manager: EntityManager,
+  viewer: ViewerIdentity | null,
+  revision: Revision,
+  now: Date,
+): Promise<boolean> {
+  if (viewer?.id === revision.constraint.ownerId) return true;
+  if (revision.state === "approved") {
+    return !(await isReadingBlind(manager, viewer, revision.constraintId, now));
+  }
+  if (!viewer || !hasRole(viewer, "editor")) return false;
+  if (!(await hasRead(manager, viewer.id, revision.id))) return false;
+  return !(await hasUnread(manager, viewer.id, revision.constraintId));
+}
+
+/** Whether this editor has stored a reading of this revision. */
+export async function hasRead(
+  manager: EntityManager,
+  editorId: string,
+  revisionId: string,
+): Promise<boolean> {
+  return manager.existsBy(Reading, { editorId, revisionId });
+}
+
+async function hasUnread(
+  manager: EntityManager,
+  editorId: string,
+  constraintId: number,
+): Promise<boolean> {
+  return manager
+    .createQueryBuilder()
+    .select("pending.id")
+    .from("revision", "pending")
+    .where("pending.constraintId = :constraintId", { constraintId })
+    .andWhere("pending.state IN (:...states)", { states: PENDING })
+    .andWhere(
+      "NOT EXISTS (SELECT 1 FROM reading r WHERE r.revisionId = pending.id AND r.editorId = :editorId)",
+      { editorId },
+    )
+    .limit(1)
+    .getRawOne()
+    .then((row) => row !== undefined);
+}
+
+/** Records that this person is reading blind at this moment (rule 4). */
+export async function recordsReadBlind(
+  manager: EntityManager,
+  viewer: ViewerIdentity | null,
+  now: Date,
+): Promise<Set<number>> {
+  if (!viewer) return new Set();
+  const rows: { id: number }[] = await manager.query(
+    `SELECT held.constraintId AS id FROM revision held WHERE ${HELD_UNREAD}`,
+    [viewer.id, now, viewer.id],
+  );
+  return new Set(rows.map((row) => Number(row.id)));
+}
+
+async function isReadingBlind(
+  manager: EntityManager,
+  viewer: ViewerIdentity | null,
+  constraintId: number,
+  now: Date,
+): Promise<boolean> {
+  return (await recordsReadBlind(manager, viewer, now)).has(constraintId);
+}
+
+const HELD_UNREAD = `held.state = 'inReview' AND held.claimedById = ? AND held.claimedUntil > ?
+  AND NOT EXISTS (SELECT 1 FROM reading r WHERE r.revisionId = held.id AND r.editorId = ?)`;
+
+/**
+ * Keeps out of a query of approved records those that the person is reading blind (rule 4), so
+ * that neither a total nor an order nor a search tells anything about them.
+ *
+ * @param alias - Of the record (`constraint_record`) in the query.
+ */
+export function withoutRecordsReadBlind<T extends ObjectLiteral>(
+  query: SelectQueryBuilder<T>,
+  alias: string,
+  viewer: ViewerIdentity | null,
+  now: Date,
+): SelectQueryBuilder<T> {
+  if (!viewer) return query;
+  return query.andWhere(
+    new Brackets((where) =>
+      where.where(
+        `${alias}.id NOT IN (SELECT held.constraintId FROM revision held
+          WHERE held.state = 'inReview' AND held.claimedById = :blindViewer
+            AND held.claimedUntil > :blindNow
+            AND NOT EXISTS (SELECT 1 FROM reading r
+              WHERE r.revisionId = held.id AND r.editorId = :blindViewer))`,
+        { blindViewer: viewer.id, blindNow: now },
+      ),
+    ),
+  );
+}
+
+/**
+ * A finding without its words when it speaks of a record that the viewer is reading blind: that a
+ * record says nearly the same as one already read would tell its numbers.
+ */
+export function findingFor(finding: Finding, readBlind: ReadonlySet<number>): Finding {
+  const speaksOf = [...readBlind].some((number) =>
+    finding.message.includes(formatRecordNumber(number)),
+  );
+  return speaksOf
+    ? {
+        ...finding,
+        message: "It concerns a record that you are reading yourself. Store that reading first.",
+      }
+    : finding;
+}

@@ -1,0 +1,122 @@
+import { Arg, Authorized, Ctx, ID, Int, Mutation, Query, Resolver } from "type-graphql";
+
+import { requireViewer, type RequestContext } from "~server/common/context";
+import { DoneResult, Refusal } from "~server/common/outcomes";
+import { loadRevision } from "~server/constraint/draft.service";
+import { ConstraintFieldsInput } from "~server/constraint/fields.type";
+import type { Revision } from "~server/constraint/revision.entity";
+import { acting } from "~server/event/acting";
+
+import { hasRead } from "./blindness";
+import * as reviews from "./review.service";
+import { queueItem, QueueItem, ReturnComment, Review, ReviewResult } from "./review.type";
+import { reviewFor } from "./review.view";
+
+@Resolver()
+export class ReviewResolver {
+  @Authorized("editor")
+  @Query(() => [QueueItem])
+  async queue(@Ctx() ctx: RequestContext): Promise<QueueItem[]> {
+    const who = acting(ctx);
+    const revisions = await reviews.queued(who);
+    return revisions.map((revision) => queueItem(revision, who.viewer, who.now));
+  }
+
+  @Authorized("editor")
+  @Query(() => Review, { nullable: true })
+  async review(
+    @Ctx() ctx: RequestContext,
+    @Arg("id", () => ID) id: string,
+  ): Promise<Review | null> {
+    await reviews.lapseClaims(acting(ctx));
+    const revision = await loadRevision(ctx.database.manager, id);
+    if (!revision?.submittedAt) return null;
+    const waiting = revision.state === "submitted" || revision.state === "inReview";
+    // A decided submission stays open to the editors who read it, and is nothing to the others.
+    if (!waiting && !(await hasRead(ctx.database.manager, requireViewer(ctx).id, id))) return null;
+    return reviewFor(ctx, revision);
+  }
+
+  @Authorized("editor")
+  @Mutation(() => ReviewResult)
+  async claimSubmission(
+    @Ctx() ctx: RequestContext,
+    @Arg("id", () => ID) id: string,
+  ): Promise<typeof ReviewResult> {
+    return outcome(ctx, await reviews.claim(acting(ctx), id));
+  }
+
+  @Authorized("editor")
+  @Mutation(() => DoneResult)
+  releaseClaim(
+    @Ctx() ctx: RequestContext,
+    @Arg("id", () => ID) id: string,
+  ): Promise<typeof DoneResult> {
+    return reviews.releaseClaim(acting(ctx), id);
+  }
+
+  @Authorized("editor")
+  @Mutation(() => ReviewResult)
+  async storeReading(
+    @Ctx() ctx: RequestContext,
+    @Arg("id", () => ID) id: string,
+    @Arg("reading", () => ConstraintFieldsInput) reading: ConstraintFieldsInput,
+  ): Promise<typeof ReviewResult> {
+    return outcome(ctx, await reviews.storeReading(acting(ctx), id, reading));
+  }
+
+  @Authorized("editor")
+  @Mutation(() => ReviewResult, {
+    description:
+      "Reads one differing field again after the comparison; the first reading stays on record.",
+  })
+  async correctReading(
+    @Ctx() ctx: RequestContext,
+    @Arg("id", () => ID) id: string,
+    @Arg("field", () => String) field: string,
+    @Arg("reading", () => ConstraintFieldsInput) reading: ConstraintFieldsInput,
+    @Arg("why", () => String) why: string,
+  ): Promise<typeof ReviewResult> {
+    return outcome(ctx, await reviews.correctReading(acting(ctx), id, field, reading, why));
+  }
+
+  @Authorized("editor")
+  @Mutation(() => ReviewResult)
+  async acceptAnswer(
+    @Ctx() ctx: RequestContext,
+    @Arg("id", () => ID) id: string,
+    @Arg("code", () => String) code: string,
+  ): Promise<typeof ReviewResult> {
+    return outcome(ctx, await reviews.acceptAnswer(acting(ctx), id, code));
+  }
+
+  @Authorized("editor")
+  @Mutation(() => DoneResult)
+  approveSubmission(
+    @Ctx() ctx: RequestContext,
+    @Arg("id", () => ID) id: string,
+    @Arg("version", () => Int) version: number,
+    @Arg("note", () => String, { nullable: true }) note: string | null,
+  ): Promise<typeof DoneResult> {
+    return reviews.approve(acting(ctx), id, version, note);
+  }
+
+  @Authorized("editor")
+  @Mutation(() => DoneResult)
+  returnSubmission(
+    @Ctx() ctx: RequestContext,
+    @Arg("id", () => ID) id: string,
+    @Arg("version", () => Int) version: number,
+    @Arg("comments", () => [ReturnComment]) comments: ReturnComment[],
+    @Arg("note", () => String, { nullable: true }) note: string | null,
+  ): Promise<typeof DoneResult> {
+    return reviews.returnSubmission(acting(ctx), id, version, comments, note);
+  }
+}
+
+async function outcome(
+  ctx: RequestContext,
+  result: Revision | Refusal,
+): Promise<typeof ReviewResult> {
+  return result instanceof Refusal ? result : reviewFor(ctx, result);
+}

@@ -1,0 +1,451 @@
+import type { EntityManager } from "typeorm";
+
+import { done, refuse, type Done, type Refusal } from "~server/common/outcomes";
+import { Constraint } from "~server/constraint/constraint.entity";
+import { loadRevision, reload, updateAt } from "~server/constraint/draft.service";
+import {
+  FIELD_NAMES_IN_ORDER,
+  fieldsFromInput,
+  type ConstraintFieldsInput,
+} from "~server/constraint/fields.type";
+import { Revision } from "~server/constraint/revision.entity";
+import { change, type Acting, type Change } from "~server/event/acting";
+import { appendEvent } from "~server/event/eventLog";
+import { formatQuotable } from "~shared/identifiers/recordNumber";
+import {
+  READING_FIELDS,
+  compareReading,
+  fieldsToReread,
+  mergeReading,
+  readingMissing,
+} from "~shared/review/reading";
+import { isAuthor } from "~shared/review/recusal";
+import { CLAIM_HOURS } from "~shared/review/states";
+import { emptyFields, type ConstraintFields, type FieldName } from "~shared/statement/fields";
+import { FIELD_NAMES } from "~shared/statement/words";
+
+import { FieldCommentRecord } from "./comment.entity";
+import { tellApproved, tellReturned } from "./mails";
+import { Reading } from "./reading.entity";
+
+const HOUR_MS = 3_600_000;
+
+export function claimIsLive(revision: Revision, now: Date): boolean {
+  return (
+    revision.state === "inReview" && revision.claimedUntil !== null && revision.claimedUntil > now
+  );
+}
+
+export function holdsClaim(revision: Revision, editorId: string, now: Date): boolean {
+  return claimIsLive(revision, now) && revision.claimedById === editorId;
+}
+
+/** Why this person can't read this submission, in words, or null. */
+export function barredBecause(
+  revision: Revision,
+  editor: { id: string; nameOnPapers: string },
+): string | null {
+  if (revision.constraint.ownerId === editor.id) {
+    return "You submitted it. Another editor has to read it.";
+  }
+  if (isAuthor(editor.nameOnPapers, revision.citation?.authors ?? [])) {
+    return "You are an author of this paper. Another editor has to read it.";
+  }
+  return null;
+}
+
+/**
+ * Puts submissions whose claim has run out back into the queue. Called before the queue is read
+ * and before a claim is made, so no clock has to run for it.
+ */
+export async function lapseClaims(who: Pick<Acting, "database" | "now">): Promise<void> {
+  const { database, now } = who;
+  const lapsed = await database.manager
+    .createQueryBuilder(Revision, "revision")
+    .select(["revision.id", "revision.version", "revision.constraintId", "revision.ordinal"])
+    .where("revision.state = 'inReview' AND revision.claimedUntil <= :now", { now })
+    .getMany();
+  for (const revision of lapsed) {
+    await database.transaction("READ COMMITTED", async (manager) => {
+      const won = await updateAt(manager, revision.id, revision.version, ["inReview"], {
+        state: "submitted",
+        claimedById: null,
+        claimedUntil: null,
+      });
+      if (!won) return; // someone else has put it back meanwhile
+      await appendEvent(manager, {
+        kind: "claim.lapsed",
+        actorId: null,
+        subject: formatQuotable(revision.constraintId, revision.ordinal),
+        at: now,
+      });
+    });
+  }
+}
+
+/** Submissions that wait or are being read, oldest first. */
+export async function queued(who: Pick<Acting, "database" | "now">): Promise<Revision[]> {
+  await lapseClaims(who);
+  return who.database.manager.find(Revision, {
+    where: [{ state: "submitted" }, { state: "inReview" }],
+    relations: { constraint: true, citation: true },
+    order: { submittedAt: "ASC", id: "ASC" },
+  });
+}
+
+const unknown = (): Refusal => refuse("notFound", "There is no such submission in the queue.");
+const NOT_YOURS =
+  "You don't hold this submission any more: the claim has ended or was never yours. Claim it again.";
+const CHANGED = "This submission has changed since you opened it. Reload the page.";
+
+/** Takes a submission for 72 hours. Of several who try at once, one gets it. */
+export async function claim(who: Acting, id: string): Promise<Revision | Refusal> {
+  await lapseClaims(who);
+  return change<Revision | Refusal>(who, async (here) => {
+    const revision = await loadRevision(here.manager, id);
+    if (!revision || !["submitted", "inReview"].includes(revision.state)) return unknown();
+    const barred = barredBecause(revision, who.viewer);
+    if (barred) return refuse("barred", barred);
+    if (holdsClaim(revision, who.viewer.id, who.now)) return revision;
+    const won = await updateAt(here.manager, id, revision.version, ["submitted"], {
+      state: "inReview",
+      claimedById: who.viewer.id,
+      claimedUntil: new Date(who.now.getTime() + CLAIM_HOURS * HOUR_MS),
+    });
+    if (!won) return refuse("claimed", "Another editor is reading it already.");
+    await here.event({ kind: "claim.made", subject: subjectOf(revision) });
+    return reload(here.manager, id);
+  });
+}
+
+function subjectOf(revision: Revision): string {
+  return formatQuotable(revision.constraintId, revision.ordinal);
+}
+
+/** Gives a claimed submission back to the queue. A stored reading stays on record. */
+export async function releaseClaim(who: Acting, id: string): Promise<Done | Refusal> {
+  return change<Done | Refusal>(who, async (here) => {
+    const revision = await loadRevision(here.manager, id);
+    if (!revision || !holdsClaim(revision, who.viewer.id, who.now)) {
+      return refuse("notClaimed", NOT_YOURS);
+    }
+    const won = await updateAt(here.manager, id, revision.version, ["inReview"], {
+      state: "submitted",
+      claimedById: null,
+      claimedUntil: null,
+    });
+    if (!won) return refuse("stale", CHANGED);
+    await here.event({ kind: "claim.released", subject: subjectOf(revision) });
+    return done("It is back in the queue.");
+  });
+}
+
+/** The submission if this editor holds it now; its row stays locked until the change ends. */
+async function held(here: Change, who: Acting, id: string): Promise<Revision | Refusal> {
+  await here.manager
+    .createQueryBuilder(Revision, "revision")
+    .select("revision.id")
+    .setLock("pessimistic_write")
+    .where("revision.id = :id", { id })
+    .getOne();
+  const revision = await loadRevision(here.manager, id);
+  if (!revision) return unknown();
+  if (!holdsClaim(revision, who.viewer.id, who.now)) return refuse("notClaimed", NOT_YOURS);
+  const barred = barredBecause(revision, who.viewer);
+  return barred ? refuse("barred", barred) : revision;
+}
+
+/** What an earlier reading of this record already settles, if this revision follows a read one. */
+export async function earlierReading(
+  manager: EntityManager,
+  revision: Revision,
+): Promise<{ reading: ConstraintFields; submitted: ConstraintFields } | null> {
+  if (revision.followsId === null) return null;
+  const followed = await manager.findOneBy(Revision, { id: revision.followsId });
+  if (!followed || followed.citationId !== revision.citationId) return null;
+  const [reading] = await manager.find(Reading, {
+    where: { revisionId: followed.id },
+    order: { storedAt: "DESC" },
+    take: 1,
+  });
+  return reading ? { reading: reading.latest, submitted: followed.fields } : null;
+}
+
+/** Fields this editor types: all of them, or in a resubmission the changed and the differing ones. */
+export async function fieldsToRead(
+  manager: EntityManager,
+  revision: Revision,
+): Promise<FieldName[]> {
+  const earlier = await earlierReading(manager, revision);
+  return earlier
+    ? fieldsToReread(earlier.reading, earlier.submitted, revision.fields)
+    : [...READING_FIELDS];
+}
+
+/**
+ * Stores the blind transcription, once. It must be complete by the editor's own choice of
+ * quantity and statement: the submitted ones are not known to them.
+ */
+export async function storeReading(
+  who: Acting,
+  id: string,
+  input: ConstraintFieldsInput,
+): Promise<Revision | Refusal> {
+  const parsed = fieldsFromInput(input);
+  if ("tooLong" in parsed) {
+    return refuse("tooLong", "This text is too long to keep.", parsed.tooLong);
+  }
+  return change<Revision | Refusal>(who, async (here) => {
+    const revision = await held(here, who, id);
+    if (!(revision instanceof Revision)) return revision;
+    const { manager } = here;
+    if (await manager.existsBy(Reading, { revisionId: id, editorId: who.viewer.id })) {
+      return refuse("alreadyRead", "Your reading is stored. Correct single fields instead.");
+    }
+    const earlier = await earlierReading(manager, revision);
+    const typed = await fieldsToRead(manager, revision);
+    const content = mergeReading(earlier?.reading ?? emptyFields(), parsed.fields, typed);
+    const missing = readingMissing(content, typed);
+    const [first] = missing;
+    if (first !== undefined) {
+      return refuse(
+        "incomplete",
+        `Read this too: ${missing.map((name) => FIELD_NAMES[name]).join(", ")}.`,
+        first,
+      );
+    }
+    await manager.insert(Reading, {
+      revisionId: id,
+      editorId: who.viewer.id,
+      storedAt: who.now,
+      first: content,
+      latest: content,
+      typed,
+      corrections: [],
+    } as never);
+    await here.event({ kind: "reading.stored", subject: subjectOf(revision) });
+    return reload(manager, id);
+  });
+}
+
+const LONGEST_WHY = 1000;
+
+/** Reads one differing field again after the comparison. What stood there stays on record. */
+export async function correctReading(
+  who: Acting,
+  id: string,
+  field: string,
+  input: ConstraintFieldsInput,
+  why: string,
+): Promise<Revision | Refusal> {
+  const name = FIELD_NAMES_IN_ORDER.find((one) => one === field);
+  const parsed = fieldsFromInput(input);
+  if (!name) return refuse("unknownField", "There is no such field.", field);
+  if ("tooLong" in parsed) {
+    return refuse("tooLong", "This text is too long to keep.", parsed.tooLong);
+  }
+  const reason = why.trim();
+  if (reason === "") return refuse("why", "Say in a few words why you read it differently now.");
+  if (reason.length > LONGEST_WHY) {
+    return refuse("why", `The reason has at most ${LONGEST_WHY} characters.`);
+  }
+  return change<Revision | Refusal>(who, async (here) => {
+    const revision = await held(here, who, id);
+    if (!(revision instanceof Revision)) return revision;
+    const reading = await here.manager.findOneBy(Reading, {
+      revisionId: id,
+      editorId: who.viewer.id,
+    });
+    if (!reading) return refuse("notRead", "Store your own reading first.");
+    const compared = compareReading(reading.latest, revision.fields);
+    if (!compared.some((one) => one.field === name && !one.agrees)) {
+      return refuse("agrees", `${FIELD_NAMES[name]} doesn't differ.`, name);
+    }
+    await here.manager.update(Reading, { id: reading.id }, {
+      latest: { ...reading.latest, [name]: parsed.fields[name] },
+      corrections: [
+        ...reading.corrections,
+        {
+          field: name,
+          before: reading.latest[name],
+          why: reason,
+          at: who.now.toISOString(),
+        },
+      ],
+    } as never);
+    await here.event({
+      kind: "reading.corrected",
+      subject: subjectOf(revision),
+      detail: { field: name },
+    });
+    return reload(here.manager, id);
+  });
+}
+
+/** Accepts the contributor's answer to a finding that must be answered. */
+export async function acceptAnswer(
+  who: Acting,
+  id: string,
+  code: string,
+): Promise<Revision | Refusal> {
+  return change<Revision | Refusal>(who, async (here) => {
+    const revision = await held(here, who, id);
+    if (!(revision instanceof Revision)) return revision;
+    if (!(await hasStoredReading(here.manager, who, id))) {
+      return refuse("notRead", "Store your own reading first.");
+    }
+    const answer = revision.answers.find((one) => one.code === code);
+    if (!answer) return refuse("unknownAnswer", "There is no such answer.");
+    if (answer.accepted) return revision;
+    const won = await updateAt(here.manager, id, revision.version, ["inReview"], {
+      answers: revision.answers.map((one) =>
+        one.code === code ? { ...one, accepted: true } : one,
+      ),
+    });
+    if (!won) return refuse("stale", CHANGED);
+    await here.event({
+      kind: "answer.accepted",
+      subject: subjectOf(revision),
+      detail: { code },
+    });
+    return reload(here.manager, id);
+  });
+}
+
+async function hasStoredReading(
+  manager: EntityManager,
+  who: Acting,
+  revisionId: string,
+): Promise<boolean> {
+  return manager.existsBy(Reading, { revisionId, editorId: who.viewer.id });
+}
+
+/** Why approval is not open yet, in words; empty when it is. */
+export function blockersOf(
+  revision: Revision,
+  reading: Reading | null,
+  editor: { id: string; nameOnPapers: string },
+  now: Date,
+): string[] {
+  const barred = barredBecause(revision, editor);
+  if (barred) return [barred];
+  const blockers: string[] = [];
+  if (!holdsClaim(revision, editor.id, now)) blockers.push("Claim it first.");
+  if (!reading) return [...blockers, "Your second reading is not stored yet."];
+  const differing = compareReading(reading.latest, revision.fields).filter((one) => !one.agrees);
+  if (differing.length > 0) {
+    const names = differing.map((one) => FIELD_NAMES[one.field]).join(", ");
+    blockers.push(`Your reading differs at: ${names}. Correct it, or return the submission.`);
+  }
+  const accepted = new Set(
+    revision.answers.filter((answer) => answer.accepted).map((answer) => answer.code),
+  );
+  const open = revision.findings.filter(
+    (finding) => finding.grade === "mustAnswer" && !accepted.has(finding.code),
+  );
+  if (open.length > 0) {
+    blockers.push(
+      open.length === 1
+        ? "One answer of the contributor is not accepted yet."
+        : `${open.length} answers of the contributor are not accepted yet.`,
+    );
+  }
+  return blockers;
+}
+
+const LONGEST_NOTE = 2000;
+
+/** Puts a revision in use. Nothing may stand against it, and no one may have decided it before. */
+export async function approve(
+  who: Acting,
+  id: string,
+  version: number,
+  note: string | null,
+): Promise<Done | Refusal> {
+  if (note !== null && note.length > LONGEST_NOTE) {
+    return refuse("tooLong", `The note has at most ${LONGEST_NOTE} characters.`);
+  }
+  return change<Done | Refusal>(who, async (here) => {
+    const revision = await held(here, who, id);
+    if (!(revision instanceof Revision)) return revision;
+    const { manager } = here;
+    const reading = await manager.findOneBy(Reading, { revisionId: id, editorId: who.viewer.id });
+    const [blocker] = blockersOf(revision, reading, who.viewer, who.now);
+    if (blocker !== undefined) return refuse("blocked", blocker);
+    const decided = await updateAt(manager, id, version, ["inReview"], {
+      state: "approved",
+      decidedById: who.viewer.id,
+      decidedAt: who.now,
+      decisionNote: note?.trim() || null,
+    });
+    if (!decided) return refuse("stale", CHANGED);
+    await manager.update(
+      Constraint,
+      { id: revision.constraintId },
+      { approvedRevisionId: revision.id },
+    );
+    await here.event({ kind: "revision.approved", subject: subjectOf(revision) });
+    await tellApproved(here, who, revision);
+    return done(`${subjectOf(revision)} is approved.`);
+  });
+}
+
+const MOST_COMMENTS = 60;
+
+/** Sends a revision back with comments at its fields. */
+export async function returnSubmission(
+  who: Acting,
+  id: string,
+  version: number,
+  comments: readonly { field: string; text: string }[],
+  note: string | null,
+): Promise<Done | Refusal> {
+  const kept = comments
+    .map(({ field, text }) => ({ field, text: text.trim() }))
+    .filter(({ text }) => text !== "");
+  if (kept.length === 0) {
+    return refuse("comments", "Say at one field at least what has to change.");
+  }
+  if (kept.length > MOST_COMMENTS || kept.some(({ text }) => text.length > LONGEST_NOTE)) {
+    return refuse(
+      "comments",
+      `At most ${MOST_COMMENTS} comments of ${LONGEST_NOTE} characters each.`,
+    );
+  }
+  if (note !== null && note.length > LONGEST_NOTE) {
+    return refuse("tooLong", `The note has at most ${LONGEST_NOTE} characters.`);
+  }
+  const known = new Set<string>([...FIELD_NAMES_IN_ORDER, "citation"]);
+  const strange = kept.find(({ field }) => !known.has(field));
+  if (strange) return refuse("unknownField", "There is no such field.", strange.field);
+  return change<Done | Refusal>(who, async (here) => {
+    const revision = await held(here, who, id);
+    if (!(revision instanceof Revision)) return revision;
+    const decided = await updateAt(here.manager, id, version, ["inReview"], {
+      state: "returned",
+      decidedById: who.viewer.id,
+      decidedAt: who.now,
+      decisionNote: note?.trim() || null,
+    });
+    if (!decided) return refuse("stale", CHANGED);
+    for (const [position, { field, text }] of kept.entries()) {
+      await here.manager.insert(FieldCommentRecord, {
+        revisionId: id,
+        position,
+        field,
+        text,
+        byId: who.viewer.id,
+        at: who.now,
+        answer: null,
+      });
+    }
+    const fields = kept.map(({ field }) => field);
+    await here.event({
+      kind: "revision.returned",
+      subject: subjectOf(revision),
+      detail: { fields },
+    });
+    await tellReturned(here, who, revision, fields);
+    return done(`${subjectOf(revision)} went back to its contributor.`);
+  });
+}

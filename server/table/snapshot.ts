@@ -1,0 +1,55 @@
+import type { Citation } from "~server/citation/citation.entity";
+import type { ApprovedRow } from "~server/constraint/constraint.query";
+import { formatRecordNumber } from "~shared/identifiers/recordNumber";
+import type { CanonicalFilter } from "~shared/filter/filter";
+import type { RecordState } from "~shared/review/states";
+import type { ConstraintFields } from "~shared/statement/fields";
+
+/** What a saved table says of one record, in or out. */
+export interface SnapshotRow {
+  /** FL-0042 */
+  number: string;
+  included: boolean;
+  /** Why it is out; null for a row that is in. */
+  reason: string | null;
+  /** Whether this is what the program proposed, rather than a person's own choice. */
+  proposed: boolean;
+}
+
+/** A record as it stood when the table was saved, with its citation in full. */
+export interface SnapshotConstraint {
+  id: number;
+  number: string;
+  ordinal: number;
+  state: RecordState;
+  approvedAt: string;
+  submittedBy: string;
+  readBy: string;
+  fields: ConstraintFields;
+  citation: Omit<Citation, "createdById" | "createdAt">;
+}
+
+/** Everything a saved table hands out. Rows and constraints are in the same order. */
+export interface TableSnapshot {
+  format: 1;
+  filter: CanonicalFilter;
+  rows: SnapshotRow[];
+  constraints: SnapshotConstraint[];
+}
+
+export function snapshotConstraint(
+  { constraint, revision, citation }: ApprovedRow,
+  names: { submittedBy: string; readBy: string },
+): SnapshotConstraint {
+  const { createdById: _by, createdAt: _at, ...kept } = citation;
+  return {
+    id: constraint.id,
+    number: formatRecordNumber(constraint.id),
+    ordinal: revision.ordinal,
+    state: constraint.state,
+    approvedAt: (revision.decidedAt ?? revision.updatedAt).toISOString(),
+    ...names,
+    fields: revision.fields,
+    citation: kept,
+  };
+}

@@ -1,0 +1,252 @@
+import { randomBytes } from "node:crypto";
+
+import { In, IsNull } from "typeorm";
+
+import { User } from "~server/account/user.entity";
+import { done, refuse, type Done, type Refusal } from "~server/common/outcomes";
+import { findApproved, type Asking } from "~server/constraint/constraint.query";
+import { change, type Acting } from "~server/event/acting";
+import { digestOf, lastEvent } from "~server/event/eventLog";
+import { recordsReadBlind } from "~server/review/blindness";
+import { canonicalFilter } from "~shared/filter/address";
+import type { ConstraintFilter } from "~shared/filter/filter";
+import { formatRecordNumber, parseRecordNumber } from "~shared/identifiers/recordNumber";
+import { proposeRows } from "~shared/table/proposeRows";
+
+import { snapshotConstraint, type SnapshotRow, type TableSnapshot } from "./snapshot";
+import { SavedTable } from "./table.entity";
+
+export interface TableInput {
+  name: string;
+  filter: ConstraintFilter;
+  rows: readonly { number: string; included: boolean; reason?: string | null }[];
+}
+
+const LONGEST_NAME = 120;
+const LONGEST_REASON = 500;
+const MOST_ROWS = 2000;
+const MOST_TABLES = 500;
+
+/**
+ * Saves a table with all it will ever hand out: the approved revisions of its rows as they stand
+ * now, their citations, what is in and why the rest is out.
+ *
+ * The digest is SHA-256 over the RFC 8785 form of that content. It holds no clock, name or owner:
+ * the same choices over the same revisions have the same digest.
+ */
+export async function saveTable(who: Acting, input: TableInput): Promise<SavedTable | Refusal> {
+  const name = input.name.replace(/\s+/g, " ").trim();
+  if (name === "" || name.length > LONGEST_NAME) {
+    return refuse("name", `Give the table a name of 1 to ${LONGEST_NAME} characters.`, "name");
+  }
+  const wrong = refuseRows(input.rows);
+  if (wrong) return wrong;
+
+  return change<SavedTable | Refusal>(who, async (here) => {
+    const own = await here.manager.countBy(SavedTable, {
+      ownerId: who.viewer.id,
+      deletedAt: IsNull(),
+    });
+    if (own >= MOST_TABLES) {
+      return refuse("tooMany", `You have ${own} tables. Delete one first.`);
+    }
+    // Read through the transaction, so that rows and last event belong together.
+    const asking: Asking = {
+      database: { manager: here.manager } as Asking["database"],
+      viewer: who.viewer,
+    };
+    const filter = canonicalFilter(input.filter);
+    const found = await findApproved(asking, filter, "redshift");
+    const given = new Map(
+      input.rows.map((row) => [parseRecordNumber(row.number) ?? 0, row] as const),
+    );
+    const unnamed = found.find((row) => !given.has(row.constraint.id));
+    if (unnamed) {
+      return refuse(
+        "stale",
+        `${formatRecordNumber(unnamed.constraint.id)} matches the filter too and is neither in nor out. Look at the rows again.`,
+      );
+    }
+    const foundIds = new Set(found.map((row) => row.constraint.id));
+    const strange = [...given.keys()].find((id) => !foundIds.has(id));
+    if (strange !== undefined) {
+      return refuse(
+        "stale",
+        `${given.get(strange)?.number ?? "A row"} doesn't match the filter any more. Look at the rows again.`,
+      );
+    }
+    const last = await lastEvent(here.manager);
+    if (!last) return refuse("empty", "There is nothing in the registry yet.");
+
+    const proposals = new Map(
+      proposeRows(
+        found.map(({ constraint, revision, citation }) => ({
+          number: formatRecordNumber(constraint.id),
+          fields: revision.fields,
+          citation: citation.id,
+          year: citation.year,
+        })),
+      ).map((row) => [row.number, row]),
+    );
+    const rows = found.map(({ constraint }): SnapshotRow => {
+      const number = formatRecordNumber(constraint.id);
+      const choice = given.get(constraint.id);
+      const proposal = proposals.get(number);
+      const included = choice?.included ?? false;
+      const reason = included ? null : (choice?.reason?.trim() ?? "");
+      return {
+        number,
+        included,
+        reason,
+        proposed:
+          proposal !== undefined &&
+          proposal.included === included &&
+          (included || proposal.reason === reason),
+      };
+    });
+    const people = await here.manager.find(User, {
+      select: { id: true, nameOnPapers: true },
+      where: {
+        id: In(
+          found.flatMap(({ constraint, revision }) => [
+            constraint.ownerId,
+            ...(revision.decidedById === null ? [] : [revision.decidedById]),
+          ]),
+        ),
+      },
+    });
+    const names = new Map(people.map((person) => [person.id, person.nameOnPapers]));
+    const snapshot: TableSnapshot = {
+      format: 1,
+      filter,
+      rows,
+      constraints: found.map((row) =>
+        snapshotConstraint(row, {
+          submittedBy: names.get(row.constraint.ownerId) ?? "a former member",
+          readBy: names.get(row.revision.decidedById ?? "") ?? "a former member",
+        }),
+      ),
+    };
+    const slug = newSlug();
+    await here.manager.insert(SavedTable, {
+      slug,
+      name,
+      ownerId: who.viewer.id,
+      createdAt: who.now,
+      deletedAt: null,
+      digest: tableDigest(snapshot),
+      lastEventSequence: last.sequence,
+      lastEventDigest: last.digest,
+      lastEventAt: last.at,
+      snapshot,
+    } as never);
+    await here.event({
+      kind: "table.saved",
+      subject: `table:${slug}`,
+      detail: { digest: tableDigest(snapshot), rowsIn: rows.filter((row) => row.included).length },
+    });
+    return here.manager.findOneOrFail(SavedTable, { where: { slug }, relations: { owner: true } });
+  });
+}
+
+/** Ids and names of this database are no part of what a table says. */
+export function tableDigest(snapshot: TableSnapshot): string {
+  return digestOf({
+    format: snapshot.format,
+    filter: snapshot.filter,
+    rows: snapshot.rows,
+    constraints: snapshot.constraints.map(({ number, ordinal, fields, citation }) => ({
+      number,
+      ordinal,
+      fields,
+      citation: { key: citation.key, csl: citation.csl, bibtex: citation.entryBibtex },
+    })),
+  });
+}
+
+function refuseRows(rows: TableInput["rows"]): Refusal | null {
+  if (rows.length > MOST_ROWS) {
+    return refuse("tooMany", `A table has at most ${MOST_ROWS} rows. Narrow the filter.`, "rows");
+  }
+  const numbers = rows.map((row) => parseRecordNumber(row.number));
+  const bad = numbers.indexOf(null);
+  if (bad >= 0) {
+    return refuse("rows", `“${rows[bad]?.number.slice(0, 40)}” is no record number.`, "rows");
+  }
+  if (new Set(numbers).size !== numbers.length) {
+    return refuse("rows", "A record stands in the rows twice.", "rows");
+  }
+  if (!rows.some((row) => row.included)) {
+    return refuse("rows", "Take at least one row in.", "rows");
+  }
+  for (const row of rows) {
+    const reason = row.reason?.trim() ?? "";
+    if (!row.included && reason === "") {
+      return refuse("reason", `Say why ${row.number} is left out.`, "rows");
+    }
+    if (reason.length > LONGEST_REASON) {
+      return refuse(
+        "reason",
+        `The reason for ${row.number} has at most ${LONGEST_REASON} characters.`,
+        "rows",
+      );
+    }
+  }
+  return null;
+}
+
+/** Twelve characters, 60 random bits, without those that are mistaken for one another. */
+function newSlug(): string {
+  const alphabet = "abcdefghjkmnpqrstuvwxyz023456789";
+  return [...randomBytes(12)].map((byte) => alphabet[byte % alphabet.length]).join("");
+}
+
+/** All saved tables, newest first. Every table is public. */
+export async function findTables(ctx: Asking): Promise<SavedTable[]> {
+  return ctx.database.manager.find(SavedTable, {
+    where: { deletedAt: IsNull() },
+    relations: { owner: true },
+    order: { createdAt: "DESC", slug: "ASC" },
+  });
+}
+
+export type TableLookup =
+  | { found: "table"; table: SavedTable }
+  /** Never existed. */
+  | { found: "nothing" }
+  /** Its owner deleted it: the address is not given again. */
+  | { found: "deleted" }
+  /** It holds a record that this viewer is reading blind: files open after the reading. */
+  | { found: "blind"; numbers: string[] };
+
+/**
+ * A saved table for a download. A file is handed out whole or not at all, since its bytes never
+ * change: while the viewer reads one of its records blind, not at all.
+ */
+export async function loadTableFile(ctx: Asking, slug: string): Promise<TableLookup> {
+  const { manager } = ctx.database;
+  const table = await manager.findOne(SavedTable, { where: { slug }, relations: { owner: true } });
+  if (!table) return { found: "nothing" };
+  if (table.deletedAt) return { found: "deleted" };
+  const blind = await recordsReadBlind(manager, ctx.viewer, new Date());
+  const numbers = table.snapshot.constraints
+    .filter((constraint) => blind.has(constraint.id))
+    .map((constraint) => constraint.number);
+  return numbers.length > 0 ? { found: "blind", numbers } : { found: "table", table };
+}
+
+/** Takes a table of one's own from the public; its address answers that it is gone. */
+export async function deleteTable(who: Acting, slug: string): Promise<Done | Refusal> {
+  return change<Done | Refusal>(who, async (here) => {
+    const result = await here.manager.update(
+      SavedTable,
+      { slug, ownerId: who.viewer.id, deletedAt: IsNull() },
+      { deletedAt: who.now },
+    );
+    if (result.affected !== 1) {
+      return refuse("notFound", "There is no such table among yours.");
+    }
+    await here.event({ kind: "table.deleted", subject: `table:${slug}` });
+    return done("The table is deleted.");
+  });
+}

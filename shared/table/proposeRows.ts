@@ -1,0 +1,186 @@
+/** Which rows of a filtered list a fitting table takes by default, and why it leaves the others out. */
+import { METHOD_TAGS } from "~shared/methods/vocabulary";
+import { asUsed, type AsUsed } from "~shared/statement/asUsed";
+import type { ConstraintFields } from "~shared/statement/fields";
+
+import { comparableDataName } from "./dataName";
+
+/** An approved record as the proposal needs it. */
+export interface CandidateRow {
+  /** FL-0042 */
+  number: string;
+  fields: ConstraintFields;
+  /** What tells papers apart: an id or a key. */
+  citation: string;
+  /** Year of the paper. */
+  year: number | null;
+}
+
+export interface ProposedRow {
+  number: string;
+  included: boolean;
+  /** Why it is left out, as a sentence; null for a row that is in. */
+  reason: string | null;
+  /** What to know about a row that is in. */
+  cautions: string[];
+}
+
+interface Weighed extends CandidateRow {
+  used: AsUsed | null;
+  data: ReadonlyMap<string, string>;
+  reason: string | null;
+}
+
+/**
+ * Proposes rows in and out. Left out are what no likelihood can take, all but one of several
+ * alternatives, rows that share named data with a better one, and joint inferences beside other rows.
+ *
+ * @param candidates - In any order; numbers are unique.
+ * @returns One row for each candidate, in the order given. The same candidates in another order
+ *   are proposed alike.
+ */
+export function proposeRows(candidates: readonly CandidateRow[]): ProposedRow[] {
+  const rows: Weighed[] = candidates.map((row) => ({
+    ...row,
+    used: asUsed(row.fields),
+    data: namedData(row.fields),
+    reason: unusable(row.fields),
+  }));
+  for (const row of rows) row.reason ??= row.used === null ? "Not complete enough to use" : null;
+  keepOneAlternative(rows);
+  leaveJointInferenceOut(rows);
+  keepOneOfOverlapping(rows);
+  return rows.map((row) => ({
+    number: row.number,
+    included: row.reason === null,
+    reason: row.reason,
+    cautions: row.reason === null ? cautions(row, rows) : [],
+  }));
+}
+
+function unusable(fields: ConstraintFields): string | null {
+  if (fields.kind === "qualitative") return "Qualitative statement";
+  if (fields.kind === "curve") return "Tabulated curve without its nodes";
+  if (fields.level === "notStated") return "Level not stated";
+  return null;
+}
+
+function namedData(fields: ConstraintFields): Map<string, string> {
+  if (fields.dataKnown === false) return new Map();
+  const named = new Map(fields.dataUsed.map((name) => [comparableDataName(name), name] as const));
+  named.delete("");
+  return named;
+}
+
+/** Plain digits in a number compare as numbers: FL-10000 comes after FL-9999. */
+function byNumber(a: CandidateRow, b: CandidateRow): number {
+  return a.number.length - b.number.length || (a.number < b.number ? -1 : 1);
+}
+
+function included(rows: readonly Weighed[]): Weighed[] {
+  return rows.filter((row) => row.reason === null);
+}
+
+/** Several answers of one paper to one question are never multiplied. */
+function keepOneAlternative(rows: readonly Weighed[]): void {
+  const groups = new Map<string, Weighed[]>();
+  for (const row of included(rows)) {
+    const label = row.fields.alternativesGroup?.trim().toLowerCase();
+    if (!label) continue;
+    const key = JSON.stringify([row.citation, label]);
+    groups.set(key, [...(groups.get(key) ?? []), row]);
+  }
+  for (const members of groups.values()) {
+    const ordered = [...members].sort(byNumber);
+    const preferred = ordered.filter((row) => row.fields.alternativesPreferred === true);
+    const kept = preferred.at(-1) ?? ordered.at(-1);
+    for (const row of ordered) {
+      if (row === kept) continue;
+      row.reason = `Alternative answer to the same question as ${kept?.number ?? ""}`;
+    }
+  }
+}
+
+function isJoint(row: CandidateRow): boolean {
+  return row.fields.methodTags.includes("jointInference");
+}
+
+function leaveJointInferenceOut(rows: readonly Weighed[]): void {
+  const others = included(rows).filter((row) => !isJoint(row));
+  if (others.length === 0) return;
+  for (const row of included(rows).filter(isJoint)) {
+    row.reason = "Joint inference: it contains other constraints";
+  }
+}
+
+/** Better first: published, then the later paper, then the earlier record. */
+function byPreference(a: Weighed, b: Weighed): number {
+  const published = (row: Weighed): number => (row.fields.versionRead === "preprint" ? 1 : 0);
+  return published(a) - published(b) || (b.year ?? 0) - (a.year ?? 0) || byNumber(a, b);
+}
+
+function keepOneOfOverlapping(rows: readonly Weighed[]): void {
+  const kept: Weighed[] = [];
+  for (const row of included(rows).sort(byPreference)) {
+    const other = kept.find((better) => overlaps(row, better));
+    if (!other) {
+      kept.push(row);
+      continue;
+    }
+    const shared = [...row.data].find(([name]) => other.data.has(name))?.[1] ?? "data";
+    row.reason = `Shares ${shared} with ${other.number}`;
+  }
+}
+
+/** Joint inferences without anything else beside them overlap with each other, too. */
+function overlaps(a: Weighed, b: Weighed): boolean {
+  if (isJoint(a) && isJoint(b)) return true;
+  if (![...a.data.keys()].some((name) => b.data.has(name))) return false;
+  // One paper cuts one sample into bins: parts at separate redshifts are different data.
+  return !(a.citation === b.citation && atSeparateRedshifts(a.used, b.used));
+}
+
+function atSeparateRedshifts(a: AsUsed | null, b: AsUsed | null): boolean {
+  const [first, second] = [redshiftSpan(a), redshiftSpan(b)];
+  if (!first || !second) return false;
+  if (first.low === first.high || second.low === second.high) {
+    return first.high < second.low || second.high < first.low;
+  }
+  // Neighbouring bins may touch.
+  return first.high <= second.low || second.high <= first.low;
+}
+
+function redshiftSpan(used: AsUsed | null): { low: number; high: number } | null {
+  const low = used?.zLow ?? used?.z;
+  const high = used?.zHigh ?? used?.z;
+  return low === null || low === undefined || high === null || high === undefined
+    ? null
+    : { low, high };
+}
+
+const FAMILY_OF = new Map(METHOD_TAGS.map((tag) => [tag.tag, tag.family]));
+
+function isCmb(row: CandidateRow): boolean {
+  return row.fields.methodTags.some((tag) => FAMILY_OF.get(tag) === "cmb");
+}
+
+function cautions(row: Weighed, rows: readonly Weighed[]): string[] {
+  const others = included(rows).filter((other) => other !== row);
+  const said: string[] = [];
+  if (row.fields.dataKnown === false) said.push("The data it uses are unknown");
+  const cmb = others.find(isCmb);
+  if (row.fields.conditionedOn.includes("cmb") && cmb) {
+    said.push(`Conditioned on a CMB prior, and ${cmb.number} is in the table`);
+  }
+  for (const other of others) {
+    if (row.fields.conditionedOn.includes(other.number)) {
+      said.push(`Conditioned on ${other.number}, which is in the table`);
+    }
+  }
+  const part = others.find(
+    (other) =>
+      other.citation === row.citation && [...row.data.keys()].some((name) => other.data.has(name)),
+  );
+  if (part) said.push(`Another redshift of the same sample is in the table: ${part.number}`);
+  return said;
+}
