@@ -51,7 +51,7 @@ export async function keepCitations(
   const results = parseBibtex(text);
   const unknown = indices?.find((index) => results[index] === undefined);
   if (unknown !== undefined) {
-    return refuse("UNKNOWN_ENTRY", `The text has no entry ${unknown + 1}.`, "indices");
+    return refuse("unknownEntry", `The text has no entry ${unknown + 1}.`, "indices");
   }
   const wanted = [...results.entries()].filter(([index]) => indices?.includes(index) ?? true);
   const problems = wanted.flatMap(([index, result]) =>
@@ -61,7 +61,7 @@ export async function keepCitations(
   if (readable.length === 0) {
     const [first] = problems;
     const reason = first ? `Line ${first.line}: ${first.problem}` : "No entry was chosen.";
-    return refuse("UNREADABLE", reason, "bibtex");
+    return refuse("unreadable", reason, "bibtex");
   }
   const kept = await change(who, async ({ manager }) => {
     const done: KeptCitation[] = [];

@@ -1,5 +1,5 @@
 /** Journal macros of the field as their usual style files define them, from common practice. */
-const JOURNALS: Record<string, string> = {
+export const JOURNAL_MACROS: Readonly<Record<string, string>> = {
   aj: "AJ",
   actaa: "Acta Astron.",
   araa: "ARA&A",
@@ -65,5 +65,5 @@ const JOURNALS: Record<string, string> = {
 /** Short name of a journal by its macro, or null. */
 export function journalName(macro: string): string | null {
   const lower = macro.toLowerCase();
-  return Object.hasOwn(JOURNALS, lower) ? (JOURNALS[lower] ?? null) : null;
+  return Object.hasOwn(JOURNAL_MACROS, lower) ? (JOURNAL_MACROS[lower] ?? null) : null;
 }
