@@ -20,7 +20,7 @@ export function FamilyChip({
       selected={selected}
       onPress={onPress}
       count={count}
-      glyph={<Marker family={family} hollow={!selected} size={16} />}
+      glyph={<Marker family={family} size={16} />}
     />
   );
 }
