@@ -1,10 +1,13 @@
+import type { ReactNode } from "react";
 import { View } from "react-native";
 
 import { Choice } from "@/components/Choice";
 import { CheckRow } from "@/components/CheckRow";
 import { Field } from "@/components/Field";
+import Icon from "@/components/Icon";
 import { Segments } from "@/components/Segments";
 import { TagField } from "@/components/TagField";
+import { Caption } from "@/components/Text";
 import { useColors } from "@/theme/ThemeProvider";
 import type { ConstraintFields, FieldName, StatementKind } from "~shared/statement/fields";
 import {
@@ -100,7 +103,9 @@ export function fieldAnchor(name: FieldName): string {
 /** Moves the focus into a field's input and scrolls it into view. */
 export function focusField(name: FieldName): void {
   if (typeof document === "undefined") return;
-  const anchor = document.getElementById(fieldAnchor(name));
+  // Whether the data are known is asked beside the data themselves.
+  const shown = name === "dataKnown" ? "dataUsed" : name;
+  const anchor = document.getElementById(fieldAnchor(shown));
   const input = anchor?.querySelector<HTMLElement>(
     "input, select, textarea, [role=radio], button, [tabindex='0']",
   );
@@ -123,15 +128,21 @@ function Input(props: FieldInputProps) {
   switch (name) {
     case "species":
       return (
-        <Segments
-          label={label}
-          value={fields.species}
-          options={SPECIES.map((value) => ({ value, label: SPECIES_SHORT[value] }))}
-          onChange={(value) => set("species", value as ConstraintFields["species"])}
-        />
+        <WithError error={error}>
+          <Segments
+            label={label}
+            value={fields.species}
+            options={SPECIES.map((value) => ({ value, label: SPECIES_SHORT[value] }))}
+            onChange={(value) => set("species", value as ConstraintFields["species"])}
+          />
+        </WithError>
       );
     case "kind":
-      return <KindSegments {...props} label={label} />;
+      return (
+        <WithError error={error}>
+          <KindSegments {...props} label={label} />
+        </WithError>
+      );
     case "methodTags":
       return <MethodPicker label={label} tags={fields.methodTags} error={error} onChange={(tags) => set("methodTags", tags)} />;
     case "conditionedOn":
@@ -167,6 +178,22 @@ function Input(props: FieldInputProps) {
     default:
       return CHOICES[name] ? <EnumChoice {...props} label={label} /> : <TextInput {...props} label={label} />;
   }
+}
+
+/** The error of a control that has no room for one itself. */
+function WithError({ error, children }: { error?: string; children: ReactNode }) {
+  const colors = useColors();
+  return (
+    <View style={{ gap: 4 }}>
+      {children}
+      {error ? (
+        <View style={{ flexDirection: "row", gap: 6, paddingLeft: 12 }}>
+          <Icon name="close-circle-outline" size={16} color={colors.emberText} />
+          <Caption style={{ color: colors.emberText, flex: 1 }}>{error}</Caption>
+        </View>
+      ) : null}
+    </View>
+  );
 }
 
 function KindSegments({ fields, set, label }: FieldInputProps & { label: string }) {
@@ -222,12 +249,13 @@ function TextInput({ name, fields, set, error, hint, label, onBlur }: FieldInput
   );
 }
 
-function DataUsed({ fields, set, label }: FieldInputProps & { label: string }) {
+function DataUsed({ fields, set, label, error }: FieldInputProps & { label: string }) {
   return (
     <View style={{ gap: 8 }}>
       {fields.dataKnown !== false && (
         <TagField
           label={label}
+          error={error}
           values={fields.dataUsed}
           onChange={(values) => {
             set("dataUsed", values);

@@ -29,7 +29,7 @@ export function MethodStep({
           set={set}
           label={label}
           hint={hint}
-          error={error(name)}
+          error={error(name) ?? (name === "dataUsed" ? error("dataKnown") : undefined)}
           onBlur={onBlur}
         />
         {under(name)}

@@ -1,8 +1,13 @@
+import { useMutation } from "@apollo/client/react";
+import { useRouter } from "expo-router";
+import { useState } from "react";
 import { View } from "react-native";
 
+import { userMessage } from "@/apollo/userMessage";
 import { Button } from "@/components/Button";
 import { Card } from "@/components/Card";
 import { CitationLine } from "@/components/CitationLine";
+import { Confirm } from "@/components/Confirm";
 import { DefinitionList } from "@/components/DefinitionList";
 import { Notice } from "@/components/Notice";
 import { NotationText } from "@/components/NotationText";
@@ -12,7 +17,7 @@ import { StatusPill } from "@/components/StatusPill";
 import { Dense, Section } from "@/components/Text";
 import { dateTime } from "@/components/when";
 import { Screen } from "@/layout/Screen";
-import type { SubmissionPartsFragment } from "~graphql/generated/graphql";
+import { DiscardDraftDocument, type SubmissionPartsFragment } from "~graphql/generated/graphql";
 import type { FieldName } from "~shared/statement/fields";
 import { notationAsPrinted } from "~shared/statement/notation";
 import { FIELD_NAMES, fieldText } from "~shared/statement/words";
@@ -79,9 +84,43 @@ export function SubmissionView({ submission }: { submission: SubmissionPartsFrag
             onPress={() => void start.ofSubmission(submission.id)}
           />
           <Button kind="outline" label="To the desk" href={DESK} />
+          {state === "submitted" ? <TakeBack submission={submission} /> : null}
         </View>
       </View>
     </Screen>
+  );
+}
+
+/** What no editor has claimed yet can still be taken back. */
+function TakeBack({ submission }: { submission: SubmissionPartsFragment }) {
+  const router = useRouter();
+  const [asking, setAsking] = useState(false);
+  const [refusal, setRefusal] = useState<string | null>(null);
+  const [discard, { loading }] = useMutation(DiscardDraftDocument);
+  const { id, version } = submission;
+  const take = async () => {
+    setAsking(false);
+    try {
+      const { data } = await discard({ variables: { id, version } });
+      if (data?.discardDraft.__typename === "Done") router.replace(DESK);
+      else setRefusal(data?.discardDraft.message ?? "The server gave no answer. Try again.");
+    } catch (error) {
+      setRefusal(userMessage(error));
+    }
+  };
+  return (
+    <>
+      <Button kind="return" label="Take it back" busy={loading} onPress={() => setAsking(true)} />
+      {refusal ? <Notice grade="error">{refusal}</Notice> : null}
+      <Confirm
+        visible={asking}
+        title="Take this submission back?"
+        text="It leaves the queue and is discarded. What you typed is gone then."
+        confirmLabel="Take it back"
+        onConfirm={() => void take()}
+        onCancel={() => setAsking(false)}
+      />
+    </>
   );
 }
 

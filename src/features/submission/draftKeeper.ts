@@ -61,18 +61,24 @@ function sameContent(a: DraftContent, b: DraftContent): boolean {
   return JSON.stringify(canonical(a)) === JSON.stringify(canonical(b));
 }
 
-/** Key order and empty answers carry no meaning; two copies that differ in nothing else are one. */
+/** Key order, outer space and empty answers carry no meaning; copies that differ in nothing else are one. */
 function canonical(content: DraftContent): unknown {
-  const filled = (answers: Record<string, string>) =>
-    Object.entries(answers)
-      .filter(([, text]) => text !== "")
+  const sorted = (held: object) =>
+    Object.entries(held)
+      .map(([key, value]) => [key, tidy(value)] as const)
+      .filter(([, value]) => value !== null)
       .sort(([a], [b]) => a.localeCompare(b));
   return [
-    Object.entries(content.fields).sort(([a], [b]) => a.localeCompare(b)),
+    sorted(content.fields),
     content.citationId,
-    filled(content.answers),
-    filled(content.commentAnswers),
+    sorted(content.answers),
+    sorted(content.commentAnswers),
   ];
+}
+
+function tidy(value: unknown): unknown {
+  if (typeof value !== "string") return value;
+  return value.trim() === "" ? null : value.trim();
 }
 
 /**

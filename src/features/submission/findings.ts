@@ -3,6 +3,7 @@ import { useMemo } from "react";
 
 import { CheckFieldsDocument, type FindingPartsFragment } from "~graphql/generated/graphql";
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
+import { isOpen } from "~shared/statement/relevant";
 import { fieldFindings } from "~shared/statement/rules";
 
 export interface Findings {
@@ -64,14 +65,12 @@ export function errorAt(
   fields: ConstraintFields,
   showMissing: boolean,
 ): string | undefined {
-  const held = fields[name];
-  const empty = held === null || (Array.isArray(held) && held.length === 0);
-  if (empty && !showMissing) return undefined;
   return findings.find(
     (finding) =>
       finding.grade === "error" &&
       finding.fields.includes(name) &&
-      // With several fields the sentence stands once, at the first that holds something.
-      (finding.fields.length === 1 || finding.fields[0] === name || !empty),
+      (showMissing || !finding.code.startsWith("missing")) &&
+      // A sentence about several fields stands at those that hold something.
+      (finding.fields.length === 1 || !isOpen(fields, name)),
   )?.message;
 }

@@ -17,8 +17,8 @@ import {
   type SaveOutcome,
 } from "./draftKeeper";
 
-/** Refusal codes of a save that lost against a newer version. */
-const STALE_CODES = new Set(["STALE", "stale", "STALE_VERSION", "staleVersion"]);
+/** Refusal code of a save that lost against a newer version. */
+const STALE = "stale";
 
 export interface Draft extends DraftSnapshot {
   keeper: DraftKeeper;
@@ -96,9 +96,11 @@ function saveInput({ fields, citationId, answers, commentAnswers }: DraftContent
     answers: Object.entries(answers)
       .filter(([, answer]) => answer.trim() !== "")
       .map(([code, answer]) => ({ code, answer })),
-    commentAnswers: Object.entries(commentAnswers)
-      .filter(([, answer]) => answer.trim() !== "")
-      .map(([commentId, answer]) => ({ commentId, answer })),
+    // An emptied answer is sent too, since the server changes only those it is given.
+    commentAnswers: Object.entries(commentAnswers).map(([commentId, answer]) => ({
+      commentId,
+      answer,
+    })),
   };
 }
 
@@ -110,7 +112,7 @@ function outcomeOf(
 ): SaveOutcome {
   if (!result) return { kind: "offline" };
   if (result.__typename === "Submission") return { kind: "saved", draft: serverDraft(result) };
-  return STALE_CODES.has(result.code)
+  return result.code === STALE
     ? { kind: "stale" }
     : { kind: "refused", message: result.message };
 }
