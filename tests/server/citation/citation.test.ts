@@ -9,6 +9,9 @@ import { startTestServer, type Agent, type TestServer } from "../support/harness
 
 const sample = readFileSync(join(__dirname, "../../fixtures/bibtex/group-list.bib"), "utf8");
 
+// A database is made first, on a machine that may be busy.
+jest.setTimeout(60_000);
+
 let server: TestServer;
 let contributor: Agent;
 

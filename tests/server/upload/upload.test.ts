@@ -3,6 +3,9 @@ import { findUpload, storeUpload } from "~server/upload/upload.service";
 
 import { startTestServer, type Agent, type TestServer } from "../support/harness";
 
+// A database is made first, on a machine that may be busy.
+jest.setTimeout(60_000);
+
 let server: TestServer;
 beforeAll(async () => {
   server = await startTestServer();

@@ -1,0 +1,170 @@
+import "reflect-metadata";
+
+import Papa from "papaparse";
+
+import type { User } from "~server/account/user.entity";
+import { isProblem, parseBibtex } from "~server/citation/bibtex";
+import { Constraint } from "~server/constraint/constraint.entity";
+import { reviseSubmission } from "~server/constraint/draft.service";
+import { claim, storeReading } from "~server/review/review.service";
+import type { SavedTable } from "~server/table/table.entity";
+import { deleteTable, saveTable } from "~server/table/table.service";
+import { formatRecordNumber } from "~shared/identifiers/recordNumber";
+
+import { actingAs, approveAs, buildApproved, granted, send } from "../../factories/constraint";
+import { startTestServer, type TestServer } from "../support/harness";
+
+// A database is made first, on a machine that may be busy.
+jest.setTimeout(60_000);
+
+let server: TestServer;
+let owner: User;
+let editor: User;
+
+beforeAll(async () => {
+  server = await startTestServer();
+  owner = (await server.signedIn(["contributor"])).user;
+  editor = (await server.signedIn(["editor"])).user;
+});
+afterAll(() => server.stop());
+
+/** Two records of a sightline and field of their own, the second left out with a reason. */
+async function buildTable(word: string): Promise<{ table: SavedTable; ids: number[] }> {
+  const { dataSource } = server;
+  const ids: number[] = [];
+  for (const [z, value] of [
+    ["6.20", "0.21"],
+    ["7.40", "0.50"],
+  ]) {
+    const overrides = { z, value, dataUsed: [`${word} ${z}`] };
+    ids.push((await buildApproved(dataSource, owner, editor, overrides)).constraintId);
+  }
+  const [first, second] = ids.map(formatRecordNumber);
+  const table = granted(
+    await saveTable(actingAs(dataSource, owner), {
+      name: `Table of ${word}`,
+      filter: { text: word },
+      rows: [
+        { number: first!, included: true },
+        { number: second!, included: false, reason: "Read off a poor figure, they say" },
+      ],
+    }),
+  );
+  return { table, ids };
+}
+
+const fetchTable = (slug: string, kind: string, agent = server.agent()) =>
+  agent.get(`/api/tables/${slug}.${kind}`);
+
+it("anybody fetches a saved table in three forms, to be saved, never sniffed", async () => {
+  const { table, ids } = await buildTable("Amberfield");
+  const [first, second] = ids.map(formatRecordNumber);
+  for (const [kind, type] of [
+    ["csv", "text/csv; charset=utf-8"],
+    ["json", "application/json; charset=utf-8"],
+    ["bib", "application/x-bibtex; charset=utf-8"],
+  ] as const) {
+    const { status, headers } = await fetchTable(table.slug, kind);
+    expect(status).toBe(200);
+    expect(headers["content-type"]).toBe(type);
+    expect(headers["content-disposition"]).toBe(
+      `attachment; filename="fogline-table-${table.slug}.${kind}"`,
+    );
+    expect(headers["x-content-type-options"]).toBe("nosniff");
+  }
+
+  const csv = (await fetchTable(table.slug, "csv")).text;
+  const body = csv.split("\r\n").filter((line) => !line.startsWith("#"));
+  const { data } = Papa.parse<Record<string, string>>(body.join("\r\n"), {
+    header: true,
+    skipEmptyLines: true,
+  });
+  expect(data.map((row) => [row.record, row.included, row.printed_value])).toEqual([
+    [first, "true", "0.21"],
+    [second, "false", "0.50"],
+  ]);
+  expect(data[1]!.reason).toBe("Read off a poor figure, they say");
+  expect(csv).toContain("# Filter: Text \"Amberfield\"");
+  expect(csv).toContain(table.digest);
+  expect(csv).toContain(`/tables/${table.slug}`);
+
+  const json = (await fetchTable(table.slug, "json")).body;
+  expect(json).toMatchObject({
+    digest: `sha256:${table.digest}`,
+    name: "Table of Amberfield",
+    licence: "CC BY 4.0",
+    filter: { recipe: { text: "Amberfield" } },
+    lastEvent: { sequence: table.lastEventSequence },
+  });
+  expect(json.rows).toMatchObject([
+    { record: first, included: true, printed: { value: "0.21" } },
+    { record: second, included: false, printed: { value: "0.50" } },
+  ]);
+
+  const bib = parseBibtex((await fetchTable(table.slug, "bib")).text);
+  expect(bib.filter(isProblem)).toEqual([]);
+  expect(bib).toHaveLength(1);
+  expect(bib[0]).toMatchObject({ givenKey: data[0]!.citation_key });
+});
+
+it("its bytes stay when a record is revised or superseded afterwards", async () => {
+  const { dataSource } = server;
+  const { table, ids } = await buildTable("Cobaltfield");
+  const before = await Promise.all(
+    ["csv", "json", "bib"].map(async (kind) => (await fetchTable(table.slug, kind)).text),
+  );
+  const record = await dataSource.manager.findOneByOrFail(Constraint, { id: ids[0]! });
+  const who = actingAs(dataSource, owner);
+  const draft = granted(await reviseSubmission(who, record.approvedRevisionId!));
+  const fields = { ...draft.fields, value: "0.22", printedText: "we find 6.20, 0.22, 0.12, 0.15" };
+  await approveAs(dataSource, editor, await send(dataSource, owner, { ...draft, fields }));
+  await dataSource.manager.update(Constraint, { id: ids[1]! }, { state: "superseded" });
+  const after = await Promise.all(
+    ["csv", "json", "bib"].map(async (kind) => (await fetchTable(table.slug, kind)).text),
+  );
+  expect(after).toEqual(before);
+});
+
+it("answers 304 to who has it already", async () => {
+  const { table } = await buildTable("Dunefield");
+  const { headers } = await fetchTable(table.slug, "json");
+  const again = await fetchTable(table.slug, "json").set("If-None-Match", headers.etag as string);
+  expect(again.status).toBe(304);
+});
+
+it.each(["nosuchtable", "%2e%2e%2fetc", "x'--"])("%s: no such table, in words", async (slug) => {
+  for (const kind of ["csv", "json", "bib"]) {
+    const { status, text } = await fetchTable(slug, kind);
+    expect(status).toBe(404);
+    expect(text).toContain("There is no table at this address.");
+  }
+});
+
+it("a deleted table's address says that it is gone", async () => {
+  const { table } = await buildTable("Elmfield");
+  granted(await deleteTable(actingAs(server.dataSource, owner), table.slug));
+  const { status, text } = await fetchTable(table.slug, "csv");
+  expect(status).toBe(410);
+  expect(text).toContain("deleted");
+});
+
+it("an editor gets no table that holds what the editor reads blind, until the reading is stored", async () => {
+  const { dataSource } = server;
+  const { table, ids } = await buildTable("Foxfield");
+  const record = await dataSource.manager.findOneByOrFail(Constraint, { id: ids[0]! });
+  const draft = granted(
+    await reviseSubmission(actingAs(dataSource, owner), record.approvedRevisionId!),
+  );
+  const fields = { ...draft.fields, remark: "Place corrected." };
+  const submitted = await send(dataSource, owner, { ...draft, fields });
+  const { agent, user } = await server.signedIn(["editor"]);
+  granted(await claim(actingAs(dataSource, user), submitted.id));
+  for (const kind of ["csv", "json", "bib"]) {
+    const { status, text } = await fetchTable(table.slug, kind, agent);
+    expect(status).toBe(403);
+    expect(text).not.toContain("0.21");
+    expect((await fetchTable(table.slug, kind)).status).toBe(200);
+  }
+  granted(await storeReading(actingAs(dataSource, user), submitted.id, fields));
+  expect((await fetchTable(table.slug, "csv", agent)).status).toBe(200);
+});
