@@ -8,7 +8,7 @@ const { Transform } = require("node:stream");
 const zlib = require("node:zlib");
 
 const { query } = require("./database");
-const { PlainFailure, lastWords, looksLikeDiskFull } = require("./failure");
+const { PlainFailure } = require("./failure");
 const { findProgram, requireSpace } = require("./install");
 const { readJson } = require("./paths");
 const { atEnd, endChild, startChild } = require("./processes");
@@ -107,7 +107,7 @@ async function dump(connection, file, watcher) {
   const { code } = await child.ended;
   if (code !== 0)
     throw new PlainFailure("mariadb-dump could not read the database; its own words follow.", {
-      details: lastWords(said),
+      output: said,
     });
   return { sha256: hash.digest("hex"), bytes };
 }
@@ -213,10 +213,8 @@ async function load({ options, database }, file) {
   const { code } = await child.ended;
   if (code === 0) return;
   throw new PlainFailure(
-    looksLikeDiskFull(said)
-      ? said
-      : "The database did not take the backup; its own words follow. What is there now is incomplete.",
-    { details: lastWords(said) },
+    "The database did not take the backup; its own words follow. What is there now is incomplete.",
+    { output: said },
   );
 }
 

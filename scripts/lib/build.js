@@ -4,7 +4,7 @@ const path = require("node:path");
 const { promisify } = require("node:util");
 const zlib = require("node:zlib");
 
-const { PlainFailure, lastWords } = require("./failure");
+const { PlainFailure } = require("./failure");
 const { CACHE, fromRoot } = require("./paths");
 const { run } = require("./processes");
 const { contentStamp } = require("./stamp");
@@ -52,7 +52,7 @@ async function buildClient(log) {
     );
     if (code !== 0 || !fs.existsSync(path.join(target, "index.html")))
       throw new PlainFailure("Expo could not export the web client; its own words follow.", {
-        details: lastWords(output, 20),
+        output,
       });
     await compressFolder(target);
   });

@@ -1,12 +1,16 @@
 "use strict";
+const fs = require("node:fs");
+const os = require("node:os");
+
+const { ROOT, dataDirectory } = require("./paths");
 
 /** A failure told to the person in one plain sentence; `details` are the last words of the tool that failed. */
 class PlainFailure extends Error {
-  constructor(sentence, { details = "", exitCode = 1 } = {}) {
+  constructor(sentence, { output = "", details = lastWords(output) } = {}) {
     super(sentence);
     this.name = "PlainFailure";
     this.details = details;
-    this.exitCode = exitCode;
+    this.diskFull = looksLikeDiskFull(output || details);
   }
 }
 
@@ -32,14 +36,28 @@ function lastWords(output, lines = 12) {
 }
 
 function looksLikeDiskFull(text) {
-  return /ENOSPC|EDQUOT|No space left on device|Errcode: 28|errno: 28|error: 28\b/i.test(text);
+  return /ENOSPC|EDQUOT|No space left on device|Errcode: 28|errno: 28|error:? 28\b/i.test(text);
+}
+
+/** Tools seldom say that the disk was full, so a failure looks for itself. */
+function isFull(places) {
+  return places.some((place) => {
+    try {
+      const { bavail, bsize } = fs.statfsSync(place);
+      return bavail * bsize < 20 * 1024 ** 2;
+    } catch {
+      return false;
+    }
+  });
 }
 
 /** Any error as a sentence for the person and what may be added under it. */
 function explain(error) {
   if (error instanceof PlainFailure) {
-    if (looksLikeDiskFull(error.details)) return { sentence: DISK_FULL, details: "" };
-    return { sentence: error.message, details: error.details };
+    const full = isFull([ROOT, dataDirectory(), os.tmpdir()]);
+    return error.diskFull || (full && error.details !== "")
+      ? { sentence: DISK_FULL, details: "" }
+      : { sentence: error.message, details: error.details };
   }
   const text = error instanceof Error ? error.message : String(error);
   const code = error && error.code;

@@ -4,7 +4,7 @@ const fs = require("node:fs");
 const net = require("node:net");
 const path = require("node:path");
 
-const { PlainFailure, lastWords } = require("./failure");
+const { PlainFailure } = require("./failure");
 const { optionArgument } = require("./database");
 const { findProgram } = require("./install");
 const { readJson, shortTemporaryFolder, writePrivate } = require("./paths");
@@ -158,7 +158,7 @@ async function launch(places, folder, { password, first, throwaway }) {
     await endChild(child);
     if (/Address already in use|Can't start server: Bind/i.test(said) && attempt < 4) continue;
     throw new PlainFailure("MariaDB did not start; its own words follow.", {
-      details: lastWords(said, 10),
+      output: said,
     });
   }
 }

@@ -2,7 +2,7 @@
 const { spawn } = require("node:child_process");
 const fs = require("node:fs");
 
-const { Interrupted, PlainFailure, lastWords } = require("./failure");
+const { Interrupted, PlainFailure } = require("./failure");
 const { ROOT } = require("./paths");
 
 /** Every child that still runs; each leads a process group of its own, so that its children go with it. */
@@ -82,7 +82,7 @@ async function run(command, args, options = {}) {
   if (code === 0) return output;
   if (options.allowFailure) return { code: code ?? 1, output };
   throw new PlainFailure(sentence ?? `${command} failed.`, {
-    details: error ? `${command}: ${error.message}` : lastWords(output),
+    output: error ? `${command}: ${error.message}` : output,
   });
 }
 

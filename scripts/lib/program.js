@@ -35,7 +35,7 @@ function program(main, { exitCode = (_serving, number) => number, atLast = () =>
       if (details) process.stderr.write(`${details.replace(/^/gm, "    ")}\n`);
       process.stderr.write(`${sentence}\n`);
       if (process.env.LOG_LEVEL === "debug") process.stderr.write(`${error.stack}\n`);
-      return finish(error.exitCode ?? 1);
+      return finish(1);
     });
 }
 

@@ -29,6 +29,7 @@ async function prepareDatabase(environment, log) {
   if (typeof result !== "string") {
     const said = lastWords(result.output).split("\n");
     throw new PlainFailure(said.pop() || "The database could not be prepared.", {
+      output: result.output,
       details: said.join("\n"),
     });
   }
@@ -103,7 +104,7 @@ async function launchServer(environment, { log, echo = false }) {
         end === null
           ? "The server did not become ready within a minute; its own words follow."
           : "The server ended while starting; its own words follow.",
-        { details: lastWords(said, 8) },
+        { output: said },
       );
     }
     await pause(100);

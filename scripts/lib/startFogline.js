@@ -4,7 +4,7 @@ const path = require("node:path");
 
 const { buildClient, buildServer } = require("./build");
 const { parseDatabaseUrl } = require("./database");
-const { PlainFailure } = require("./failure");
+const { Interrupted, PlainFailure } = require("./failure");
 const {
   MARIADB_SERVER,
   ensureModules,
@@ -14,6 +14,7 @@ const {
 } = require("./install");
 const { lockDirectory, lockProject } = require("./lock");
 const { hasDatabase, startMariaDb } = require("./mariadb");
+const { isStopping } = require("./processes");
 const { program } = require("./program");
 const { dataDirectory, fromRoot } = require("./paths");
 const server = require("./server");
@@ -68,6 +69,7 @@ async function start(status) {
     running.child.ended.then((end) => ["server", end]),
     ...(database.child ? [database.child.ended.then((end) => ["database", end])] : []),
   ]);
+  if (isStopping()) throw new Interrupted();
   status.serving = false;
   throw new PlainFailure(
     `The ${what} ended unexpectedly (${end.signal ?? `code ${end.code}`}). ` +
