@@ -5,6 +5,7 @@ import type { EntityManager } from "typeorm";
 import { requireViewer, type RequestContext } from "~server/common/context";
 import { tooManySentence } from "~server/common/errors";
 import { done, refuse, type Done, type Refusal } from "~server/common/outcomes";
+import { transact } from "~server/database/transaction";
 import { queueMail } from "~server/mail/outbox";
 import type { LimitName } from "~server/security/rateLimits";
 import { normalizeOrcid } from "~shared/identifiers/orcid";
@@ -57,17 +58,13 @@ export async function register(
   if (problem) return problem;
 
   const passwordHash = await hashPassword(ctx.config.passwordCost, input.password);
-  const store = (): Promise<void> =>
-    ctx.database.transaction((manager) =>
+  await transact(
+    ctx.database,
+    (manager) =>
       storeRegistration(manager, ctx.config.publicUrl, { email, nameOnPapers, passwordHash }),
-    );
-  try {
-    await store();
-  } catch (error) {
     // Two registrations of one address at once: the later one finds the account of the earlier.
-    if ((error as { code?: string }).code !== "ER_DUP_ENTRY") throw error;
-    await store();
-  }
+    ["ER_DUP_ENTRY"],
+  );
   return done(`We sent a mail to ${email}. Open the link in it to go on.`);
 }
 
@@ -98,7 +95,7 @@ async function storeRegistration(
 const BAD_LINK = "This link has been used already, or is too old. Ask for a new one.";
 
 export async function confirmEmail(ctx: RequestContext, token: string): Promise<Done | Refusal> {
-  return ctx.database.transaction(async (manager) => {
+  return transact(ctx.database, async (manager) => {
     const userId = await tokenOwner(manager, token, "confirm");
     if (userId === null || !(await spendToken(manager, token, "confirm"))) {
       return refuse("LINK_INVALID", BAD_LINK);
@@ -115,7 +112,7 @@ export async function resendConfirmation(
   const email = normalEmail(address);
   const problem = emailProblem(email) ?? (await mailLimit(ctx, email));
   if (problem) return problem;
-  await ctx.database.transaction(async (manager) => {
+  await transact(ctx.database, async (manager) => {
     const user = await manager.findOneBy(User, { email });
     if (!user || user.confirmedAt) return;
     const token = await issueToken(manager, user.id, "confirm");
@@ -192,7 +189,7 @@ export async function changePassword(
   }
   const passwordHash = await hashPassword(ctx.config.passwordCost, next);
   const sessionEpoch = user.sessionEpoch + 1;
-  const changed = await ctx.database.transaction(async (manager) => {
+  const changed = await transact(ctx.database, async (manager) => {
     const { affected } = await manager
       .createQueryBuilder()
       .update(User)
@@ -219,7 +216,7 @@ export async function requestPasswordReset(
   const email = normalEmail(address);
   const problem = emailProblem(email) ?? (await mailLimit(ctx, email));
   if (problem) return problem;
-  await ctx.database.transaction(async (manager) => {
+  await transact(ctx.database, async (manager) => {
     const user = await manager.findOneBy(User, { email });
     if (!user) return;
     const token = await issueToken(manager, user.id, "reset");
@@ -242,7 +239,7 @@ export async function resetPassword(
   if (problem) return problem;
 
   const passwordHash = await hashPassword(ctx.config.passwordCost, next);
-  const changed = await ctx.database.transaction(async (inside) => {
+  const changed = await transact(ctx.database, async (inside) => {
     if (!(await spendToken(inside, token, "reset"))) return false;
     await inside
       .createQueryBuilder()

@@ -3,6 +3,7 @@ import type { EntityManager } from "typeorm";
 import { requireViewer, type RequestContext } from "~server/common/context";
 import { forbidden } from "~server/common/errors";
 import { refuse, type Refusal } from "~server/common/outcomes";
+import { transact } from "~server/database/transaction";
 import { appendEvent } from "~server/event/eventLog";
 import { queueMail } from "~server/mail/outbox";
 import type { Role } from "~shared/review/states";
@@ -43,7 +44,7 @@ export async function grantRole(
   role: Role,
 ): Promise<Person | Refusal> {
   const viewer = requireViewer(ctx);
-  return ctx.database.transaction(async (manager) => {
+  return transact(ctx.database, async (manager) => {
     await requireMaintainer(manager, viewer.id);
     const user = await findPerson(manager, personId);
     if (!user) return refuse("NOT_FOUND", NOBODY);
@@ -63,7 +64,7 @@ export async function revokeRole(
   role: Role,
 ): Promise<Person | Refusal> {
   const viewer = requireViewer(ctx);
-  return ctx.database.transaction(async (manager) => {
+  return transact(ctx.database, async (manager) => {
     const maintainers = await requireMaintainer(manager, viewer.id);
     const user = await findPerson(manager, personId);
     if (!user) return refuse("NOT_FOUND", NOBODY);
@@ -130,7 +131,7 @@ export async function grantByAddress(
   email: string,
   role: Role,
 ): Promise<string | null> {
-  return manager.transaction(async (inside) => {
+  return transact(manager, async (inside) => {
     const found = await inside.findOneBy(User, { email });
     const user = found && (await findPerson(inside, found.id));
     if (!user) return null;

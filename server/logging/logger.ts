@@ -16,13 +16,13 @@ export function requestLog(logger: Logger): HttpLogger {
     logger,
     genReqId: (req) => req.id, // withRequestId has given it
     quietReqLogger: true,
+    customAttributeKeys: { reqId: "id" },
     customLogLevel: (_req, res, error) => {
       if (error || res.statusCode >= 500) return "error";
       return res.statusCode >= 400 ? "warn" : "info";
     },
     serializers: {
-      req: (req: { id: string; method: string; url: string }) => ({
-        id: req.id,
+      req: (req: { method: string; url: string }) => ({
         method: req.method,
         path: req.url.split("?", 1)[0],
       }),

@@ -19,6 +19,9 @@ import type { Role } from "~shared/review/states";
 
 import { buildUser, TEST_PASSWORD, TEST_PASSWORD_COST } from "../../factories/user";
 
+// Each file makes a schema, and machines that run all files at once are slow at that.
+jest.setTimeout(60_000);
+
 export type Agent = ReturnType<typeof request.agent>;
 
 /** What GraphQL answers, as a test reads it. */
