@@ -85,8 +85,7 @@ export class Background {
     this.omegaLambda = 1 - this.omegaM - this.omegaPhoton * (1 + neutrinosPerPhoton(0));
     this.nH0 = ((1 - heliumFraction) * (omegaBh2 / (h * h)) * criticalDensity) / HYDROGEN_MASS;
     this.fHe = heliumFraction / (HELIUM_TO_HYDROGEN_MASS * (1 - heliumFraction));
-    this.tauPrefactor =
-      (SPEED_OF_LIGHT * THOMSON_CROSS_SECTION * this.nH0) / this.h0PerSecond;
+    this.tauPrefactor = (SPEED_OF_LIGHT * THOMSON_CROSS_SECTION * this.nH0) / this.h0PerSecond;
   }
 
   /** H(z)/H_0, dimensionless; z > −1. */

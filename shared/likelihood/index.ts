@@ -1,0 +1,12 @@
+export { distributionOf } from "./distribution";
+export { FORM_NAMES, FORM_WORDS, type FormName } from "./forms";
+export {
+  rowLikelihood,
+  type LeftOutCode,
+  type RedshiftTreatment,
+  type RowEvaluation,
+  type RowLeftOut,
+  type RowLikelihood,
+  type RowOptions,
+} from "./rowLikelihood";
+export { scoreRows, type RowScore, type RowToScore, type Score } from "./scoreRows";

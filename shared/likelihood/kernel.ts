@@ -1,0 +1,155 @@
+import { logErfc } from "~shared/numerics/special";
+
+/**
+ * The arithmetic of every likelihood form, over numbers packed into one array: written once, used by
+ * a single row on a screen and by a table of hundreds inside a fit, without allocation.
+ * forms.ts packs the numbers and says where each form comes from.
+ */
+export const KERNEL = {
+  /** No information: 0 everywhere. */
+  flat: 0,
+  /** centre, 1/σ below, 1/σ above */
+  twoPiece: 1,
+  /** see packQuantileMatched */
+  quantileMatched: 2,
+  /** m, V, V′ */
+  variableWidth: 3,
+  /** low, high, 1/σ of the tails; an end may be infinite */
+  plateau: 4,
+  /** place, direction (1 upper limit, −1 lower) / (√2 s) */
+  smoothedStep: 5,
+  /** low, high; an end may be infinite */
+  hardStep: 6,
+  /** n, 1/step of a uniform grid or 0, n places, n values of ln p over its peak */
+  tabulated: 7,
+} as const;
+export type Kernel = (typeof KERNEL)[keyof typeof KERNEL];
+
+/**
+ * −2 ln L relative to its peak, at one model value.
+ *
+ * @param kernel - Which arithmetic, one of KERNEL.
+ * @param p - Packed numbers; those of this row start at `at`.
+ * @param at - Offset into p.
+ * @param x - Model value; ±Infinity is allowed, NaN is not.
+ * @returns A number ≥ 0 up to rounding, +Infinity outside the support; never NaN.
+ */
+export function minus2LnLOf(kernel: number, p: Float64Array, at: number, x: number): number {
+  switch (kernel) {
+    case KERNEL.twoPiece: {
+      const d = x - p[at]!;
+      const t = d < 0 ? d * p[at + 1]! : d * p[at + 2]!;
+      return t * t;
+    }
+    case KERNEL.plateau: {
+      const low = p[at]!;
+      const high = p[at + 1]!;
+      const beyond = x < low ? low - x : x > high ? x - high : 0;
+      if (beyond === 0) return 0;
+      const t = beyond * p[at + 2]!;
+      return t * t;
+    }
+    case KERNEL.variableWidth: {
+      const d = x - p[at]!;
+      const variance = p[at + 1]! + p[at + 2]! * d;
+      if (!(variance > 0) || d === -Infinity || d === Infinity) return Infinity;
+      return (d * d) / variance;
+    }
+    case KERNEL.smoothedStep:
+      return 2 * (Math.LN2 - logErfc((x - p[at]!) * p[at + 1]!));
+    case KERNEL.quantileMatched:
+      return quantileMatchedMinus2LnL(p, at, x);
+    case KERNEL.hardStep:
+      return x < p[at]! || x > p[at + 1]! ? Infinity : 0;
+    case KERNEL.tabulated:
+      return tabulatedMinus2LnL(p, at, x);
+    default:
+      return 0;
+  }
+}
+
+/*
+ * Layout of a quantile-matched row:
+ *  0 low node, 1 median, 2 high node, 3 score at the low node, 4 score at the high node,
+ *  5 slope below the low node, 6 slope above the high node, 7 the least of u² − 2 ln u′,
+ *  8–13 and 14–19 the quintics of the two sides in t from 0 to 1.
+ */
+const LEFT = 8;
+const RIGHT = 14;
+
+/** Normal score u(x) of a quantile-matched row. */
+export function quantileMatchedScore(p: Float64Array, at: number, x: number): number {
+  const low = p[at]!;
+  const median = p[at + 1]!;
+  const high = p[at + 2]!;
+  if (x <= low) return p[at + 3]! + (x - low) * p[at + 5]!;
+  if (x >= high) return p[at + 4]! + (x - high) * p[at + 6]!;
+  const c = at + (x < median ? LEFT : RIGHT);
+  const t = x < median ? (x - low) / (median - low) : (x - median) / (high - median);
+  return (
+    p[c]! + t * (p[c + 1]! + t * (p[c + 2]! + t * (p[c + 3]! + t * (p[c + 4]! + t * p[c + 5]!))))
+  );
+}
+
+/** du/dx of a quantile-matched row, 1 / unit of x. */
+export function quantileMatchedSlope(p: Float64Array, at: number, x: number): number {
+  const low = p[at]!;
+  const median = p[at + 1]!;
+  const high = p[at + 2]!;
+  if (x <= low) return p[at + 5]!;
+  if (x >= high) return p[at + 6]!;
+  const c = at + (x < median ? LEFT : RIGHT);
+  const width = x < median ? median - low : high - median;
+  const t = x < median ? (x - low) / width : (x - median) / width;
+  return (
+    (p[c + 1]! +
+      t * (2 * p[c + 2]! + t * (3 * p[c + 3]! + t * (4 * p[c + 4]! + t * 5 * p[c + 5]!)))) /
+    width
+  );
+}
+
+/** d²u/dx² of a quantile-matched row. */
+export function quantileMatchedCurvature(p: Float64Array, at: number, x: number): number {
+  const low = p[at]!;
+  const median = p[at + 1]!;
+  const high = p[at + 2]!;
+  if (x <= low || x >= high) return 0;
+  const c = at + (x < median ? LEFT : RIGHT);
+  const width = x < median ? median - low : high - median;
+  const t = x < median ? (x - low) / width : (x - median) / width;
+  return (
+    (2 * p[c + 2]! + t * (6 * p[c + 3]! + t * (12 * p[c + 4]! + t * 20 * p[c + 5]!))) /
+    (width * width)
+  );
+}
+
+function quantileMatchedMinus2LnL(p: Float64Array, at: number, x: number): number {
+  const u = quantileMatchedScore(p, at, x);
+  const slope = quantileMatchedSlope(p, at, x);
+  // Very lopsided widths can turn the score around: no density there.
+  if (!(slope > 0)) return Infinity;
+  return u * u - 2 * Math.log(slope) - p[at + 7]!;
+}
+
+function tabulatedMinus2LnL(p: Float64Array, at: number, x: number): number {
+  const n = p[at]!;
+  const xs = at + 2;
+  const lnp = xs + n;
+  const first = p[xs]!;
+  if (!(x >= first && x <= p[xs + n - 1]!)) return Infinity;
+  let i: number;
+  const perStep = p[at + 1]!;
+  if (perStep > 0) {
+    i = Math.min(((x - first) * perStep) | 0, n - 2);
+  } else {
+    i = 0;
+    let high = n - 1;
+    while (high - i > 1) {
+      const middle = (i + high) >> 1;
+      if (p[xs + middle]! <= x) i = middle;
+      else high = middle;
+    }
+  }
+  const t = (x - p[xs + i]!) / (p[xs + i + 1]! - p[xs + i]!);
+  return -2 * (p[lnp + i]! + t * (p[lnp + i + 1]! - p[lnp + i]!));
+}
