@@ -7,7 +7,13 @@ const config: CodegenConfig = {
     "graphql/generated/": {
       preset: "client",
       presetConfig: { fragmentMasking: false },
-      config: { useTypeImports: true, enumsAsTypes: true, scalars: { DateTimeISO: "string" } },
+      config: {
+        useTypeImports: true,
+        enumsAsTypes: true,
+        // A field that may be null is present and null, never absent: the same shape as in shared.
+        avoidOptionals: { field: true },
+        scalars: { DateTimeISO: "string" },
+      },
     },
   },
 };

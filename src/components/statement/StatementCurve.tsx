@@ -5,7 +5,7 @@ import { Caption, Dense } from "@/components/Text";
 import { FAMILY_MARKS } from "@/theme/families";
 import { useTheme } from "@/theme/ThemeProvider";
 import { rowLikelihood } from "~shared/likelihood";
-import { familyOf } from "~shared/methods/families";
+import { familyOf } from "~shared/methods/vocabulary";
 import { asUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields } from "~shared/statement/fields";
 

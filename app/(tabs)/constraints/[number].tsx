@@ -1,0 +1,1 @@
+export { ConstraintScreen as default } from "@/features/constraints/ConstraintScreen";

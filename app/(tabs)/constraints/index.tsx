@@ -1,0 +1,1 @@
+export { ConstraintsScreen as default } from "@/features/constraints/ConstraintsScreen";

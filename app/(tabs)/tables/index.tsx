@@ -1,0 +1,1 @@
+export { TablesScreen as default } from "@/features/tables/TablesScreen";

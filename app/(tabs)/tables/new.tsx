@@ -1,0 +1,1 @@
+export { TableBuilderScreen as default } from "@/features/tables/TableBuilderScreen";

@@ -1,0 +1,334 @@
+import { useState } from "react";
+import { StyleSheet, View } from "react-native";
+
+import { StatementCurve } from "@/components/statement/StatementCurve";
+import { Button } from "@/components/Button";
+import { Card, Divider } from "@/components/Card";
+import { CitationLine } from "@/components/CitationLine";
+import { CiteSheet } from "@/components/CiteSheet";
+import { DefinitionList } from "@/components/DefinitionList";
+import { Marker } from "@/components/Marker";
+import { NotationText } from "@/components/NotationText";
+import { Notice } from "@/components/Notice";
+import { StatusPill } from "@/components/StatusPill";
+import { Block, Caption, Dense, Label, Mono, Section } from "@/components/Text";
+import { dateTime } from "@/components/when";
+import { useLayoutClass } from "@/layout/useLayoutClass";
+import { useColors } from "@/theme/ThemeProvider";
+import { space } from "@/theme/tokens";
+import type { ConstraintByNumberQuery } from "~graphql/generated/graphql";
+import { familyOf, METHOD_TAGS } from "~shared/methods/vocabulary";
+import { asUsed, type AsUsed } from "~shared/statement/asUsed";
+import type { ConstraintFields, FieldName } from "~shared/statement/fields";
+import { notationAsPrinted, notationAsUsed, recordTitle } from "~shared/statement/notation";
+import { conditionWord, FIELD_NAMES, fieldText, levelPhrase } from "~shared/statement/words";
+
+type RecordData = NonNullable<ConstraintByNumberQuery["constraint"]>;
+
+/** One record whole: as printed beside as used, provenance, data, relations, revisions. */
+export function RecordView({ record }: { record: RecordData }) {
+  const [citing, setCiting] = useState(false);
+  const layout = useLayoutClass();
+  const columns = layout !== "compact";
+  const { fields, citation } = record;
+  const used = asUsed(fields);
+  const family = familyOf(fields.methodTags);
+  return (
+    <View style={styles.all}>
+      <View style={styles.head}>
+        <View style={styles.line}>
+          <Mono style={styles.number}>{record.quotable}</Mono>
+          <StatusPill state={record.state} />
+          <Caption muted>
+            revision {record.ordinal}, approved {dateTime(record.approvedAt)}
+          </Caption>
+        </View>
+        <View style={styles.titleLine}>
+          {family ? <Marker family={family} hollow={fields.kind !== "twoSided"} size={22} /> : null}
+          <View style={styles.grow}>
+            <Section level={2} style={styles.title}>
+              {recordTitle(fields)}
+            </Section>
+            <CitationLine citation={citation} />
+          </View>
+        </View>
+        <View style={styles.line}>
+          <Button
+            label="Add to a table"
+            kind="filled"
+            icon="table-plus"
+            href={`/tables/new?with=${record.number}`}
+          />
+          <Button label="Cite" icon="format-quote-close" onPress={() => setCiting(true)} />
+        </View>
+      </View>
+      <Card flush>
+        <View style={columns ? styles.parts : undefined}>
+          <AsPrinted fields={fields} />
+          <Rule upright={columns} />
+          <UsedPart used={used} />
+          <Rule upright={columns} />
+          <View style={styles.part}>
+            <Block>Likelihood</Block>
+            <StatementCurve fields={fields} />
+          </View>
+        </View>
+      </Card>
+      <Cautions record={record} />
+      <View style={columns ? styles.columns : styles.stack}>
+        <View style={styles.column}>
+          <Block>Provenance</Block>
+          <Provenance record={record} />
+          {citation.doi ? (
+            <Button
+              label={`doi ${citation.doi}`}
+              kind="text"
+              icon="open-in-new"
+              href={`https://doi.org/${citation.doi}`}
+            />
+          ) : null}
+          {citation.arxiv ? (
+            <Button
+              label={`arXiv ${citation.arxiv}`}
+              kind="text"
+              icon="open-in-new"
+              href={`https://arxiv.org/abs/${citation.arxiv}`}
+            />
+          ) : null}
+        </View>
+        <View style={styles.column}>
+          <DataUsed record={record} />
+          <Relations record={record} />
+        </View>
+        <View style={styles.column}>
+          <Revisions record={record} />
+        </View>
+      </View>
+      <CiteSheet
+        visible={citing}
+        onClose={() => setCiting(false)}
+        quotable={record.quotable}
+        citation={citation}
+      />
+    </View>
+  );
+}
+
+function Rule({ upright }: { upright: boolean }) {
+  const colors = useColors();
+  return upright ? <View style={{ width: 1, backgroundColor: colors.hairline }} /> : <Divider />;
+}
+
+function AsPrinted({ fields }: { fields: ConstraintFields }) {
+  const colors = useColors();
+  const words = [
+    levelPhrase(fields.level, fields.levelPercent),
+    fields.kind === "twoSided" ? fieldText("estimator", fields).toLowerCase() : "",
+    fields.quantity === "neutralFraction" && fields.weighting
+      ? fields.weighting === "unknown"
+        ? "weighting unknown"
+        : `${fields.weighting}-weighted`
+      : "",
+  ].filter(Boolean);
+  return (
+    <View style={styles.part}>
+      <Block>As printed</Block>
+      <NotationText notation={notationAsPrinted(fields)} size="stated" tail={false} />
+      <Dense>{words.join(", ")}</Dense>
+      {fields.printedText ? (
+        <View style={[styles.quote, { borderColor: colors.hairline }]}>
+          <Dense muted>“{fields.printedText}”</Dense>
+        </View>
+      ) : null}
+    </View>
+  );
+}
+
+function UsedPart({ used }: { used: AsUsed | null }) {
+  return (
+    <View style={styles.part}>
+      <View style={styles.line}>
+        <Block>As used</Block>
+        {used?.derived ? <Caption muted>derived</Caption> : null}
+      </View>
+      {used === null ? (
+        <Dense>Not used by a likelihood: the statement has no number to use.</Dense>
+      ) : (
+        <>
+          <NotationText notation={notationAsUsed(used)} size="stated" />
+          {used.steps.length === 0 ? (
+            <Dense muted>Taken as it is printed.</Dense>
+          ) : (
+            <ol style={{ margin: 0, paddingLeft: 20 }}>
+              {used.steps.map(({ code, text }) => (
+                <li key={code} style={{ paddingBottom: 4, fontSize: 14 }}>
+                  <Dense muted>{text}</Dense>
+                </li>
+              ))}
+            </ol>
+          )}
+        </>
+      )}
+    </View>
+  );
+}
+
+function Cautions({ record }: { record: RecordData }) {
+  const { fields, sharesDataWith, alternatives } = record;
+  const others = alternatives.filter(({ number }) => number !== record.number);
+  const systematic = METHOD_TAGS.filter(({ tag }) => fields.methodTags.includes(tag)).map(
+    ({ caution }) => caution,
+  );
+  const lines = [
+    `Model-dependent. ${systematic.join(" ")}`.trim(),
+    sharesDataWith.length > 0
+      ? `Shares data with ${sharesDataWith.length === 1 ? "another record" : `${sharesDataWith.length} other records`}: a table should use one.`
+      : "",
+    fields.dataKnown === false ? "The paper does not name its data: unknown is not none." : "",
+    others.length > 0
+      ? "One of several answers of this paper to the same question: never multiply them."
+      : "",
+    fields.level === "notStated" ? "The paper states no level: a table has to choose one." : "",
+    fields.conditionedOn.length > 0
+      ? `Conditioned on ${fields.conditionedOn.map(conditionWord).join(", ")}: don't combine it with the same data again.`
+      : "",
+    fields.weighting === "mass" ? "Mass-weighted: not converted to a volume average." : "",
+    fields.quantity === "opticalDepth" || fields.quantity === "opticalDepthRange"
+      ? `An optical depth comes from a history family, with helium and weighting assumed${fields.historyAssumed ? ` (here: ${fields.historyAssumed})` : ""}.`
+      : "",
+    fields.versionRead === "preprint" ? "Read from a preprint." : "",
+    fields.readOffFigure
+      ? `Read off a figure${fields.digitizingError ? `, digitizing error ${fields.digitizingError}` : ""}.`
+      : "",
+  ].filter(Boolean);
+  return (
+    <Notice grade="caution">
+      {lines.map((line) => (
+        <Dense key={line}>{line}</Dense>
+      ))}
+    </Notice>
+  );
+}
+
+const PROVENANCE: readonly FieldName[] = [
+  "versionRead",
+  "preprintVersion",
+  "place",
+  "page",
+  "zRole",
+  "estimator",
+  "priorForm",
+  "priorVariable",
+  "priorRange",
+  "modelTags",
+  "cosmicVariance",
+  "conditionedOn",
+  "historyAssumed",
+  "furtherIntervals",
+  "readOffFigure",
+  "digitizingError",
+  "remark",
+];
+
+function Provenance({ record }: { record: RecordData }) {
+  const stated = PROVENANCE.filter((name) => {
+    const value = record.fields[name];
+    return Array.isArray(value) ? value.length > 0 : value !== null && value !== "";
+  });
+  return (
+    <DefinitionList
+      items={[
+        ...stated.map((name) => ({
+          term: FIELD_NAMES[name],
+          value: fieldText(name, record.fields),
+        })),
+        { term: "Submitted by", value: record.submittedBy },
+        { term: "Second reading", value: record.readBy },
+        { term: "Citation key", value: record.citation.key },
+      ]}
+    />
+  );
+}
+
+function DataUsed({ record }: { record: RecordData }) {
+  const { dataUsed, dataKnown } = record.fields;
+  return (
+    <View style={styles.stackSmall}>
+      <Block>Data used</Block>
+      {dataUsed.map((name) => (
+        <Dense key={name}>{name}</Dense>
+      ))}
+      {dataUsed.length === 0 ? (
+        <Dense muted>{dataKnown === false ? "The paper does not say." : "None named."}</Dense>
+      ) : null}
+    </View>
+  );
+}
+
+function Relations({ record }: { record: RecordData }) {
+  const links = [
+    ...record.sharesDataWith.map((link) => ({ ...link, word: `Shares ${link.via}` })),
+    ...record.alternatives
+      .filter(({ number }) => number !== record.number)
+      .map((link) => ({ ...link, word: "Alternative answer" })),
+  ];
+  return (
+    <View style={styles.stackSmall}>
+      <Block>Relations</Block>
+      {links.length === 0 ? <Dense muted>None on record.</Dense> : null}
+      {links.map(({ number, shortName, word }) => (
+        <View key={`${word}-${number}`} style={styles.relation}>
+          <View style={styles.grow}>
+            <Caption muted>{word}</Caption>
+            <Dense>{shortName}</Dense>
+          </View>
+          <Button label={number} kind="text" href={`/constraints/${number}`} />
+        </View>
+      ))}
+    </View>
+  );
+}
+
+function Revisions({ record }: { record: RecordData }) {
+  return (
+    <View style={styles.stackSmall}>
+      <Block>Revisions</Block>
+      {[...record.revisions]
+        .sort((a, b) => b.ordinal - a.ordinal)
+        .map(({ ordinal, state, at, changes }) => (
+          <View key={ordinal} style={styles.revision}>
+            <View style={styles.line}>
+              <Label>Revision {ordinal}</Label>
+              <Caption muted>{dateTime(at)}</Caption>
+              <StatusPill state={state} />
+            </View>
+            {changes.map(({ field, before, after }) => (
+              <Dense key={field}>
+                {FIELD_NAMES[field as FieldName] ?? field}: was {before || "open"}, now{" "}
+                {after || "open"}
+              </Dense>
+            ))}
+          </View>
+        ))}
+    </View>
+  );
+}
+
+const styles = StyleSheet.create({
+  all: { gap: space.l },
+  head: { gap: space.s },
+  line: { flexDirection: "row", flexWrap: "wrap", alignItems: "center", gap: space.s },
+  titleLine: { flexDirection: "row", alignItems: "flex-start", gap: space.s },
+  title: { fontSize: 24, lineHeight: 32 },
+  number: { fontSize: 15 },
+  grow: { flex: 1, minWidth: 0 },
+  parts: { flexDirection: "row" },
+  part: { flex: 1, minWidth: 0, padding: space.m, gap: space.xs },
+  quote: { borderLeftWidth: 2, paddingLeft: space.s, marginTop: space.xxs },
+  columns: { flexDirection: "row", gap: space.xl },
+  stack: { gap: space.l },
+  column: { flex: 1, minWidth: 0, gap: space.s },
+  stackSmall: { gap: space.xs },
+  relation: { flexDirection: "row", alignItems: "center", gap: space.s },
+  revision: { gap: space.xxs, paddingBottom: space.xs },
+});

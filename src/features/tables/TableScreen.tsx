@@ -1,0 +1,175 @@
+import { useMutation, useQuery } from "@apollo/client/react";
+import { useLocalSearchParams, useRouter } from "expo-router";
+import { useState } from "react";
+import { StyleSheet, View } from "react-native";
+
+import { userMessage } from "@/apollo/userMessage";
+import { Button } from "@/components/Button";
+import { Card } from "@/components/Card";
+import { DefinitionList } from "@/components/DefinitionList";
+import { Empty } from "@/components/feedback/Empty";
+import { Failed } from "@/components/feedback/Failed";
+import { Loading } from "@/components/feedback/Loading";
+import { Notice } from "@/components/Notice";
+import { Confirm } from "@/components/Sheet";
+import { Block, Dense, Mono, Section } from "@/components/Text";
+import { dateTime } from "@/components/when";
+import { Screen } from "@/layout/Screen";
+import { useLayoutClass } from "@/layout/useLayoutClass";
+import { space } from "@/theme/tokens";
+import {
+  DeleteTableDocument,
+  TableBySlugDocument,
+  TableListDocument,
+  type TableBySlugQuery,
+} from "~graphql/generated/graphql";
+
+import { TableRows } from "./TableRows";
+
+type Table = NonNullable<TableBySlugQuery["fittingTable"]>;
+
+/** A saved fitting table: rows in, rows out with the reason, digest, files. */
+export function TableScreen() {
+  const { slug } = useLocalSearchParams<{ slug: string }>();
+  const { data, error, loading, refetch } = useQuery(TableBySlugDocument, { variables: { slug } });
+  const table = data?.fittingTable;
+  return (
+    <Screen
+      title={table?.name ?? "Fitting table"}
+      subtitle={table ? `${table.rowsIn} rows in, ${table.rowsOut} out` : undefined}
+      back="/tables"
+    >
+      {table ? (
+        <TableView table={table} />
+      ) : error ? (
+        <Failed error={error} onRetry={() => void refetch()} />
+      ) : loading ? (
+        <Loading label="Fetching the table" rows={6} />
+      ) : (
+        <Empty
+          icon="table"
+          title="No table at this address"
+          text="Its owner may have deleted it, or the address is cut short."
+          action={<Button label="All tables" kind="tonal" href="/tables" />}
+        />
+      )}
+    </Screen>
+  );
+}
+
+function TableView({ table }: { table: Table }) {
+  const wide = useLayoutClass() === "wide";
+  const out = table.rows.filter(({ included }) => !included);
+  const address = `/api/tables/${table.slug}`;
+  const origin = typeof window === "undefined" ? "" : window.location.origin;
+  return (
+    <View style={styles.all}>
+      <View style={wide ? styles.columns : styles.stack}>
+        <View style={wide ? styles.main : undefined}>
+          <Card>
+            <DefinitionList
+              items={[
+                { term: "Filter", value: table.filter },
+                { term: "Saved", value: `${dateTime(table.createdAt)} by ${table.owner}` },
+                {
+                  term: "Registry as of",
+                  value: `event ${table.lastEvent.sequence}, ${dateTime(table.lastEvent.at)}`,
+                },
+                { term: "Digest", value: <Mono style={styles.digest}>{table.digest}</Mono> },
+              ]}
+            />
+          </Card>
+        </View>
+        <View style={[wide ? styles.side : undefined, styles.stackSmall]}>
+          <Section>Download</Section>
+          <View style={styles.buttons}>
+            <Button label="CSV" kind="filled" icon="tray-arrow-down" href={`${address}.csv`} />
+            <Button label="JSON" icon="tray-arrow-down" href={`${address}.json`} />
+            <Button label="BibTeX" icon="tray-arrow-down" href={`${address}.bib`} />
+          </View>
+          <Dense muted>Anyone can fetch it, without an account:</Dense>
+          <Mono style={styles.curl}>{`curl -O ${origin}${address}.csv`}</Mono>
+        </View>
+      </View>
+      <Notice grade="caution">
+        <Dense>
+          The choices are this table&apos;s, not the authors&apos;; cite the originals. Rows are
+          taken as independent.
+        </Dense>
+      </Notice>
+      <View style={styles.stackSmall}>
+        <Section>Rows</Section>
+        <TableRows constraints={table.constraints} />
+      </View>
+      <View style={styles.stackSmall}>
+        <Block level={2}>Left out</Block>
+        {out.length === 0 ? (
+          <Dense muted>Every row of the filter is in.</Dense>
+        ) : (
+          out.map(({ number, reason, proposed }) => (
+            <Dense key={number}>
+              <Mono>{number}</Mono>: {reason}
+              {proposed ? "" : " (chosen by hand)"}
+            </Dense>
+          ))
+        )}
+      </View>
+      <View style={styles.buttons}>
+        <Button label="Build another from this filter" icon="table-large-plus" href="/tables/new" />
+        {table.ownedByMe ? <Delete table={table} /> : null}
+      </View>
+    </View>
+  );
+}
+
+function Delete({ table }: { table: Table }) {
+  const router = useRouter();
+  const [asking, setAsking] = useState(false);
+  const [failure, setFailure] = useState<string | null>(null);
+  const [remove, { loading }] = useMutation(DeleteTableDocument, {
+    refetchQueries: [TableListDocument],
+  });
+  async function confirm() {
+    setAsking(false);
+    try {
+      const { data } = await remove({ variables: { slug: table.slug } });
+      const result = data?.deleteTable;
+      if (result?.__typename === "Done") router.replace("/tables");
+      else setFailure(result?.message ?? "The table was not deleted. Try again.");
+    } catch (error) {
+      setFailure(userMessage(error));
+    }
+  }
+  return (
+    <>
+      <Button
+        label="Delete"
+        kind="return"
+        icon="delete-outline"
+        busy={loading}
+        onPress={() => setAsking(true)}
+      />
+      {failure ? <Notice grade="error">{failure}</Notice> : null}
+      <Confirm
+        visible={asking}
+        title="Delete this table?"
+        text="Its address stops answering, also for those who cited it. This can't be undone."
+        confirmLabel="Delete the table"
+        onConfirm={() => void confirm()}
+        onCancel={() => setAsking(false)}
+      />
+    </>
+  );
+}
+
+const styles = StyleSheet.create({
+  all: { gap: space.l },
+  columns: { flexDirection: "row", gap: space.l, alignItems: "flex-start" },
+  stack: { gap: space.l },
+  stackSmall: { gap: space.s },
+  main: { flex: 1, minWidth: 0 },
+  side: { width: 400 },
+  buttons: { flexDirection: "row", flexWrap: "wrap", gap: space.s },
+  digest: { fontSize: 13, lineHeight: 20 },
+  curl: { fontSize: 13, lineHeight: 20 },
+});
