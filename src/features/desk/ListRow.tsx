@@ -1,0 +1,40 @@
+import type { ReactNode } from "react";
+import { View } from "react-native";
+
+import Icon from "@/components/Icon";
+import { Press } from "@/components/Press";
+import { useColors } from "@/theme/ThemeProvider";
+
+/** A row of a desk list that leads somewhere. */
+export function ListRow({
+  href,
+  label,
+  first,
+  children,
+}: {
+  href: string;
+  /** What the link is called when it is heard. */
+  label: string;
+  first: boolean;
+  children: ReactNode;
+}) {
+  const colors = useColors();
+  return (
+    <View role="listitem" style={{ borderTopWidth: first ? 0 : 1, borderColor: colors.hairline }}>
+      <Press href={href} label={label} style={{ minHeight: 64, justifyContent: "center" }}>
+        <View
+          style={{
+            flexDirection: "row",
+            alignItems: "center",
+            gap: 12,
+            paddingHorizontal: 16,
+            paddingVertical: 12,
+          }}
+        >
+          <View style={{ flex: 1, minWidth: 0, gap: 4 }}>{children}</View>
+          <Icon name="chevron-right" color={colors.muted} />
+        </View>
+      </Press>
+    </View>
+  );
+}

@@ -1,0 +1,31 @@
+import { View } from "react-native";
+
+import { useSession } from "@/apollo/useSession";
+import { Card } from "@/components/Card";
+import { Dense, Section } from "@/components/Text";
+
+import { ListRow } from "./ListRow";
+
+/** What a maintainer keeps. */
+export function MaintainerDesk() {
+  const { demonstration } = useSession();
+  return (
+    <View style={{ gap: 16 }}>
+      <Section>Maintaining</Section>
+      <Card flush>
+        <View role="list" aria-label="Maintaining">
+          <ListRow href="/desk/people" label="People" first>
+            <Dense style={{ fontWeight: "600" }}>People</Dense>
+            <Dense muted>Find a person, grant and revoke roles</Dense>
+          </ListRow>
+          {demonstration ? (
+            <ListRow href="/desk/mail" label="Caught mail" first={false}>
+              <Dense style={{ fontWeight: "600" }}>Caught mail</Dense>
+              <Dense muted>Mails the demonstration would have sent</Dense>
+            </ListRow>
+          ) : null}
+        </View>
+      </Card>
+    </View>
+  );
+}
