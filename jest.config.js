@@ -21,6 +21,13 @@ module.exports = {
       testMatch: ["<rootDir>/tests/client/**/*.test.tsx"],
       moduleNameMapper: alias,
     },
-    { ...node, displayName: "e2e", testMatch: ["<rootDir>/tests/e2e/**/*.test.ts"] },
+    { ...node, displayName: "ops", testMatch: ["<rootDir>/tests/ops/**/*.test.ts"] },
+    {
+      ...node,
+      displayName: "e2e",
+      testMatch: ["<rootDir>/tests/e2e/**/*.test.ts"],
+      globalSetup: "<rootDir>/tests/e2e/support/prepare.js",
+      setupFilesAfterEnv: ["<rootDir>/tests/e2e/support/patience.ts"],
+    },
   ],
 };

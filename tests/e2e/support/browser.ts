@@ -1,0 +1,167 @@
+import { mkdirSync, readFileSync } from "node:fs";
+import os from "node:os";
+import path from "node:path";
+
+import { chromium, type Browser, type Page } from "playwright-core";
+
+import { findProgram } from "../../../scripts/lib/install";
+
+import { DEMONSTRATION_PASSWORD, type Fogline } from "./fogline";
+
+export const SIZES = {
+  phone: { width: 390, height: 844 },
+  wide: { width: 1440, height: 900 },
+} as const;
+export type Size = keyof typeof SIZES;
+export const SIZE_NAMES = Object.keys(SIZES) as Size[];
+
+export const SCHEMES = ["light", "dark"] as const;
+export type Scheme = (typeof SCHEMES)[number];
+
+export async function openBrowser(): Promise<Browser> {
+  const executablePath = findProgram("chromium");
+  if (executablePath === null) throw new Error("Chromium is missing: run npm test -- e2e.");
+  return chromium.launch({
+    executablePath,
+    // As root, and in containers with little shared memory.
+    args: ["--no-sandbox", "--disable-gpu", "--disable-dev-shm-usage"],
+  });
+}
+
+/** A page in a context of its own: no cookie, no cache; what goes wrong in it is kept. */
+export interface WatchedPage {
+  page: Page;
+  /** Console errors, uncaught errors and refusals of the content security policy, in words. */
+  problems: string[];
+  close(): Promise<void>;
+}
+
+export async function openPage(
+  browser: Browser,
+  { url }: Fogline,
+  { size, scheme = "light" }: { size: Size; scheme?: Scheme },
+): Promise<WatchedPage> {
+  const context = await browser.newContext({
+    baseURL: url,
+    viewport: SIZES[size],
+    hasTouch: size === "phone",
+    colorScheme: scheme,
+    reducedMotion: "reduce",
+    locale: "en-GB",
+    timezoneId: "UTC",
+    acceptDownloads: true,
+  });
+  const problems: string[] = [];
+  await context.exposeBinding("reportPolicyViolation", (_source, text: string) => {
+    problems.push(`refused by the content security policy: ${text}`);
+  });
+  await context.addInitScript(() => {
+    document.addEventListener("securitypolicyviolation", (event) => {
+      const report = (window as unknown as { reportPolicyViolation(text: string): void })
+        .reportPolicyViolation;
+      report(`${event.violatedDirective} ${event.blockedURI}`);
+    });
+  });
+  const page = await context.newPage();
+  page.on("console", (message) => {
+    if (message.type() === "error") problems.push(`console: ${message.text()}`);
+  });
+  page.on("pageerror", (error) => problems.push(`uncaught: ${error.message}`));
+  return { page, problems, close: () => context.close() };
+}
+
+/** Signs the page's context in through the API, and leaves the page where it is. */
+export async function signIn(
+  page: Page,
+  email: string,
+  password = DEMONSTRATION_PASSWORD,
+): Promise<void> {
+  const response = await page.context().request.post("/graphql", {
+    data: {
+      query: `mutation SignIn($email: String!, $password: String!) {
+        signIn(email: $email, password: $password) { __typename ... on Refusal { message } }
+      }`,
+      variables: { email, password },
+    },
+  });
+  const body = await response.json();
+  if (body.data?.signIn?.__typename !== "Viewer")
+    throw new Error(`${email} could not sign in: ${JSON.stringify(body)}`);
+}
+
+const AXE = readFileSync(require.resolve("axe-core/axe.min.js"), "utf8");
+
+/** Serious and critical findings of axe, each as rule, element and reason. */
+export async function axeViolations(page: Page): Promise<string[]> {
+  await page.evaluate(AXE);
+  return page.evaluate(async () => {
+    const { axe } = window as unknown as { axe: typeof import("axe-core") };
+    const { violations } = await axe.run(document, { resultTypes: ["violations"] });
+    return violations
+      .filter(({ impact }) => impact === "serious" || impact === "critical")
+      .flatMap(({ id, nodes }) =>
+        nodes.map(({ target, failureSummary }) => `${id}: ${target.join(" ")}: ${failureSummary}`),
+      );
+  });
+}
+
+/** Elements that reach beyond the window, and texts that are cut off, in words. */
+export function layoutProblems(page: Page): Promise<string[]> {
+  return page.evaluate(() => {
+    const found: string[] = [];
+    const width = document.documentElement.clientWidth;
+    if (document.documentElement.scrollWidth > width)
+      found.push(`the page is ${document.documentElement.scrollWidth} wide in a window of ${width}`);
+    const describe = (element: Element): string => {
+      const name = element.getAttribute("aria-label") ?? element.textContent ?? "";
+      const role = element.getAttribute("role") ?? element.tagName.toLowerCase();
+      return `${role} "${name.trim().slice(0, 50)}"`;
+    };
+    const scrollsSideways = (element: Element | null): boolean => {
+      for (let at = element; at; at = at.parentElement) {
+        const { overflowX } = getComputedStyle(at);
+        if ((overflowX === "auto" || overflowX === "scroll") && at.scrollWidth > at.clientWidth)
+          return true;
+      }
+      return false;
+    };
+    for (const element of document.body.querySelectorAll("*")) {
+      if (element.closest("svg") !== null && element.tagName !== "svg") continue;
+      const box = element.getBoundingClientRect();
+      const style = getComputedStyle(element);
+      const hidden = style.visibility === "hidden" || style.opacity === "0";
+      // Text for screen readers only is clipped to a point on purpose.
+      if (hidden || box.width <= 1 || box.height <= 1) continue;
+      if ((box.right > width + 1 || box.left < -1) && !scrollsSideways(element.parentElement))
+        found.push(`${describe(element)} reaches from ${box.left} to ${box.right} of ${width}`);
+      const ownText = [...element.childNodes].some(
+        (node) => node.nodeType === Node.TEXT_NODE && node.textContent?.trim(),
+      );
+      const clips = style.overflowX === "hidden" || style.overflowX === "clip";
+      if (ownText && clips && element.scrollWidth > element.clientWidth + 1)
+        found.push(`${describe(element)} is cut: ${element.scrollWidth} in ${element.clientWidth}`);
+    }
+    return found;
+  });
+}
+
+/** Bytes over the network, compressed as sent, for everything a page loads until `ready` holds. */
+export async function transferredBytes(page: Page, load: () => Promise<unknown>): Promise<number> {
+  const session = await page.context().newCDPSession(page);
+  await session.send("Network.enable");
+  await session.send("Network.setCacheDisabled", { cacheDisabled: true });
+  let bytes = 0;
+  session.on("Network.loadingFinished", ({ encodedDataLength }) => (bytes += encodedDataLength));
+  await load();
+  await session.detach();
+  return bytes;
+}
+
+/** Saves what the page looks like for a person to judge; kept only if E2E_SCREENSHOTS names a folder. */
+export async function screenshot(page: Page, name: string): Promise<string> {
+  const folder = process.env.E2E_SCREENSHOTS ?? path.join(os.tmpdir(), "screenshots");
+  mkdirSync(folder, { recursive: true });
+  const file = path.join(folder, `${name}.png`);
+  await page.screenshot({ path: file, fullPage: true });
+  return file;
+}
