@@ -230,7 +230,9 @@ function convertFraction(
         text: "Printed as log10 of the neutral fraction: evaluated in log10, as printed.",
       });
     } else {
-      numbers = undoLog10(numbers);
+      const undone = undoLog10(numbers);
+      if (undone === null) return null;
+      numbers = undone;
       derived = true;
       steps.push({
         code: "log10Undone",
@@ -317,7 +319,8 @@ function divideNumbers(numbers: Numbers, divisor: number): Numbers {
   };
 }
 
-function undoLog10(numbers: Numbers): Numbers {
+/** Null when a power overflows: no fraction has such a logarithm. */
+function undoLog10(numbers: Numbers): Numbers | null {
   const power = (text: string | null) => (text === null ? null : 10 ** Number(text));
   const text = (value: number | null) => (value === null ? null : computedText(value));
   const value = power(numbers.value);
@@ -330,11 +333,14 @@ function undoLog10(numbers: Numbers): Numbers {
       ? null
       : 10 ** (Number(numbers.value) - Number(numbers.minus));
   const base = power(numbers.limitBase);
+  const ends = [value, top, base, power(numbers.low), power(numbers.high)];
+  if (ends.some((end) => end === Infinity)) return null;
   const sign = numbers.kind === "upperLimit" ? 1 : -1;
   const beyond =
     numbers.limitBase === null || numbers.limitSigma === null
       ? null
       : 10 ** (Number(numbers.limitBase) + sign * Number(numbers.limitSigma));
+  if (beyond === Infinity) return null;
   return {
     kind: numbers.kind,
     value: text(value),
