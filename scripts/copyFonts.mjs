@@ -62,4 +62,10 @@ await writeFile(
   path.join(root, "src/theme/fonts.css"),
   `/* Written by scripts/copyFonts.mjs; do not edit. */\n${rules.join("\n")}\n`,
 );
+await writeFile(
+  path.join(root, "src/theme/fontFolder.ts"),
+  `/** Written by scripts/copyFonts.mjs; do not edit. Where the font files are served from. */
+export const fontFolder = "/${folder}";
+`,
+);
 console.log(`${rules.length} faces in public/${folder}`);
