@@ -4,6 +4,7 @@ import {
   GraphQLError,
   isListType,
   isNonNullType,
+  type DocumentNode,
   type GraphQLOutputType,
   type GraphQLSchema,
 } from "graphql";
@@ -56,18 +57,35 @@ const byRows: ComplexityEstimator = ({ args, field, childComplexity }) => {
   return 1 + childComplexity * (isList(field.type) ? LIST_ROWS : 1);
 };
 
+function costOf(
+  schema: GraphQLSchema,
+  query: DocumentNode,
+  operationName: string | null,
+  variables: Record<string, unknown> | undefined,
+): number {
+  try {
+    return getComplexity({
+      schema,
+      query,
+      ...(operationName ? { operationName } : {}),
+      variables: variables ?? {},
+      estimators: [fieldExtensionsEstimator(), byRows],
+    });
+  } catch (error) {
+    // Variables are checked here for the first time, and the fault is the caller's.
+    if (!(error instanceof GraphQLError)) throw error;
+    throw new GraphQLError(error.message, {
+      extensions: { code: "BAD_USER_INPUT", http: { status: 400 } },
+    });
+  }
+}
+
 /** Refuses a query that asks for more than a screen or a pipeline ever needs. */
 export function costGuard(schema: GraphQLSchema): ApolloServerPlugin<RequestContext> {
   return {
     requestDidStart: async () => ({
       didResolveOperation: async ({ request, document, operationName }) => {
-        const cost = getComplexity({
-          schema,
-          query: document,
-          ...(operationName ? { operationName } : {}),
-          variables: request.variables ?? {},
-          estimators: [fieldExtensionsEstimator(), byRows],
-        });
+        const cost = costOf(schema, document, operationName, request.variables);
         if (cost > MAX_COST) {
           throw new GraphQLError(
             `This asks for too much at once: cost ${cost}, allowed ${MAX_COST}.`,
