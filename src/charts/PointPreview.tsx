@@ -6,7 +6,7 @@ import { planePoint } from "~shared/chart/points";
 import { linearScale } from "~shared/chart/scales";
 import { linearTicks } from "~shared/chart/ticks";
 import { tanhHistory } from "~shared/history/tanh";
-import { familyOf } from "~shared/methods/families";
+import { familyOf } from "~shared/methods/vocabulary";
 import { asUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields } from "~shared/statement/fields";
 import { Caption } from "@/components/Text";

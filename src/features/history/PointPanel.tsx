@@ -15,7 +15,7 @@ import { useTheme } from "@/theme/ThemeProvider";
 import { space } from "@/theme/tokens";
 import { HistoryPointDocument } from "~graphql/generated/graphql";
 import { type RowLikelihood, rowLikelihood } from "~shared/likelihood";
-import { findTag } from "~shared/methods/families";
+import { findTag } from "~shared/methods/vocabulary";
 import { notationAsPrinted, notationAsUsed, recordTitle } from "~shared/statement/notation";
 import { ESTIMATOR_WORDS, VERSION_WORDS, WEIGHTING_WORDS } from "~shared/statement/words";
 import type { HistoryRow } from "./rows";
