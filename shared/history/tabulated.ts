@@ -20,6 +20,13 @@ const LEAK_BELOW = 0.99;
  */
 export function tabulatedHistory(z: readonly number[], x: readonly number[]): History {
   const n = z.length;
+  if (n < 2 || x.length !== n) {
+    throw new DomainError(
+      "table",
+      `${n} and ${x.length} values`,
+      "two equally long columns of 2 or more",
+    );
+  }
   const zs = Float64Array.from(z);
   const xs = Float64Array.from(x);
   for (let i = 0; i < n; i++) {

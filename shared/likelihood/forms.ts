@@ -84,9 +84,9 @@ function form(parts: Omit<Form, "minus2LnL" | "warnings"> & { warnings?: FormWar
   };
 }
 
-/** A number as a formula shows it: six significant digits, no trailing zeros. */
+/** A number as a formula shows it: four significant digits, no trailing zeros. */
 function shown(value: number): string {
-  return String(Number(value.toPrecision(6))).replace("-", "−");
+  return String(Number(value.toPrecision(4))).replace("-", "−");
 }
 
 /**

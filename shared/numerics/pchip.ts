@@ -14,7 +14,11 @@ import { DomainError } from "~shared/errors/DomainError";
 export function pchipSlopes(x: ArrayLike<number>, y: ArrayLike<number>): Float64Array {
   const n = x.length;
   if (n < 2 || y.length !== n) {
-    throw new DomainError("table", `${n} and ${y.length} values`, "two equally long columns of 2 or more");
+    throw new DomainError(
+      "table",
+      `${n} and ${y.length} values`,
+      "two equally long columns of 2 or more",
+    );
   }
   const slopes = new Float64Array(n);
   const h = new Float64Array(n - 1);

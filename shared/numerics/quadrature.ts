@@ -90,7 +90,10 @@ export function integrateAdaptive(
   tolerance = 1e-12,
 ): number {
   const whole = integratePanels(f, a, b, 4, 10);
-  const scale = Math.max(Math.abs(whole), integratePanels((t) => Math.abs(f(t)), a, b, 2, 10));
+  const scale = Math.max(
+    Math.abs(whole),
+    integratePanels((t) => Math.abs(f(t)), a, b, 2, 10),
+  );
   return bisect(f, a, b, integratePanels(f, a, b, 1, 10), tolerance * scale, 0);
 }
 

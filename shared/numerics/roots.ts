@@ -23,7 +23,8 @@ export function brentRoot(
   let best = b;
   let fPrevious = f(previous);
   let fBest = f(best);
-  if (!(fPrevious * fBest <= 0)) throw new DomainError("bracket", `[${a}, ${b}]`, "a change of sign");
+  if (!(fPrevious * fBest <= 0))
+    throw new DomainError("bracket", `[${a}, ${b}]`, "a change of sign");
   let opposite = previous;
   let fOpposite = fPrevious;
   let step = best - previous;

@@ -122,15 +122,18 @@ describe("optical depths that others printed", () => {
   });
 
   const columns = Object.entries(published.b_planck2018_VI_table2_from_memory.columns);
-  it.each(columns)("2018 VI table 2, %s (from memory): the offsets are as computed elsewhere", (_, c) => {
-    const cosmology = background({
-      h: c.published.H0 / 100,
-      omegaBh2: c.published.ombh2,
-      omegaCh2: c.published.omch2,
-    });
-    const tau = tanhHistory({ zRe: c.published.z_re }).opticalDepth(cosmology);
-    expectRelative(tau, c.computed.tau_tanh);
-    expect(Math.abs(tau - c.published.tau)).toBeLessThan(0.0005);
-    expectRelative(cosmology.age(0), c.computed.age_Gyr);
-  });
+  it.each(columns)(
+    "2018 VI table 2, %s (from memory): the offsets are as computed elsewhere",
+    (_, c) => {
+      const cosmology = background({
+        h: c.published.H0 / 100,
+        omegaBh2: c.published.ombh2,
+        omegaCh2: c.published.omch2,
+      });
+      const tau = tanhHistory({ zRe: c.published.z_re }).opticalDepth(cosmology);
+      expectRelative(tau, c.computed.tau_tanh);
+      expect(Math.abs(tau - c.published.tau)).toBeLessThan(0.0005);
+      expectRelative(cosmology.age(0), c.computed.age_Gyr);
+    },
+  );
 });
