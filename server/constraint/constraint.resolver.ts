@@ -26,10 +26,10 @@ export class ConstraintResolver {
   async constraints(
     @Ctx() ctx: RequestContext,
     @Arg("filter", () => ConstraintFilterInput, { nullable: true })
-    filter: ConstraintFilterInput | null,
-    @Arg("sort", () => ConstraintSortEnum, { nullable: true }) sort: ConstraintSort | null,
-    @Arg("offset", () => Int, { nullable: true }) offset: number | null,
-    @Arg("limit", () => Int, { nullable: true }) limit: number | null,
+    filter: ConstraintFilterInput | null = null,
+    @Arg("sort", () => ConstraintSortEnum, { nullable: true }) sort: ConstraintSort | null = null,
+    @Arg("offset", () => Int, { nullable: true }) offset: number | null = null,
+    @Arg("limit", () => Int, { nullable: true }) limit: number | null = null,
   ): Promise<ConstraintPage> {
     const wanted = canonicalFilter(filter ?? {});
     const from = Math.max(0, offset ?? 0);

@@ -91,8 +91,8 @@ export class SubmissionResolver {
   async checkFields(
     @Ctx() ctx: RequestContext,
     @Arg("fields", () => ConstraintFieldsInput) fields: ConstraintFieldsInput,
-    @Arg("citationId", () => ID, { nullable: true }) citationId: string | null,
-    @Arg("submissionId", () => ID, { nullable: true }) submissionId: string | null,
+    @Arg("citationId", () => ID, { nullable: true }) citationId: string | null = null,
+    @Arg("submissionId", () => ID, { nullable: true }) submissionId: string | null = null,
   ): Promise<FindingType[]> {
     const parsed = fieldsFromInput(fields);
     if ("tooLong" in parsed) {
@@ -120,8 +120,8 @@ export class SubmissionResolver {
   })
   async startDraft(
     @Ctx() ctx: RequestContext,
-    @Arg("citationId", () => ID, { nullable: true }) citationId: string | null,
-    @Arg("fromSubmissionId", () => ID, { nullable: true }) submissionId: string | null,
+    @Arg("citationId", () => ID, { nullable: true }) citationId: string | null = null,
+    @Arg("fromSubmissionId", () => ID, { nullable: true }) submissionId: string | null = null,
   ): Promise<typeof SubmissionResult> {
     return submissionOutcome(await drafts.startDraft(acting(ctx), { citationId, submissionId }));
   }

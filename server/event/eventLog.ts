@@ -64,10 +64,13 @@ export async function appendEvent(manager: EntityManager, entry: EventEntry): Pr
   if (!manager.queryRunner?.isTransactionActive) {
     throw new Error(`event ${entry.kind} appended outside a transaction`);
   }
-  await manager.query("INSERT IGNORE INTO event_head (id, sequence, digest) VALUES (?, 0, ?)", [
-    HEAD,
-    CHAIN_START,
-  ]);
+  // An update of nothing, so that the first lock is exclusive: INSERT IGNORE would take a shared
+  // one first, and two writers who then want more wait for each other.
+  await manager.query(
+    `INSERT INTO event_head (id, sequence, digest) VALUES (?, 0, ?)
+       ON DUPLICATE KEY UPDATE sequence = sequence`,
+    [HEAD, CHAIN_START],
+  );
   const head = await manager
     .createQueryBuilder(EventHead, "head")
     .setLock("pessimistic_write")

@@ -96,7 +96,7 @@ export class ReviewResolver {
     @Ctx() ctx: RequestContext,
     @Arg("id", () => ID) id: string,
     @Arg("version", () => Int) version: number,
-    @Arg("note", () => String, { nullable: true }) note: string | null,
+    @Arg("note", () => String, { nullable: true }) note: string | null = null,
   ): Promise<typeof DoneResult> {
     return reviews.approve(acting(ctx), id, version, note);
   }
@@ -108,7 +108,7 @@ export class ReviewResolver {
     @Arg("id", () => ID) id: string,
     @Arg("version", () => Int) version: number,
     @Arg("comments", () => [ReturnComment]) comments: ReturnComment[],
-    @Arg("note", () => String, { nullable: true }) note: string | null,
+    @Arg("note", () => String, { nullable: true }) note: string | null = null,
   ): Promise<typeof DoneResult> {
     return reviews.returnSubmission(acting(ctx), id, version, comments, note);
   }
