@@ -2,12 +2,7 @@ import { arxivVersion, normalizeArxiv } from "~shared/identifiers/arxiv";
 import { normalizeBibcode } from "~shared/identifiers/bibcode";
 import { normalizeDoi } from "~shared/identifiers/doi";
 
-import {
-  MAX_TEXT_BYTES,
-  readBibtex,
-  type BrokenEntry,
-  type RawEntry,
-} from "./bibtexReader";
+import { MAX_TEXT_BYTES, readBibtex, type BrokenEntry, type RawEntry } from "./bibtexReader";
 import { cslOf, type Csl, type CslName } from "./citationJs";
 import { journalName } from "./journals";
 import { shortName } from "./names";
@@ -272,11 +267,15 @@ type Identifiers = Pick<ParsedEntry, "doi" | "arxiv" | "arxivVersion" | "bibcode
 
 function identifiers(raw: RawEntry, remarks: string[]): Identifiers {
   const get = (name: string) =>
-    (raw.fields.get(name)?.value ?? "").replace(/\\([_&%#$])/g, "$1").replace(/[{}]/g, "").trim();
+    (raw.fields.get(name)?.value ?? "")
+      .replace(/\\([_&%#$])/g, "$1")
+      .replace(/[{}]/g, "")
+      .trim();
 
   const doiGiven = get("doi");
   let doi = doiGiven ? normalizeDoi(doiGiven) : null;
-  if (doiGiven && doi === null) remarks.push(`“${clip(doiGiven)}” is no DOI; it stays in the text.`);
+  if (doiGiven && doi === null)
+    remarks.push(`“${clip(doiGiven)}” is no DOI; it stays in the text.`);
   for (const name of ["url", "ee", "adsurl", "note", "howpublished"]) {
     const inText = /\b(?:doi\.org\/|doi:\s*)(10\.\d{4,9}\/[^\s,;]+)/i.exec(get(name))?.[1];
     if (doi === null && inText) doi = normalizeDoi(inText.replace(/[.)\]]+$/, ""));

@@ -334,9 +334,7 @@ class Reader {
       return `\\${lower}`;
     }
     edit(`{${word}}`);
-    remarks.push(
-      `The value of “${name}”, ${word}, stands without braces; it was taken as it is.`,
-    );
+    remarks.push(`The value of “${name}”, ${word}, stands without braces; it was taken as it is.`);
     return word;
   }
 

@@ -32,7 +32,13 @@ export class Citation {
   csl!: string;
 
   @Index("citation_doi", { unique: true })
-  @Column({ type: "varchar", length: 255, nullable: true, charset: "utf8mb4", collation: "utf8mb4_bin" })
+  @Column({
+    type: "varchar",
+    length: 255,
+    nullable: true,
+    charset: "utf8mb4",
+    collation: "utf8mb4_bin",
+  })
   doi!: string | null;
 
   @Index("citation_arxiv", { unique: true })

@@ -3,7 +3,13 @@ import type { EntityManager } from "typeorm";
 import { change, type Acting } from "~server/event/acting";
 import { refuse, type Refusal } from "~server/common/outcomes";
 
-import { entryWithKey, isProblem, parseBibtex, type BibtexResult, type ParsedEntry } from "./bibtex";
+import {
+  entryWithKey,
+  isProblem,
+  parseBibtex,
+  type BibtexResult,
+  type ParsedEntry,
+} from "./bibtex";
 import { Citation } from "./citation.entity";
 import {
   CitationPreview,
@@ -57,7 +63,9 @@ export async function keepCitations(
   const problems = wanted.flatMap(([index, result]) =>
     isProblem(result) ? [problemPreview(index, result)] : [],
   );
-  const readable = wanted.flatMap(([index, result]) => (isProblem(result) ? [] : [{ index, result }]));
+  const readable = wanted.flatMap(([index, result]) =>
+    isProblem(result) ? [] : [{ index, result }],
+  );
   if (readable.length === 0) {
     const [first] = problems;
     const reason = first ? `Line ${first.line}: ${first.problem}` : "No entry was chosen.";
@@ -149,7 +157,8 @@ function entryPreview(
   earlier: number | null,
 ): CitationPreview {
   const remarks = [...entry.remarks, ...found.remarks];
-  if (earlier !== null) remarks.push(`This is the same paper as entry ${earlier + 1} of this text.`);
+  if (earlier !== null)
+    remarks.push(`This is the same paper as entry ${earlier + 1} of this text.`);
   return Object.assign(new CitationPreview(), {
     index,
     line: entry.line,

@@ -79,7 +79,10 @@ async function findByTitle(
 }
 
 /** Why two entries of one title are still two papers, or null. */
-function conflict(entry: ParsedEntry, citation: Pick<Citation, "doi" | "arxiv" | "entryType">): string | null {
+function conflict(
+  entry: ParsedEntry,
+  citation: Pick<Citation, "doi" | "arxiv" | "entryType">,
+): string | null {
   // A bibcode changes when a preprint is printed, so it tells no two papers apart.
   for (const name of ["doi", "arxiv"] as const) {
     if (entry[name] && citation[name] && entry[name] !== citation[name]) {

@@ -1,9 +1,14 @@
+import { rowLikelihood } from "~shared/likelihood";
+import { asUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields } from "~shared/statement/fields";
 
-/** Name and formula of the likelihood form that a row has by default, for a table's files. */
-export function likelihoodWords(_fields: ConstraintFields): {
+/** Name and formula of the likelihood form that a row has by default, or why it has none. */
+export function likelihoodWords(fields: ConstraintFields): {
   likelihoodForm: string | null;
   likelihoodFormula: string | null;
 } {
-  return { likelihoodForm: null, likelihoodFormula: null };
+  const row = rowLikelihood(asUsed(fields));
+  return "leftOut" in row
+    ? { likelihoodForm: null, likelihoodFormula: row.leftOut }
+    : { likelihoodForm: row.form, likelihoodFormula: row.formula };
 }

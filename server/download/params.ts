@@ -1,17 +1,8 @@
 import { HttpProblem } from "~server/common/errors";
 import { paramsToFilter } from "~shared/filter/address";
-import {
-  CONSTRAINT_SORTS,
-  type CanonicalFilter,
-  type ConstraintSort,
-} from "~shared/filter/filter";
+import { CONSTRAINT_SORTS, type CanonicalFilter, type ConstraintSort } from "~shared/filter/filter";
 import { METHOD_FAMILIES, METHOD_TAGS } from "~shared/methods/vocabulary";
-import {
-  QUANTITIES,
-  STATEMENT_KINDS,
-  VERSIONS_READ,
-  WEIGHTINGS,
-} from "~shared/statement/fields";
+import { QUANTITIES, STATEMENT_KINDS, VERSIONS_READ, WEIGHTINGS } from "~shared/statement/fields";
 
 type Query = Record<string, unknown>;
 

@@ -38,7 +38,12 @@ export function uploadedText(bytes: Uint8Array, kind: UploadKind): string {
 /** A file's name for display: no folders, no control characters. */
 export function uploadedName(given: string): string {
   const last = given.split(/[/\\]/).at(-1) ?? "";
-  return last.replace(/\p{Cc}/gu, "").trim().slice(0, 200) || "file";
+  return (
+    last
+      .replace(/\p{Cc}/gu, "")
+      .trim()
+      .slice(0, 200) || "file"
+  );
 }
 
 function problem(sentence: string): HttpProblem {

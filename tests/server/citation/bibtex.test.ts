@@ -12,7 +12,7 @@ import {
 } from "~server/citation/bibtex";
 import { authorList } from "~server/citation/names";
 
-const sample = readFileSync(join(__dirname, "../../fixtures/bibtex/group-list.bib"), "utf8");
+const sample = readFileSync(join(__dirname, "../../fixtures/samples/group-list.bib"), "utf8");
 
 function one(text: string): ParsedEntry {
   const results = parseBibtex(text);
@@ -42,7 +42,7 @@ function problem(text: string): EntryProblem {
 }
 
 describe("a group's hand-kept .bib", () => {
-  // tests/fixtures/bibtex/group-list.bib: twelve invented entries as the usual services hand them out.
+  // tests/fixtures/samples/group-list.bib: twelve invented entries as the usual services hand them out.
   const entries = parseBibtex(sample).map((result) => {
     if (isProblem(result)) throw new Error(result.problem);
     return result;
@@ -181,7 +181,7 @@ describe("journals", () => {
     ["{\\nat}", "Nature"],
     ["{Astronomy \\& Astrophysics}", "Astronomy & Astrophysics"],
     ['"Invented Journal of Astrophysics"', "Invented Journal of Astrophysics"],
-    ["{Zeitschrift f{\\\"u}r Nebel}", "Zeitschrift für Nebel"],
+    ['{Zeitschrift f{\\"u}r Nebel}', "Zeitschrift für Nebel"],
   ])("%s", (value, expected) => {
     expect(article(`journal = ${value}`).container).toBe(expected);
   });
@@ -248,9 +248,19 @@ describe("broken BibTeX", () => {
     `@article{${key},\n  title = {Good},\n  author = {A, B.},\n  year = 2031\n}\n`;
 
   it.each([
-    ["a brace never closed", "@article{bad,\n  title = {Open,\n  year = 2031\n}\n", 2, "never closed"],
+    [
+      "a brace never closed",
+      "@article{bad,\n  title = {Open,\n  year = 2031\n}\n",
+      2,
+      "never closed",
+    ],
     ["a quote never closed", '@article{bad,\n  title = "Open,\n  year = 2031\n}\n', 2, "quotation"],
-    ["an entry never closed", "@article{bad,\n  title = {Open},\n  year = 2031\n\n", 4, "last brace"],
+    [
+      "an entry never closed",
+      "@article{bad,\n  title = {Open},\n  year = 2031\n\n",
+      4,
+      "last brace",
+    ],
     ["a comma missing", "@article{bad,\n  title = {A}\n  year = 2031\n}\n", 3, "comma is missing"],
     ["an equals sign missing", "@article{bad,\n  title {A},\n year = 2031\n}\n", 2, "no ="],
     ["a value missing", "@article{bad,\n  title = ,\n year = 2031\n}\n", 2, "is missing"],
@@ -305,7 +315,10 @@ describe("limits", () => {
     const many = Array.from({ length: 502 }, (_, i) => `@misc{k${i}, title = {T${i}}}\n`).join("");
     const results = parseBibtex(many);
     expect(results).toHaveLength(501);
-    expect(results[500]).toMatchObject({ line: 501, problem: expect.stringContaining("500 entries") });
+    expect(results[500]).toMatchObject({
+      line: 501,
+      problem: expect.stringContaining("500 entries"),
+    });
   });
 
   it("more than 1 MB is refused as a whole", () => {
@@ -326,9 +339,43 @@ describe("limits", () => {
 
 describe("any text at all", () => {
   const piece = fc.constantFrom(
-    "@article{", "@string{", "@comment{", "@preamble{", "@", "{", "}", "(", ")", '"', ",", "=", "#",
-    "key", "title", "author", "year", "2031", "$", "\\", "\\'", "\\i", "\\begin{a}", "\\apj", " and ",
-    "and others", "\n", " ", "~", "%", "é", "ı\u0301", "doi", "eprint", "<i>", "\u2028", "__proto__",
+    "@article{",
+    "@string{",
+    "@comment{",
+    "@preamble{",
+    "@",
+    "{",
+    "}",
+    "(",
+    ")",
+    '"',
+    ",",
+    "=",
+    "#",
+    "key",
+    "title",
+    "author",
+    "year",
+    "2031",
+    "$",
+    "\\",
+    "\\'",
+    "\\i",
+    "\\begin{a}",
+    "\\apj",
+    " and ",
+    "and others",
+    "\n",
+    " ",
+    "~",
+    "%",
+    "é",
+    "ı\u0301",
+    "doi",
+    "eprint",
+    "<i>",
+    "\u2028",
+    "__proto__",
   );
   const text = fc.oneof(
     fc.array(piece, { maxLength: 60 }).map((parts) => parts.join("")),

@@ -49,7 +49,7 @@ function compile(bib: string): { status: number | null; log: string; bbl: string
 }
 
 itCompiles("the sample compiles without an error or a warning, every entry and macro there", () => {
-  const sample = readFileSync(join(fixtures, "group-list.bib"), "utf8");
+  const sample = readFileSync(join(fixtures, "../samples/group-list.bib"), "utf8");
   const { status, log, bbl } = compile(exported(sample));
   expect(log).not.toMatch(/Warning--|error/i);
   expect(status).toBe(0);
@@ -66,8 +66,10 @@ itCompiles("the sample compiles without an error or a warning, every entry and m
   expect(bbl).toContain("3101.01234");
 });
 
-itCompiles("what other services write compiles: own strings, bare macros, no key, parentheses", () => {
-  const text = `
+itCompiles(
+  "what other services write compiles: own strings, bare macros, no key, parentheses",
+  () => {
+    const text = `
 @string{ija = "Invented Journal"}
 @preamble{"\\newcommand{\\noop}[1]{}"}
 @article{, title = {No key}, author = {A, B.}, year = 2031, journal = ija # ", Letters", month = mar}
@@ -75,11 +77,12 @@ itCompiles("what other services write compiles: own strings, bare macros, no key
 @article(with.round, title = "Quoted {"}inner{"} marks", author = "A, B.", journal = \\mnras, year = "2031")
 @misc{last, title = {Undefined word}, author = {{\\AA}s, \\O.}, year = 2031, note = submitted,}
 `;
-  const { status, log, bbl } = compile(exported(text));
-  expect(log).not.toMatch(/Warning--|error/i);
-  expect(status).toBe(0);
-  expect(bbl).toContain("Invented Journal, Letters");
-  expect(bbl).toContain("\\mnras");
-  expect(bbl).toContain("\\apj");
-  expect(bbl).toContain("submitted");
-});
+    const { status, log, bbl } = compile(exported(text));
+    expect(log).not.toMatch(/Warning--|error/i);
+    expect(status).toBe(0);
+    expect(bbl).toContain("Invented Journal, Letters");
+    expect(bbl).toContain("\\mnras");
+    expect(bbl).toContain("\\apj");
+    expect(bbl).toContain("submitted");
+  },
+);

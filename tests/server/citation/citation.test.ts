@@ -7,7 +7,7 @@ import type { Role } from "~shared/review/states";
 
 import { startTestServer, type Agent, type TestServer } from "../support/harness";
 
-const sample = readFileSync(join(__dirname, "../../fixtures/bibtex/group-list.bib"), "utf8");
+const sample = readFileSync(join(__dirname, "../../fixtures/samples/group-list.bib"), "utf8");
 
 // A database is made first, on a machine that may be busy.
 jest.setTimeout(60_000);
@@ -235,7 +235,11 @@ describe("a paper that is already there", () => {
   it.each([
     ["doi", "doi = {10.5555/ABC}", "doi = {https://doi.org/10.5555/abc}"],
     ["arxiv", "eprint = {3101.01234}", "eprint = {arXiv:3101.01234v2}"],
-    ["bibcode", "bibcode = {2031ApJ..1201...77A}", "adsurl = {https://e.org/abs/2031ApJ..1201...77A}"],
+    [
+      "bibcode",
+      "bibcode = {2031ApJ..1201...77A}",
+      "adsurl = {https://e.org/abs/2031ApJ..1201...77A}",
+    ],
   ])("is found by %s whatever the title says", async (matchedBy, first, second) => {
     const { kept, shown, again } = await foundAfter(
       paper(first, "One title of a paper"),
@@ -250,7 +254,10 @@ describe("a paper that is already there", () => {
   it.each([
     ["Ly$\\alpha$ emitters at {z} = 7", "Lyman-alpha Emitters at z=7"],
     ["{Damping wings: the \\'etude}", "Damping Wings -- the etude"],
-    ["The neutral fraction of the intergalactic medium", "The neutral fracton of the intergalactic medium"],
+    [
+      "The neutral fraction of the intergalactic medium",
+      "The neutral fracton of the intergalactic medium",
+    ],
   ])("is found by title: %s", async (first, second) => {
     const later = paper("", second).replace("2031", "2032");
     const { shown, again } = await foundAfter(paper("", first), later);
@@ -259,12 +266,24 @@ describe("a paper that is already there", () => {
   });
 
   it.each([
-    ["another part of a series", paper("", "Results of the long deep survey. III. Limits"), paper("", "Results of the long deep survey. IV. Limits")],
-    ["another redshift in the title", paper("", "The neutral hydrogen fraction at redshift 7.0"), paper("", "The neutral hydrogen fraction at redshift 7.3")],
+    [
+      "another part of a series",
+      paper("", "Results of the long deep survey. III. Limits"),
+      paper("", "Results of the long deep survey. IV. Limits"),
+    ],
+    [
+      "another redshift in the title",
+      paper("", "The neutral hydrogen fraction at redshift 7.0"),
+      paper("", "The neutral hydrogen fraction at redshift 7.3"),
+    ],
     ["another first author", paper(""), paper("").replace("Tarrowin, A. and ", "")],
     ["two years on", paper(""), paper("").replace("2031", "2033")],
     ["another DOI", paper("doi = {10.5555/a}"), paper("doi = {10.5555/b}")],
-    ["a thesis of the same title", paper(""), paper("school = {U}").replace("@article", "@phdthesis")],
+    [
+      "a thesis of the same title",
+      paper(""),
+      paper("school = {U}").replace("@article", "@phdthesis"),
+    ],
   ])("is not taken for %s", async (_what, first, second) => {
     const { shown, again } = await foundAfter(first, second);
     expect(shown.existing).toBeNull();
@@ -274,15 +293,21 @@ describe("a paper that is already there", () => {
 
   it("a nearly equal title with another DOI is remarked on", async () => {
     const { shown } = await foundAfter(paper("doi = {10.5555/a}"), paper("doi = {10.5555/b}"));
-    expect(shown.remarks.join(" ")).toContain("Tarrowin2031 in the registry has nearly the same title");
+    expect(shown.remarks.join(" ")).toContain(
+      "Tarrowin2031 in the registry has nearly the same title",
+    );
   });
 
   it("identifiers of two papers in one entry: the DOI counts, and it is said", async () => {
     await keep(paper("doi = {10.5555/a}", "First of all papers"));
     await keep(paper("eprint = {3101.00001}", "Second of all papers"));
-    const [shown] = await preview(paper("doi = {10.5555/a}, eprint = {3101.00001}", "First of all papers"));
+    const [shown] = await preview(
+      paper("doi = {10.5555/a}, eprint = {3101.00001}", "First of all papers"),
+    );
     expect(shown).toMatchObject({ matchedBy: "doi", existing: { key: "Tarrowin2031" } });
-    expect(shown.remarks.join(" ")).toContain("belongs to another paper in the registry, Tarrowin2031b");
+    expect(shown.remarks.join(" ")).toContain(
+      "belongs to another paper in the registry, Tarrowin2031b",
+    );
   });
 
   it.each([
@@ -298,7 +323,9 @@ describe("a paper that is already there", () => {
 
   it("ten people bring ten papers of one author and year at once: ten keys", async () => {
     const results = await Promise.all(
-      Array.from({ length: 10 }, (_, n) => keep(paper(`doi = {10.5555/${n}}`, `Title number ${n}`))),
+      Array.from({ length: 10 }, (_, n) =>
+        keep(paper(`doi = {10.5555/${n}}`, `Title number ${n}`)),
+      ),
     );
     expect(new Set(results.map((result) => result.kept[0].citation.key)).size).toBe(10);
   });

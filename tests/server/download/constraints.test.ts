@@ -128,7 +128,9 @@ describe("the list as CSV", () => {
     ["?constructor=1", "There is no parameter"],
   ])("%s is refused in words", async (query, sentence) => {
     for (const kind of ["csv", "bib"]) {
-      const { status, text, headers } = await server.agent().get(`/api/constraints.${kind}${query}`);
+      const { status, text, headers } = await server
+        .agent()
+        .get(`/api/constraints.${kind}${query}`);
       expect(status).toBe(400);
       expect(text).toContain(sentence);
       expect(headers["content-disposition"]).toBeUndefined();
@@ -208,7 +210,8 @@ it("an editor who reads a record blind finds it in no download until the reading
   } as typeof revision);
   const reader = actingAs(dataSource, user);
   granted(await claim(reader, changed.id));
-  const seen = async (client = agent) => rows((await csv("", client)).text).map((row) => row.record);
+  const seen = async (client = agent) =>
+    rows((await csv("", client)).text).map((row) => row.record);
   expect(await seen()).not.toContain(number);
   expect((await agent.get(`/api/constraints/${number}.bib`)).status).toBe(404);
   expect(await seen(server.agent())).toContain(number);

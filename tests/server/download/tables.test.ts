@@ -84,7 +84,7 @@ it("anybody fetches a saved table in three forms, to be saved, never sniffed", a
     [second, "false", "0.50"],
   ]);
   expect(data[1]!.reason).toBe("Read off a poor figure, they say");
-  expect(csv).toContain("# Filter: Text \"Amberfield\"");
+  expect(csv).toContain('# Filter: Text "Amberfield"');
   expect(csv).toContain(table.digest);
   expect(csv).toContain(`/tables/${table.slug}`);
 
