@@ -10,6 +10,7 @@ import { CitationResolver } from "~server/citation/citation.resolver";
 import { RoleChecker } from "~server/common/authChecker";
 import { ConstraintResolver } from "~server/constraint/constraint.resolver";
 import { SubmissionResolver } from "~server/constraint/submission.resolver";
+import { ImportResolver } from "~server/import/import.resolver";
 import { CaughtMailResolver } from "~server/mail/caughtMail.resolver";
 import { ReviewResolver } from "~server/review/review.resolver";
 import { TableResolver } from "~server/table/table.resolver";
@@ -20,6 +21,7 @@ export const resolvers = [
   AccountResolver,
   PeopleResolver,
   CitationResolver,
+  ImportResolver,
   CaughtMailResolver,
   ConstraintResolver,
   SubmissionResolver,

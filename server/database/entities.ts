@@ -5,6 +5,7 @@ import { Citation, CitationGate } from "~server/citation/citation.entity";
 import { Constraint } from "~server/constraint/constraint.entity";
 import { Revision, RevisionData } from "~server/constraint/revision.entity";
 import { EventHead, EventRecord } from "~server/event/event.entity";
+import { ImportMatch } from "~server/import/importMatch.entity";
 import { CaughtMailRow } from "~server/mail/caughtMail.entity";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
 import { FieldCommentRecord } from "~server/review/comment.entity";
@@ -29,6 +30,7 @@ export const entities = [
   Citation,
   CitationGate,
   Upload,
+  ImportMatch,
   EventRecord,
   EventHead,
   Constraint,
