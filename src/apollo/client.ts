@@ -2,7 +2,27 @@ import { ApolloClient, ApolloLink, HttpLink, InMemoryCache } from "@apollo/clien
 import { ErrorLink } from "@apollo/client/link/error";
 import { tap } from "rxjs";
 import { reportConnection } from "./connection";
+import { possibleTypes } from "./possibleTypes";
 import { isConnectionLost } from "./userMessage";
+
+/** The cache with what it must know of the API; tests use the same. */
+export function createCache(): InMemoryCache {
+  return new InMemoryCache({
+    possibleTypes,
+    typePolicies: {
+      Query: { fields: { session: { merge: true } } },
+      // Content without an identity of its own: a newer answer replaces it whole.
+      ConstraintFields: { keyFields: false },
+      Constraint: { keyFields: ["number"], fields: { fields: { merge: false } } },
+      FittingTable: { keyFields: ["slug"], fields: { constraints: { merge: false } } },
+      EventMark: { keyFields: false },
+      Finding: { keyFields: false },
+      TableRow: { keyFields: false },
+      RecordLink: { keyFields: false },
+      Session: { keyFields: [], fields: { viewer: { merge: false } } },
+    },
+  });
+}
 
 /** Client of the API on the same origin; the session travels in its cookie. */
 export function createClient(uri = "/graphql"): ApolloClient {
@@ -20,20 +40,7 @@ export function createClient(uri = "/graphql"): ApolloClient {
   });
   return new ApolloClient({
     link: ApolloLink.from([watch, heard, http]),
-    cache: new InMemoryCache({
-      typePolicies: {
-        Query: { fields: { session: { merge: true } } },
-        // Content without an identity of its own: a newer answer replaces it whole.
-        ConstraintFields: { keyFields: false },
-        Constraint: { keyFields: ["number"], fields: { fields: { merge: false } } },
-        FittingTable: { keyFields: ["slug"], fields: { constraints: { merge: false } } },
-        EventMark: { keyFields: false },
-        Finding: { keyFields: false },
-        TableRow: { keyFields: false },
-        RecordLink: { keyFields: false },
-        Session: { keyFields: [], fields: { viewer: { merge: false } } },
-      },
-    }),
+    cache: createCache(),
     defaultOptions: { watchQuery: { fetchPolicy: "cache-and-network" } },
   });
 }

@@ -1,0 +1,17 @@
+/**
+ * Members of the API's unions. The cache can't match a fragment on a union without them: it would
+ * drop the fragment's fields silently. tests/client/account/possibleTypes.test.tsx holds them
+ * against the emitted schema.
+ */
+export const possibleTypes: Record<string, string[]> = {
+  DoneResult: ["Done", "Refusal"],
+  FittingTableResult: ["FittingTable", "Refusal"],
+  ImportPreviewResult: ["ImportPreview", "Refusal"],
+  ImportResult: ["ImportDone", "Refusal"],
+  KeepCitationsResult: ["KeptCitations", "Refusal"],
+  PersonResult: ["Person", "Refusal"],
+  ReviewResult: ["Refusal", "Review"],
+  SignInResult: ["Refusal", "Viewer"],
+  SubmissionResult: ["Refusal", "Submission"],
+  ViewerResult: ["Refusal", "Viewer"],
+};
