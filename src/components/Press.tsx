@@ -46,15 +46,23 @@ export function Press({
     onPress?.();
   }
 
+  // Pressable writes its own aria-disabled over the one it is given, and its `disabled` takes the
+  // focus away.
+  const markDisabled = (element: unknown) => {
+    if (!(element instanceof Element)) return;
+    if (disabled) element.setAttribute("aria-disabled", "true");
+    else element.removeAttribute("aria-disabled");
+  };
+
   return (
     <TouchableRipple
+      ref={markDisabled as never}
       borderless
       onPress={press}
       style={style}
       {...web({
         role: href === undefined ? "button" : "link",
         "aria-label": label,
-        "aria-disabled": disabled || undefined,
         href,
         ...(href !== undefined && /^https?:/.test(href)
           ? { hrefAttrs: { target: "_blank", rel: "noreferrer" } }
