@@ -248,12 +248,13 @@ export function familiesOf(tags: readonly string[]): MethodFamily[] {
   return METHOD_FAMILIES.filter((family) => met.has(family));
 }
 
-/** Letters and digits only, Greek alpha spelled out: what two spellings of one word share. */
+/** Letters and digits only, Lyα spelled one way: what two spellings of one word share. */
 export function looseWord(text: string): string {
   return text
     .replace(/[αΑ]/g, "a")
     .normalize("NFKD")
     .toLowerCase()
+    .replace(/lyman/g, "ly")
     .replace(/alpha/g, "a")
     .replace(/[^a-z0-9]+/g, "");
 }
