@@ -21,6 +21,7 @@ import {
   twoPiece,
   variableWidth,
 } from "~shared/likelihood/forms";
+import { type ModelRequest, modelValue } from "~shared/likelihood/modelRequest";
 import { sigmasOfLevel } from "~shared/numerics/special";
 import type { AsUsed } from "~shared/statement/asUsed";
 import type { Quantity } from "~shared/statement/fields";
@@ -84,6 +85,8 @@ export interface RowLikelihood {
   readonly quantity: Quantity;
   readonly evaluatedIn: "linear" | "log10";
   readonly redshift: RedshiftTreatment;
+  /** What the row asks of a history. */
+  readonly request: ModelRequest;
   readonly warnings: readonly FormWarning[];
   readonly shape: Form;
   /** −2 ln L at a model value of the quantity (a fraction also where evaluated in log10). */
@@ -118,6 +121,7 @@ export function rowLikelihood(
   if ("leftOut" in shape) return shape;
 
   const redshift = treatmentOf(used, options);
+  const request = requestOf(used, redshift);
   const inLog = used.evaluatedIn === "log10";
   const minus2LnL = inLog
     ? (model: number): number => shape.minus2LnL(Math.log10(model))
@@ -129,20 +133,21 @@ export function rowLikelihood(
     quantity: used.quantity,
     evaluatedIn: used.evaluatedIn,
     redshift,
+    request,
     warnings: shape.warnings,
     shape,
     minus2LnL,
     quantiles: (probabilities) => quantilesOf(shape, range, probabilities),
     curve: (n) => curveOf(shape, used, range, n),
     evaluate: (history, background) => {
-      const value = modelValue(used, redshift, history, background);
-      if (value.model === null) return { ...value, minus2LnL: null };
+      const answer = modelValue(request, history, background);
+      if (answer.model === null) return { ...answer, minus2LnL: null };
       return {
-        model: value.model,
+        model: answer.model,
         minus2LnL:
-          redshift === "averagedLikelihood"
-            ? averagedMinus2LnL(minus2LnL, history, used.zLow!, used.zHigh!)
-            : minus2LnL(value.model),
+          request.kind === "averaged"
+            ? averagedMinus2LnL(minus2LnL, history, request.zLow, request.zHigh)
+            : minus2LnL(answer.model),
       };
     },
   };
@@ -387,62 +392,29 @@ function treatmentOf(used: AsUsed, options: RowOptions): RedshiftTreatment {
   return hasRange ? wanted : "point";
 }
 
-/**
- * What a history says about the quantity of a row.
- *
- * @returns The model value, or null with the reason: a table that does not reach, a fraction that is
- *   never crossed.
- */
-export function modelValue(
-  used: AsUsed,
-  redshift: RedshiftTreatment,
-  history: History,
-  background: Background,
-): { model: number | null; reason?: string; code?: LeftOutCode } {
+function requestOf(used: AsUsed, redshift: RedshiftTreatment): ModelRequest {
   switch (used.quantity) {
     case "neutralFraction": {
-      const low = redshift === "point" ? (used.z ?? used.zLow!) : used.zLow!;
-      const high = redshift === "point" ? low : used.zHigh!;
-      if (!history.covers(low, high)) {
-        return {
-          model: null,
-          code: "outsideTable",
-          reason: `The table of this history covers z = ${history.covered![0]} to ${history.covered![1]} only.`,
-        };
-      }
-      if (redshift === "binMean") return { model: history.binMean(low, high) };
-      return { model: history.x(used.z ?? 0.5 * (low + high)) };
+      if (redshift === "point") return { kind: "point", z: used.z ?? used.zLow! };
+      const zLow = used.zLow!;
+      const zHigh = used.zHigh!;
+      if (redshift === "binMean") return { kind: "binMean", zLow, zHigh };
+      return { kind: "averaged", zLow, zHigh, z: used.z ?? 0.5 * (zLow + zHigh) };
     }
     case "opticalDepth":
-      return { model: history.opticalDepth(background) };
+      return { kind: "opticalDepth", z1: 0, z2: 50 };
     case "opticalDepthRange":
-      return { model: history.opticalDepth(background, used.rangeLow!, used.rangeHigh!) };
+      return { kind: "opticalDepth", z1: used.rangeLow!, z2: used.rangeHigh! };
     case "redshiftAtFraction":
-      return orMissing(history.redshiftAtFraction(used.fraction!), `x = ${used.fraction}`);
-    case "duration": {
-      const from = used.fractionFrom!;
-      const to = used.fractionTo!;
-      return orMissing(
-        used.durationUnit === "myr"
-          ? history.durationMyr(background, from, to)
-          : history.duration(from, to),
-        `both x = ${from} and x = ${to}`,
-      );
-    }
+      return { kind: "redshiftAtFraction", f: used.fraction! };
+    case "duration":
+      return {
+        kind: "duration",
+        f1: used.fractionFrom!,
+        f2: used.fractionTo!,
+        unit: used.durationUnit ?? "redshift",
+      };
   }
-}
-
-function orMissing(
-  model: number | null,
-  what: string,
-): { model: number | null; reason?: string; code?: LeftOutCode } {
-  return model === null
-    ? {
-        model,
-        code: "noSuchRedshift",
-        reason: `The history does not pass ${what} at any redshift.`,
-      }
-    : { model };
 }
 
 function quantilesOf(shape: Form, range: Range, probabilities: readonly number[]): number[] | null {
