@@ -6,14 +6,12 @@ require("./lib/program").program(async () => {
   const path = require("node:path");
   const { PlainFailure } = require("./lib/failure");
   const { ensureModules } = require("./lib/install");
-  const { lockProject } = require("./lib/lock");
+  const { withProject } = require("./lib/lock");
   const { CACHE, fromRoot, shortTemporaryFolder } = require("./lib/paths");
   const { atEnd, run } = require("./lib/processes");
   const { step, say } = require("./lib/steps");
 
-  const releaseProject = await lockProject();
-  await ensureModules();
-  await releaseProject();
+  await withProject(() => ensureModules());
   const folder = shortTemporaryFolder("check");
   atEnd(() => fs.rmSync(folder, { recursive: true, force: true }));
 

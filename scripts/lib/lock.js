@@ -59,9 +59,14 @@ async function lockDirectory(directory, doing) {
   });
 }
 
-/** Waits for any other command that installs or builds in this project; returns the release. */
-async function lockProject() {
-  return takeLock(fromRoot("package.json"), { wait: true });
+/** Installs or builds while no other command does so in this project; waits for its turn. */
+async function withProject(work) {
+  const release = await takeLock(fromRoot("package.json"), { wait: true });
+  try {
+    return await work();
+  } finally {
+    await release();
+  }
 }
 
 function ownerFile(directory) {
@@ -76,4 +81,4 @@ function readOwner(directory) {
   }
 }
 
-module.exports = { lockDirectory, lockProject };
+module.exports = { lockDirectory, withProject };

@@ -101,7 +101,7 @@ function firstStatements(password, throwaway) {
     `ALTER USER 'root'@'localhost' IDENTIFIED BY '${password}';`,
     `CREATE DATABASE IF NOT EXISTS \`${DATABASE}\` CHARACTER SET utf8mb4 COLLATE utf8mb4_unicode_ci;`,
     `CREATE OR REPLACE USER '${USER}'@'127.0.0.1' IDENTIFIED BY '${password}';`,
-    `GRANT ALL PRIVILEGES ON ${rights} TO '${USER}'@'127.0.0.1';`,
+    `GRANT ALL PRIVILEGES ON ${rights} TO '${USER}'@'127.0.0.1'${throwaway ? " WITH GRANT OPTION" : ""};`,
     "",
   ].join("\n");
 }

@@ -12,7 +12,7 @@ const {
   requireSpace,
   spaceNeeded,
 } = require("./install");
-const { lockDirectory, lockProject } = require("./lock");
+const { lockDirectory, withProject } = require("./lock");
 const { hasDatabase, startMariaDb } = require("./mariadb");
 const { isStopping } = require("./processes");
 const { program } = require("./program");
@@ -42,12 +42,11 @@ async function start(status) {
   status.log = logs.start;
 
   if (!external) await ensurePrograms(MARIADB_SERVER, logs.start);
-  const releaseProject = await lockProject();
-  await ensureModules(logs.start);
-  await buildServer(logs.start);
-  await buildClient(logs.start);
-  await releaseProject();
-
+  await withProject(async () => {
+    await ensureModules(logs.start);
+    await buildServer(logs.start);
+  });
+  // A database that can't be used shows before the long export.
   const database = external ? { url: external } : await startMariaDb(directory);
   const environment = server.serverEnvironment(database.url, port);
   let prepared;
@@ -55,6 +54,7 @@ async function start(status) {
     prepared = await server.prepareDatabase(environment, logs.start);
     return prepared.seeded ? "database migrated, demonstration seeded" : "database migrated";
   });
+  await withProject(() => buildClient(logs.start));
   let running;
   await step("server ready", async () => {
     running = await server.launchServer(environment, {

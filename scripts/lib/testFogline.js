@@ -7,7 +7,7 @@ const { buildClient, buildServer } = require("./build");
 const { addCounts, countReport } = require("./counts");
 const { PlainFailure } = require("./failure");
 const install = require("./install");
-const { lockProject } = require("./lock");
+const { withProject } = require("./lock");
 const { startMariaDb } = require("./mariadb");
 const { CACHE, fromRoot, readJson } = require("./paths");
 const { atEnd, isStopping, run } = require("./processes");
@@ -54,11 +54,11 @@ async function test({ projects, jest }, add) {
 
   await install.ensurePrograms(install.MARIADB_SERVER, log);
   if (withBrowser) await install.ensurePrograms(install.CHROMIUM, log);
-  const releaseProject = await lockProject();
-  await install.ensureModules(log);
-  if (withBrowser || projects.includes("ops")) await buildServer(log);
-  if (withBrowser) await buildClient(log);
-  await releaseProject();
+  await withProject(async () => {
+    await install.ensureModules(log);
+    if (withBrowser || projects.includes("ops")) await buildServer(log);
+    if (withBrowser) await buildClient(log);
+  });
 
   const database = await startMariaDb(path.join(folder, "fast"), { throwaway: true });
   const environment = {
