@@ -16,7 +16,10 @@ export interface ApprovedRow {
 }
 
 /** What a query needs of a request: whose eyes, which database. */
-export type Asking = Pick<RequestContext, "database" | "viewer">;
+export interface Asking {
+  database: Pick<RequestContext["database"], "manager">;
+  viewer: RequestContext["viewer"];
+}
 
 /** Rows handed out at once through the API; downloads ask for more. */
 export const MOST_ROWS = 500;

@@ -7,7 +7,8 @@ import { appendEvent, type EventEntry } from "./eventLog";
 
 /** Who acts, when, on which database: what a service needs, whether a request or the seed calls it. */
 export interface Acting {
-  database: DataSource;
+  /** The data source; or, for a story told in one transaction, its entity manager. */
+  database: Pick<DataSource, "manager" | "transaction">;
   viewer: ViewerIdentity;
   now: Date;
   /** Data licence that a contributor agrees to. */

@@ -52,7 +52,7 @@ export async function saveTable(who: Acting, input: TableInput): Promise<SavedTa
     }
     // Read through the transaction, so that rows and last event belong together.
     const asking: Asking = {
-      database: { manager: here.manager } as Asking["database"],
+      database: { manager: here.manager },
       viewer: who.viewer,
     };
     const filter = canonicalFilter(input.filter);
