@@ -44,6 +44,13 @@ export function isProblem(result: BibtexResult): result is EntryProblem {
 }
 
 const MAX_AUTHORS = 5000;
+/** Time for one name grows with the square of its length. */
+const MAX_NAME = 500;
+const MAX_TITLE = 2000;
+const MAX_CONTAINER = 500;
+/** An identifier stands at the head of its field; the rest of a long note is not searched. */
+const MAX_IDENTIFIER_TEXT = 1000;
+const LONGEST_ARXIV = 40;
 
 /** Fields that say how a paper is cited; the rest stays in the stored text only. */
 const CITED_FIELDS = [
@@ -111,10 +118,19 @@ function parseEntry(raw: RawEntry): BibtexResult {
   if (!withoutTex(title)) {
     return problemAt(raw.line, raw.givenKey, "The entry has no title.");
   }
+  if (title.length > MAX_TITLE) {
+    const line = raw.fields.get("title")?.line ?? raw.line;
+    const reason = `The title is longer than ${MAX_TITLE} characters.`;
+    return problemAt(line, raw.givenKey, reason);
+  }
   const { names, more } = splitOthers(get("author") || get("editor"));
-  if (names.length > MAX_AUTHORS) {
+  const tooMany = names.length > MAX_AUTHORS;
+  if (tooMany || names.some((name) => name.length > MAX_NAME)) {
     const line = raw.fields.get("author")?.line ?? raw.line;
-    return problemAt(line, raw.givenKey, `More than ${MAX_AUTHORS} authors.`);
+    const reason = tooMany
+      ? `More than ${MAX_AUTHORS} authors.`
+      : `A name is longer than ${MAX_NAME} characters. Is an “and” missing between two?`;
+    return problemAt(line, raw.givenKey, reason);
   }
 
   const fields = new Map<string, string>();
@@ -151,7 +167,7 @@ function parseEntry(raw: RawEntry): BibtexResult {
     authors,
     moreAuthors: more,
     year,
-    container: place === null ? null : plainText(place),
+    container: place === null ? null : plainText(place).slice(0, MAX_CONTAINER),
     volume: plainOrNull(csl.volume ?? get("volume")),
     pages: plainOrNull((get("pages") || get("eid")).replace(/-{2,}/g, "–")),
     ...ids,
@@ -161,6 +177,9 @@ function parseEntry(raw: RawEntry): BibtexResult {
     remarks,
   };
   keepInCsl(entry);
+  if (get("crossref")) {
+    remarks.push("The entry refers to another one by crossref; what that says is not taken over.");
+  }
   if (!ids.doi && !ids.arxiv && !ids.bibcode) {
     remarks.push("The entry has no DOI, arXiv number or bibcode.");
   }
@@ -268,6 +287,7 @@ type Identifiers = Pick<ParsedEntry, "doi" | "arxiv" | "arxivVersion" | "bibcode
 function identifiers(raw: RawEntry, remarks: string[]): Identifiers {
   const get = (name: string) =>
     (raw.fields.get(name)?.value ?? "")
+      .slice(0, MAX_IDENTIFIER_TEXT)
       .replace(/\\([_&%#$])/g, "$1")
       .replace(/[{}]/g, "")
       .trim();
@@ -286,8 +306,10 @@ function identifiers(raw: RawEntry, remarks: string[]): Identifiers {
   let version: number | null = null;
   const take = (text: string) => {
     if (arxiv !== null) return;
-    arxiv = normalizeArxiv(text);
-    if (arxiv !== null) version = arxivVersion(text);
+    const number = normalizeArxiv(text);
+    if (number === null || number.length > LONGEST_ARXIV) return;
+    arxiv = number;
+    version = arxivVersion(text);
   };
   const eprint = get("eprint");
   if (eprint && (!archive || /^arxiv$/i.test(archive))) {

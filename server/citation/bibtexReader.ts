@@ -10,6 +10,10 @@ export const MAX_TEXT_BYTES = 1_000_000;
 export const MAX_ENTRIES = 500;
 export const MAX_VALUE_CHARACTERS = 60_000;
 export const MAX_DEPTH = 40;
+/** Comments, definitions and preambles count here too: each may look far ahead for its end. */
+const MAX_CONSTRUCTS = 5 * MAX_ENTRIES;
+/** Definitions that use definitions can grow without bound. */
+const MAX_EXPANDED_CHARACTERS = 1_000_000;
 
 export interface RawField {
   name: string;
@@ -44,7 +48,7 @@ export interface BrokenEntry {
 const MONTHS = new Set("jan feb mar apr may jun jul aug sep oct nov dec".split(" "));
 
 /** An entry that begins on a line of its own; inside a value it means that a brace is missing. */
-const ENTRY_ON_LINE = /^[ \t]*@[ \t]*[A-Za-z]+[ \t]*[{(][ \t]*[^\s,{}()="]*[ \t]*,/gm;
+const ENTRY_ON_LINE = /^[ \t]*@[ \t]*[A-Za-z]+[ \t]*[{(][ \t]*(?:[^\s,{}()="]+[ \t]*)?,/gm;
 /** A field that begins inside a value: the value was meant to end before it. */
 const NEXT_FIELD = /,[ \t]*\n\s*[A-Za-z][\w-]*\s*=\s*["{\\\w]/;
 const ANY_ENTRY = /@[ \t]*[A-Za-z]+\s*[{(]/g;
@@ -73,6 +77,8 @@ class Reader {
   private readonly found: (RawEntry | BrokenEntry)[] = [];
   /** Where the entry being read must have ended at the latest. */
   private limit = 0;
+  private constructs = 0;
+  private expanded = 0;
 
   constructor(
     private readonly text: string,
@@ -90,7 +96,8 @@ class Reader {
       const at = this.text.indexOf("@", this.position);
       this.noteStrayText(this.position, at < 0 ? this.text.length : at);
       if (at < 0) return this.found;
-      if (this.found.length >= MAX_ENTRIES) {
+      this.constructs += 1;
+      if (this.found.length >= MAX_ENTRIES || this.constructs > MAX_CONSTRUCTS) {
         this.found.push({
           broken: true,
           line: this.lineOf(at),
@@ -108,6 +115,7 @@ class Reader {
     head.lastIndex = at;
     const match = head.exec(this.text);
     if (!match) {
+      this.constructs -= 1;
       this.position = at + 1;
       return;
     }
@@ -116,9 +124,10 @@ class Reader {
     this.position = head.lastIndex;
     if (!match[2]) {
       // An @ in running text, an address say, is no entry; at the start of a line it is meant as one.
-      const meant = /^[ \t]*$/.test(this.text.slice(this.lineStarts[this.lineOf(at) - 1], at));
-      if (meant && type !== "comment")
-        this.fail(at, "", `An opening brace is missing after @${type}.`);
+      const before = this.text.slice(this.lineStarts[this.lineOf(at) - 1], at);
+      const meant = before.length < 80 && before.trim() === "" && type !== "comment";
+      if (meant) this.fail(at, "", `An opening brace is missing after @${type}.`);
+      else this.constructs -= 1;
       return;
     }
     const close = match[2] === "{" ? "}" : ")";
@@ -170,7 +179,7 @@ class Reader {
       const nameAt = this.position;
       if (nameAt >= this.limit) throw this.neverClosed(fields);
       const name = this.take(/[^\s"#%'(),={}@\\~]+/y);
-      if (!name) {
+      if (!name || /^\d/.test(name)) {
         throw new Fault(
           nameAt,
           `A field name is expected, but “${this.text[nameAt]}” stands there.`,
@@ -325,6 +334,10 @@ class Reader {
     const edit = (text: string) => edits.push({ start, end: this.position, text });
     const defined = this.strings.get(lower);
     if (defined !== undefined) {
+      this.expanded += defined.length;
+      if (this.expanded > MAX_EXPANDED_CHARACTERS) {
+        throw new Fault(start, "The file's own @string words stand for too much text.");
+      }
       edit(`{${defined}}`);
       return defined;
     }
@@ -379,14 +392,15 @@ class Reader {
     let depth = 1;
     let i = this.position;
     // Inside a comment whole entries may stand, so the next entry is no limit here.
-    for (; i < this.text.length && depth > 0; i += 1) {
+    const end = Math.min(this.text.length, i + MAX_VALUE_CHARACTERS);
+    for (; i < end && depth > 0; i += 1) {
       if (this.text[i] === open) depth += 1;
       else if (this.text[i] === close) depth -= 1;
     }
     // Unclosed: only the line is a comment.
     if (depth > 0) {
-      const end = this.text.indexOf("\n", this.position);
-      i = end < 0 ? this.text.length : end;
+      const line = this.text.indexOf("\n", this.position);
+      i = line < 0 ? this.text.length : line;
     }
     this.position = i;
   }

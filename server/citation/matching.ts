@@ -1,9 +1,9 @@
-import { Between, type EntityManager } from "typeorm";
+import { Between, IsNull, type EntityManager } from "typeorm";
 
 import type { ParsedEntry } from "./bibtex";
 import { Citation } from "./citation.entity";
 import { asciiLetters, familyName } from "./names";
-import { nearEqualTitles } from "./titles";
+import { nearEqualTitles, titleMatch } from "./titles";
 
 export type MatchedBy = "doi" | "arxiv" | "bibcode" | "title";
 
@@ -47,7 +47,6 @@ async function findByTitle(
   entry: ParsedEntry,
   remarks: string[],
 ): Promise<Match | null> {
-  if (entry.year === null) return null;
   const near = await manager.find(Citation, {
     // Without the long texts: there may be hundreds of papers in three years.
     select: {
@@ -59,7 +58,10 @@ async function findByTitle(
       doi: true,
       arxiv: true,
     },
-    where: { year: Between(entry.year - 1, entry.year + 1) },
+    where:
+      entry.year === null
+        ? { year: IsNull(), titleMatch: titleMatch(entry.title) }
+        : { year: Between(entry.year - 1, entry.year + 1) },
     order: { createdAt: "ASC", id: "ASC" },
   });
   for (const citation of near) {

@@ -325,6 +325,48 @@ describe("limits", () => {
     expect(problem("@misc{k, title = {T}}".padEnd(1_000_001)).problem).toContain("1 MB");
   });
 
+  it("a title longer than 2000 characters is refused", () => {
+    expect(problem(`@misc{k, title = {${"long ".repeat(401)}}}`).problem).toContain("title");
+  });
+
+  it("a name longer than 500 characters is refused, guessing why", () => {
+    const found = problem(`@misc{k,\n title = {T},\n author = {${"Tamm R. ".repeat(100)}}}`);
+    expect(found).toMatchObject({ line: 3, problem: expect.stringContaining("“and” missing") });
+  });
+
+  it("definitions that grow by definitions are stopped", () => {
+    const letters = "abcdefghijklmnopqrst".split("");
+    const grow = letters
+      .slice(1)
+      .map((letter, i) => `@string{${letter} = ${Array(8).fill(letters[i]).join(" # ")}}\n`);
+    const results = parseBibtex(`@string{a = {0123456789}}\n${grow.join("")}@misc{k, title = {T}}`);
+    expect(
+      results.some((result) => isProblem(result) && /too much|longer/.test(result.problem)),
+    ).toBe(true);
+    expect(results.at(-1)).toMatchObject({ title: "T" });
+    const wide = `@string{w = {${"x".repeat(50_000)}}}\n`;
+    const fields = Array.from({ length: 100 }, (_, i) => `f${i}x = w`).join(", ");
+    expect(problem(`${wide}@misc{k, title = {T}, ${fields}}`).problem).toContain("too much text");
+  });
+
+  // Each of these takes minutes or more where a step looks at the whole text again and again.
+  it.each([
+    ["blanks where a key is expected", `@misc{${" ".repeat(900_000)}`],
+    ["blanks before many signs", `${" ".repeat(500_000)}${"@a ".repeat(160_000)}`],
+    ["comments that are never closed", "@comment{".repeat(110_000)],
+    ["strings that are never closed", '@string{a="'.repeat(90_000)],
+    ["entries that are never closed", "\n@misc{a, b={".repeat(70_000)],
+    ["a value that is all blanks", `@misc{k, title = {T}, note =${" ".repeat(900_000)}}`],
+    ["brackets in a number", `@misc{k, title = {T}, eprint = {${"[".repeat(59_000)}}}`],
+    ["names without end", `@misc{k, title = {T}, author = {${"A ".repeat(29_000)}}}`],
+    ["commas without end", `@misc{k, title = {T}, author = {${"A,".repeat(29_000)}}}`],
+    ["accents without end", `@misc{k, title = {T}, author = {${"\\'{e}".repeat(9_000)}}}`],
+    ["maths without end", `@misc{k, title = {T}, note = {${"$a$".repeat(19_000)}}}`],
+    ["angles without end", `@misc{k, title = {T}, note = {${"<i ".repeat(19_000)}}}`],
+  ])("%s", (_what, text) => {
+    expect(parseBibtex(text).length).toBeGreaterThan(0);
+  });
+
   it("deep braces are refused", () => {
     expect(problem(`@misc{k, title = {${"{".repeat(10_000)}}`).problem).toContain("nested");
   });

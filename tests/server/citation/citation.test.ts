@@ -291,6 +291,14 @@ describe("a paper that is already there", () => {
     expect(await count()).toBe(2);
   });
 
+  it("is found by title when neither gives a year", async () => {
+    const undated = paper("").replace("year = 2031, ", "");
+    const { kept, shown } = await foundAfter(undated, undated);
+    expect(kept.citation.key).toBe("TarrowinUndated");
+    expect(shown.matchedBy).toBe("title");
+    expect(await count()).toBe(1);
+  });
+
   it("a nearly equal title with another DOI is remarked on", async () => {
     const { shown } = await foundAfter(paper("doi = {10.5555/a}"), paper("doi = {10.5555/b}"));
     expect(shown.remarks.join(" ")).toContain(

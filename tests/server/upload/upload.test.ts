@@ -126,3 +126,18 @@ it("one person keeps twenty files at most, the newest", async () => {
   expect(await manager.countBy(Upload, { ownerId: user.id })).toBe(20);
   expect(await findUpload(manager, user.id, last, "csv")).not.toBeNull();
 });
+
+it("too many uploads from one place are put off", async () => {
+  const limited = await startTestServer({ limits: { uploadsPerMinute: 2 } });
+  try {
+    const { agent } = await limited.signedIn(["contributor"]);
+    expect((await send(agent, "csv", CSV)).status).toBe(201);
+    expect((await send(agent, "csv", CSV)).status).toBe(201);
+    const { status, headers, text } = await send(agent, "csv", CSV);
+    expect(status).toBe(429);
+    expect(Number(headers["retry-after"])).toBeGreaterThan(0);
+    expect(text).toContain("Try again");
+  } finally {
+    await limited.stop();
+  }
+});
