@@ -2,6 +2,7 @@ import { mkdirSync, readFileSync } from "node:fs";
 import os from "node:os";
 import path from "node:path";
 
+import type axeCore from "axe-core";
 import { chromium, type Browser, type Page } from "playwright-core";
 
 import { findProgram } from "../../../scripts/lib/install";
@@ -89,13 +90,14 @@ export async function signIn(
     throw new Error(`${email} could not sign in: ${JSON.stringify(body)}`);
 }
 
+type Axe = typeof axeCore;
 const AXE = readFileSync(require.resolve("axe-core/axe.min.js"), "utf8");
 
 /** Serious and critical findings of axe, each as rule, element and reason. */
 export async function axeViolations(page: Page): Promise<string[]> {
   await page.evaluate(AXE);
   return page.evaluate(async () => {
-    const { axe } = window as unknown as { axe: typeof import("axe-core") };
+    const { axe } = window as unknown as { axe: Axe };
     const { violations } = await axe.run(document, { resultTypes: ["violations"] });
     return violations
       .filter(({ impact }) => impact === "serious" || impact === "critical")
@@ -111,7 +113,9 @@ export function layoutProblems(page: Page): Promise<string[]> {
     const found: string[] = [];
     const width = document.documentElement.clientWidth;
     if (document.documentElement.scrollWidth > width)
-      found.push(`the page is ${document.documentElement.scrollWidth} wide in a window of ${width}`);
+      found.push(
+        `the page is ${document.documentElement.scrollWidth} wide in a window of ${width}`,
+      );
     const describe = (element: Element): string => {
       const name = element.getAttribute("aria-label") ?? element.textContent ?? "";
       const role = element.getAttribute("role") ?? element.tagName.toLowerCase();

@@ -31,7 +31,9 @@ export interface FoglineOptions {
   demonstration?: boolean;
 }
 
-export async function startFogline({ demonstration = true }: FoglineOptions = {}): Promise<Fogline> {
+export async function startFogline({
+  demonstration = true,
+}: FoglineOptions = {}): Promise<Fogline> {
   const server = process.env.TEST_DATABASE_URL;
   if (!server) throw new Error("TEST_DATABASE_URL is missing: run npm test -- e2e.");
   const name = `fogline_e2e_${randomBytes(5).toString("hex")}`;

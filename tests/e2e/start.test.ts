@@ -1,0 +1,144 @@
+import { spawn, type ChildProcess } from "node:child_process";
+import { existsSync, mkdtempSync, readFileSync, readdirSync, rmSync, statSync } from "node:fs";
+import os from "node:os";
+import path from "node:path";
+
+import { freePort } from "../../scripts/lib/mariadb";
+
+const ROOT = path.resolve(__dirname, "../..");
+
+interface Start {
+  process: ChildProcess;
+  /** Exit code once it has ended. */
+  ended: Promise<number | null>;
+  output(): string;
+}
+
+let folder: string;
+let port: number;
+let data: string;
+const started: Start[] = [];
+
+beforeAll(async () => {
+  folder = mkdtempSync(path.join(os.tmpdir(), "start-"));
+  data = path.join(folder, "data");
+  port = await freePort();
+});
+
+afterAll(async () => {
+  for (const { process: child, ended } of started) {
+    child.kill("SIGTERM");
+    await ended;
+  }
+  rmSync(folder, { recursive: true, force: true });
+});
+
+/** `npm start` without npm, over this test's own data folder. */
+function start(env: Record<string, string> = {}): Start {
+  const child = spawn(process.execPath, [path.join(ROOT, "scripts/start.js")], {
+    cwd: ROOT,
+    env: { ...process.env, FOGLINE_DATA: data, PORT: String(port), TMPDIR: folder, ...env },
+    stdio: ["ignore", "pipe", "pipe"],
+  });
+  let said = "";
+  for (const stream of [child.stdout, child.stderr]) stream.on("data", (chunk) => (said += chunk));
+  const ended = new Promise<number | null>((resolve) => child.once("close", resolve));
+  const run = { process: child, ended, output: () => said };
+  started.push(run);
+  return run;
+}
+
+async function untilServing(run: Start): Promise<void> {
+  let over = false;
+  void run.ended.then(() => (over = true));
+  while (!run.output().includes("Fogline is ready")) {
+    if (over) throw new Error(`npm start ended: ${run.output()}`);
+    await new Promise((resolve) => setTimeout(resolve, 100));
+  }
+}
+
+/** Command lines of all processes that have to do with this test's data folder. */
+function processesOverData(): string[] {
+  return readdirSync("/proc")
+    .filter((name) => /^\d+$/.test(name))
+    .flatMap((pid) => {
+      try {
+        return [readFileSync(`/proc/${pid}/cmdline`, "utf8").replaceAll("\0", " ")];
+      } catch {
+        return [];
+      }
+    })
+    .filter((line) => line.includes(data));
+}
+
+const answer = async (address: string) =>
+  (await fetch(`http://127.0.0.1:${port}${address}`)).status;
+
+it("a first start makes the database, seeds the demonstration, serves, and says how", async () => {
+  const run = start();
+  await untilServing(run);
+  expect(run.output()).toContain(`http://127.0.0.1:${port}`);
+  for (const who of ["reader", "contributor", "editor", "maintainer"])
+    expect(run.output()).toContain(`${who}@fogline.example`);
+  expect(run.output()).toMatch(/^ +\d+\.\d s {2}database migrated, demonstration seeded$/m);
+  expect([await answer("/readyz"), await answer("/")]).toEqual([200, 200]);
+});
+
+it("the password is in a file for its owner only, and on no command line", () => {
+  const secret = path.join(data, "secret.json");
+  const { password } = JSON.parse(readFileSync(secret, "utf8"));
+  expect(password).toMatch(/^[0-9a-f]{48}$/);
+  expect((statSync(secret).mode & 0o777).toString(8)).toBe("600");
+  const lines = processesOverData();
+  expect(lines.some((line) => line.includes("mariadbd"))).toBe(true);
+  expect(lines.join("\n")).not.toContain(password);
+});
+
+it("killed without warning, it leaves a database that the next start takes up, unseeded", async () => {
+  const [first] = started;
+  first?.process.kill("SIGKILL");
+  await first?.ended;
+  const next = start();
+  await untilServing(next);
+  expect(next.output()).toContain("maintainer@fogline.example");
+  expect(next.output()).not.toContain("seeded");
+  expect(await answer("/readyz")).toBe(200);
+});
+
+it("SIGTERM stops everything it started, with exit code 0, and leaves no temporary folder", async () => {
+  const run = started.at(-1) as Start;
+  run.process.kill("SIGTERM");
+  expect(await run.ended).toBe(0);
+  expect(run.output()).toContain("Stopped.");
+  expect(processesOverData()).toEqual([]);
+  await expect(answer("/healthz")).rejects.toThrow();
+  expect(readdirSync(folder)).toEqual(["data"]);
+});
+
+it("stopped in the middle of a step, it stops what that step had started too", async () => {
+  const run = start();
+  while (!run.output().includes("MariaDB started"))
+    await new Promise((resolve) => setTimeout(resolve, 20));
+  run.process.kill("SIGINT");
+  expect(await run.ended).toBe(130);
+  expect(processesOverData()).toEqual([]);
+});
+
+it("DEMO=0 refuses a registry that holds the demonstration, and a fresh one starts empty", async () => {
+  const refused = start({ DEMO: "0" });
+  expect(await refused.ended).toBe(1);
+  expect(refused.output()).toContain("This database holds the demonstration");
+  rmSync(data, { recursive: true });
+  const empty = start({ DEMO: "0" });
+  await untilServing(empty);
+  expect(empty.output()).toContain("npm run grant");
+  empty.process.kill("SIGTERM");
+  await empty.ended;
+  // Forgetting DEMO=0 later must not fill a real registry with invented data.
+  const later = start();
+  await untilServing(later);
+  expect(later.output()).not.toContain("@fogline.example");
+  later.process.kill("SIGTERM");
+  expect(await later.ended).toBe(0);
+  expect(existsSync(path.join(data, "running.json"))).toBe(false);
+});
