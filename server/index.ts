@@ -2,12 +2,15 @@ import "reflect-metadata";
 
 import { createServer, type Server } from "node:http";
 
+import type { DataSource } from "typeorm";
+
 import { buildApp } from "~server/app";
 import { ConfigError, readConfig, type Config } from "~server/config/config";
 import { createDataSource } from "~server/database/dataSource";
 import { DatabaseProblem, prepareDatabase } from "~server/database/prepare";
+import { sweep } from "~server/database/housekeeping";
 import { isDemonstration } from "~server/database/settings";
-import { createLogger, failure } from "~server/logging/logger";
+import { createLogger, failure, type Logger } from "~server/logging/logger";
 import { startMailCatcher } from "~server/mail/catcher";
 import { startOutbox } from "~server/mail/outboxWorker";
 import { hasWebExport } from "~server/static/webClient";
@@ -20,6 +23,7 @@ class StartProblem extends Error {
 /** Requests under way have this long to end once the server was told to stop. */
 const GRACE_MS = 8000;
 const REQUEST_MS = 120_000;
+const SWEEP_MS = 3_600_000;
 
 type Closing = () => Promise<unknown>;
 
@@ -38,6 +42,7 @@ async function start(config: Config, open: Closing[]): Promise<void> {
   });
   await prepareDatabase(dataSource);
 
+  open.push(keepSwept(dataSource, logger));
   const { app, close } = await buildApp(config, dataSource, logger);
   open.push(close);
 
@@ -58,6 +63,22 @@ async function start(config: Config, open: Closing[]): Promise<void> {
   await listen(server, config);
   open.push(() => closeServer(server));
   logger.info({ host: config.host, port: config.port }, "listening");
+}
+
+/** Sweeps now and every hour, until the returned function is called. */
+function keepSwept(dataSource: DataSource, logger: Logger): Closing {
+  let running: Promise<void> = Promise.resolve();
+  const run = (): void => {
+    running = sweep(dataSource.manager).catch((error: unknown) => {
+      logger.error(failure(error), "housekeeping failed");
+    });
+  };
+  run();
+  const timer = setInterval(run, SWEEP_MS);
+  return () => {
+    clearInterval(timer);
+    return running;
+  };
 }
 
 function listen(server: Server, { host, port }: Config): Promise<void> {

@@ -1,4 +1,4 @@
-import type { ErrorRequestHandler, Response } from "express";
+import type { ErrorRequestHandler, Request, Response } from "express";
 
 import { HttpProblem } from "~server/common/errors";
 import { failure, type Logger } from "~server/logging/logger";
@@ -24,16 +24,23 @@ const PARSER_PROBLEMS: Record<string, HttpProblem> = {
   "charset.unsupported": new HttpProblem(415, "BAD_REQUEST", "Send the body as UTF-8."),
 };
 
-export function sendProblem(res: Response, problem: HttpProblem): void {
+/** Answers in the form of the address: GraphQL's list of errors, or one flat object. */
+function sendProblem(req: Request, res: Response, problem: HttpProblem): void {
+  const { code, message } = problem;
+  const graphql = req.originalUrl.split("?", 1)[0] === "/graphql";
   res
     .status(problem.status)
     .set(problem.headers)
-    .json({ code: problem.code, message: problem.message, requestId: requestId() });
+    .json(
+      graphql
+        ? { errors: [{ message, extensions: { code, requestId: requestId() } }] }
+        : { code, message, requestId: requestId() },
+    );
 }
 
 /** Last in the chain: words for what was expected, INTERNAL and a line in the log for the rest. */
 export function errorHandler(logger: Logger): ErrorRequestHandler {
-  return (error: unknown, _req, res, next) => {
+  return (error: unknown, req, res, next) => {
     if (res.headersSent) {
       next(error);
       return;
@@ -42,7 +49,7 @@ export function errorHandler(logger: Logger): ErrorRequestHandler {
     if (problem.status >= 500) {
       logger.error({ id: requestId(), ...failure(error) }, "request failed");
     }
-    sendProblem(res, problem);
+    sendProblem(req, res, problem);
   };
 }
 

@@ -23,6 +23,8 @@ export const MAX_TOKENS = 2000;
 export const MAX_COST = 500_000;
 /** Rows a list is taken to have when it does not say. */
 const LIST_ROWS = 10;
+/** Rows of a page whose size is not given. */
+const FULL_PAGE = 500;
 
 /** Depth, aliases and directives, refused while the document is validated. */
 export function shapeGuards(): Pick<
@@ -30,7 +32,8 @@ export function shapeGuards(): Pick<
   "validationRules" | "plugins"
 > {
   const { validationRules, plugins } = new ApolloArmor({
-    maxDepth: { n: MAX_DEPTH },
+    // A fragment is a way to write, not a level of what is asked.
+    maxDepth: { n: MAX_DEPTH, flattenFragments: true },
     maxAliases: { n: MAX_ALIASES },
     maxDirectives: { n: MAX_DIRECTIVES },
     // Cost is counted below, with the sizes that lists are asked for.
@@ -49,10 +52,11 @@ function isList(type: GraphQLOutputType): boolean {
 
 /** One a field; a page costs its rows, any other list a fixed guess. */
 const byRows: ComplexityEstimator = ({ args, field, childComplexity }) => {
-  const limit = (args as { limit?: unknown }).limit;
-  if (typeof limit === "number") {
+  if (field.args.some(({ name }) => name === "limit")) {
+    const { limit } = args as { limit?: unknown };
+    const rows = typeof limit === "number" ? Math.max(0, limit) : FULL_PAGE;
     // The list inside is guessed at LIST_ROWS already.
-    return 1 + childComplexity * Math.max(1, Math.ceil(limit / LIST_ROWS));
+    return 1 + childComplexity * Math.max(1, Math.ceil(rows / LIST_ROWS));
   }
   return 1 + childComplexity * (isList(field.type) ? LIST_ROWS : 1);
 };

@@ -85,8 +85,11 @@ it("a body over 256 kB is refused with 413, one just below is read", async () =>
   const { status, body } = await agent.post("/graphql").send(padded(270_000));
   expect(status).toBe(413);
   expect(body).toEqual({
-    code: "TOO_LARGE",
-    message: expect.any(String),
-    requestId: expect.any(String),
+    errors: [
+      {
+        message: "That is too large to be taken.",
+        extensions: { code: "TOO_LARGE", requestId: expect.any(String) },
+      },
+    ],
   });
 });

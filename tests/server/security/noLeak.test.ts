@@ -121,7 +121,7 @@ it.each([
     .set("Content-Type", "application/json")
     .send(body);
   expect(response.status).toBe(400);
-  const code = response.body.code ?? response.body.errors[0].extensions.code;
+  const { code } = response.body.errors[0].extensions;
   expect(code).toMatch(/^(BAD_REQUEST|BAD_USER_INPUT|GRAPHQL_\w+|OPERATION_RESOLUTION_FAILURE)$/);
   expect(response.text).not.toMatch(/node_modules|\bat \S+ \(|stacktrace|\.ts\b|\.js\b/i);
 });

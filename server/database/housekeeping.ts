@@ -1,0 +1,25 @@
+import { IsNull, LessThan, type EntityManager } from "typeorm";
+
+import { MailToken } from "~server/account/mailToken.entity";
+import { User } from "~server/account/user.entity";
+import { CaughtMailRow } from "~server/mail/caughtMail.entity";
+import { OutboxMail } from "~server/mail/outboxMail.entity";
+
+const DAY_MS = 86_400_000;
+/** A mail that was sent or given up is kept this long, for questions about it. */
+const MAIL_DAYS = 30;
+/** An address nobody confirmed is forgotten; its owner may never have heard of us. */
+const UNCONFIRMED_DAYS = 30;
+
+/** Removes what has no use any more: old links, sent mails, registrations never confirmed. */
+export async function sweep(manager: EntityManager, now = new Date()): Promise<void> {
+  const before = (days: number): Date => new Date(now.getTime() - days * DAY_MS);
+  await manager.delete(MailToken, { expiresAt: LessThan(now) });
+  await manager.delete(OutboxMail, { deliveredAt: LessThan(before(MAIL_DAYS)) });
+  await manager.delete(OutboxMail, { failedAt: LessThan(before(MAIL_DAYS)) });
+  await manager.delete(CaughtMailRow, { at: LessThan(before(MAIL_DAYS)) });
+  await manager.delete(User, {
+    confirmedAt: IsNull(),
+    createdAt: LessThan(before(UNCONFIRMED_DAYS)),
+  });
+}
