@@ -35,6 +35,8 @@ const MARIADB_CLIENT = {
   programs: ["mariadb", "mariadb-dump"],
   packages: ["mariadb-client-core", "mariadb-client"],
 };
+/** The real BibTeX, which the tests run over what is handed out as .bib. */
+const BIBTEX = { title: "BibTeX", programs: ["bibtex"], packages: ["texlive-binaries"] };
 const CHROMIUM = { title: "Chromium", programs: ["chromium"], packages: ["chromium"] };
 
 /**
@@ -157,5 +159,6 @@ module.exports = {
   spaceNeeded,
   MARIADB_SERVER,
   MARIADB_CLIENT,
+  BIBTEX,
   CHROMIUM,
 };

@@ -53,6 +53,7 @@ async function test({ projects, jest }, add) {
   install.requireSpace(fromRoot(), install.spaceNeeded({ database: true }));
 
   await install.ensurePrograms(install.MARIADB_SERVER, log);
+  if (projects.includes("server")) await install.ensurePrograms(install.BIBTEX, log);
   if (withBrowser) await install.ensurePrograms(install.CHROMIUM, log);
   await withProject(async () => {
     await install.ensureModules(log);

@@ -296,7 +296,7 @@ describe("all or nothing", () => {
         [
           "-r",
           "@swc-node/register",
-          join(__dirname, "importChild.ts"),
+          join(__dirname, "import.child.ts"),
           who.user.id,
           input.csvUploadId,
           input.bibUploadId,
