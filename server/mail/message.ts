@@ -26,7 +26,7 @@ export function readMessage(raw: Buffer): ReadMessage {
 
 function decodeBody(body: string, encoding: string): Buffer {
   if (encoding === "base64") return Buffer.from(body, "base64");
-  if (encoding === "quoted-printable") return quotedPrintable(body.replace(/[ \t]*=\r\n/g, ""));
+  if (encoding === "quoted-printable") return quotedPrintable(body.replace(/=[ \t]*\r\n/g, ""));
   return Buffer.from(body, "latin1");
 }
 

@@ -59,18 +59,25 @@ async function refusing(responseCode: number): Promise<string> {
   return `smtp://127.0.0.1:${(smtp.server.address() as AddressInfo).port}`;
 }
 
-it("a mail arrives as it was written: accents, minus, long lines, links and blank lines", async () => {
-  const text = [
-    "Dear Wëronika Łabędź,",
-    "",
-    `x_HI = 0.42 +0.19 −0.17 ${"at z = 7.51, ".repeat(20)}`,
-    "",
-    `https://fogline.test/account/confirm?token=${"aB3_-".repeat(20)}`,
-    ".",
-    "= sign, and a last line",
-    "",
-  ].join("\n");
-  const subject = `Rückgabe von FL-0042.1 – Lyα ${"long ".repeat(20)}`.trim();
+// The sender chooses the encoding by the content: each text is one that it encodes differently.
+it.each([
+  ["plain letters", "You have a mail", "Short, and plain.\n\nFogline\n"],
+  [
+    "long lines",
+    `Long ${"subject ".repeat(20)}end`,
+    `${"words that have to be folded ".repeat(30)}end\n.\n..\nhttps://fogline.test/?token=${"aB3_-=".repeat(30)}\n`,
+  ],
+  [
+    "a few accents",
+    "Rückgabe von FL-0042.1",
+    `Dear Łucja Østerfelt, ${"in plain words, ".repeat(20)}= end\n`,
+  ],
+  [
+    "many accents",
+    "−0.17 ≤ x ≤ +0.19 für Lyα",
+    `${"Дымка рассеивается, ясно. ".repeat(12)}\n\n雾散了\n`,
+  ],
+])("a mail arrives as it was written: %s", async (_kind, subject, text) => {
   await queueMail(manager(), { to: "w@fogline.example", subject, text });
   await worker(await catcher()).deliver();
   const [caught] = await manager().find(CaughtMailRow);
