@@ -24,7 +24,7 @@ export function bibliography(
 }
 
 /** Names of the macros that stand in the entries, in alphabetical order. */
-export function usedMacros(
+function usedMacros(
   entries: readonly string[],
   macros: Readonly<Record<string, string>>,
 ): string[] {

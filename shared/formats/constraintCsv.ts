@@ -4,7 +4,6 @@ import Papa from "papaparse";
 import { familiesOf } from "~shared/methods/vocabulary";
 import { asUsed } from "~shared/statement/asUsed";
 import type { AsUsed } from "~shared/statement/asUsed";
-import { isLimit } from "~shared/statement/relevant";
 
 import {
   commentLine,

@@ -1,6 +1,4 @@
 /** A fitting table as files: rows in and out with the reason, what each row hands to a likelihood, and the choices. */
-import canonicalize from "canonicalize";
-
 import type { ConstraintFilter } from "~shared/filter/filter";
 import { asUsed } from "~shared/statement/asUsed";
 
@@ -82,16 +80,6 @@ export function tableContent(table: TableFile) {
   };
 }
 
-/**
- * The text whose SHA-256 is the table's digest: RFC 8785 form of the content, without a clock, a digest
- * or an address in it.
- */
-export function tableDigestInput(table: TableFile): string {
-  // Through JSON once: an undefined entry and an absent one are the same content.
-  const text = canonicalize(JSON.parse(JSON.stringify(tableContent(table))));
-  return text ?? "";
-}
-
 /** The table as JSON, ended by a line feed. */
 export function tableJson(table: TableFile, digest: string): string {
   const { format, ...content } = tableContent(table);
@@ -116,7 +104,7 @@ export function tableCsv(table: TableFile, digest: string): string {
       `Filter: ${table.filter}`,
       `Rows in: ${rowsIn}; rows out: ${table.rows.length - rowsIn}`,
       `Last event: ${lastEventWords(table)}`,
-      `Digest: sha256:${digest} (over the RFC 8785 form of the content)`,
+      `Digest: sha256:${digest} (over the filter, rows, revisions and citations; no clock, name or owner)`,
       `Licence: ${table.licence}`,
       ...choiceLines(table),
       ...TABLE_CAUTIONS,

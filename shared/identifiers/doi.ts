@@ -23,8 +23,3 @@ export function normalizeDoi(text: string): string | null {
     ? bare.toLowerCase()
     : null;
 }
-
-/** Address of the paper behind a normalized DOI. */
-export function doiAddress(doi: string): string {
-  return `https://doi.org/${encodeURI(doi)}`;
-}

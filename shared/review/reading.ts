@@ -42,11 +42,6 @@ export const READING_FIELDS = [
 ] as const satisfies readonly FieldName[];
 export type ReadingField = (typeof READING_FIELDS)[number];
 
-/** Whether a field belongs to the second reading. */
-export function isReadingField(name: string): name is ReadingField {
-  return (READING_FIELDS as readonly string[]).includes(name);
-}
-
 /**
  * Fields that belong to a reading, given the quantity, species and kind chosen in it so far.
  *
@@ -56,9 +51,6 @@ export function readingFieldsFor(reading: ConstraintFields): ReadingField[] {
   const relevant = [...relevantFields(reading), "methodTags"];
   return READING_FIELDS.filter((name) => relevant.includes(name));
 }
-
-/** Fields of a submission that its reading is compared in; only for use after the reading is stored. */
-export const readingFields = readingFieldsFor;
 
 /** What a reading still lacks before it can be stored; limited to the fields asked for. */
 export function readingMissing(

@@ -55,14 +55,6 @@ export function oneMinus(text: string | null): string | null {
   return decimalText(new Big(1).minus(value), decimalPlaces(text));
 }
 
-/** Whether two texts state the same number: 0.3 and 0.30 do; two empty texts do too. */
-export function sameNumber(a: string | null, b: string | null): boolean {
-  const left = parseDecimal(a);
-  const right = parseDecimal(b);
-  if (left !== null && right !== null) return left.eq(right);
-  return (a ?? "").trim() === (b ?? "").trim();
-}
-
 /**
  * A computed double as a decimal string of at most twelve significant digits, without an exponent.
  * Twelve digits keep relative 1e-8 work exact and drop the noise of binary fractions.

@@ -1,5 +1,5 @@
 /** Reading the exact printed text: which numbers and which levels it holds. */
-import Big from "big.js";
+import type Big from "big.js";
 
 import { parseDecimal } from "./decimal";
 

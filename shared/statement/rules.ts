@@ -1,5 +1,5 @@
 /** The rules that make a record vetted, checked in the form and again on the server. */
-import Big from "big.js";
+import type Big from "big.js";
 
 import { findTag, METHOD_TAGS } from "~shared/methods/vocabulary";
 

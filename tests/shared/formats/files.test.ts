@@ -5,7 +5,7 @@ import { bibliography } from "~shared/formats/bibliography";
 import { CONSTRAINT_COLUMNS, constraintsCsv } from "~shared/formats/constraintCsv";
 import { commentLine, safeCell } from "~shared/formats/exportRow";
 import type { ExportHeader, ExportRow } from "~shared/formats/exportRow";
-import { tableCsv, tableDigestInput, tableJson } from "~shared/formats/tableFiles";
+import { tableCsv, tableJson } from "~shared/formats/tableFiles";
 import type { TableFile, TableFileRow } from "~shared/formats/tableFiles";
 import type { ConstraintFields } from "~shared/statement/fields";
 
@@ -228,22 +228,6 @@ describe("a fitting table", () => {
       used: { value: "0.42", k: expect.any(Number) },
     });
     expect(file.choices).toHaveLength(2);
-  });
-
-  it("has a digest that every content changes and no address does", () => {
-    const digest = tableDigestInput(table({ rows }));
-    expect(tableDigestInput(table({ rows, address: "elsewhere" }))).toBe(digest);
-    expect(tableDigestInput(table({ rows, licence: "CC0" }))).not.toBe(digest);
-    expect(tableDigestInput(table({ rows: rows.slice(1) }))).not.toBe(digest);
-    expect(
-      tableDigestInput(table({ rows: [tableRow({ fields: buildFields({ value: "0.420" }) })] })),
-    ).not.toBe(tableDigestInput(table()));
-  });
-
-  it("has its digest over text without blanks and with sorted names, as RFC 8785 asks", () => {
-    const text = tableDigestInput(table());
-    expect(text.startsWith('{"cautions":[')).toBe(true);
-    expect(text).not.toMatch(/":\s/);
   });
 });
 
