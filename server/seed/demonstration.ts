@@ -320,9 +320,8 @@ class Teller {
     let current = done(await reviews.storeReading(who, id, reading), "reading");
     if (record.fate === "approvedAfterCorrection" && record.comment) {
       const { field, text } = record.comment;
-      const later = this.as(record.reader, new Date(at.getTime() + HOUR_MS / 6));
       current = done(
-        await reviews.correctReading(later, id, field, submitted.fields, text),
+        await reviews.correctReading(who, id, field, submitted.fields, text),
         "correction",
       );
     }

@@ -1,0 +1,118 @@
+import { Citation } from "~server/citation/citation.entity";
+import { findApproved } from "~server/constraint/constraint.query";
+import { Revision } from "~server/constraint/revision.entity";
+import { isDemonstration } from "~server/database/settings";
+import { EventRecord } from "~server/event/event.entity";
+import { verifyChain } from "~server/event/eventLog";
+import { OutboxMail } from "~server/mail/outboxMail.entity";
+import { seedDemonstration } from "~server/seed";
+import { DEMONSTRATION_PASSWORD, PEOPLE } from "~server/seed/people";
+import { SavedTable } from "~server/table/table.entity";
+import { METHOD_FAMILIES } from "~shared/methods/vocabulary";
+import { asUsed } from "~shared/statement/asUsed";
+import { hasErrors } from "~shared/statement/rules";
+import { QUANTITIES } from "~shared/statement/fields";
+
+import { TEST_PASSWORD_COST } from "../../factories/user";
+import { startTestServer, type TestServer } from "../support/harness";
+
+// Some hundred changes of state, each with its event; a busy machine takes its time.
+jest.setTimeout(180_000);
+
+describe("the demonstration", () => {
+  let server: TestServer;
+  beforeAll(async () => {
+    server = await startTestServer();
+    expect(await seedDemonstration(server.dataSource, TEST_PASSWORD_COST)).toBe(true);
+  });
+  afterAll(() => server.stop());
+
+  const approved = () => findApproved({ database: server.dataSource, viewer: null }, {});
+
+  it("does nothing a second time, nor beside a record of somebody's own", async () => {
+    const before = await server.dataSource.manager.count(EventRecord);
+    expect(await seedDemonstration(server.dataSource, TEST_PASSWORD_COST)).toBe(false);
+    expect(await server.dataSource.manager.count(EventRecord)).toBe(before);
+    expect(await isDemonstration(server.dataSource.manager)).toBe(true);
+  });
+
+  it("shows revisions in every state of life but discarded", async () => {
+    const revisions = await server.dataSource.manager.find(Revision);
+    const states = new Set(revisions.map((revision) => revision.state));
+    expect([...states].sort()).toEqual(["approved", "draft", "inReview", "returned", "submitted"]);
+    expect((await approved()).length).toBeGreaterThanOrEqual(18);
+    // Dates are the story's, in 2026.
+    for (const revision of revisions) expect(revision.createdAt.getUTCFullYear()).toBe(2026);
+  });
+
+  it("holds every method family, quantity and statement that a paper prints in numbers", async () => {
+    const rows = await approved();
+    const families = new Set(
+      rows.flatMap(({ revision }) => revision.families.split(",").filter(Boolean)),
+    );
+    expect([...families].sort()).toEqual([...METHOD_FAMILIES].sort());
+    expect(new Set(rows.map(({ revision }) => revision.quantity))).toEqual(new Set(QUANTITIES));
+    expect([...new Set(rows.map(({ revision }) => revision.kind))].sort()).toEqual([
+      "band",
+      "lowerLimit",
+      "qualitative",
+      "twoSided",
+      "upperLimit",
+    ]);
+    const fields = rows.map(({ revision }) => revision.fields);
+    expect(fields.some((one) => one.level === "notStated")).toBe(true);
+    expect(fields.some((one) => one.level === "percent95")).toBe(true);
+    expect(fields.some((one) => one.species === "ionized")).toBe(true);
+    expect(fields.some((one) => one.species === "electron")).toBe(true);
+    expect(fields.some((one) => one.limitSigma !== null)).toBe(true);
+    expect(fields.filter((one) => one.alternativesGroup !== null)).toHaveLength(2);
+    expect(fields.filter((one) => one.dataUsed.includes("QV 0719+31")).length).toBeGreaterThan(2);
+  });
+
+  it("approves nothing with an error, and everything but the qualitative can be used", async () => {
+    for (const { revision } of await approved()) {
+      expect(hasErrors(revision.findings)).toBe(false);
+      if (revision.kind !== "qualitative") expect(asUsed(revision.fields)).not.toBeNull();
+    }
+  });
+
+  it("names only papers under the prefix reserved for examples", async () => {
+    for (const citation of await server.dataSource.manager.find(Citation)) {
+      expect(citation.doi ?? "10.5555/none").toMatch(/^10\.5555\//);
+      expect(citation.arxiv).toBeNull();
+      expect(citation.bibcode).toBeNull();
+    }
+  });
+
+  it("has a real event log and sends no mail", async () => {
+    expect(await verifyChain(server.dataSource.manager)).toMatchObject({ intact: true });
+    const events = await server.dataSource.manager.find(EventRecord, {
+      order: { sequence: "ASC" },
+    });
+    const times = events.map((event) => event.at.getTime());
+    expect(times).toEqual([...times].sort((a, b) => a - b));
+    expect(await server.dataSource.manager.count(OutboxMail)).toBe(0);
+  });
+
+  it("saves a table in which alternatives, shared sightlines and unstated levels are settled", async () => {
+    const [table] = await server.dataSource.manager.find(SavedTable);
+    expect(table?.name).toBe("Damping wings, 6 to 8");
+    expect(table?.snapshot.rows.some((row) => row.included)).toBe(true);
+    expect(table?.snapshot.rows.filter((row) => !row.included).map((row) => row.reason)).toEqual(
+      expect.arrayContaining([expect.stringMatching(/^Shares QV /)]),
+    );
+  });
+
+  it("lets each of its people sign in", async () => {
+    for (const person of Object.values(PEOPLE)) {
+      const { data } = await server.graphql(
+        server.agent(),
+        `mutation ($email: String!, $password: String!) {
+          signIn(email: $email, password: $password) { __typename ... on Viewer { roles } } }`,
+        { email: person.email, password: DEMONSTRATION_PASSWORD },
+      );
+      expect(data.signIn.__typename).toBe("Viewer");
+      expect([...data.signIn.roles].sort()).toEqual([...person.roles].sort());
+    }
+  });
+});
