@@ -33,6 +33,8 @@ export function Shell({ children }: { children: ReactNode }) {
   const colors = useColors();
   const wide = useLayoutClass() === "wide";
   const path = usePathname();
+  // A form with steps has its own lower edge; its way back leads to the desk and the bar.
+  const atWork = useLayoutClass() === "compact" && /^\/desk\/(submit|review)\//.test(path);
   const skip = (
     <a href="#content" className="fogline-skip">
       Skip to the content
@@ -65,17 +67,19 @@ export function Shell({ children }: { children: ReactNode }) {
     <View style={[styles.fill, { backgroundColor: colors.paper }]}>
       {skip}
       <View style={styles.fill}>{children}</View>
-      <View
-        role="navigation"
-        aria-label="Main"
-        style={[styles.bar, { backgroundColor: colors.surface, borderColor: colors.hairline }]}
-      >
-        {PLACES.map((place) => (
-          <View key={place.href} style={styles.barItem}>
-            <RailItem place={place} here={isAt(path, place)} />
-          </View>
-        ))}
-      </View>
+      {atWork ? null : (
+        <View
+          role="navigation"
+          aria-label="Main"
+          style={[styles.bar, { backgroundColor: colors.surface, borderColor: colors.hairline }]}
+        >
+          {PLACES.map((place) => (
+            <View key={place.href} style={styles.barItem}>
+              <RailItem place={place} here={isAt(path, place)} />
+            </View>
+          ))}
+        </View>
+      )}
     </View>
   );
 }

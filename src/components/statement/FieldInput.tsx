@@ -144,9 +144,22 @@ function Input(props: FieldInputProps) {
         </WithError>
       );
     case "methodTags":
-      return <MethodPicker label={label} tags={fields.methodTags} error={error} onChange={(tags) => set("methodTags", tags)} />;
+      return (
+        <MethodPicker
+          label={label}
+          tags={fields.methodTags}
+          error={error}
+          onChange={(tags) => set("methodTags", tags)}
+        />
+      );
     case "conditionedOn":
-      return <ConditionPicker label={label} values={fields.conditionedOn} onChange={(values) => set("conditionedOn", values)} />;
+      return (
+        <ConditionPicker
+          label={label}
+          values={fields.conditionedOn}
+          onChange={(values) => set("conditionedOn", values)}
+        />
+      );
     case "dataUsed":
       return <DataUsed {...props} label={label} />;
     case "modelTags":
@@ -176,7 +189,11 @@ function Input(props: FieldInputProps) {
         />
       );
     default:
-      return CHOICES[name] ? <EnumChoice {...props} label={label} /> : <TextInput {...props} label={label} />;
+      return CHOICES[name] ? (
+        <EnumChoice {...props} label={label} />
+      ) : (
+        <TextInput {...props} label={label} />
+      );
   }
 }
 
@@ -205,16 +222,21 @@ function KindSegments({ fields, set, label }: FieldInputProps & { label: string 
       options={OFFERED_KINDS.map(({ kind, label: word }) => ({
         value: kind,
         label: word,
-        glyph: (
-          <KindGlyph kind={kind} color={fields.kind === kind ? colors.primary : colors.ink} />
-        ),
+        glyph: <KindGlyph kind={kind} color={fields.kind === kind ? colors.primary : colors.ink} />,
       }))}
       onChange={(value) => set("kind", value as StatementKind)}
     />
   );
 }
 
-function EnumChoice({ name, fields, set, error, hint, label }: FieldInputProps & { label: string }) {
+function EnumChoice({
+  name,
+  fields,
+  set,
+  error,
+  hint,
+  label,
+}: FieldInputProps & { label: string }) {
   const { values, words } = CHOICES[name]!;
   return (
     <Choice
@@ -229,7 +251,15 @@ function EnumChoice({ name, fields, set, error, hint, label }: FieldInputProps &
   );
 }
 
-function TextInput({ name, fields, set, error, hint, label, onBlur }: FieldInputProps & { label: string }) {
+function TextInput({
+  name,
+  fields,
+  set,
+  error,
+  hint,
+  label,
+  onBlur,
+}: FieldInputProps & { label: string }) {
   const text = (fields[name] as string | null) ?? "";
   const numeric = isNumberField(name) || name === "digitizingError";
   return (
@@ -241,7 +271,12 @@ function TextInput({ name, fields, set, error, hint, label, onBlur }: FieldInput
       inputMode={numeric ? "decimal" : undefined}
       multiline={LONG.has(name)}
       maxLength={name === "printedText" ? PRINTED_TEXT_LONGEST : undefined}
-      hint={hint ?? (name === "printedText" ? `Exactly as it stands, ${text.length} of ${PRINTED_TEXT_LONGEST}` : undefined)}
+      hint={
+        hint ??
+        (name === "printedText"
+          ? `Exactly as it stands, ${text.length} of ${PRINTED_TEXT_LONGEST}`
+          : undefined)
+      }
       error={error}
       onBlur={onBlur}
       onChangeText={(next) => set(name, (next === "" ? null : next) as never)}

@@ -3,7 +3,15 @@ import Svg, { Circle, Line, Path, Rect } from "react-native-svg";
 import type { StatementKind } from "~shared/statement/fields";
 
 /** How a statement is drawn in the chart, as a sign of 28 by 28. */
-export function KindGlyph({ kind, color, size = 28 }: { kind: StatementKind; color: string; size?: number }) {
+export function KindGlyph({
+  kind,
+  color,
+  size = 28,
+}: {
+  kind: StatementKind;
+  color: string;
+  size?: number;
+}) {
   return (
     <Svg width={size} height={size} viewBox="0 0 28 28" aria-hidden>
       <Strokes kind={kind} color={color} />

@@ -9,7 +9,12 @@ import { Marker } from "@/components/Marker";
 import { Sheet } from "@/components/Sheet";
 import { Block, Caption, Dense, Label } from "@/components/Text";
 import { useColors } from "@/theme/ThemeProvider";
-import { FAMILY_NAMES, METHOD_FAMILIES, METHOD_TAGS, type MethodTag } from "~shared/methods/vocabulary";
+import {
+  FAMILY_NAMES,
+  METHOD_FAMILIES,
+  METHOD_TAGS,
+  type MethodTag,
+} from "~shared/methods/vocabulary";
 
 function matches(tag: MethodTag, query: string): boolean {
   const words = query.toLowerCase().split(/\s+/).filter(Boolean);
@@ -43,7 +48,11 @@ export function MethodPicker({
       {chosen.map((tag) => (
         <View key={tag.tag} style={{ flexDirection: "row", alignItems: "center", gap: 8 }}>
           <Marker family={tag.family} size={12} />
-          <Chip label={tag.name} selected onRemove={() => onChange(tags.filter((one) => one !== tag.tag))} />
+          <Chip
+            label={tag.name}
+            selected
+            onRemove={() => onChange(tags.filter((one) => one !== tag.tag))}
+          />
           <Caption style={{ flexShrink: 1 }}>{FAMILY_NAMES[tag.family]}</Caption>
         </View>
       ))}
@@ -58,7 +67,12 @@ export function MethodPicker({
       {error ? <Dense style={{ color: colors.emberText }}>{error}</Dense> : null}
       <Sheet visible={open} title="Methods" onClose={() => setOpen(false)}>
         <View style={{ gap: 12 }}>
-          <Field label="Search the methods" value={query} onChangeText={setQuery} autoComplete="off" />
+          <Field
+            label="Search the methods"
+            value={query}
+            onChangeText={setQuery}
+            autoComplete="off"
+          />
           {shown.length === 0 ? (
             <Dense muted>
               No method of the vocabulary has these words. Choose the nearest and describe it in the

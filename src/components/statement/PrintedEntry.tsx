@@ -31,7 +31,7 @@ export function PrintedEntry({ fields, set, asked, error, under, onBlur }: Print
   const shown = (name: FieldName) => (asked?.(name) ?? true) && isRelevant(name, fields);
   const input = (name: FieldName, label?: string, hint?: string) =>
     shown(name) ? (
-      <View key={name} style={{ flex: 1, minWidth: 0, gap: 4 }}>
+      <View key={name} style={{ minWidth: 0, gap: 4 }}>
         <FieldInput
           name={name}
           fields={fields}
@@ -47,7 +47,13 @@ export function PrintedEntry({ fields, set, asked, error, under, onBlur }: Print
   const row = (...inputs: (ReactNode | null)[]) => {
     const present = inputs.filter((one) => one !== null);
     return present.length === 0 ? null : (
-      <View style={{ flexDirection: "row", gap: 12, alignItems: "flex-start" }}>{present}</View>
+      <View style={{ flexDirection: "row", gap: 12, alignItems: "flex-start" }}>
+        {present.map((one, index) => (
+          <View key={index} style={{ flex: 1, minWidth: 0 }}>
+            {one}
+          </View>
+        ))}
+      </View>
     );
   };
 
@@ -59,7 +65,7 @@ export function PrintedEntry({ fields, set, asked, error, under, onBlur }: Print
       {input("kind", "Statement")}
       {kind === "twoSided" && shown("value") ? (
         <View style={{ flexDirection: "row", gap: 12, alignItems: "center" }}>
-          {input("value", "Value")}
+          <View style={{ flex: 1, minWidth: 0 }}>{input("value", "Value")}</View>
           {shown("plus") || shown("minus") ? (
             <View style={{ flex: 1, minWidth: 0, gap: 8 }}>
               {row(input("plus", "+ plus"))}
@@ -68,11 +74,18 @@ export function PrintedEntry({ fields, set, asked, error, under, onBlur }: Print
           ) : null}
         </View>
       ) : (
-        row(kind === "twoSided" ? input("plus", "+ plus") : null, kind === "twoSided" ? input("minus", "− minus") : null)
+        row(
+          kind === "twoSided" ? input("plus", "+ plus") : null,
+          kind === "twoSided" ? input("minus", "− minus") : null,
+        )
       )}
       {limit ? <LimitEntry {...{ fields, set, input, row, shown }} /> : null}
       {kind === "band" ? row(input("bandLow", "Band from"), input("bandHigh", "Band to")) : null}
-      {row(input("level", "Level"), input("levelPercent", "Level in percent"), input("estimator", "Estimator"))}
+      {row(
+        input("level", "Level"),
+        input("levelPercent", "Level in percent"),
+        input("estimator", "Estimator"),
+      )}
       {row(input("rangeLow", "From redshift"), input("rangeHigh", "To redshift"))}
       {row(input("fraction", "At the fraction"))}
       {row(input("fractionFrom", "From fraction"), input("fractionTo", "To fraction"))}
@@ -120,7 +133,12 @@ function LimitEntry({
     }
   };
   const both = shown("value") && shown("limitBase");
-  if (!both) return row(input("value", "Limit"), input("limitBase", "Base"), input("limitSigma", "Own sigma"));
+  if (!both)
+    return row(
+      input("value", "Limit"),
+      input("limitBase", "Base"),
+      input("limitSigma", "Own sigma"),
+    );
   return (
     <View style={{ gap: 16 }}>
       <Segments

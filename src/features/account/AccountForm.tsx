@@ -5,7 +5,15 @@ import { Notice } from "@/components/Notice";
 import { Screen } from "@/layout/Screen";
 
 /** The frame of the pages around signing in: one column, a real form, so that Enter sends it. */
-export function AccountPage({ title, subtitle, children }: { title: string; subtitle?: string; children: ReactNode }) {
+export function AccountPage({
+  title,
+  subtitle,
+  children,
+}: {
+  title: string;
+  subtitle?: string;
+  children: ReactNode;
+}) {
   return (
     <Screen title={title} subtitle={subtitle} back="/">
       <View style={{ width: "100%", maxWidth: 440, gap: 24 }}>{children}</View>

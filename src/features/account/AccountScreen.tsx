@@ -122,7 +122,12 @@ function Profile({ viewer }: { viewer: Omit<ViewerPartsFragment, "__typename"> }
           error={outcome.at("orcid")}
           onSubmit={() => void send()}
         />
-        <Button kind="tonal" label="Save the profile" busy={outcome.busy} onPress={() => void send()} />
+        <Button
+          kind="tonal"
+          label="Save the profile"
+          busy={outcome.busy}
+          onPress={() => void send()}
+        />
         {outcome.good ? <Notice grade="done">The profile is saved.</Notice> : null}
       </Form>
     </View>
@@ -171,7 +176,12 @@ function Password() {
           error={outcome.at("next")}
           onSubmit={() => void send()}
         />
-        <Button kind="tonal" label="Change the password" busy={outcome.busy} onPress={() => void send()} />
+        <Button
+          kind="tonal"
+          label="Change the password"
+          busy={outcome.busy}
+          onPress={() => void send()}
+        />
         {outcome.good ? <Notice grade="done">{outcome.good.message}</Notice> : null}
       </Form>
     </View>
@@ -215,7 +225,13 @@ function SignOut() {
   };
   return (
     <View style={{ gap: 12 }}>
-      <Button kind="outline" icon="logout" label="Sign out" busy={loading} onPress={() => void send()} />
+      <Button
+        kind="outline"
+        icon="logout"
+        label="Sign out"
+        busy={loading}
+        onPress={() => void send()}
+      />
       {problem ? <Notice grade="error">{problem}</Notice> : null}
     </View>
   );

@@ -52,7 +52,12 @@ function RequestMail() {
             error={outcome.at("email")}
             onSubmit={() => void send()}
           />
-          <Button kind="filled" label="Send the mail" busy={outcome.busy} onPress={() => void send()} />
+          <Button
+            kind="filled"
+            label="Send the mail"
+            busy={outcome.busy}
+            onPress={() => void send()}
+          />
         </Form>
       )}
       <View style={{ alignItems: "flex-start" }}>
@@ -100,7 +105,12 @@ function SetPassword({ token }: { token: string }) {
           error={outcome.at("next")}
           onSubmit={() => void send()}
         />
-        <Button kind="filled" label="Set the password" busy={outcome.busy} onPress={() => void send()} />
+        <Button
+          kind="filled"
+          label="Set the password"
+          busy={outcome.busy}
+          onPress={() => void send()}
+        />
       </Form>
       {outcome.problem ? (
         <View style={{ alignItems: "flex-start" }}>

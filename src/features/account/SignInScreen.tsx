@@ -124,7 +124,12 @@ function DemonstrationAccounts({ onUse }: { onUse: (email: string) => void }) {
       {DEMONSTRATION_ACCOUNTS.map(({ role, email }) => (
         <View
           key={email}
-          style={{ flexDirection: "row", alignItems: "center", justifyContent: "space-between", gap: 8 }}
+          style={{
+            flexDirection: "row",
+            alignItems: "center",
+            justifyContent: "space-between",
+            gap: 8,
+          }}
         >
           <View style={{ flex: 1, minWidth: 0 }}>
             <Body>{role}</Body>

@@ -24,7 +24,9 @@ export interface Outcome<Good> {
  *
  * @param fields - Names of the form's entries; a refusal of any other name stands below the form.
  */
-export function useOutcome<Good extends { __typename: string }>(fields: readonly string[]): Outcome<Good> {
+export function useOutcome<Good extends { __typename: string }>(
+  fields: readonly string[],
+): Outcome<Good> {
   const [busy, setBusy] = useState(false);
   // Enter and a press can come in one tick, before the state says that one is under way.
   const underWay = useRef(false);

@@ -46,7 +46,12 @@ export function MySubmissions() {
       >
         <Section>My constraints</Section>
         <View style={{ flexDirection: "row", flexWrap: "wrap", gap: 8 }}>
-          <Button kind="outline" icon="file-upload-outline" label="Import a file" href="/desk/import" />
+          <Button
+            kind="outline"
+            icon="file-upload-outline"
+            label="Import a file"
+            href="/desk/import"
+          />
           <Button kind="filled" icon="plus" label="New constraint" href="/desk/submit/new" />
         </View>
       </View>
@@ -99,7 +104,9 @@ function Row({ row, first }: { row: Mine; first: boolean }) {
       first={first}
     >
       <View style={{ flexDirection: "row", flexWrap: "wrap", alignItems: "center", gap: 8 }}>
-        <Mono style={{ fontSize: 14 }}>{row.ordinal > 1 ? `${row.number}.${row.ordinal}` : row.number}</Mono>
+        <Mono style={{ fontSize: 14 }}>
+          {row.ordinal > 1 ? `${row.number}.${row.ordinal}` : row.number}
+        </Mono>
         <StatusPill state={row.state} />
       </View>
       <Dense style={{ fontWeight: "600" }}>{paper}</Dense>

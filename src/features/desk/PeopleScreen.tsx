@@ -72,7 +72,10 @@ function People() {
         setOutcome({ good: true, text: `${person.nameOnPapers} ${word}.` });
         if (person.id === viewer?.id) await refetchSession();
       } else {
-        setOutcome({ good: false, text: result?.message ?? "The server gave no answer. Try again." });
+        setOutcome({
+          good: false,
+          text: result?.message ?? "The server gave no answer. Try again.",
+        });
       }
     } catch (failure) {
       setOutcome({ good: false, text: userMessage(failure) });
@@ -89,9 +92,7 @@ function People() {
         inputMode="search"
         autoComplete="off"
       />
-      {outcome ? (
-        <Notice grade={outcome.good ? "done" : "error"}>{outcome.text}</Notice>
-      ) : null}
+      {outcome ? <Notice grade={outcome.good ? "done" : "error"}>{outcome.text}</Notice> : null}
       {loading && !people ? <Loading label="Fetching people" /> : null}
       {error && !people ? <Failed error={error} onRetry={() => void refetch()} /> : null}
       {people && people.length === 0 ? (
@@ -146,9 +147,7 @@ const MAY: Record<Role, string> = {
 };
 
 function consequence({ role, grant }: Asked): string {
-  return grant
-    ? MAY[role]
-    : "What was done in this role stays on record. It can be granted again.";
+  return grant ? MAY[role] : "What was done in this role stays on record. It can be granted again.";
 }
 
 function PersonRow({

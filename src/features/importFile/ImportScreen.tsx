@@ -91,7 +91,13 @@ function Import() {
         label="Read the files"
         busy={work.busy}
         disabledBecause={
-          csv && bib ? undefined : csv ? "Pick the .bib file too." : bib ? "Pick the CSV file too." : "Pick both files."
+          csv && bib
+            ? undefined
+            : csv
+              ? "Pick the .bib file too."
+              : bib
+                ? "Pick the CSV file too."
+                : "Pick both files."
         }
         onPress={() => void read()}
       />
@@ -134,7 +140,9 @@ function Import() {
             kind="filled"
             label={preview.good === 1 ? "Create one draft" : `Create ${preview.good} drafts`}
             busy={work.busy}
-            disabledBecause={preview.good === 0 ? "No row of this list is new and good." : undefined}
+            disabledBecause={
+              preview.good === 0 ? "No row of this list is new and good." : undefined
+            }
             onPress={() => void work.run()}
           />
         )}
@@ -188,7 +196,11 @@ function Created({ done }: { done: NonNullable<ReturnType<typeof useImport>["don
       </Dense>
       <View style={{ flexDirection: "row", flexWrap: "wrap", gap: 12 }}>
         {submissionIds[0] ? (
-          <Button kind="filled" label="Open the first draft" href={`/desk/submit/${submissionIds[0]}`} />
+          <Button
+            kind="filled"
+            label="Open the first draft"
+            href={`/desk/submit/${submissionIds[0]}`}
+          />
         ) : null}
         <Button kind="outline" label="To the desk" href="/desk" />
       </View>

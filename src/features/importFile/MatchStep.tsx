@@ -88,7 +88,9 @@ export function MatchStep({
                     <View style={phone ? undefined : { width: 260 }}>
                       <Mono style={{ fontSize: 15 }}>{word.word}</Mono>
                     </View>
-                    <View style={{ flex: phone ? undefined : 1, maxWidth: phone ? undefined : 420 }}>
+                    <View
+                      style={{ flex: phone ? undefined : 1, maxWidth: phone ? undefined : 420 }}
+                    >
                       <Choice
                         label={`Meaning of ${word.word}`}
                         value={valueOf(match, word)}

@@ -24,7 +24,10 @@ function outcomeOf({ outcome }: Row): Outcome {
   return /already/i.test(outcome) ? "alreadyHere" : "good";
 }
 
-const OUTCOMES: Record<Outcome, { word: string; icon: "check" | "close-circle-outline" | "equal" }> = {
+const OUTCOMES: Record<
+  Outcome,
+  { word: string; icon: "check" | "close-circle-outline" | "equal" }
+> = {
   good: { word: "becomes a draft", icon: "check" },
   refused: { word: "refused", icon: "close-circle-outline" },
   alreadyHere: { word: "already here", icon: "equal" },
@@ -42,7 +45,11 @@ export function PreviewStep({ preview }: { preview: Preview }) {
   ];
   return (
     <View style={{ gap: 16 }}>
-      <View role="group" aria-label="Show rows" style={{ flexDirection: "row", flexWrap: "wrap", gap: 8 }}>
+      <View
+        role="group"
+        aria-label="Show rows"
+        style={{ flexDirection: "row", flexWrap: "wrap", gap: 8 }}
+      >
         {counts.map(([outcome, word, count]) => (
           <Chip
             key={outcome}

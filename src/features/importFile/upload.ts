@@ -26,6 +26,7 @@ export async function uploadFile(
     error?: string | { message?: string };
   } | null;
   if (response.ok && body?.id) return { id: body.id, name: body.name ?? file.name };
-  const said = body?.message ?? (typeof body?.error === "string" ? body.error : body?.error?.message);
+  const said =
+    body?.message ?? (typeof body?.error === "string" ? body.error : body?.error?.message);
   return { problem: `${file.name}: ${said ?? "the server did not take this file. Try again."}` };
 }

@@ -57,7 +57,11 @@ export function Comparison(props: ComparisonProps) {
           {wide ? <Head flex={1.2}>Field</Head> : null}
           <Head>Your reading</Head>
           <Head>Submitted</Head>
-          {wide ? <Head flex={0.6} hidden>Same or different</Head> : null}
+          {wide ? (
+            <Head flex={0.6} hidden>
+              Same or different
+            </Head>
+          ) : null}
         </View>
         {rows.map((row) => (
           <ComparedRow key={row.field} row={row} wide={wide} {...props} />
@@ -67,7 +71,15 @@ export function Comparison(props: ComparisonProps) {
   );
 }
 
-function Head({ children, flex = 1, hidden = false }: { children: string; flex?: number; hidden?: boolean }) {
+function Head({
+  children,
+  flex = 1,
+  hidden = false,
+}: {
+  children: string;
+  flex?: number;
+  hidden?: boolean;
+}) {
   return (
     <View role="columnheader" style={{ flex }}>
       <Caption style={hidden ? { opacity: 0 } : undefined}>{children}</Caption>
@@ -98,7 +110,12 @@ function ComparedRow({
         size={20}
         color={agrees ? colors.primary : colors.emberText}
       />
-      <Label style={{ fontWeight: agrees ? "400" : "600", color: agrees ? colors.muted : colors.emberText }}>
+      <Label
+        style={{
+          fontWeight: agrees ? "400" : "600",
+          color: agrees ? colors.muted : colors.emberText,
+        }}
+      >
         {agrees ? "same" : "differs"}
       </Label>
     </View>
@@ -114,10 +131,17 @@ function ComparedRow({
         backgroundColor: agrees ? undefined : colors.emberTint,
       }}
     >
-      <View role="row" style={{ flexDirection: "row", flexWrap: "wrap", gap: 12, alignItems: "center" }}>
+      <View
+        role="row"
+        style={{ flexDirection: "row", flexWrap: "wrap", gap: 12, alignItems: "center" }}
+      >
         <View
           role="rowheader"
-          style={wide ? { flex: 1.2 } : { width: "100%", flexDirection: "row", justifyContent: "space-between" }}
+          style={
+            wide
+              ? { flex: 1.2 }
+              : { width: "100%", flexDirection: "row", justifyContent: "space-between" }
+          }
         >
           {name}
           {wide ? null : state}

@@ -49,7 +49,9 @@ export function Answers({
             <Dense>{finding.message}</Dense>
             {answer ? (
               <View style={{ borderLeftWidth: 2, borderColor: colors.hairline, paddingLeft: 12 }}>
-                <Dense muted>{`“${answer.answer}”${review.contributor ? ` ${review.contributor}` : ""}`}</Dense>
+                <Dense
+                  muted
+                >{`“${answer.answer}”${review.contributor ? ` ${review.contributor}` : ""}`}</Dense>
               </View>
             ) : (
               <Dense muted>Not answered. Return it with a comment.</Dense>
@@ -173,7 +175,7 @@ export function Decision({
             onPress={() => setAsking(true)}
           />
           <View style={{ flexDirection: "row" }}>
-            <Button kind="text" label="Don't return it" onPress={() => setReturning(false)} />
+            <Button kind="text" label="Cancel the return" onPress={() => setReturning(false)} />
           </View>
         </View>
       ) : (

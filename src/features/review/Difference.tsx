@@ -20,7 +20,11 @@ const SYMBOLS: Record<Quantity, string> = {
   duration: "Δz",
 };
 
-function line(fields: ConstraintFields, label: string, look: "main" | "other"): LikelihoodLine | null {
+function line(
+  fields: ConstraintFields,
+  label: string,
+  look: "main" | "other",
+): LikelihoodLine | null {
   const used = asUsed(fields);
   if (used === null) return null;
   const row = rowLikelihood(used);
@@ -39,8 +43,7 @@ export function Difference({
   const read = asRead(submission, comparison);
   const lines = [line(read, "your reading", "main"), line(submission, "submitted", "other")];
   // Curves of two quantities share no axis.
-  const comparable =
-    read.quantity === submission.quantity && lines.every((one) => one !== null);
+  const comparable = read.quantity === submission.quantity && lines.every((one) => one !== null);
   return (
     <View style={{ gap: 12 }}>
       <Section>What the difference does</Section>

@@ -178,8 +178,7 @@ function Work({ review, actions, onReload }: WorkProps) {
     const asked = emptyFields() as unknown as Record<string, unknown>;
     for (const name of review.fieldsToRead as FieldName[]) asked[name] = reading.fields[name];
     const stored = await actions.run(
-      async () =>
-        (await store({ variables: { id, reading: asked as never } })).data?.storeReading,
+      async () => (await store({ variables: { id, reading: asked as never } })).data?.storeReading,
     );
     if (stored) reading.forget();
   };
@@ -217,7 +216,9 @@ function Work({ review, actions, onReload }: WorkProps) {
     actions.refusal && step !== "read" ? (
       <Notice
         grade="error"
-        action={<Button kind="tonal" icon="refresh" label="See how it stands now" onPress={onReload} />}
+        action={
+          <Button kind="tonal" icon="refresh" label="See how it stands now" onPress={onReload} />
+        }
       >
         {actions.refusal.message}
       </Notice>
@@ -268,9 +269,7 @@ function Work({ review, actions, onReload }: WorkProps) {
         review={review}
         busy={actions.busy}
         onClaim={() =>
-          void actions.run(
-            async () => (await claim({ variables: { id } })).data?.claimSubmission,
-          )
+          void actions.run(async () => (await claim({ variables: { id } })).data?.claimSubmission)
         }
       />
     );
@@ -290,7 +289,12 @@ function Work({ review, actions, onReload }: WorkProps) {
             grade="error"
             title="The reading is not stored"
             action={
-              <Button kind="tonal" icon="refresh" label="See how it stands now" onPress={onReload} />
+              <Button
+                kind="tonal"
+                icon="refresh"
+                label="See how it stands now"
+                onPress={onReload}
+              />
             }
           >
             {`${refused.message} What you typed is kept in this browser.`}
@@ -387,6 +391,8 @@ function Work({ review, actions, onReload }: WorkProps) {
   const wide = layout === "wide";
   return (
     <Screen
+      // The comparison begins at its top; deciding goes on in the same place.
+      key={step === "decide" ? "compare" : step}
       title="Second reading"
       documentTitle={`Second reading ${item.number}`}
       subtitle={<Standing review={review} />}
@@ -474,7 +480,9 @@ function Claim({
     return (
       <Notice
         grade="note"
-        title={item.state === "approved" ? "This revision is approved" : "This revision is returned"}
+        title={
+          item.state === "approved" ? "This revision is approved" : "This revision is returned"
+        }
         action={<Button kind="tonal" label="To the queue" href={DESK} />}
       >
         It is decided; nothing is left to read.
@@ -521,7 +529,11 @@ function Changes({ review }: { review: ReviewPartsFragment }) {
   return (
     <View style={{ gap: 12 }}>
       {comments.map((comment) => (
-        <Notice key={comment.id} grade="note" title={`${comment.by} asked at ${fieldName(comment.field).toLowerCase()}`}>
+        <Notice
+          key={comment.id}
+          grade="note"
+          title={`${comment.by} asked at ${fieldName(comment.field).toLowerCase()}`}
+        >
           <Dense>{comment.text}</Dense>
           <Dense muted>{comment.answer ? `Answer: ${comment.answer}` : "Not answered"}</Dense>
         </Notice>

@@ -18,7 +18,12 @@ function kept(id: string): ConstraintFields {
   }
 }
 
-const SHAPING: ReadonlySet<FieldName> = new Set<FieldName>(["quantity", "kind", "species", "level"]);
+const SHAPING: ReadonlySet<FieldName> = new Set<FieldName>([
+  "quantity",
+  "kind",
+  "species",
+  "level",
+]);
 
 /**
  * What an editor has typed of a second reading. It starts empty, never from the submission, and is

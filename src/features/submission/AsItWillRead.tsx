@@ -36,7 +36,11 @@ export function AsItWillRead({
         )}
         {line ? <Dense>{line}</Dense> : null}
       </View>
-      <PointPreview fields={fields} />
+      {direction === "row" ? (
+        <PointPreview fields={fields} />
+      ) : (
+        <PointPreview fields={fields} width={304} height={188} />
+      )}
     </View>
   );
 }

@@ -101,7 +101,9 @@ export function CheckStep({
           <Notice
             grade="caution"
             title="Not compared with the registry"
-            action={<Button kind="tonal" icon="refresh" label="Compare again" onPress={findings.retry} />}
+            action={
+              <Button kind="tonal" icon="refresh" label="Compare again" onPress={findings.retry} />
+            }
           >
             The server did not answer. The comparison is made again when you submit.
           </Notice>

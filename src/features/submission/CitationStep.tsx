@@ -58,7 +58,11 @@ export function CitationStep({
       />
       {current ? (
         <View style={{ flexDirection: "row" }}>
-          <Button kind="text" label={`Keep ${current.shortName}`} onPress={() => setChanging(false)} />
+          <Button
+            kind="text"
+            label={`Keep ${current.shortName}`}
+            onPress={() => setChanging(false)}
+          />
         </View>
       ) : null}
     </View>
@@ -197,12 +201,7 @@ function EntryCard({ entry, busy, onUse }: { entry: Entry; busy?: boolean; onUse
         <Caption key={remark}>{remark}</Caption>
       ))}
       <View style={{ flexDirection: "row" }}>
-        <Button
-          kind="filled"
-          label={`Use ${shown.shortName}`}
-          busy={busy}
-          onPress={onUse}
-        />
+        <Button kind="filled" label={`Use ${shown.shortName}`} busy={busy} onPress={onUse} />
       </View>
     </Card>
   );
@@ -226,7 +225,9 @@ function CitationDetails({ citation }: { citation: Cited }) {
   const { authors } = citation;
   const more = authors.length - AUTHORS_SHOWN;
   const names = authors.slice(0, AUTHORS_SHOWN).join("; ") + (more > 0 ? `; and ${more} more` : "");
-  const published = [citation.container, citation.volume, citation.pages].filter(Boolean).join(", ");
+  const published = [citation.container, citation.volume, citation.pages]
+    .filter(Boolean)
+    .join(", ");
   const items: [string, string | null | undefined][] = [
     ["Authors", names],
     ["Year", citation.year?.toString()],

@@ -139,7 +139,10 @@ export function DraftForm({ submission }: { submission: SubmissionPartsFragment 
     if (!SHAPING.has(name)) return keeper.setField(name, value);
     const changed = changeShape(now, name, value, stash.current);
     stash.current = changed.stash;
-    keeper.change({ fields: changed.fields });
+    const { fields: next } = changed;
+    // Almost every paper prints a linear fraction; the second reading asks for the scale anew.
+    const scale = next.quantity === "neutralFraction" ? (next.scale ?? "linear") : next.scale;
+    keeper.change({ fields: { ...next, scale } });
   };
   const blur = () => {
     if (keeper.snapshot().save.kind === "waiting") flush();
@@ -205,9 +208,7 @@ export function DraftForm({ submission }: { submission: SubmissionPartsFragment 
   const under = (name: FieldName): ReactNode => commentsAt(name);
   // What hangs on no field of the two middle steps is shown with the paper.
   const loose = submission.comments.filter(({ field }) => stepOfField(field) === "paper");
-  const openComments = submission.comments.filter(
-    (comment) => !commentAnswers[comment.id]?.trim(),
-  );
+  const openComments = submission.comments.filter((comment) => !commentAnswers[comment.id]?.trim());
 
   const at = STEPS.indexOf(step);
   const back = STEPS[at - 1];
@@ -239,11 +240,14 @@ export function DraftForm({ submission }: { submission: SubmissionPartsFragment 
       subtitle={subtitleOf(submission, citation)}
       back={DESK}
       actions={
-        <IconButton
-          icon="delete-outline"
-          label="Discard this draft"
-          onPress={() => setDiscarding(true)}
-        />
+        // A phone's head has no room for it beside the title; there it ends the first step.
+        layout === "compact" ? undefined : (
+          <IconButton
+            icon="delete-outline"
+            label="Discard this draft"
+            onPress={() => setDiscarding(true)}
+          />
+        )
       }
       aside={
         wide && preview ? (
@@ -311,6 +315,16 @@ export function DraftForm({ submission }: { submission: SubmissionPartsFragment 
           </>
         ) : refusal ? (
           <Notice grade="error">{refusal}</Notice>
+        ) : null}
+        {layout === "compact" && (step === "paper" || step === "check") ? (
+          <View style={{ flexDirection: "row" }}>
+            <Button
+              kind="text"
+              icon="delete-outline"
+              label="Discard this draft"
+              onPress={() => setDiscarding(true)}
+            />
+          </View>
         ) : null}
       </View>
       <Confirm

@@ -22,7 +22,7 @@ export function MethodStep({
 }) {
   const input = (name: FieldName, label?: string, hint?: string) =>
     isRelevant(name, fields) ? (
-      <View key={name} style={{ flex: 1, minWidth: 0, gap: 4 }}>
+      <View key={name} style={{ minWidth: 0, gap: 4 }}>
         <FieldInput
           name={name}
           fields={fields}
@@ -36,7 +36,15 @@ export function MethodStep({
       </View>
     ) : null;
   const row = (...inputs: ReactNode[]) => (
-    <View style={{ flexDirection: "row", gap: 12, alignItems: "flex-start" }}>{inputs}</View>
+    <View style={{ flexDirection: "row", gap: 12, alignItems: "flex-start" }}>
+      {inputs
+        .filter((one) => one !== null)
+        .map((one, index) => (
+          <View key={index} style={{ flex: 1, minWidth: 0 }}>
+            {one}
+          </View>
+        ))}
+    </View>
   );
   return (
     <View style={{ gap: 32 }}>
@@ -46,7 +54,10 @@ export function MethodStep({
       </EntryGroup>
       <EntryGroup title="Place in the paper">
         {row(input("place", "Table, row or section"), input("page", "Page"))}
-        {row(input("versionRead", "Version read"), input("preprintVersion", "Preprint version", "2, for v2"))}
+        {row(
+          input("versionRead", "Version read"),
+          input("preprintVersion", "Preprint version", "2, for v2"),
+        )}
         {input("readOffFigure", "Read off a figure")}
         {input("digitizingError", "Digitizing error")}
       </EntryGroup>
@@ -63,7 +74,9 @@ export function MethodStep({
           "Group",
           "Answers of this paper to one question carry the same label; they are never multiplied.",
         )}
-        {fields.alternativesGroup ? input("alternativesPreferred", "The authors prefer this one") : null}
+        {fields.alternativesGroup
+          ? input("alternativesPreferred", "The authors prefer this one")
+          : null}
       </EntryGroup>
       <EntryGroup title="Remark">{input("remark")}</EntryGroup>
     </View>

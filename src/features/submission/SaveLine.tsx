@@ -35,7 +35,15 @@ export function saveWords(save: SaveState): string {
 }
 
 /** What stands in the way of saving, with the ways on. */
-export function SaveTrouble({ save, keeper, here }: { save: SaveState; keeper: DraftKeeper; here: string }) {
+export function SaveTrouble({
+  save,
+  keeper,
+  here,
+}: {
+  save: SaveState;
+  keeper: DraftKeeper;
+  here: string;
+}) {
   switch (save.kind) {
     case "stale":
       return (
@@ -58,7 +66,14 @@ export function SaveTrouble({ save, keeper, here }: { save: SaveState; keeper: D
         <Notice
           grade="caution"
           title="No connection to the server"
-          action={<Button kind="tonal" icon="refresh" label="Save now" onPress={() => void keeper.flush()} />}
+          action={
+            <Button
+              kind="tonal"
+              icon="refresh"
+              label="Save now"
+              onPress={() => void keeper.flush()}
+            />
+          }
         >
           What you type is kept in this browser and is sent when the connection is back.
         </Notice>

@@ -46,8 +46,23 @@ export function SubmissionView({ submission }: { submission: SubmissionPartsFrag
     >
       <View style={{ gap: 24, maxWidth: 760 }}>
         <StatusPill state={state} />
-        <StateNotice submission={submission} busy={start.busy} onAnswer={() => void start.answering(submission.id)} />
+        <StateNotice
+          submission={submission}
+          busy={start.busy}
+          onAnswer={() => void start.answering(submission.id)}
+        />
         {start.refusal ? <Notice grade="error">{start.refusal}</Notice> : null}
+        <View style={{ flexDirection: "row", flexWrap: "wrap", gap: 12 }}>
+          <Button
+            kind="tonal"
+            icon="plus"
+            label="Add another from this paper"
+            busy={start.busy}
+            onPress={() => void start.ofSubmission(submission.id)}
+          />
+          <Button kind="outline" label="To the desk" href={DESK} />
+          {state === "submitted" ? <TakeBack submission={submission} /> : null}
+        </View>
         {submission.comments.length > 0 ? (
           <View style={{ gap: 8 }}>
             <Section>Comments</Section>
@@ -74,17 +89,6 @@ export function SubmissionView({ submission }: { submission: SubmissionPartsFrag
         <View style={{ gap: 12 }}>
           <Section>Where it comes from</Section>
           <DefinitionList items={rows(METHOD_FIELDS)} />
-        </View>
-        <View style={{ flexDirection: "row", flexWrap: "wrap", gap: 12 }}>
-          <Button
-            kind="tonal"
-            icon="plus"
-            label="Add another from this paper"
-            busy={start.busy}
-            onPress={() => void start.ofSubmission(submission.id)}
-          />
-          <Button kind="outline" label="To the desk" href={DESK} />
-          {state === "submitted" ? <TakeBack submission={submission} /> : null}
         </View>
       </View>
     </Screen>
@@ -154,13 +158,24 @@ function StateNotice({
           title="Returned with comments"
           action={
             answeredBy ? (
-              <Button kind="filled" label="Go on with your answer" href={String(submissionLink(answeredBy))} />
+              <Button
+                kind="filled"
+                label="Go on with your answer"
+                href={String(submissionLink(answeredBy))}
+              />
             ) : (
-              <Button kind="filled" label="Answer with a new revision" busy={busy} onPress={onAnswer} />
+              <Button
+                kind="filled"
+                label="Answer with a new revision"
+                busy={busy}
+                onPress={onAnswer}
+              />
             )
           }
         >
-          {decisionNote ? `“${decisionNote}”` : "The comments stand below; each one is answered at its field."}
+          {decisionNote
+            ? `“${decisionNote}”`
+            : "The comments stand below; each one is answered at its field."}
         </Notice>
       );
     case "approved":
@@ -172,9 +187,18 @@ function StateNotice({
             <View style={{ flexDirection: "row", flexWrap: "wrap", gap: 8 }}>
               <Button kind="outline" label="See the record" href={`/constraints/${number}`} />
               {answeredBy ? (
-                <Button kind="outline" label="Go on with the new revision" href={String(submissionLink(answeredBy))} />
+                <Button
+                  kind="outline"
+                  label="Go on with the new revision"
+                  href={String(submissionLink(answeredBy))}
+                />
               ) : (
-                <Button kind="outline" label="Correct it in a new revision" busy={busy} onPress={onAnswer} />
+                <Button
+                  kind="outline"
+                  label="Correct it in a new revision"
+                  busy={busy}
+                  onPress={onAnswer}
+                />
               )}
             </View>
           }

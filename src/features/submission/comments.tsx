@@ -21,7 +21,13 @@ export function CommentAtField({
   const colors = useColors();
   return (
     <View
-      style={{ backgroundColor: colors.emberTint, borderRadius: 8, padding: 12, gap: 8, marginTop: 8 }}
+      style={{
+        backgroundColor: colors.emberTint,
+        borderRadius: 8,
+        padding: 12,
+        gap: 8,
+        marginTop: 8,
+      }}
     >
       <Label style={{ color: colors.emberText }}>{`${comment.by} asks`}</Label>
       <Dense>{comment.text}</Dense>

@@ -112,9 +112,7 @@ function outcomeOf(
 ): SaveOutcome {
   if (!result) return { kind: "offline" };
   if (result.__typename === "Submission") return { kind: "saved", draft: serverDraft(result) };
-  return result.code === STALE
-    ? { kind: "stale" }
-    : { kind: "refused", message: result.message };
+  return result.code === STALE ? { kind: "stale" } : { kind: "refused", message: result.message };
 }
 
 function failure(error: unknown): SaveOutcome {

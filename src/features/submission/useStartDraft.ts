@@ -40,7 +40,11 @@ export function useStartDraft() {
     busy: starting.loading || revising.loading,
     refusal,
     ofPaper: (citationId: string) =>
-      go(async () => (await start({ variables: { citationId } })).data?.startDraft, "printed", true),
+      go(
+        async () => (await start({ variables: { citationId } })).data?.startDraft,
+        "printed",
+        true,
+      ),
     ofSubmission: (fromSubmissionId: string) =>
       go(
         async () => (await start({ variables: { fromSubmissionId } })).data?.startDraft,
@@ -48,6 +52,10 @@ export function useStartDraft() {
         false,
       ),
     answering: (id: string) =>
-      go(async () => (await revise({ variables: { id } })).data?.reviseSubmission, "printed", false),
+      go(
+        async () => (await revise({ variables: { id } })).data?.reviseSubmission,
+        "printed",
+        false,
+      ),
   };
 }

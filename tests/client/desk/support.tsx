@@ -1,4 +1,5 @@
-import { MockedProvider, type MockedResponse } from "@apollo/client/testing/react";
+import type { MockLink } from "@apollo/client/testing";
+import { MockedProvider } from "@apollo/client/testing/react";
 import { act, configure, render } from "@testing-library/react";
 import type { ReactNode } from "react";
 
@@ -11,6 +12,8 @@ import { type ConstraintFields, emptyFields } from "~shared/statement/fields";
 // Eight builders share two cores; a flow of several steps takes its time there.
 jest.setTimeout(30_000);
 configure({ asyncUtilTimeout: 8_000 });
+
+export type MockedResponse = MockLink.MockedResponse;
 
 /** Both widths every flow has to work at. */
 export const WIDTHS = [390, 1440] as const;

@@ -1,5 +1,4 @@
 import "@testing-library/jest-dom";
-import type { MockedResponse } from "@apollo/client/testing/react";
 import { fireEvent, screen, waitFor, within } from "@testing-library/react";
 
 import { SubmitScreen } from "@/features/submission/SubmitScreen";
@@ -18,6 +17,7 @@ import {
   buildSubmission,
   CITATION,
   completeFields,
+  type MockedResponse,
   route,
   router,
   settle,
