@@ -123,14 +123,14 @@ export interface ColumnMatch {
 }
 
 /**
- * Proposes a field for each column, each field once: by its spelling, then by a spelling one slip away.
+ * Proposes a field for each column, each field once: by its own name, by another spelling, then by one slip away.
  *
  * @param header - Column names as they stand in the file.
  */
 export function proposeColumns(header: readonly string[]): ColumnMatch[] {
   const taken = new Set<ImportField>();
   const proposed = new Map<string, ImportField>();
-  const claim = (matches: (name: string, spelling: string) => boolean) => {
+  const claim = (matches: (name: string, spelling: string, own: boolean) => boolean) => {
     for (const column of header) {
       if (proposed.has(column)) continue;
       const name = looseWord(column);
@@ -138,8 +138,8 @@ export function proposeColumns(header: readonly string[]): ColumnMatch[] {
         (candidate) =>
           !taken.has(candidate) &&
           name !== "" &&
-          [candidate, ...COLUMN_SPELLINGS[candidate]].some((spelling) =>
-            matches(name, looseWord(spelling)),
+          [candidate, ...COLUMN_SPELLINGS[candidate]].some((spelling, index) =>
+            matches(name, looseWord(spelling), index === 0),
           ),
       );
       if (field !== undefined) {
@@ -148,6 +148,7 @@ export function proposeColumns(header: readonly string[]): ColumnMatch[] {
       }
     }
   };
+  claim((name, spelling, own) => own && name === spelling);
   claim((name, spelling) => name === spelling);
   claim((name, spelling) => spelling.length >= 5 && oneSlipAway(name, spelling));
   return header.map((column) => ({ column, field: proposed.get(column) ?? null }));
@@ -381,7 +382,8 @@ function levelOf(word: string): string | null {
   const number = parseDecimal(word.replace(/\s*(?:%|percent|per cent|c\.?l\.?)\s*/gi, ""));
   if (number === null || number.lte(0)) return null;
   const percent = number.lte(1) && !/%/.test(word) ? number.times(100) : number;
-  if (percent.gte(100)) return null;
+  // A bare 2 may be two sigma or a mistake; only a person can tell.
+  if (percent.gte(100) || (number.gt(1) && percent.lt(50))) return null;
   switch (percent.toFixed()) {
     case "68":
       return "percent68";

@@ -1,6 +1,8 @@
 import { readFileSync } from "node:fs";
 import { join } from "node:path";
 
+import fc from "fast-check";
+
 import {
   buildRows,
   listWords,
@@ -176,6 +178,23 @@ describe("parseList", () => {
   });
 });
 
+describe("proposeColumns", () => {
+  it("looks past case, punctuation and one slip, and gives no field twice", () => {
+    expect(
+      proposeColumns(["BibKey", "Z_min", "methdo", "Metod", "sigma +", "err_plus", "plus", "x"]),
+    ).toEqual([
+      { column: "BibKey", field: "citationKey" },
+      { column: "Z_min", field: "zLow" },
+      { column: "methdo", field: null },
+      { column: "Metod", field: "methodTags" },
+      { column: "sigma +", field: null },
+      { column: "err_plus", field: null },
+      { column: "plus", field: "plus" },
+      { column: "x", field: "value" },
+    ]);
+  });
+});
+
 describe("proposeWords", () => {
   it.each([
     ["level", "0.68", "percent68"],
@@ -188,6 +207,7 @@ describe("proposeWords", () => {
     ["level", "99.7", "other:99.7"],
     ["level", "not stated", "notStated"],
     ["level", "120", null],
+    ["level", "2", null],
     ["kind", "Upper-Limit", "upperLimit"],
     ["kind", "<", "upperLimit"],
     ["quantity", "Q_HII", "ionizedFraction"],
@@ -245,6 +265,58 @@ describe("buildRows", () => {
   it("points at an equal row further up", () => {
     const rows = importText("key,z\nArvensis2031,7\nArvensis2031,8\nArvensis2031,7\n");
     expect(rows.map((row) => row.sameAsLine)).toEqual([null, null, 2]);
+  });
+
+  it("has an outcome for every row of any text, and never throws", () => {
+    const cell = fc.oneof(
+      fc.constantFrom(
+        "Arvensis2031",
+        "neutral fraction",
+        "0.42",
+        "O.25",
+        "upper limit",
+        "duration 1 to 0",
+        '"',
+      ),
+      fc.string({ unit: "binary", maxLength: 12 }),
+    );
+    const header = fc.shuffledSubarray([
+      "key",
+      "quantity",
+      "kind",
+      "value",
+      "plus",
+      "level",
+      "zlo",
+      "zhi",
+      "x,y",
+      "method",
+    ]);
+    fc.assert(
+      fc.property(
+        header,
+        fc.array(fc.array(cell, { maxLength: 10 }), { maxLength: 5 }),
+        (names, rows) => {
+          const text = [names, ...rows].map((cells) => cells.join(",")).join("\n");
+          const parsed = parseList(text);
+          if (parsed === null) return;
+          const built = buildRows({
+            list: parsed,
+            csvName: "a.csv",
+            bibName: "b.bib",
+            columns: proposeColumns(parsed.header),
+            words: [],
+            citations: citations(),
+          });
+          expect(built).toHaveLength(parsed.rows.length);
+          for (const row of built) {
+            expect(row.identity === "").toBe(row.refusals.length > 0);
+            for (const refusal of row.refusals) expect(refusal.reason).toMatch(/\S/);
+          }
+        },
+      ),
+      { seed: 20261201, numRuns: 300 },
+    );
   });
 
   it("gives rows of two papers two identities", () => {
