@@ -63,12 +63,21 @@ export interface HistoryChartProps {
   logarithmic: boolean;
   selectedId?: string | null;
   onSelect?: (id: string | null) => void;
-  /** Shortens the upper and lower titles when there is little room. */
-  compact?: boolean;
+  /** What the chart stands on, which is also the halo of its markers; the surface unless said. */
+  ground?: string;
 }
 
 const TOUCH_REACH = 44;
-const LOWEST_LOG_FRACTION = 1e-4;
+/** Ends of the lower edge of a logarithmic axis, which follows the points in between. */
+const LOWEST_FRACTIONS = [1e-4, 1e-2] as const;
+
+/** The decade below the smallest fraction drawn. */
+function lowestFraction(points: readonly ChartPoint[]): number {
+  const ends = points.flatMap(({ plane }) => [plane.x, plane.xEnds?.[0] ?? plane.x]);
+  const least = Math.min(1, ...ends.filter((end) => end > 0));
+  const decade = 10 ** Math.floor(Math.log10(least));
+  return Math.min(LOWEST_FRACTIONS[1], Math.max(LOWEST_FRACTIONS[0], decade));
+}
 
 interface Frame {
   box: Box;
@@ -83,7 +92,12 @@ function useFrame({
   phone,
   domain,
   logarithmic,
-}: Pick<HistoryChartProps, "width" | "height" | "phone" | "domain" | "logarithmic">): Frame {
+  points,
+}: Pick<
+  HistoryChartProps,
+  "width" | "height" | "phone" | "domain" | "logarithmic" | "points"
+>): Frame {
+  const lowest = logarithmic ? lowestFraction(points) : null;
   return useMemo(() => {
     const box: Box = phone
       ? { left: 52, right: width - 12, top: 44, bottom: height - 46 }
@@ -91,12 +105,12 @@ function useFrame({
     return {
       box,
       z: linearScale(domain, [box.left, box.right]),
-      x: logarithmic
-        ? logScale([LOWEST_LOG_FRACTION, 1.12], [box.bottom, box.top])
+      x: lowest !== null
+        ? logScale([lowest, 1.12], [box.bottom, box.top])
         : linearScale([-0.03, 1.03], [box.bottom, box.top]),
       sizes: phone ? PHONE_SIZES : WIDE_SIZES,
     };
-  }, [width, height, phone, domain, logarithmic]);
+  }, [width, height, phone, domain, lowest]);
 }
 
 /** The drawing alone, without anything to touch: also what a downloaded figure shows. */
@@ -112,7 +126,7 @@ export function HistoryDrawing(props: HistoryChartProps & { legend?: ReactNode }
         y={frame.box.top}
         width={frame.box.right - frame.box.left}
         height={frame.box.bottom - frame.box.top}
-        fill={colors.surface}
+        fill={props.ground ?? colors.surface}
       />
       <Curves
         frame={frame}
@@ -126,6 +140,7 @@ export function HistoryDrawing(props: HistoryChartProps & { legend?: ReactNode }
         marks={marks}
         frame={frame}
         scheme={scheme}
+        ground={props.ground ?? colors.surface}
         selectedId={props.selectedId ?? null}
       />
       <Axes
@@ -376,12 +391,14 @@ const Marks = memo(function Marks({
   marks,
   frame,
   scheme,
+  ground,
   selectedId,
 }: {
   points: readonly ChartPoint[];
   marks: readonly (Mark | null)[];
   frame: Frame;
   scheme: SchemeName;
+  ground: string;
   selectedId: string | null;
 }) {
   const colors = schemes[scheme];
@@ -400,7 +417,7 @@ const Marks = memo(function Marks({
         key={point.id}
         shape={look.shape}
         hue={look[scheme]}
-        surface={colors.surface}
+        surface={ground}
         radius={frame.sizes.radius}
         hollow={mark.hollow}
         x={mark.x}
@@ -428,7 +445,7 @@ const Marks = memo(function Marks({
             cx={chosenMark.x}
             cy={chosenMark.y}
             r={frame.sizes.radius + 6.5}
-            fill={colors.surface}
+            fill={ground}
             stroke={colors.ember}
             strokeWidth={2.5}
           />
@@ -519,7 +536,7 @@ const Axes = memo(function Axes({
   const { box, z, x } = frame;
   const lower = linearTicks(domain, ...redshiftSteps(domain));
   const side: Tick[] = logarithmic
-    ? logTicks([LOWEST_LOG_FRACTION, 1])
+    ? logTicks([x.domain[0], 1])
     : linearTicks([0, 1], 0.2, 0.05);
   const upper =
     upperAxis === "age"

@@ -22,11 +22,13 @@ export interface LikelihoodLine {
 /**
  * Likelihood of one statement over its quantity. Fills the width it gets unless told one.
  *
+ * @param symbol - Set under the axis; null where the heading says it already.
  * @param marks - Values of model histories, drawn as vertical lines in the order of their looks.
  */
 export function LikelihoodCurve({
   lines,
   symbol = "x_HI",
+  words: title = "Likelihood",
   marks = [],
   width: fixedWidth,
   height = 168,
@@ -35,7 +37,9 @@ export function LikelihoodCurve({
   legend = lines.length > 1,
 }: {
   lines: readonly LikelihoodLine[];
-  symbol?: string;
+  symbol?: string | null;
+  /** What the drawing is heard as, before its lines. */
+  words?: string;
   marks?: readonly { x: number; label: string }[];
   width?: number;
   height?: number;
@@ -47,7 +51,7 @@ export function LikelihoodCurve({
   const { width, onLayout } = useMeasuredWidth(fixedWidth);
   const main = hue ?? colors.primary;
   const span = domain ?? spanOf(lines);
-  const words = `Likelihood: ${lines.map((line) => `${line.label}, ${peakWords(line)}`).join("; ")}${marks.length > 0 ? `. Models: ${marks.map(({ label, x }) => `${label} ${x.toPrecision(3)}`).join(", ")}` : ""}`;
+  const words = `${title}: ${lines.map((line) => `${line.label}, ${peakWords(line)}`).join("; ")}${marks.length > 0 ? `. Models: ${marks.map(({ label, x }) => `${label} ${x.toPrecision(3)}`).join(", ")}` : ""}`;
   return (
     <View onLayout={onLayout} style={styles.all}>
       {width === null ? (
@@ -64,7 +68,7 @@ export function LikelihoodCurve({
           />
         </View>
       )}
-      <SymbolText style={styles.symbol}>{symbol}</SymbolText>
+      {symbol === null ? null : <SymbolText style={styles.symbol}>{symbol}</SymbolText>}
       {legend ? (
         <View style={styles.legend}>
           {lines.map((line, index) => (

@@ -3,11 +3,12 @@ import { lineText, type Notation } from "~shared/statement/notation";
 import { space } from "@/theme/tokens";
 import { Dense, Mono, SymbolText } from "./Text";
 
-export type NotationSize = "row" | "readout" | "stated";
+export type NotationSize = "row" | "readout" | "panel" | "stated";
 
 const SIZES: Record<NotationSize, { value: number; symbol: number; tail: number }> = {
   row: { value: 15, symbol: 15, tail: 14 },
   readout: { value: 18, symbol: 17, tail: 14 },
+  panel: { value: 20, symbol: 17, tail: 14 },
   stated: { value: 22, symbol: 19, tail: 14 },
 };
 
@@ -67,7 +68,7 @@ export function NotationText({
   const sign = relation === "<" || relation === ">" ? relation : relation === "=" && symbol ? "=" : "";
   const text = lineText(notation);
   return (
-    <View style={styles.row} role="img" aria-label={text}>
+    <View style={styles.line} role="img" aria-label={text}>
       <View style={styles.row} aria-hidden={Platform.OS === "web"}>
         {symbol ? <NotationSymbolText notation={notation} size={sizes.symbol} /> : null}
         {sign ? <Mono style={[number, styles.sign]}>{sign}</Mono> : null}
@@ -86,16 +87,26 @@ export function NotationText({
           <Mono style={number}>{relation === ">" ? ` − ${limitSigma}` : ` + ${limitSigma}`}</Mono>
         )}
         {unit ? <Dense style={styles.unit}>{unit}</Dense> : null}
-        {tail && notation.tail ? (
-          <Dense style={[styles.unit, { fontSize: sizes.tail }]}>{notation.tail}</Dense>
-        ) : null}
       </View>
+      {tail && notation.tail ? (
+        <Dense aria-hidden style={[styles.tail, { fontSize: sizes.tail }]}>
+          {notation.tail}
+        </Dense>
+      ) : null}
     </View>
   );
 }
 
 const styles = StyleSheet.create({
-  row: { flexDirection: "row", alignItems: "center", flexWrap: "wrap" },
+  line: {
+    flexDirection: "row",
+    alignItems: "center",
+    flexWrap: "wrap",
+    flexShrink: 1,
+    columnGap: 6,
+  },
+  row: { flexDirection: "row", alignItems: "center" },
+  tail: { flexShrink: 1 },
   sign: { paddingHorizontal: space.xxs },
   stack: { paddingLeft: 3, alignItems: "flex-start" },
   unit: { paddingLeft: 6 },

@@ -96,6 +96,8 @@ export function Slider({
         style={
           {
             height: target,
+            marginTop: -8,
+            marginBottom: -4,
             "--tone": hue,
             "--rest": colors.hairline,
             "--halo": colors.surface,

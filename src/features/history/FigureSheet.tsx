@@ -87,6 +87,7 @@ export function FigureSheet({
           height={FIGURE.height}
           scheme="light"
           phone={false}
+          ground={undefined}
           selectedId={null}
         />
       </div>

@@ -1,6 +1,7 @@
-import { useCallback, useMemo, useState } from "react";
+import { useCallback, useEffect, useMemo, useRef, useState } from "react";
 import { useQuery } from "@apollo/client/react";
 import { StyleSheet, useWindowDimensions, View } from "react-native";
+import { filterInput } from "@/apollo/filterInput";
 import { useSession } from "@/apollo/useSession";
 import { type ChartHistory, HistoryChart, type HistoryChartProps } from "@/charts/HistoryChart";
 import { useMeasuredWidth } from "@/charts/useMeasuredWidth";
@@ -11,7 +12,7 @@ import { Failed } from "@/components/feedback/Failed";
 import { Loading } from "@/components/feedback/Loading";
 import { useAddressFilter } from "@/components/filter/useAddressFilter";
 import Icon from "@/components/Icon";
-import { Caption, Dense, Section } from "@/components/Text";
+import { Caption, Dense } from "@/components/Text";
 import { BottomPanel } from "@/layout/BottomPanel";
 import { Screen } from "@/layout/Screen";
 import { useLayoutClass } from "@/layout/useLayoutClass";
@@ -66,7 +67,10 @@ export function HistoryScreen() {
 
   // Families are filtered here, so that the legend can count what each of them would show.
   const families = address.filter.families;
-  const asked = useMemo(() => ({ ...address.filter, families: undefined }), [address.filter]);
+  const asked = useMemo(
+    () => filterInput({ ...address.filter, families: undefined }),
+    [address.filter],
+  );
   const { data, previousData, loading, error, refetch } = useQuery(HistoryConstraintsDocument, {
     variables: { filter: asked },
   });
@@ -133,12 +137,19 @@ export function HistoryScreen() {
   );
 
   const panelOpen = phone && (selected !== null || slidersOpen);
+  // The chart stays in sight above the panel, wherever the page was scrolled to.
+  const chartArea = useRef<View>(null);
+  useEffect(() => {
+    if (!panelOpen) return;
+    (chartArea.current as unknown as HTMLElement | null)?.scrollIntoView?.({ block: "start" });
+  }, [panelOpen, view.point]);
   const chartWidth = width === null ? null : width - (phone ? 0 : 2);
   const chart: HistoryChartProps = {
     width: chartWidth ?? 0,
     height: chartHeight(layout, window.height, panelOpen),
     scheme,
     phone,
+    ...(phone ? { ground: colors.paper } : {}),
     points,
     histories,
     domain,
@@ -204,10 +215,12 @@ export function HistoryScreen() {
       )}
       <View
         style={[
-          phone ? styles.chartPhone : styles.chart,
-          { backgroundColor: colors.surface, borderColor: colors.hairline },
+          phone
+            ? styles.chartPhone
+            : [styles.chart, { backgroundColor: colors.surface, borderColor: colors.hairline }],
         ]}
         onLayout={onLayout}
+        ref={chartArea}
       >
         {page === undefined && error ? (
           <Failed
@@ -243,27 +256,6 @@ export function HistoryScreen() {
           )}
         </Card>
       ) : null}
-      {outside > 0 ? (
-        <View style={styles.outside}>
-          <Caption>
-            {outside === 1 ? "One constraint lies" : `${outside} constraints lie`} outside redshift{" "}
-            {domain[0]} to {domain[1]}.
-          </Caption>
-          <Button
-            label="Widen the axis"
-            kind="text"
-            onPress={() => {
-              const zs = points.map(({ plane }) => plane.z);
-              setFilter({
-                ...filter,
-                zFrom: Math.min(domain[0], Math.floor(Math.min(...zs))),
-                zTo: Math.max(domain[1], Math.ceil(Math.max(...zs))),
-              });
-            }}
-          />
-        </View>
-      ) : null}
-
       {wide ? (
         visible.length > 0 ? <ReadoutTable overlays={visible} /> : null
       ) : (
@@ -282,7 +274,29 @@ export function HistoryScreen() {
           </View>
         </Card>
       )}
-      <ScoreNote overlays={visible} rows={shownRows} />
+      <View>
+        <ScoreNote overlays={visible} rows={shownRows} />
+        {outside > 0 ? (
+          <View style={styles.outside}>
+            <Caption>
+              {outside === 1 ? "One constraint lies" : `${outside} constraints lie`} outside redshift{" "}
+              {domain[0]} to {domain[1]}.
+            </Caption>
+            <Button
+              label="Widen the axis"
+              kind="text"
+              onPress={() => {
+                const zs = points.map(({ plane }) => plane.z);
+                setFilter({
+                  ...filter,
+                  zFrom: Math.min(domain[0], Math.floor(Math.min(...zs))),
+                  zTo: Math.max(domain[1], Math.ceil(Math.max(...zs))),
+                });
+              }}
+            />
+          </View>
+        ) : null}
+      </View>
       <Cautions complete={lastEvent ? dayOf(lastEvent.at) : null} />
       <QuantityStrip
         groups={groups}
@@ -320,15 +334,16 @@ export function HistoryScreen() {
         </BottomPanel>
       ) : !wide && slidersOpen ? (
         <BottomPanel label="Model histories" height={0.52}>
-          <View style={styles.panelHead}>
-            <Section>Model histories</Section>
-            <IconButton
-              icon="close"
-              label="Close the sliders"
-              onPress={() => setSlidersOpen(false)}
-            />
-          </View>
-          <ModelPanel state={models} heading={false} />
+          <ModelPanel
+            state={models}
+            trailing={
+              <IconButton
+                icon="close"
+                label="Close the sliders"
+                onPress={() => setSlidersOpen(false)}
+              />
+            }
+          />
         </BottomPanel>
       ) : null}
       <FigureSheet
@@ -392,7 +407,6 @@ const styles = StyleSheet.create({
   outside: { flexDirection: "row", alignItems: "center", flexWrap: "wrap" },
   flush: { borderRadius: 0, marginHorizontal: -space.m, borderLeftWidth: 0, borderRightWidth: 0 },
   adjust: { flexDirection: "row", paddingTop: space.s },
-  panelHead: { flexDirection: "row", justifyContent: "space-between", alignItems: "center" },
   inspector: { padding: space.l, paddingTop: space.m, gap: space.m },
   cautions: { flexDirection: "row", gap: space.xs, alignItems: "flex-start" },
   cautionWords: { flex: 1 },

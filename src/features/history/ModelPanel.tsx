@@ -1,4 +1,4 @@
-import { memo } from "react";
+import { memo, type ReactNode, useState } from "react";
 import { StyleSheet, View } from "react-native";
 import { HistoryLine } from "@/charts/HistoryLine";
 import { HISTORY_LOOKS, historyLine } from "@/charts/looks";
@@ -12,13 +12,41 @@ import { MAX_MODELS, type Model, MODEL_KINDS, modelNames } from "./models";
 import type { Models } from "./useModels";
 
 /** Up to three model histories with their live sliders. */
-export function ModelPanel({ state, heading = true }: { state: Models; heading?: boolean }) {
+export function ModelPanel({ state, trailing }: { state: Models; trailing?: ReactNode }) {
   const { models, add } = state;
   const names = modelNames(models);
   const full = models.length >= MAX_MODELS;
+  const [adding, setAdding] = useState(false);
   return (
     <View style={styles.all}>
-      {heading ? <Section style={styles.heading}>Model histories</Section> : null}
+      <View style={styles.headline}>
+        <Section style={styles.heading}>Model histories</Section>
+        {full ? null : (
+          <Button
+            label="Add"
+            kind="text"
+            icon="plus"
+            accessibilityLabel="Add a history"
+            onPress={() => setAdding(!adding)}
+          />
+        )}
+        {trailing}
+      </View>
+      {full || !adding ? null : (
+        <View style={styles.add}>
+          {(["tanh", "powerLaw"] as const).map((kind) => (
+            <Button
+              key={kind}
+              label={kind === "tanh" ? "A tanh" : "A power law"}
+              kind="tonal"
+              onPress={() => {
+                add(kind);
+                setAdding(false);
+              }}
+            />
+          ))}
+        </View>
+      )}
       {models.length === 0 ? (
         <Dense muted>No history is drawn. Add one to lay it over the constraints.</Dense>
       ) : null}
@@ -37,12 +65,7 @@ export function ModelPanel({ state, heading = true }: { state: Models; heading?:
       ))}
       {full ? (
         <Caption>Three histories fit into the chart. Remove one to add another.</Caption>
-      ) : (
-        <View style={styles.add}>
-          <Button label="Add a tanh" kind="text" icon="plus" onPress={() => add("tanh")} />
-          <Button label="Add a power law" kind="text" icon="plus" onPress={() => add("powerLaw")} />
-        </View>
-      )}
+      ) : null}
     </View>
   );
 }
@@ -108,7 +131,12 @@ const ModelSliders = memo(function ModelSliders({
 
 const styles = StyleSheet.create({
   all: { gap: space.xxs },
-  heading: { minHeight: target, paddingTop: space.xs },
+  headline: {
+    flexDirection: "row",
+    alignItems: "center",
+    minHeight: target,
+  },
+  heading: { flex: 1 },
   model: { gap: space.xxs },
   head: { flexDirection: "row", alignItems: "center", minHeight: target },
   name: {
@@ -119,5 +147,5 @@ const styles = StyleSheet.create({
     columnGap: space.s,
     paddingLeft: space.s,
   },
-  add: { flexDirection: "row", flexWrap: "wrap", marginLeft: -space.s },
+  add: { flexDirection: "row", flexWrap: "wrap", gap: space.xs, paddingBottom: space.xs },
 });

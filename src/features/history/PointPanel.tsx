@@ -9,15 +9,26 @@ import { CiteSheet } from "@/components/CiteSheet";
 import { Marker } from "@/components/Marker";
 import { NotationText } from "@/components/NotationText";
 import { Notice, Strong } from "@/components/Notice";
-import { Caption, Dense, Mono, Section, SymbolText } from "@/components/Text";
+import { Block, Caption, Dense, Mono, SymbolText } from "@/components/Text";
 import { FAMILY_MARKS } from "@/theme/families";
 import { useTheme } from "@/theme/ThemeProvider";
 import { space } from "@/theme/tokens";
 import { HistoryPointDocument } from "~graphql/generated/graphql";
-import { type RowLikelihood, rowLikelihood } from "~shared/likelihood";
+import { FORM_WORDS, type RowLikelihood, rowLikelihood } from "~shared/likelihood";
 import { findTag } from "~shared/methods/vocabulary";
-import { notationAsPrinted, notationAsUsed, recordTitle } from "~shared/statement/notation";
-import { ESTIMATOR_WORDS, VERSION_WORDS, WEIGHTING_WORDS } from "~shared/statement/words";
+import {
+  type Notation,
+  notationAsPrinted,
+  notationAsUsed,
+  recordTitle,
+} from "~shared/statement/notation";
+import type { AsUsed } from "~shared/statement/asUsed";
+import {
+  ESTIMATOR_WORDS,
+  levelPhrase,
+  VERSION_WORDS,
+  WEIGHTING_WORDS,
+} from "~shared/statement/words";
 import type { HistoryRow } from "./rows";
 import { shownNumber } from "./readouts";
 import type { Overlay } from "./useOverlays";
@@ -42,6 +53,8 @@ export function PointPanel({
   const { fields, used } = row;
   const place = [row.citation.shortName, fields.place].filter(Boolean).join(", ");
   const version = fields.versionRead ? VERSION_WORDS[fields.versionRead].toLowerCase() : null;
+  const likelihood = used === null ? null : rowLikelihood(used);
+  const form = likelihood && !("leftOut" in likelihood) ? FORM_WORDS[likelihood.form] : null;
   const hollow =
     used !== null && (used.kind === "band" || used.kind === "upperLimit" || used.kind === "lowerLimit");
 
@@ -65,9 +78,9 @@ export function PointPanel({
           <Marker family={row.family} hollow={hollow} size={22} />
         </View>
         <View style={styles.titles} ref={head} {...({ tabIndex: -1 } as object)}>
-          <Section>
+          <Block level={2}>
             <TitleText text={recordTitle(fields)} />
-          </Section>
+          </Block>
           <Dense muted>
             {place}
             {version ? ` · ${version}` : ""}
@@ -79,9 +92,10 @@ export function PointPanel({
       <View style={styles.pair}>
         <View style={styles.half}>
           <Caption>As printed</Caption>
-          <NotationText notation={notationAsPrinted(fields)} size="stated" />
+          <NotationText notation={notationAsPrinted(fields)} size="panel" tail={false} />
           <Dense>
             {[
+              levelPhrase(fields.level, fields.levelPercent),
               fields.estimator ? ESTIMATOR_WORDS[fields.estimator].toLowerCase() : null,
               fields.weighting ? WEIGHTING_WORDS[fields.weighting].toLowerCase() : null,
             ]
@@ -95,18 +109,22 @@ export function PointPanel({
             <Dense muted>Not complete enough to be used.</Dense>
           ) : (
             <>
-              <NotationText notation={notationAsUsed(used)} size="stated" />
-              {used.sigmaDerived && used.sigmaMinus !== null && used.sigmaPlus !== null ? (
+              <NotationText notation={inOneSigma(used)} size="panel" tail={false} />
+              {used.sigmaDerived ? (
                 <Dense>
-                  one sigma{" "}
-                  <Mono style={styles.sigma}>
-                    +{used.sigmaPlus.toPrecision(3)} −{used.sigmaMinus.toPrecision(3)}
-                  </Mono>
-                  , <Dense style={styles.derived}>derived</Dense>
+                  one-sigma equivalent{form ? `, ${form}` : ""},{" "}
+                  <Dense style={styles.derived}>derived</Dense>
                 </Dense>
-              ) : used.derived ? (
-                <Dense style={styles.derived}>derived</Dense>
-              ) : null}
+              ) : (
+                <Dense>
+                  {[notationAsUsed(used).tail, form].filter(Boolean).join(", ")}
+                  {used.derived ? (
+                    <>
+                      , <Dense style={styles.derived}>derived</Dense>
+                    </>
+                  ) : null}
+                </Dense>
+              )}
             </>
           )}
         </View>
@@ -137,13 +155,23 @@ export function PointPanel({
   );
 }
 
+/** As used, its widths as one-sigma equivalents; both to the decimals that give the smaller one two digits. */
+function inOneSigma(used: AsUsed): Notation {
+  const notation = notationAsUsed(used);
+  const { sigmaMinus, sigmaPlus } = used;
+  if (!used.sigmaDerived || !sigmaMinus || !sigmaPlus) return notation;
+  const digits = Math.max(0, 1 - Math.floor(Math.log10(Math.min(sigmaMinus, sigmaPlus))));
+  return { ...notation, plus: sigmaPlus.toFixed(digits), minus: sigmaMinus.toFixed(digits) };
+}
+
 /** A title with its z set as a symbol. */
 function TitleText({ text }: { text: string }) {
   const [before, after] = text.split(" z = ");
   if (after === undefined) return <>{text}</>;
   return (
     <>
-      {before} <SymbolText>z</SymbolText> = {after}
+      {before} <SymbolText>z</SymbolText>
+      {`\u00A0=\u00A0${after}`}
     </>
   );
 }
@@ -171,7 +199,9 @@ function PointLikelihood({
   return (
     <View style={styles.likelihood}>
       <View style={styles.here}>
-        <Caption>Likelihood</Caption>
+        <Caption>
+          Likelihood of <SymbolText muted>{axisSymbol(likelihood)}</SymbolText>
+        </Caption>
         <View style={styles.values}>
           {values.map(({ overlay, model, minus2LnL }) => (
             <View key={overlay.id} style={styles.value}>
@@ -191,14 +221,14 @@ function PointLikelihood({
       <LikelihoodCurve
         lines={[{ ...likelihood.curve(161), label: row.quotable }]}
         hue={FAMILY_MARKS[row.family][scheme]}
-        height={132}
-        symbol={axisSymbol(likelihood)}
+        height={124}
+        symbol={null}
+        words={`Likelihood of ${row.quotable}`}
         marks={values.map(({ overlay, model }) => ({
           label: overlay.name,
           x: likelihood.evaluatedIn === "log10" ? Math.log10(model) : model,
         }))}
       />
-      <Caption>{likelihood.formula}</Caption>
     </View>
   );
 }
@@ -253,7 +283,6 @@ const styles = StyleSheet.create({
   titles: { flex: 1, minWidth: 0 },
   pair: { flexDirection: "row", flexWrap: "wrap", gap: space.m },
   half: { flex: 1, minWidth: 148 },
-  sigma: { fontSize: 13 },
   derived: { fontStyle: "italic" },
   likelihood: { gap: space.xxs },
   here: { flexDirection: "row", justifyContent: "space-between", flexWrap: "wrap", gap: space.xs },

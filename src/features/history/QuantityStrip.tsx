@@ -15,6 +15,7 @@ import { limitDirection, statementSpan } from "~shared/chart/points";
 import { linearScale, type Scale } from "~shared/chart/scales";
 import { linearTicks } from "~shared/chart/ticks";
 import { notationAsUsed } from "~shared/statement/notation";
+import { shownNumber } from "./readouts";
 import { type HistoryRow, rowWords } from "./rows";
 import type { Overlay } from "./useOverlays";
 
@@ -24,6 +25,8 @@ const AXIS = 24;
 interface Group {
   key: string;
   title: string;
+  /** Decimals of the models' values. */
+  digits: number;
   rows: HistoryRow[];
 }
 
@@ -33,11 +36,16 @@ export function stripGroups(rows: readonly HistoryRow[]): Group[] {
   for (const row of rows) {
     const title = groupTitle(row);
     if (title === null || row.used === null || statementSpan(row.used) === null) continue;
-    const group = groups.get(title) ?? { key: title, title, rows: [] };
+    const group = groups.get(title) ?? { key: title, title, digits: digitsOf(row), rows: [] };
     group.rows.push(row);
     groups.set(title, group);
   }
   return [...groups.values()];
+}
+
+function digitsOf({ used }: HistoryRow): number {
+  if (used?.quantity === "duration") return used.durationUnit === "myr" ? 0 : 2;
+  return 4;
 }
 
 function groupTitle({ used }: HistoryRow): string | null {
@@ -149,7 +157,7 @@ function StripGroup({
               <StripDrawing
                 group={group}
                 models={models}
-                scale={linearScale(domain, [10, width - 10])}
+                scale={linearScale(domain, [22, width - 22])}
                 domain={domain}
                 height={height}
                 width={width}
@@ -162,7 +170,7 @@ function StripGroup({
         {models.length === 0
           ? "No model history is drawn."
           : models
-              .map(({ overlay, value }) => `${overlay.name} ${value.toPrecision(3)}`)
+              .map(({ overlay, value }) => `${overlay.name} ${shownNumber(value, group.digits)}`)
               .join(", ")}
       </Caption>
     </View>
