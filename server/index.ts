@@ -104,6 +104,15 @@ async function closeServer(server: Server): Promise<void> {
   clearTimeout(timer);
 }
 
+/** Says what went wrong to whoever started the server: in a sentence if it is one of ours. */
+function complain(error: unknown): void {
+  const expected =
+    error instanceof ConfigError ||
+    error instanceof DatabaseProblem ||
+    error instanceof StartProblem;
+  process.stderr.write(`${expected ? error.message : JSON.stringify(failure(error))}\n`);
+}
+
 async function main(): Promise<void> {
   const open: Closing[] = [];
   let stopping: Promise<void> | null = null;
@@ -111,7 +120,7 @@ async function main(): Promise<void> {
   const stop = (code: number): Promise<void> => {
     stopping ??= (async () => {
       for (const close of open.reverse()) {
-        await close().catch((error: unknown) => console.error(failure(error)));
+        await close().catch(complain);
       }
       process.exit(code);
     })();
@@ -119,18 +128,14 @@ async function main(): Promise<void> {
   };
   for (const signal of ["SIGTERM", "SIGINT"] as const) process.on(signal, () => void stop(0));
   process.on("uncaughtException", (error) => {
-    console.error(failure(error));
+    complain(error);
     void stop(1);
   });
 
   try {
     await start(readConfig(process.env), open);
   } catch (error) {
-    const expected =
-      error instanceof ConfigError ||
-      error instanceof DatabaseProblem ||
-      error instanceof StartProblem;
-    console.error(expected ? error.message : failure(error));
+    complain(error);
     await stop(1);
   }
 }

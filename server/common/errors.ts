@@ -25,12 +25,6 @@ export function forbidden(): GraphQLError {
   return new GraphQLError("Your account may not do this.", { extensions: { code: "FORBIDDEN" } });
 }
 
-export function tooMany(seconds: number): GraphQLError {
-  return new GraphQLError(tooManySentence(seconds), {
-    extensions: { code: "TOO_MANY_REQUESTS", retryAfterSeconds: seconds },
-  });
-}
-
 export function tooManySentence(seconds: number): string {
   const wait =
     seconds < 90

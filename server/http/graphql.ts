@@ -39,13 +39,7 @@ export function formatError(
   }
   const code = String(formatted.extensions?.code ?? "");
   if (EXPECTED.has(code)) {
-    const retryAfterSeconds = formatted.extensions?.retryAfterSeconds;
-    return answer(
-      formatted.message,
-      code,
-      formatted,
-      typeof retryAfterSeconds === "number" ? { retryAfterSeconds } : {},
-    );
+    return answer(formatted.message, code, formatted);
   }
   logger.error({ id, path: formatted.path, ...failure(original) }, "resolver failed");
   return answer(
@@ -60,13 +54,12 @@ function answer(
   message: string,
   code: string,
   { path, locations }: GraphQLFormattedError,
-  more: Record<string, unknown> = {},
 ): GraphQLFormattedError {
   return {
     message,
     ...(path ? { path } : {}),
     ...(locations ? { locations } : {}),
-    extensions: { code, requestId: requestId(), ...more },
+    extensions: { code, requestId: requestId() },
   };
 }
 

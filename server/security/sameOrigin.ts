@@ -24,5 +24,9 @@ function isOurs(req: Request, ours: string): boolean {
   const origin = req.get("origin");
   if (origin === undefined || origin === ours) return true;
   // Reached under another name than PUBLIC_URL's (a tunnel, a name on the local network).
-  return URL.canParse(origin) && new URL(origin).host === req.get("host");
+  if (!URL.canParse(origin)) return false;
+  const { host, protocol } = new URL(origin);
+  // Where we are behind TLS, a page without it may have been written by anybody on the way.
+  if (ours.startsWith("https:") && protocol !== "https:") return false;
+  return host === req.get("host");
 }

@@ -47,9 +47,18 @@ it("a page reached under another name than PUBLIC_URL's may talk to the server i
   const response = await agent
     .post("/graphql")
     .set("Host", "fogline.local:4600")
-    .set("Origin", "http://fogline.local:4600")
+    .set("Origin", "https://fogline.local:4600")
     .send(BODY);
   expect(response.status).toBe(200);
+});
+
+it("behind TLS a page of the same name without TLS is another origin", async () => {
+  const response = await agent
+    .post("/graphql")
+    .set("Host", "fogline.test")
+    .set("Origin", "http://fogline.test")
+    .send(BODY);
+  expect(codeOf(response)).toBe("CROSS_ORIGIN");
 });
 
 it.each(["text/plain", "application/x-www-form-urlencoded", "multipart/form-data; boundary=x"])(

@@ -4,9 +4,11 @@ import { Writable } from "node:stream";
 
 import pino from "pino";
 import request from "supertest";
+import { ArgumentValidationError } from "type-graphql";
 
 import { findPeople } from "~server/account/people.service";
 import { HttpProblem } from "~server/common/errors";
+import { formatError } from "~server/http/graphql";
 import { routes, type RouteInstaller } from "~server/routes";
 
 import { startTestServer, type TestServer } from "../support/harness";
@@ -100,6 +102,26 @@ it("a fault of the database leaves without a word of SQL", async () => {
   const response = await agent.post("/graphql").send({ query: "{ people { id } }" });
   expect(response.body.errors[0].extensions.code).toBe("INTERNAL");
   expect(response.text).not.toMatch(LEAK);
+});
+
+it("an argument that breaks a rule is named, and neither its value nor our classes leave", () => {
+  const error = new ArgumentValidationError([
+    {
+      property: "nameOnPapers",
+      value: "a private value",
+      target: { passwordHash: SECRET },
+      constraints: { maxLength: "too long" },
+    },
+  ]);
+  const formatted = {
+    message: error.message,
+    extensions: { ...error.extensions, stacktrace: [SECRET] },
+  };
+  const answer = formatError(pino({ level: "silent" }), formatted as never, error);
+  expect(answer).toEqual({
+    message: "Not acceptable: nameOnPapers.",
+    extensions: { code: "BAD_USER_INPUT", requestId: "none" },
+  });
 });
 
 it.each([
