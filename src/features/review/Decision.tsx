@@ -87,6 +87,7 @@ export function Decision({
   refusal,
   onApprove,
   onReturn,
+  onReload,
 }: {
   blockers: readonly string[];
   comments: CommentDraft[];
@@ -97,6 +98,7 @@ export function Decision({
   refusal: string | null;
   onApprove: (note: string) => void;
   onReturn: (note: string) => void;
+  onReload: () => void;
 }) {
   const [note, setNote] = useState("");
   const [asking, setAsking] = useState(false);
@@ -161,7 +163,16 @@ export function Decision({
         onChangeText={setNote}
         hint="It goes with the decision, or leave it empty."
       />
-      {refusal ? <Notice grade="error">{refusal}</Notice> : null}
+      {refusal ? (
+        <Notice
+          grade="error"
+          action={
+            <Button kind="tonal" icon="refresh" label="See how it stands now" onPress={onReload} />
+          }
+        >
+          {refusal}
+        </Notice>
+      ) : null}
       {returning ? (
         <View style={{ gap: 8 }}>
           <Button

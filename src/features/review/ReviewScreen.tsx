@@ -233,6 +233,10 @@ function Work({ review, actions, onReload }: WorkProps) {
       setReturning={setReturning}
       busy={ending}
       refusal={endProblem}
+      onReload={() => {
+        setEndProblem(null);
+        onReload();
+      }}
       onApprove={(note) =>
         void end(
           async () =>
