@@ -173,7 +173,7 @@ function WideTable({
 
 const styles = StyleSheet.create({
   all: { gap: space.m },
-  aside: { gap: space.m },
+  aside: { gap: space.m, padding: space.l },
   tools: { flexDirection: "row", alignItems: "center", gap: space.s },
   toolsPhone: { gap: space.s },
   buttons: { flexDirection: "row", flexWrap: "wrap", gap: space.xs },

@@ -64,11 +64,11 @@ export function RecordView({ record }: { record: RecordData }) {
       </View>
       <Card flush>
         <View style={columns ? styles.parts : undefined}>
-          <AsPrinted fields={fields} />
+          <AsPrinted fields={fields} wide={columns} />
           <Rule upright={columns} />
-          <UsedPart used={used} />
+          <UsedPart used={used} wide={columns} />
           <Rule upright={columns} />
-          <View style={styles.part}>
+          <View style={[styles.part, columns && styles.third]}>
             <Block>Likelihood</Block>
             <StatementCurve fields={fields} />
           </View>
@@ -76,7 +76,7 @@ export function RecordView({ record }: { record: RecordData }) {
       </Card>
       <Cautions record={record} />
       <View style={columns ? styles.columns : styles.stack}>
-        <View style={styles.column}>
+        <View style={[styles.column, columns && styles.third]}>
           <Block>Provenance</Block>
           <Provenance record={record} />
           {citation.doi ? (
@@ -96,11 +96,11 @@ export function RecordView({ record }: { record: RecordData }) {
             />
           ) : null}
         </View>
-        <View style={styles.column}>
+        <View style={[styles.column, columns && styles.third]}>
           <DataUsed record={record} />
           <Relations record={record} />
         </View>
-        <View style={styles.column}>
+        <View style={[styles.column, columns && styles.third]}>
           <Revisions record={record} />
         </View>
       </View>
@@ -119,7 +119,7 @@ function Rule({ upright }: { upright: boolean }) {
   return upright ? <View style={{ width: 1, backgroundColor: colors.hairline }} /> : <Divider />;
 }
 
-function AsPrinted({ fields }: { fields: ConstraintFields }) {
+function AsPrinted({ fields, wide }: { fields: ConstraintFields; wide: boolean }) {
   const colors = useColors();
   const words = [
     levelPhrase(fields.level, fields.levelPercent),
@@ -131,7 +131,7 @@ function AsPrinted({ fields }: { fields: ConstraintFields }) {
       : "",
   ].filter(Boolean);
   return (
-    <View style={styles.part}>
+    <View style={[styles.part, wide && styles.third]}>
       <Block>As printed</Block>
       <NotationText notation={notationAsPrinted(fields)} size="stated" tail={false} />
       <Dense>{words.join(", ")}</Dense>
@@ -144,9 +144,9 @@ function AsPrinted({ fields }: { fields: ConstraintFields }) {
   );
 }
 
-function UsedPart({ used }: { used: AsUsed | null }) {
+function UsedPart({ used, wide }: { used: AsUsed | null; wide: boolean }) {
   return (
-    <View style={styles.part}>
+    <View style={[styles.part, wide && styles.third]}>
       <View style={styles.line}>
         <Block>As used</Block>
         {used?.derived ? <Caption muted>derived</Caption> : null}
@@ -323,11 +323,12 @@ const styles = StyleSheet.create({
   number: { fontSize: 15 },
   grow: { flex: 1, minWidth: 0 },
   parts: { flexDirection: "row" },
-  part: { flex: 1, minWidth: 0, padding: space.m, gap: space.xs },
+  part: { padding: space.m, gap: space.xs },
+  third: { flex: 1, minWidth: 0 },
   quote: { borderLeftWidth: 2, paddingLeft: space.s, marginTop: space.xxs },
   columns: { flexDirection: "row", gap: space.xl },
   stack: { gap: space.l },
-  column: { flex: 1, minWidth: 0, gap: space.s },
+  column: { gap: space.s },
   stackSmall: { gap: space.xs },
   relation: { flexDirection: "row", alignItems: "center", gap: space.s },
   revision: { gap: space.xxs, paddingBottom: space.xs },

@@ -86,7 +86,7 @@ export function TableBuilderScreen() {
       back="/tables"
       aside={
         wide ? (
-          <View style={styles.part}>
+          <View style={styles.aside}>
             <Section>Filter</Section>
             {filter}
           </View>
@@ -265,5 +265,6 @@ function Save({
 const styles = StyleSheet.create({
   all: { gap: space.l },
   part: { gap: space.s },
+  aside: { gap: space.m, padding: space.l },
   buttons: { flexDirection: "row", flexWrap: "wrap", gap: space.s },
 });
