@@ -71,13 +71,12 @@ function declareFields(target: object, input: boolean): void {
 
 @ObjectType("ConstraintFields")
 export class ConstraintFieldsType {}
-// eslint-disable-next-line @typescript-eslint/no-unsafe-declaration-merging -- the fields are declared from the table above
+// Its fields are declared from the table above.
 export interface ConstraintFieldsType extends ConstraintFields {}
 declareFields(ConstraintFieldsType.prototype, false);
 
 @InputType()
 export class ConstraintFieldsInput {}
-// eslint-disable-next-line @typescript-eslint/no-unsafe-declaration-merging -- likewise
 export interface ConstraintFieldsInput extends Partial<ConstraintFields> {}
 declareFields(ConstraintFieldsInput.prototype, true);
 

@@ -7,7 +7,7 @@ import { keepCitations } from "~server/citation/citation.service";
 import { Refusal } from "~server/common/outcomes";
 import { createDraft, reload, saveDraft, submitDraft } from "~server/constraint/draft.service";
 import { allFindings, neighbours } from "~server/constraint/neighbours";
-import { Revision } from "~server/constraint/revision.entity";
+import type { Revision } from "~server/constraint/revision.entity";
 import type { User } from "~server/account/user.entity";
 import type { Acting } from "~server/event/acting";
 import { acceptAnswer, approve, claim, storeReading } from "~server/review/review.service";

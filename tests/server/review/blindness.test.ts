@@ -1,12 +1,6 @@
 import { EventRecord } from "~server/event/event.entity";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
-import {
-  acceptAnswer,
-  approve,
-  claim,
-  returnSubmission,
-  storeReading,
-} from "~server/review/review.service";
+import { claim, returnSubmission, storeReading } from "~server/review/review.service";
 import { reviseSubmission, saveDraft, submitDraft } from "~server/constraint/draft.service";
 import { saveTable } from "~server/table/table.service";
 import { formatQuotable, formatRecordNumber } from "~shared/identifiers/recordNumber";
@@ -22,6 +16,7 @@ import {
   send,
 } from "../../factories/constraint";
 import { startTestServer, type Agent, type TestServer } from "../support/harness";
+import { deskOf } from "./desk";
 import { numbersIn, walkEverything, type Known } from "./walk";
 
 /**
@@ -152,6 +147,23 @@ describe("blindness", () => {
     expect(await confirms(editor.agent)).toEqual([]);
     expect(numbersIn(await mailsAndEvents(), SECRETS)).toEqual([]);
 
+    // Refusals tell nothing either.
+    const desk = deskOf(server, editor.agent);
+    const version = (await desk.review(submitted.id)).item.version;
+    const refusals = [
+      await desk.read(submitted.id, { quantity: "neutralFraction", kind: "twoSided" }),
+      await desk.correct(submitted.id, "value", { value: "1" }, "so"),
+      await desk.accept(submitted.id, "sightlineAsMean"),
+      await desk.approve(submitted.id, version),
+      await desk.giveBack(submitted.id, version, []),
+      await desk.submission(submitted.id),
+      await desk.revise(submitted.id),
+      await desk.start(null, submitted.id),
+      await desk.save(submitted.id, version, {}),
+    ];
+    expect(refusals.filter((one) => one !== null && one.__typename !== "Refusal")).toEqual([]);
+    expect(numbersIn(JSON.stringify(refusals), [...SECRETS, ...DERIVED])).toEqual([]);
+
     const who = actingAs(server.dataSource, editor.user);
     granted(await storeReading(who, submitted.id, submitted.fields));
     const after = await leaks(editor.agent);
@@ -243,9 +255,15 @@ describe("blindness", () => {
     );
     // Approved: public, and the walk finds it.
     expect((await leaks(editor.agent)).some((leak) => leak.includes("in constraints "))).toBe(true);
-    expect((await leaks(server.agent())).some((leak) => leak.includes("in fittingTables"))).toBe(
-      true,
-    );
+
+    const inPublic = await leaks(server.agent());
+    expect(inPublic.some((leak) => leak.includes("in fittingTables"))).toBe(true);
+    const files = [
+      /\/api\/constraints\.csv$/,
+      /\/api\/tables\/\w+\.csv/,
+      /\/api\/tables\/\w+\.json/,
+    ];
+    for (const file of files) expect(inPublic.some((leak) => file.test(leak))).toBe(true);
 
     const draft = granted(await reviseSubmission(hers, first.id));
     const saved = granted(
