@@ -1,0 +1,50 @@
+import type { Background } from "~shared/cosmology/background";
+import { powerLawHistory } from "~shared/history/powerLaw";
+import type { FitParameter } from "~shared/inference/families";
+import { depthSurfaces, type Predictor, rootsPredictor } from "~shared/inference/predictor";
+import type { ModelRequests } from "~shared/likelihood/compile";
+
+/**
+ * The power-law family at a fixed z_early without objects: points and bins in closed form, optical
+ * depths from a surface over the prior's box.
+ */
+export function powerLawPredictor(
+  requests: ModelRequests,
+  background: Background,
+  parameters: readonly FitParameter[],
+  zEarly: number,
+): Predictor {
+  const { points, binLows, binHighs } = requests;
+  const depths = depthSurfaces(requests, background, parameters, (zEnd, alpha) =>
+    powerLawHistory({ zEnd, alpha, zEarly }),
+  );
+  const roots = rootsPredictor(requests, background);
+  return (theta, out) => {
+    const zEnd = theta[0]!;
+    const alpha = theta[1]!;
+    const span = zEarly - zEnd;
+    let at = 0;
+    for (let i = 0; i < points.length; i++) {
+      const z = points[i]!;
+      out[at++] =
+        z <= zEnd ? 0 : z >= zEarly ? 1 : -Math.expm1(alpha * Math.log1p((zEnd - z) / span));
+    }
+    for (let i = 0; i < binLows.length; i++) {
+      const low = binLows[i]!;
+      const high = binHighs[i]!;
+      const ionized =
+        ionizedAbove(low, zEnd, zEarly, alpha) - ionizedAbove(high, zEnd, zEarly, alpha);
+      out[at++] = Math.max(0, 1 - ionized / (high - low));
+    }
+    for (let i = 0; i < depths.length; i++) out[at++] = depths[i]!(zEnd, alpha);
+    roots((f) => zEarly - span * Math.exp(Math.log1p(-f) / alpha), out);
+  };
+}
+
+/** ∫ Q dz from z up to z_early. */
+function ionizedAbove(z: number, zEnd: number, zEarly: number, alpha: number): number {
+  const span = zEarly - zEnd;
+  if (z >= zEarly) return 0;
+  if (z <= zEnd) return zEnd - z + span / (alpha + 1);
+  return (span / (alpha + 1)) * ((zEarly - z) / span) ** (alpha + 1);
+}

@@ -1,0 +1,83 @@
+import type { Background } from "~shared/cosmology/background";
+import type { History } from "~shared/history/history";
+import type { FitParameter } from "~shared/inference/families";
+import type { ModelRequests } from "~shared/likelihood/compile";
+import { Surface } from "~shared/numerics/surface";
+
+/**
+ * Answers a table's requests for one set of parameters.
+ *
+ * @param theta - Parameters, inside the box of the family.
+ * @param out - Filled as ModelRequests says, [requests.size]; NaN where there is no such value.
+ */
+export type Predictor = (theta: ArrayLike<number>, out: Float64Array) => void;
+
+/** Any family's predictor, through the one interface of histories. A new family starts with this. */
+export function historyPredictor(
+  requests: ModelRequests,
+  background: Background,
+  history: (theta: ArrayLike<number>) => History,
+): Predictor {
+  const { points, binLows, binHighs, depthLows, depthHighs } = requests;
+  const others = rootsPredictor(requests, background);
+  return (theta, out) => {
+    const model = history(theta);
+    let at = 0;
+    for (let i = 0; i < points.length; i++) out[at++] = model.x(points[i]!);
+    for (let i = 0; i < binLows.length; i++) {
+      out[at++] = model.binMean(binLows[i]!, binHighs[i]!);
+    }
+    for (let i = 0; i < depthLows.length; i++) {
+      out[at++] = model.opticalDepth(background, depthLows[i]!, depthHighs[i]!);
+    }
+    others((f) => model.redshiftAtFraction(f) ?? Number.NaN, out);
+  };
+}
+
+/** The redshifts at fractions and the durations, given how a family finds a redshift (NaN for none). */
+export function rootsPredictor(
+  requests: ModelRequests,
+  background: Background,
+): (redshiftAt: (f: number) => number, out: Float64Array) => void {
+  const { fractions, durations } = requests;
+  const first = requests.size - fractions.length - durations.length;
+  return (redshiftAt, out) => {
+    let at = first;
+    for (let i = 0; i < fractions.length; i++) out[at++] = redshiftAt(fractions[i]!);
+    for (let i = 0; i < durations.length; i++) {
+      const { f1, f2, myr } = durations[i]!;
+      const from = redshiftAt(f1);
+      const to = redshiftAt(f2);
+      out[at++] =
+        myr && from === from && to === to
+          ? 1000 * (background.age(to) - background.age(from))
+          : from - to;
+    }
+  };
+}
+
+/** How well an interpolated optical depth must agree with the integral, relative to its largest. */
+const DEPTH_TOLERANCE = 1e-9;
+
+/**
+ * Optical depths of a two-parameter family by interpolation over the prior's box, each checked against
+ * the integral between its nodes; by the integral itself where a surface does not hold the digits.
+ */
+export function depthSurfaces(
+  requests: ModelRequests,
+  background: Background,
+  parameters: readonly FitParameter[],
+  history: (a: number, b: number) => History,
+): ((a: number, b: number) => number)[] {
+  const [first, second] = parameters;
+  const box = {
+    low: [first!.low, second!.low] as const,
+    high: [first!.high, second!.high] as const,
+  };
+  return Array.from(requests.depthLows, (z1, i) => {
+    const z2 = requests.depthHighs[i]!;
+    const exact = (a: number, b: number): number => history(a, b).opticalDepth(background, z1, z2);
+    const surface = Surface.of(exact, box, DEPTH_TOLERANCE);
+    return surface ? (a: number, b: number) => surface.value(a, b) : exact;
+  });
+}
