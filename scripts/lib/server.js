@@ -69,7 +69,7 @@ function portFailure(error, port, host) {
  * Starts the compiled server and waits until it is ready.
  *
  * @param options.log - File that takes its output; `echo` also shows it here.
- * @returns { child, url, stop }
+ * @returns {Promise<{ child: import("node:child_process").ChildProcess & { ended: Promise<any> }, url: string, stop: () => Promise<void> }>}
  */
 async function launchServer(environment, { log, echo = false }) {
   const port = Number(environment.PORT);

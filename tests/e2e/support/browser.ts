@@ -129,7 +129,7 @@ export function layoutProblems(page: Page): Promise<string[]> {
       }
       return false;
     };
-    for (const element of document.body.querySelectorAll("*")) {
+    for (const element of Array.from(document.body.querySelectorAll("*"))) {
       if (element.closest("svg") !== null && element.tagName !== "svg") continue;
       const box = element.getBoundingClientRect();
       const style = getComputedStyle(element);
@@ -138,7 +138,7 @@ export function layoutProblems(page: Page): Promise<string[]> {
       if (hidden || box.width <= 1 || box.height <= 1) continue;
       if ((box.right > width + 1 || box.left < -1) && !scrollsSideways(element.parentElement))
         found.push(`${describe(element)} reaches from ${box.left} to ${box.right} of ${width}`);
-      const ownText = [...element.childNodes].some(
+      const ownText = Array.from(element.childNodes).some(
         (node) => node.nodeType === Node.TEXT_NODE && node.textContent?.trim(),
       );
       const clips = style.overflowX === "hidden" || style.overflowX === "clip";
