@@ -65,7 +65,9 @@ export function indexColumns(
 function representativeRedshift(used: ReturnType<typeof asUsed>): number | null {
   if (!used) return null;
   if (used.z !== null) return used.z;
-  return used.zLow !== null && used.zHigh !== null ? (used.zLow + used.zHigh) / 2 : null;
+  if (used.zLow === null || used.zHigh === null) return null;
+  // The middle of 5.42 and 5.64 is 5.53, also to a filter that ends there.
+  return Number(((used.zLow + used.zHigh) / 2).toFixed(9));
 }
 
 /** Alternatives are several answers of one paper: the label counts within its citation. */

@@ -5,6 +5,7 @@ import { isDemonstration } from "~server/database/settings";
 import { EventRecord } from "~server/event/event.entity";
 import { verifyChain } from "~server/event/eventLog";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
+import { Reading } from "~server/review/reading.entity";
 import { seedDemonstration } from "~server/seed";
 import { DEMONSTRATION_PASSWORD, PEOPLE } from "~server/seed/people";
 import { SavedTable } from "~server/table/table.entity";
@@ -74,6 +75,22 @@ describe("the demonstration", () => {
       expect(hasErrors(revision.findings)).toBe(false);
       if (revision.kind !== "qualitative") expect(asUsed(revision.fields)).not.toBeNull();
     }
+  });
+
+  it("has answers to look at: accepted ones in use, and one that waits for an editor", async () => {
+    const revisions = await server.dataSource.manager.find(Revision);
+    const open = (state: string) =>
+      revisions
+        .filter((revision) => revision.state === state)
+        .flatMap(({ findings, answers }) =>
+          findings
+            .filter(({ grade }) => grade === "mustAnswer")
+            .map(({ code }) => answers.find((answer) => answer.code === code)?.accepted),
+        );
+    expect(new Set(open("approved"))).toEqual(new Set([true]));
+    expect(open("submitted")).toContain(false);
+    const corrected = await server.dataSource.manager.find(Reading);
+    expect(corrected.some(({ corrections }) => corrections.length === 1)).toBe(true);
   });
 
   it("names only papers under the prefix reserved for examples", async () => {
