@@ -1,4 +1,4 @@
-import { type ReactNode, useState } from "react";
+import { Fragment, type ReactNode, useState } from "react";
 import { View } from "react-native";
 
 import { Segments } from "@/components/Segments";
@@ -24,34 +24,35 @@ export interface PrintedEntryProps {
  * and the second reading both use it, so that two people answer the same questions.
  */
 export function PrintedEntry({ fields, set, asked, error, under, onBlur }: PrintedEntryProps) {
-  const { quantity, kind } = fields;
-  const fraction = quantity === "neutralFraction" || quantity === null;
+  const { kind } = fields;
   const limit = kind === "upperLimit" || kind === "lowerLimit";
 
   const shown = (name: FieldName) => (asked?.(name) ?? true) && isRelevant(name, fields);
-  const input = (name: FieldName, label?: string, hint?: string) =>
-    shown(name) ? (
-      <View key={name} style={{ minWidth: 0, gap: 4 }}>
-        <FieldInput
-          name={name}
-          fields={fields}
-          set={set}
-          label={label}
-          hint={hint}
-          error={error?.(name)}
-          onBlur={onBlur}
-        />
-        {under?.(name)}
-      </View>
-    ) : null;
-  const row = (...inputs: (ReactNode | null)[]) => {
-    const present = inputs.filter((one) => one !== null);
-    return present.length === 0 ? null : (
-      <View style={{ flexDirection: "row", gap: 12, alignItems: "flex-start" }}>
-        {present.map((one, index) => (
-          <View key={index} style={{ flex: 1, minWidth: 0 }}>
-            {one}
-          </View>
+  const control = (name: FieldName, label?: string) => (
+    <FieldInput
+      name={name}
+      fields={fields}
+      set={set}
+      label={label}
+      error={error?.(name)}
+      onBlur={onBlur}
+    />
+  );
+  const row: Row = (...inputs) => {
+    const present = inputs.filter(([name]) => shown(name));
+    if (present.length === 0) return null;
+    return (
+      <View style={{ gap: 4 }}>
+        <View style={{ flexDirection: "row", gap: 12, alignItems: "flex-start" }}>
+          {present.map(([name, label]) => (
+            <View key={name} style={{ flex: 1, minWidth: 0 }}>
+              {control(name, label)}
+            </View>
+          ))}
+        </View>
+        {/* What belongs to one field of a row takes the row's width: it is text to be read. */}
+        {present.map(([name]) => (
+          <Fragment key={name}>{under?.(name)}</Fragment>
         ))}
       </View>
     );
@@ -59,46 +60,45 @@ export function PrintedEntry({ fields, set, asked, error, under, onBlur }: Print
 
   return (
     <View style={{ gap: 16 }}>
-      {input("quantity", "Quantity")}
-      {input("species", "Fraction as printed")}
-      {input("helium")}
-      {input("kind", "Statement")}
-      {kind === "twoSided" && shown("value") ? (
-        <View style={{ flexDirection: "row", gap: 12, alignItems: "center" }}>
-          <View style={{ flex: 1, minWidth: 0 }}>{input("value", "Value")}</View>
-          {shown("plus") || shown("minus") ? (
+      {row(["quantity", "Quantity"])}
+      {row(["species", "Fraction as printed"])}
+      {row(["helium"])}
+      {row(["kind", "Statement"])}
+      {kind === "twoSided" && shown("value") && (shown("plus") || shown("minus")) ? (
+        <View style={{ gap: 4 }}>
+          <View style={{ flexDirection: "row", gap: 12, alignItems: "center" }}>
+            <View style={{ flex: 1, minWidth: 0 }}>{control("value", "Value")}</View>
             <View style={{ flex: 1, minWidth: 0, gap: 8 }}>
-              {row(input("plus", "+ plus"))}
-              {row(input("minus", "− minus"))}
+              {shown("plus") ? control("plus", "+ plus") : null}
+              {shown("minus") ? control("minus", "− minus") : null}
             </View>
-          ) : null}
+          </View>
+          {under?.("value")}
+          {under?.("plus")}
+          {under?.("minus")}
         </View>
-      ) : (
-        row(
-          kind === "twoSided" ? input("plus", "+ plus") : null,
-          kind === "twoSided" ? input("minus", "− minus") : null,
-        )
-      )}
-      {limit ? <LimitEntry {...{ fields, set, input, row, shown }} /> : null}
-      {kind === "band" ? row(input("bandLow", "Band from"), input("bandHigh", "Band to")) : null}
-      {row(
-        input("level", "Level"),
-        input("levelPercent", "Level in percent"),
-        input("estimator", "Estimator"),
-      )}
-      {row(input("rangeLow", "From redshift"), input("rangeHigh", "To redshift"))}
-      {row(input("fraction", "At the fraction"))}
-      {row(input("fractionFrom", "From fraction"), input("fractionTo", "To fraction"))}
-      {input("durationUnit", "Unit of the duration")}
-      {fraction ? row(input("z", "Redshift"), input("zLow", "low"), input("zHigh", "high")) : null}
-      {input("zRole", "Role of the redshift")}
-      {row(input("weighting", "Weighting"), input("scale", "Scale"))}
-      {input("historyAssumed", "History and truncation assumed")}
-      {input("printedText", "Exact printed text")}
-      {input("furtherIntervals", "Further intervals of the same paper")}
+      ) : kind === "twoSided" ? (
+        row(["value", "Value"], ["plus", "+ plus"], ["minus", "− minus"])
+      ) : null}
+      {limit ? <LimitEntry fields={fields} set={set} row={row} shown={shown} /> : null}
+      {row(["bandLow", "Band from"], ["bandHigh", "Band to"])}
+      {row(["level", "Level"], ["levelPercent", "Level in percent"], ["estimator", "Estimator"])}
+      {row(["rangeLow", "From redshift"], ["rangeHigh", "To redshift"])}
+      {row(["fraction", "At the fraction"])}
+      {row(["fractionFrom", "From fraction"], ["fractionTo", "To fraction"])}
+      {row(["durationUnit", "Unit of the duration"])}
+      {row(["z", "Redshift"], ["zLow", "low"], ["zHigh", "high"])}
+      {row(["zRole", "Role of the redshift"])}
+      {row(["weighting", "Weighting"], ["scale", "Scale"])}
+      {row(["historyAssumed", "History and truncation assumed"])}
+      {row(["printedText", "Exact printed text"])}
+      {row(["furtherIntervals", "Further intervals of the same paper"])}
     </View>
   );
 }
+
+/** Inputs side by side, those of them that are asked; null when none is. */
+type Row = (...inputs: [name: FieldName, label?: string][]) => ReactNode;
 
 type LimitForm = "one" | "base";
 
@@ -106,14 +106,12 @@ type LimitForm = "one" | "base";
 function LimitEntry({
   fields,
   set,
-  input,
   row,
   shown,
 }: {
   fields: ConstraintFields;
   set: SetField;
-  input: (name: FieldName, label?: string, hint?: string) => ReactNode;
-  row: (...inputs: (ReactNode | null)[]) => ReactNode;
+  row: Row;
   shown: (name: FieldName) => boolean;
 }) {
   const hasBase = fields.limitBase !== null || fields.limitSigma !== null;
@@ -133,12 +131,7 @@ function LimitEntry({
     }
   };
   const both = shown("value") && shown("limitBase");
-  if (!both)
-    return row(
-      input("value", "Limit"),
-      input("limitBase", "Base"),
-      input("limitSigma", "Own sigma"),
-    );
+  if (!both) return row(["value", "Limit"], ["limitBase", "Base"], ["limitSigma", "Own sigma"]);
   return (
     <View style={{ gap: 16 }}>
       <Segments
@@ -151,8 +144,8 @@ function LimitEntry({
         onChange={(value) => change(value as LimitForm)}
       />
       {form === "one"
-        ? row(input("value", "Limit"))
-        : row(input("limitBase", "Base"), input("limitSigma", "Own sigma"))}
+        ? row(["value", "Limit"])
+        : row(["limitBase", "Base"], ["limitSigma", "Own sigma"])}
     </View>
   );
 }

@@ -1,8 +1,10 @@
 import { View } from "react-native";
+import Svg, { Line } from "react-native-svg";
 
 import { LikelihoodCurve, type LikelihoodLine } from "@/charts/LikelihoodCurve";
 import { NotationText } from "@/components/NotationText";
 import { Dense, Section } from "@/components/Text";
+import { useColors } from "@/theme/ThemeProvider";
 import { rowLikelihood } from "~shared/likelihood";
 import { asUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields, Quantity } from "~shared/statement/fields";
@@ -50,18 +52,41 @@ export function Difference({
       {comparable ? (
         <LikelihoodCurve
           lines={lines as LikelihoodLine[]}
+          legend={false}
           symbol={SYMBOLS[submission.quantity ?? "neutralFraction"]}
         />
       ) : null}
-      <Side word="your reading" fields={read} />
-      <Side word="submitted" fields={submission} />
+      <Side word="your reading" fields={read} look="main" />
+      <Side word="submitted" fields={submission} look="other" />
     </View>
   );
 }
 
-function Side({ word, fields }: { word: string; fields: ConstraintFields }) {
+/** One of the two, with the line it has in the curve above. */
+function Side({
+  word,
+  fields,
+  look,
+}: {
+  word: string;
+  fields: ConstraintFields;
+  look: "main" | "other";
+}) {
+  const colors = useColors();
+  const main = look === "main";
   return (
     <View style={{ flexDirection: "row", alignItems: "center", flexWrap: "wrap", gap: 8 }}>
+      <Svg width={28} height={12} aria-hidden>
+        <Line
+          x1={0}
+          y1={6}
+          x2={28}
+          y2={6}
+          stroke={main ? colors.primary : colors.ember}
+          strokeWidth={main ? 2.75 : 2}
+          strokeDasharray={main ? undefined : "7 4"}
+        />
+      </Svg>
       <Dense>{word}</Dense>
       <NotationText notation={notationAsPrinted(fields)} size="readout" />
     </View>

@@ -15,7 +15,7 @@ import { plainFields } from "@/components/statement/plainFields";
 import { StatusPill } from "@/components/StatusPill";
 import { StepBar } from "@/components/StepBar";
 import { Caption, Dense, Mono } from "@/components/Text";
-import { dateTime } from "@/components/when";
+import { dateTime, shortDateTime } from "@/components/when";
 import { Screen } from "@/layout/Screen";
 import { useLayoutClass } from "@/layout/useLayoutClass";
 import {
@@ -307,15 +307,16 @@ function Work({ review, actions, onReload }: WorkProps) {
         {returning ? (
           decision
         ) : (
-          <View style={{ flexDirection: "row" }}>
+          <View style={{ flexDirection: "row", flexWrap: "wrap", gap: 8 }}>
             <Button
               kind="text"
-              label="It can't be read at this place: return it"
+              label="It can't be read there: return it"
               onPress={() => {
                 setComments([{ field: "place", text: "" }]);
                 setReturning(true);
               }}
             />
+            <Button kind="text" label="Release claim" onPress={() => setReleasing(true)} />
           </View>
         )}
       </View>
@@ -325,20 +326,17 @@ function Work({ review, actions, onReload }: WorkProps) {
         <View role="status">
           <Caption>{leftWords(review.fieldsToRead, reading.fields, missing)}</Caption>
         </View>
-        <View style={{ flexDirection: "row", flexWrap: "wrap", gap: 12 }}>
-          <Button kind="outline" label="Release claim" onPress={() => setReleasing(true)} />
-          <Button
-            kind="filled"
-            label="Store my reading"
-            busy={actions.busy}
-            disabledBecause={
-              missing.length > 0
-                ? `${missing.length === 1 ? "One field is" : `${missing.length} fields are`} still open.`
-                : undefined
-            }
-            onPress={() => void storeReading()}
-          />
-        </View>
+        <Button
+          kind="filled"
+          label="Store my reading"
+          busy={actions.busy}
+          disabledBecause={
+            missing.length > 0
+              ? `${missing.length === 1 ? "One field is" : `${missing.length} fields are`} still open.`
+              : undefined
+          }
+          onPress={() => void storeReading()}
+        />
       </View>
     );
   } else {
@@ -458,6 +456,16 @@ function leftWords(
 /** Number, state and claim in the head of the page. */
 function Standing({ review }: { review: ReviewPartsFragment }) {
   const { item } = review;
+  const phone = useLayoutClass() === "compact";
+  if (phone) {
+    const held = item.claimedByMe && item.claimedUntil;
+    return (
+      <Caption>
+        <Mono>{item.number}</Mono>
+        {held ? `, claimed until ${shortDateTime(item.claimedUntil!)}` : ""}
+      </Caption>
+    );
+  }
   return (
     <View style={{ flexDirection: "row", flexWrap: "wrap", alignItems: "center", gap: 8 }}>
       <Mono style={{ fontSize: 15 }}>{item.number}</Mono>

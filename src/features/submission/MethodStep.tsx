@@ -1,4 +1,4 @@
-import type { ReactNode } from "react";
+import { Fragment, type ReactNode } from "react";
 import { View } from "react-native";
 
 import { FieldInput, type SetField } from "@/components/statement/FieldInput";
@@ -20,65 +20,65 @@ export function MethodStep({
   under: (name: FieldName) => ReactNode;
   onBlur: () => void;
 }) {
-  const input = (name: FieldName, label?: string, hint?: string) =>
-    isRelevant(name, fields) ? (
-      <View key={name} style={{ minWidth: 0, gap: 4 }}>
-        <FieldInput
-          name={name}
-          fields={fields}
-          set={set}
-          label={label}
-          hint={hint}
-          error={error(name) ?? (name === "dataUsed" ? error("dataKnown") : undefined)}
-          onBlur={onBlur}
-        />
-        {under(name)}
-      </View>
-    ) : null;
-  const row = (...inputs: ReactNode[]) => (
-    <View style={{ flexDirection: "row", gap: 12, alignItems: "flex-start" }}>
-      {inputs
-        .filter((one) => one !== null)
-        .map((one, index) => (
-          <View key={index} style={{ flex: 1, minWidth: 0 }}>
-            {one}
-          </View>
+  const row = (...inputs: [name: FieldName, label?: string, hint?: string][]) => {
+    const present = inputs.filter(([name]) => isRelevant(name, fields));
+    if (present.length === 0) return null;
+    return (
+      <View style={{ gap: 4 }}>
+        <View style={{ flexDirection: "row", gap: 12, alignItems: "flex-start" }}>
+          {present.map(([name, label, hint]) => (
+            <View key={name} style={{ flex: 1, minWidth: 0 }}>
+              <FieldInput
+                name={name}
+                fields={fields}
+                set={set}
+                label={label}
+                hint={hint}
+                error={error(name) ?? (name === "dataUsed" ? error("dataKnown") : undefined)}
+                onBlur={onBlur}
+              />
+            </View>
+          ))}
+        </View>
+        {present.map(([name]) => (
+          <Fragment key={name}>{under(name)}</Fragment>
         ))}
-    </View>
-  );
+      </View>
+    );
+  };
   return (
     <View style={{ gap: 32 }}>
-      <EntryGroup title="Method">{input("methodTags", "Methods")}</EntryGroup>
+      <EntryGroup title="Method">{row(["methodTags", "Methods"])}</EntryGroup>
       <EntryGroup title="Data used">
-        {input("dataUsed", "Sightlines, fields and samples")}
+        {row(["dataUsed", "Sightlines, fields and samples"])}
       </EntryGroup>
       <EntryGroup title="Place in the paper">
-        {row(input("place", "Table, row or section"), input("page", "Page"))}
+        {row(["place", "Table, row or section"], ["page", "Page"])}
         {row(
-          input("versionRead", "Version read"),
-          input("preprintVersion", "Preprint version", "2, for v2"),
+          ["versionRead", "Version read"],
+          ["preprintVersion", "Preprint version", "A 2 for v2"],
         )}
-        {input("readOffFigure", "Read off a figure")}
-        {input("digitizingError", "Digitizing error")}
+        {row(["readOffFigure", "Read off a figure"])}
+        {row(["digitizingError", "Digitizing error"])}
       </EntryGroup>
       <EntryGroup title="What it depends on">
-        {input("conditionedOn")}
-        {input("priorForm", "Form of the prior")}
-        {row(input("priorVariable", "Prior is on"), input("priorRange", "Range"))}
-        {input("modelTags")}
-        {input("cosmicVariance")}
+        {row(["conditionedOn"])}
+        {row(["priorForm", "Form of the prior"])}
+        {row(["priorVariable", "Prior is on"], ["priorRange", "Range"])}
+        {row(["modelTags"])}
+        {row(["cosmicVariance"])}
       </EntryGroup>
       <EntryGroup title="Alternatives">
-        {input(
+        {row([
           "alternativesGroup",
           "Group",
           "Answers of this paper to one question carry the same label; they are never multiplied.",
-        )}
+        ])}
         {fields.alternativesGroup
-          ? input("alternativesPreferred", "The authors prefer this one")
+          ? row(["alternativesPreferred", "The authors prefer this one"])
           : null}
       </EntryGroup>
-      <EntryGroup title="Remark">{input("remark")}</EntryGroup>
+      <EntryGroup title="Remark">{row(["remark"])}</EntryGroup>
     </View>
   );
 }
