@@ -85,10 +85,21 @@ async function rebuild(name, sources, label, make) {
     await make(fresh);
     fs.writeFileSync(path.join(fresh, ".stamp"), stamp);
     fs.rmSync(old, { recursive: true, force: true });
-    if (fs.existsSync(target)) fs.renameSync(target, old);
-    fs.renameSync(fresh, target);
+    if (fs.existsSync(target)) move(target, old);
+    move(fresh, target);
     fs.rmSync(old, { recursive: true, force: true });
   });
+}
+
+/** Renames a folder; where the file system can't (another disk, a layer of a container), copies it. */
+function move(from, to) {
+  try {
+    fs.renameSync(from, to);
+  } catch (error) {
+    if (error.code !== "EXDEV") throw error;
+    fs.cpSync(from, to, { recursive: true });
+    fs.rmSync(from, { recursive: true, force: true });
+  }
 }
 
 /** Writes a Brotli and a gzip copy beside each text file, for the server to hand out as they are. */
