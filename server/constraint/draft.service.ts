@@ -9,6 +9,7 @@ import { appendEvent, digestOf } from "~server/event/eventLog";
 import { FieldCommentRecord } from "~server/review/comment.entity";
 import { tellEditors } from "~server/review/mails";
 import { formatQuotable } from "~shared/identifiers/recordNumber";
+import { canMove } from "~shared/review/policy";
 import { diffFields } from "~shared/review/reading";
 import { emptyFields, type ConstraintFields } from "~shared/statement/fields";
 
@@ -244,6 +245,9 @@ export async function updateAt(
   states: readonly Revision["state"][],
   set: Written,
 ): Promise<boolean> {
+  const { state } = set;
+  const forbidden = state && states.find((from) => from !== state && !canMove(from, state));
+  if (forbidden) throw new Error(`no revision moves from ${forbidden} to ${state}`);
   const result = await manager
     .createQueryBuilder()
     .update(Revision)

@@ -136,7 +136,8 @@ export class Revision {
   @Column({ type: "varchar", length: 120, nullable: true })
   alternativesKey!: string | null;
 
-  @Column({ type: "text" })
+  /** A collaboration's author list alone can be longer than a plain text column. */
+  @Column({ type: "mediumtext" })
   searchText!: string;
 }
 

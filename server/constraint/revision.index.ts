@@ -35,9 +35,7 @@ export function indexColumns(
   citation: Citation | null,
 ): IndexColumns {
   const used = asUsed(fields);
-  const families = METHOD_TAGS.filter((tag) => fields.methodTags.includes(tag.tag)).map(
-    (tag) => tag.family,
-  );
+  const known = METHOD_TAGS.filter(({ tag }) => fields.methodTags.includes(tag));
   return {
     quantity: fields.quantity,
     kind: fields.kind,
@@ -45,8 +43,8 @@ export function indexColumns(
     versionRead: fields.versionRead,
     zUsed: representativeRedshift(used),
     year: citation?.year ?? null,
-    families: wordList(families),
-    tags: wordList(fields.methodTags),
+    families: wordList(known.map(({ family }) => family)),
+    tags: wordList(known.map(({ tag }) => tag)),
     alternativesKey: alternativesKey(fields, citation?.id ?? null),
     searchText: [
       formatRecordNumber(number),
