@@ -19,7 +19,10 @@ export function linePath(
   vertical: Scale,
 ): string {
   return xs
-    .map((x, i) => `${i === 0 ? "M" : "L"}${short(horizontal.at(x))} ${short(vertical.at(ys[i] ?? 0))}`)
+    .map(
+      (x, i) =>
+        `${i === 0 ? "M" : "L"}${short(horizontal.at(x))} ${short(vertical.at(ys[i] ?? 0))}`,
+    )
     .join("");
 }
 

@@ -46,7 +46,11 @@ export function logTicks(domain: Interval): Tick[] {
   const high = Math.max(...domain);
   if (!(low > 0)) throw new DomainError("domain", low, "positive");
   const ticks: Tick[] = [];
-  for (let e = Math.floor(Math.log10(low) + 1e-12); e <= Math.floor(Math.log10(high) + 1e-12); e++) {
+  for (
+    let e = Math.floor(Math.log10(low) + 1e-12);
+    e <= Math.floor(Math.log10(high) + 1e-12);
+    e++
+  ) {
     for (let m = 1; m <= 9; m++) {
       const value = Number(`${m}e${e}`);
       if (value < low * (1 - 1e-12) || value > high * (1 + 1e-12)) continue;

@@ -105,9 +105,10 @@ function useFrame({
     return {
       box,
       z: linearScale(domain, [box.left, box.right]),
-      x: lowest !== null
-        ? logScale([lowest, 1.12], [box.bottom, box.top])
-        : linearScale([-0.03, 1.03], [box.bottom, box.top]),
+      x:
+        lowest !== null
+          ? logScale([lowest, 1.12], [box.bottom, box.top])
+          : linearScale([-0.03, 1.03], [box.bottom, box.top]),
       sizes: phone ? PHONE_SIZES : WIDE_SIZES,
     };
   }, [width, height, phone, domain, lowest]);
@@ -128,13 +129,7 @@ export function HistoryDrawing(props: HistoryChartProps & { legend?: ReactNode }
         height={frame.box.bottom - frame.box.top}
         fill={props.ground ?? colors.surface}
       />
-      <Curves
-        frame={frame}
-        histories={histories}
-        domain={domain}
-        colors={colors}
-        scheme={scheme}
-      />
+      <Curves frame={frame} histories={histories} domain={domain} colors={colors} scheme={scheme} />
       <Marks
         points={points}
         marks={marks}
@@ -301,8 +296,7 @@ const Curves = memo(function Curves({
     return { id: entry.id, zs, xs: zs.map((at) => history.x(at)) };
   });
   const foggy = sampled[0];
-  const mask =
-    scheme === "light" ? ([0.32, 0.72, 1] as const) : ([0.5, 0.85, 1] as const);
+  const mask = scheme === "light" ? ([0.32, 0.72, 1] as const) : ([0.5, 0.85, 1] as const);
   return (
     <G>
       <Defs>
@@ -429,8 +423,8 @@ const Marks = memo(function Marks({
   return (
     <G>
       <G opacity={chosenMark ? 0.42 : 1}>
-        {others.map((index) => one(index, "bars", 1.25))}
-        {others.map((index) => one(index, "marker", 1.25))}
+        <G>{others.map((index) => one(index, "bars", 1.25))}</G>
+        <G>{others.map((index) => one(index, "marker", 1.25))}</G>
       </G>
       {chosenMark && chosenPoint ? (
         <G>
@@ -449,8 +443,8 @@ const Marks = memo(function Marks({
             stroke={colors.ember}
             strokeWidth={2.5}
           />
-          {one(chosen, "bars", 2)}
-          {one(chosen, "marker", 2)}
+          <G>{one(chosen, "bars", 2)}</G>
+          <G>{one(chosen, "marker", 2)}</G>
         </G>
       ) : null}
     </G>
@@ -458,15 +452,7 @@ const Marks = memo(function Marks({
 });
 
 /** Bars, band and arrow of one point. */
-export function Bars({
-  mark,
-  hue,
-  width,
-}: {
-  mark: Mark;
-  hue: string;
-  width: number;
-}) {
+export function Bars({ mark, hue, width }: { mark: Mark; hue: string; width: number }) {
   const dash = mark.dashed ? "3 2.5" : undefined;
   return (
     <G>
@@ -488,16 +474,8 @@ export function Bars({
       ))}
       {mark.arrow ? (
         <G>
-          <Line
-            {...mark.arrow.shaft}
-            stroke={hue}
-            strokeWidth={width}
-            strokeDasharray={dash}
-          />
-          <Path
-            d={`M${mark.arrow.head.map(([px, py]) => `${px} ${py}`).join("L")}Z`}
-            fill={hue}
-          />
+          <Line {...mark.arrow.shaft} stroke={hue} strokeWidth={width} strokeDasharray={dash} />
+          <Path d={`M${mark.arrow.head.map(([px, py]) => `${px} ${py}`).join("L")}Z`} fill={hue} />
         </G>
       ) : null}
     </G>
@@ -535,13 +513,9 @@ const Axes = memo(function Axes({
 }) {
   const { box, z, x } = frame;
   const lower = linearTicks(domain, ...redshiftSteps(domain));
-  const side: Tick[] = logarithmic
-    ? logTicks([x.domain[0], 1])
-    : linearTicks([0, 1], 0.2, 0.05);
+  const side: Tick[] = logarithmic ? logTicks([x.domain[0], 1]) : linearTicks([0, 1], 0.2, 0.05);
   const upper =
-    upperAxis === "age"
-      ? ageTicks(domain, ageOf)
-      : derivedTicks(domain, frequencyOf21cmMHz, 20, 5);
+    upperAxis === "age" ? ageTicks(domain, ageOf) : derivedTicks(domain, frequencyOf21cmMHz, 20, 5);
   const labelled = upper.filter(
     (tick) => tick.major && (upperAxis !== "age" || !phone || isEvenTenth(tick.value)),
   );
@@ -670,7 +644,9 @@ const Axes = memo(function Axes({
 /** Ages crowd at high redshift: steps of 0.1 Gyr while they are readable, else wider ones. */
 function ageTicks(domain: Interval, ageOf: (z: number) => number): Tick[] {
   const span = Math.abs(ageOf(domain[0]) - ageOf(domain[1]));
-  return span > 1.6 ? derivedTicks(domain, ageOf, 0.5, 0.1) : derivedTicks(domain, ageOf, 0.1, 0.05);
+  return span > 1.6
+    ? derivedTicks(domain, ageOf, 0.5, 0.1)
+    : derivedTicks(domain, ageOf, 0.1, 0.05);
 }
 
 function isEvenTenth(value: number): boolean {

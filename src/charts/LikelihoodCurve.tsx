@@ -74,13 +74,7 @@ export function LikelihoodCurve({
           {lines.map((line, index) => (
             <View key={line.label} style={styles.legendItem}>
               <Svg width={28} height={6} aria-hidden>
-                <Line
-                  x1={0}
-                  x2={28}
-                  y1={3}
-                  y2={3}
-                  {...lineLook(line, index, main, colors.ember)}
-                />
+                <Line x1={0} x2={28} y1={3} y2={3} {...lineLook(line, index, main, colors.ember)} />
               </Svg>
               <Caption>{line.label}</Caption>
             </View>

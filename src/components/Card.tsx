@@ -1,6 +1,7 @@
 import type { ReactNode } from "react";
 import { type StyleProp, StyleSheet, View, type ViewStyle } from "react-native";
 import { Divider as PaperDivider } from "react-native-paper";
+import { Ground } from "@/theme/Ground";
 import { useColors } from "@/theme/ThemeProvider";
 import { radius, space } from "@/theme/tokens";
 
@@ -25,7 +26,7 @@ export function Card({
         style,
       ]}
     >
-      {children}
+      <Ground on="surface">{children}</Ground>
     </View>
   );
 }

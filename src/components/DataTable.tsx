@@ -38,7 +38,12 @@ export function DataTable<Row>({
     verticalAlign: "middle",
   } as const;
   return (
-    <div style={{ overflowX: "auto", maxWidth: "100%" }} tabIndex={0} role="group" aria-label={caption}>
+    <div
+      style={{ overflowX: "auto", maxWidth: "100%" }}
+      tabIndex={0}
+      role="group"
+      aria-label={caption}
+    >
       <table
         style={{
           borderCollapse: "collapse",

@@ -1,5 +1,6 @@
 import { type ReactNode, useId, useState } from "react";
 import { StyleSheet, TextInput, View } from "react-native";
+import { useGround } from "@/theme/Ground";
 import { useColors } from "@/theme/ThemeProvider";
 import { fonts, radius, space } from "@/theme/tokens";
 import Icon from "./Icon";
@@ -18,7 +19,6 @@ export function FieldFrame({
   focused,
   error,
   hint,
-  patch,
   tall = false,
   children,
 }: {
@@ -27,12 +27,11 @@ export function FieldFrame({
   focused: boolean;
   error?: string | null;
   hint?: string;
-  /** Colour behind the label where the field does not stand on a surface. */
-  patch?: string;
   tall?: boolean;
   children: ReactNode;
 }) {
   const colors = useColors();
+  const ground = useGround();
   const line = error ? colors.ember : focused ? colors.primary : colors.outline;
   const labelColor = error ? colors.emberText : focused ? colors.primary : colors.muted;
   return (
@@ -55,7 +54,7 @@ export function FieldFrame({
               fontSize: 13,
               lineHeight: "16px",
               color: labelColor,
-              backgroundImage: patchImage(patch ?? colors.paper, colors.surface),
+              backgroundImage: patchImage(ground, colors.surface),
               padding: "0 4px",
               whiteSpace: "nowrap",
               overflow: "hidden",

@@ -57,7 +57,11 @@ export function NotationText({
 }) {
   const sizes = SIZES[size];
   const { relation, value, plus, minus, low, high, limitSigma, unit } = notation;
-  const number = { fontSize: sizes.value, lineHeight: sizes.value * 1.3, fontWeight: "500" } as const;
+  const number = {
+    fontSize: sizes.value,
+    lineHeight: sizes.value * 1.3,
+    fontWeight: "500",
+  } as const;
   const small = {
     fontSize: Math.max(12, sizes.value * 0.74),
     lineHeight: Math.max(12, sizes.value * 0.74) * 1.08,
@@ -65,7 +69,8 @@ export function NotationText({
   } as const;
   const equal = plus !== null && plus === minus;
   const stacked = !equal && (plus !== null || minus !== null);
-  const sign = relation === "<" || relation === ">" ? relation : relation === "=" && symbol ? "=" : "";
+  const sign =
+    relation === "<" || relation === ">" ? relation : relation === "=" && symbol ? "=" : "";
   const text = lineText(notation);
   return (
     <View style={styles.line} role="img" aria-label={text}>

@@ -30,7 +30,8 @@ export function Notice({
   const colors = useColors();
   const warm = grade === "mustAnswer" || grade === "caution";
   const back = warm ? colors.emberTint : grade === "done" ? colors.petrolTint : colors.surface;
-  const border = grade === "error" ? colors.ember : warm || grade === "done" ? back : colors.hairline;
+  const border =
+    grade === "error" ? colors.ember : warm || grade === "done" ? back : colors.hairline;
   const tone =
     grade === "error" || warm ? colors.emberText : grade === "done" ? colors.primary : colors.muted;
   return (

@@ -1,5 +1,6 @@
 import type { ReactNode } from "react";
 import { Modal, Pressable, ScrollView, StyleSheet, View } from "react-native";
+import { Ground } from "@/theme/Ground";
 import { useColors } from "@/theme/ThemeProvider";
 import { radius, space, target } from "@/theme/tokens";
 import { useLayoutClass } from "@/layout/useLayoutClass";
@@ -50,7 +51,7 @@ export function Sheet({
             <IconButton icon="close" label="Close" onPress={onClose} />
           </View>
           <ScrollView style={styles.scroll} contentContainerStyle={styles.body}>
-            {children}
+            <Ground on="surface">{children}</Ground>
           </ScrollView>
           {footer ? (
             <View style={[styles.footer, { borderColor: colors.hairline }]}>{footer}</View>

@@ -105,7 +105,11 @@ const styles = StyleSheet.create({
   dense: { fontFamily: fonts.sans, fontWeight: "400", fontSize: 14, lineHeight: 20 },
   label: { fontFamily: fonts.sans, fontWeight: "600", fontSize: 14, lineHeight: 20 },
   caption: { fontFamily: fonts.sans, fontWeight: "400", fontSize: 13, lineHeight: 18 },
-  mono: { fontFamily: fonts.mono, fontVariant: ["tabular-nums"], ...web({ wordSpacing: "-0.3em" }) },
+  mono: {
+    fontFamily: fonts.mono,
+    fontVariant: ["tabular-nums"],
+    ...web({ wordSpacing: "-0.3em" }),
+  },
   symbol: { fontFamily: fonts.serif },
   italic: { fontStyle: "italic", fontFamily: fonts.serif },
   upright: { fontStyle: "normal", fontFamily: fonts.serif },

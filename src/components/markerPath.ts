@@ -14,14 +14,7 @@ export function markerPath(shape: MarkerShape, r: number): string {
     case "square":
       return p([-0.88, -0.88], [0.88, -0.88], [0.88, 0.88], [-0.88, 0.88]);
     case "hourglass":
-      return p(
-        [-0.95, -1.02],
-        [0.95, -1.02],
-        [0.3, 0],
-        [0.95, 1.02],
-        [-0.95, 1.02],
-        [-0.3, 0],
-      );
+      return p([-0.95, -1.02], [0.95, -1.02], [0.3, 0], [0.95, 1.02], [-0.95, 1.02], [-0.3, 0]);
     case "diamond":
       return p([0, -1.28], [0.98, 0], [0, 1.28], [-0.98, 0]);
     case "triangle":

@@ -2,6 +2,7 @@ import type { ReactNode } from "react";
 import { ScrollView, StyleSheet, View } from "react-native";
 import { Portal } from "react-native-paper";
 import { web } from "@/components/web";
+import { Ground } from "@/theme/Ground";
 import { useColors } from "@/theme/ThemeProvider";
 import { radius, space } from "@/theme/tokens";
 
@@ -29,7 +30,7 @@ export function BottomPanel({
       >
         <View style={[styles.grip, { backgroundColor: colors.outline }]} />
         <ScrollView style={styles.scroll} contentContainerStyle={styles.content}>
-          {children}
+          <Ground on="surface">{children}</Ground>
         </ScrollView>
       </View>
     </Portal>

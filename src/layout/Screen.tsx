@@ -5,6 +5,7 @@ import { useSession } from "@/apollo/useSession";
 import { IconButton } from "@/components/Button";
 import { Caption, Dense, Title } from "@/components/Text";
 import { web } from "@/components/web";
+import { Ground } from "@/theme/Ground";
 import { useColors } from "@/theme/ThemeProvider";
 import { space, target, widths } from "@/theme/tokens";
 import { ConnectionBar } from "./ConnectionBar";
@@ -70,12 +71,9 @@ export function Screen({
       </Head>
       {list && wide ? (
         <View
-          style={[
-            styles.list,
-            { borderColor: colors.hairline, backgroundColor: colors.surface },
-          ]}
+          style={[styles.list, { borderColor: colors.hairline, backgroundColor: colors.surface }]}
         >
-          {list}
+          <Ground on="surface">{list}</Ground>
         </View>
       ) : null}
       <View
@@ -138,7 +136,7 @@ export function Screen({
               },
             ]}
           >
-            {footer}
+            <Ground on="surface">{footer}</Ground>
           </View>
         ) : null}
       </View>
@@ -146,12 +144,11 @@ export function Screen({
         <View
           role="complementary"
           aria-label={`Beside: ${title}`}
-          style={[
-            styles.aside,
-            { borderColor: colors.hairline, backgroundColor: colors.surface },
-          ]}
+          style={[styles.aside, { borderColor: colors.hairline, backgroundColor: colors.surface }]}
         >
-          <ScrollView style={styles.fill}>{aside}</ScrollView>
+          <ScrollView style={styles.fill}>
+            <Ground on="surface">{aside}</Ground>
+          </ScrollView>
         </View>
       ) : null}
     </View>

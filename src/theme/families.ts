@@ -2,15 +2,7 @@ import type { MethodFamily } from "~shared/methods/vocabulary";
 import type { SchemeName } from "./tokens";
 
 export type MarkerShape =
-  | "circle"
-  | "square"
-  | "hourglass"
-  | "diamond"
-  | "triangle"
-  | "plus"
-  | "star"
-  | "saltire"
-  | "ring";
+  "circle" | "square" | "hourglass" | "diamond" | "triangle" | "plus" | "star" | "saltire" | "ring";
 
 /** Shape carries the family; the hue (Paul Tol's muted scheme, adjusted for contrast) supports it. */
 export const FAMILY_MARKS: Record<

@@ -35,7 +35,12 @@ export function Empty({
 }
 
 const styles = StyleSheet.create({
-  all: { alignItems: "center", gap: space.xs, paddingVertical: space.xl, paddingHorizontal: space.m },
+  all: {
+    alignItems: "center",
+    gap: space.xs,
+    paddingVertical: space.xl,
+    paddingHorizontal: space.m,
+  },
   centre: { textAlign: "center" },
   text: { maxWidth: 360 },
   action: { paddingTop: space.xs, alignItems: "center", gap: space.xs },

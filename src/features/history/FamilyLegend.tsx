@@ -1,7 +1,6 @@
 import { memo } from "react";
 import { StyleSheet, View } from "react-native";
 import { Button } from "@/components/Button";
-import Icon from "@/components/Icon";
 import { Marker } from "@/components/Marker";
 import { Press } from "@/components/Press";
 import { Dense, Section } from "@/components/Text";
@@ -48,11 +47,9 @@ export const FamilyLegend = memo(function FamilyLegend({
                   ) : (
                     <Marker family={family} size={20} />
                   )}
-                  <Dense style={styles.word} muted={quiet}>
-                    {FAMILY_NAMES[family]}{" "}
-                    <Dense muted>{counts[family] ?? 0}</Dense>
+                  <Dense style={[styles.word, on && styles.on]} muted={quiet}>
+                    {FAMILY_NAMES[family]} <Dense muted>{counts[family] ?? 0}</Dense>
                   </Dense>
-                  {on ? <Icon name="check" size={16} color={colors.primary} /> : null}
                 </View>
               </Press>
             </View>
@@ -82,4 +79,5 @@ const styles = StyleSheet.create({
   },
   out: { opacity: 0.45 },
   word: { flex: 1, lineHeight: 18 },
+  on: { fontWeight: "600" },
 });

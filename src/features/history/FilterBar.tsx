@@ -45,7 +45,10 @@ function activeParts(filter: CanonicalFilter): { words: string; without: Constra
     add(filter.versions.map((word) => VERSION_WORDS[word]).join(" or "), { versions: [] });
   }
   if (filter.yearFrom !== undefined || filter.yearTo !== undefined) {
-    add(`Published ${rangeWords(filter.yearFrom, filter.yearTo)}`, { yearFrom: null, yearTo: null });
+    add(`Published ${rangeWords(filter.yearFrom, filter.yearTo)}`, {
+      yearFrom: null,
+      yearTo: null,
+    });
   }
   return parts;
 }

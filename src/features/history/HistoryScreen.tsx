@@ -42,7 +42,9 @@ const ageOf = (z: number) => PLANCK.age(z);
 const USUAL_DOMAIN = [5, 11] as const;
 
 /** The axis is the usual one unless the filter asks for other redshifts. */
-export function domainOf(filter: Pick<CanonicalFilter, "zFrom" | "zTo">): readonly [number, number] {
+export function domainOf(
+  filter: Pick<CanonicalFilter, "zFrom" | "zTo">,
+): readonly [number, number] {
   const low = filter.zFrom === undefined ? USUAL_DOMAIN[0] : Math.floor(filter.zFrom);
   const high = filter.zTo === undefined ? USUAL_DOMAIN[1] : Math.ceil(filter.zTo);
   if (high - low >= 1) return [low, high];
@@ -251,13 +253,17 @@ export function HistoryScreen() {
             <Empty
               title="No row matches"
               text={`${total} constraints are in the registry. Widen the redshift or clear the families.`}
-              action={<Button label="Clear the filter" kind="tonal" onPress={() => setFilter({})} />}
+              action={
+                <Button label="Clear the filter" kind="tonal" onPress={() => setFilter({})} />
+              }
             />
           )}
         </Card>
       ) : null}
       {wide ? (
-        visible.length > 0 ? <ReadoutTable overlays={visible} /> : null
+        visible.length > 0 ? (
+          <ReadoutTable overlays={visible} />
+        ) : null
       ) : (
         <Card style={phone ? styles.flush : undefined}>
           {visible.length > 0 ? <ReadoutBlock overlays={visible} /> : null}
@@ -279,8 +285,8 @@ export function HistoryScreen() {
         {outside > 0 ? (
           <View style={styles.outside}>
             <Caption>
-              {outside === 1 ? "One constraint lies" : `${outside} constraints lie`} outside redshift{" "}
-              {domain[0]} to {domain[1]}.
+              {outside === 1 ? "One constraint lies" : `${outside} constraints lie`} outside
+              redshift {domain[0]} to {domain[1]}.
             </Caption>
             <Button
               label="Widen the axis"
@@ -352,7 +358,9 @@ export function HistoryScreen() {
         chart={chart}
         rows={shownRows}
         overlays={visible}
-        source={source ? `Fogline registry, ${source.charAt(0).toLowerCase()}${source.slice(1)}.` : ""}
+        source={
+          source ? `Fogline registry, ${source.charAt(0).toLowerCase()}${source.slice(1)}.` : ""
+        }
         demonstration={session.demonstration}
       />
     </Screen>

@@ -56,7 +56,8 @@ export function PointPanel({
   const likelihood = used === null ? null : rowLikelihood(used);
   const form = likelihood && !("leftOut" in likelihood) ? FORM_WORDS[likelihood.form] : null;
   const hollow =
-    used !== null && (used.kind === "band" || used.kind === "upperLimit" || used.kind === "lowerLimit");
+    used !== null &&
+    (used.kind === "band" || used.kind === "upperLimit" || used.kind === "lowerLimit");
 
   useEffect(() => {
     (head.current as unknown as HTMLElement | null)?.focus({ preventScroll: true });
@@ -176,18 +177,14 @@ function TitleText({ text }: { text: string }) {
   );
 }
 
-function PointLikelihood({
-  row,
-  overlays,
-}: {
-  row: HistoryRow;
-  overlays: readonly Overlay[];
-}) {
+function PointLikelihood({ row, overlays }: { row: HistoryRow; overlays: readonly Overlay[] }) {
   const { scheme } = useTheme();
   const likelihood = row.used === null ? null : rowLikelihood(row.used);
   if (likelihood === null || "leftOut" in likelihood) {
     return (
-      <Dense muted>No likelihood by default: {likelihood?.leftOut ?? "the record is incomplete."}</Dense>
+      <Dense muted>
+        No likelihood by default: {likelihood?.leftOut ?? "the record is incomplete."}
+      </Dense>
     );
   }
   const values = overlays.flatMap((overlay) => {

@@ -33,13 +33,24 @@ export function PointTable({
           record: row.number,
           source: row.citation.shortName,
           method: (
-            <span style={{ display: "inline-flex", gap: 8, alignItems: "center" }}>
+            <span
+              style={{
+                display: "inline-flex",
+                gap: 8,
+                alignItems: "center",
+                verticalAlign: "middle",
+              }}
+            >
               <Marker family={row.family} />
               <Dense>{FAMILY_NAMES[row.family]}</Dense>
             </span>
           ),
           z: row.fields.z ?? rangeText(row.fields.zLow, row.fields.zHigh),
-          statement: row.used ? <NotationText notation={notationAsUsed(row.used)} symbol tail={false} /> : "",
+          statement: row.used ? (
+            <NotationText notation={notationAsUsed(row.used)} symbol tail={false} />
+          ) : (
+            ""
+          ),
           level: levelPhrase(row.fields.level, row.fields.levelPercent),
         }))}
         rowKey={(row) => row.id}

@@ -16,7 +16,7 @@ import { linearScale, type Scale } from "~shared/chart/scales";
 import { linearTicks } from "~shared/chart/ticks";
 import { notationAsUsed } from "~shared/statement/notation";
 import { shownNumber } from "./readouts";
-import { type HistoryRow, rowWords } from "./rows";
+import type { HistoryRow } from "./rows";
 import type { Overlay } from "./useOverlays";
 
 const LINE = 44;
@@ -135,7 +135,6 @@ function StripGroup({
             <Press
               key={row.number}
               onPress={() => onSelect(row.number)}
-              label={rowWords(row)}
               attributes={{ "aria-pressed": selected === row.number }}
               style={[
                 styles.name,

@@ -164,7 +164,14 @@ export function ReadoutBlock({ overlays }: { overlays: readonly Overlay[] }) {
           );
         })}
       </View>
-      <dl style={{ display: "grid", gridTemplateColumns: "repeat(4, minmax(0, auto))", gap: "12px 8px", margin: 0 }}>
+      <dl
+        style={{
+          display: "grid",
+          gridTemplateColumns: "repeat(4, minmax(0, auto))",
+          gap: "12px 8px",
+          margin: 0,
+        }}
+      >
         {[0, 2, 4, 6, 1, 3, 5].map((at) => {
           const column = COLUMNS[at];
           if (!column) return null;
@@ -198,16 +205,22 @@ export function ScoreNote({
   const left = new Map<string, string>();
   for (const { score, name } of overlays) {
     for (const { id, reason } of score.reasons) {
-      if (!left.has(id)) left.set(id, overlays.every(({ score: other }) => other.reasons.some((r) => r.id === id)) ? reason : `${name}: ${reason}`);
+      if (!left.has(id))
+        left.set(
+          id,
+          overlays.every(({ score: other }) => other.reasons.some((r) => r.id === id))
+            ? reason
+            : `${name}: ${reason}`,
+        );
     }
   }
   const scored = first.score.scored;
   return (
     <View style={styles.note}>
       <Caption style={styles.noteText}>
-        −2 ln <SymbolText muted>L</SymbolText> over {scored} of {rows.length} rows shown, with default
-        decisions and taken as independent. Duration from <SymbolText muted>x_HI</SymbolText> 0.75 to
-        0.25.
+        −2 ln <SymbolText muted>L</SymbolText> over {scored} of {rows.length} rows shown, with
+        default decisions and taken as independent. Duration from{" "}
+        <SymbolText muted>x_HI</SymbolText> 0.75 to 0.25.
       </Caption>
       {left.size > 0 ? (
         <Button

@@ -32,16 +32,52 @@ export const MODEL_KINDS: Record<
     name: "tanh",
     aside: null,
     parameters: [
-      { key: "zRe", name: "Midpoint", symbol: "z_re", min: 5, max: 12, step: 0.01, digits: 2, start: 7.67 },
-      { key: "deltaZ", name: "Width", symbol: "Δz", min: 0.1, max: 3, step: 0.01, digits: 2, start: 0.5 },
+      {
+        key: "zRe",
+        name: "Midpoint",
+        symbol: "z_re",
+        min: 5,
+        max: 12,
+        step: 0.01,
+        digits: 2,
+        start: 7.67,
+      },
+      {
+        key: "deltaZ",
+        name: "Width",
+        symbol: "Δz",
+        min: 0.1,
+        max: 3,
+        step: 0.01,
+        digits: 2,
+        start: 0.5,
+      },
     ],
   },
   powerLaw: {
     name: "power law",
     aside: "z_early",
     parameters: [
-      { key: "zEnd", name: "End", symbol: "z_end", min: 4, max: 9, step: 0.01, digits: 2, start: 6 },
-      { key: "alpha", name: "Exponent", symbol: "α", min: 0.5, max: 12, step: 0.1, digits: 1, start: 8 },
+      {
+        key: "zEnd",
+        name: "End",
+        symbol: "z_end",
+        min: 4,
+        max: 9,
+        step: 0.01,
+        digits: 2,
+        start: 6,
+      },
+      {
+        key: "alpha",
+        name: "Exponent",
+        symbol: "α",
+        min: 0.5,
+        max: 12,
+        step: 0.1,
+        digits: 1,
+        start: 8,
+      },
     ],
   },
 };
@@ -77,9 +113,11 @@ export function modelsToParam(models: readonly Model[]): string {
   if (models.length === 0) return "none";
   return models
     .map(({ kind, values, visible }) =>
-      [kind, ...MODEL_KINDS[kind].parameters.map(({ key }) => values[key]), ...(visible ? [] : ["off"])].join(
-        "_",
-      ),
+      [
+        kind,
+        ...MODEL_KINDS[kind].parameters.map(({ key }) => values[key]),
+        ...(visible ? [] : ["off"]),
+      ].join("_"),
     )
     .join(",");
 }

@@ -36,7 +36,10 @@ export function historyRow(constraint: HistoryConstraint): HistoryRow {
 
 /** What is heard of a point: its title, its statement, whose it is. */
 export function rowWords(row: HistoryRow): string {
-  const statement = row.used === null ? "" : `, ${lineText(notationAsUsed(row.used)).replace("x_HI", "neutral fraction")}`;
+  const statement =
+    row.used === null
+      ? ""
+      : `, ${lineText(notationAsUsed(row.used)).replace("x_HI", "neutral fraction")}`;
   return `${recordTitle(row.fields)}${statement}, ${row.citation.shortName}`;
 }
 

@@ -1,6 +1,12 @@
 import type { Background } from "~shared/cosmology/background";
 import type { History } from "~shared/history/history";
-import { type RowOptions, rowLikelihood, type RowToScore, type Score, scoreRows } from "~shared/likelihood";
+import {
+  type RowOptions,
+  rowLikelihood,
+  type RowToScore,
+  type Score,
+  scoreRows,
+} from "~shared/likelihood";
 import type { HistoryRow } from "./rows";
 
 /** Level taken where a paper states none: the default decision of a fitting table. */

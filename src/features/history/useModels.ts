@@ -32,8 +32,7 @@ export function useModels(): Models {
     if (!touched.current) return undefined;
     const text = modelsToParam(models);
     const timer = setTimeout(
-      () =>
-        router.setParams({ models: text === modelsToParam(DEFAULT_MODELS) ? undefined : text }),
+      () => router.setParams({ models: text === modelsToParam(DEFAULT_MODELS) ? undefined : text }),
       REST_MS,
     );
     return () => clearTimeout(timer);

@@ -43,8 +43,7 @@ export function useOverlays(
       }
       next.set(key, entry);
       if (!model.visible) return null;
-      const score =
-        scored.get(entry.history) ?? scoreHistory(decided, entry.history, background);
+      const score = scored.get(entry.history) ?? scoreHistory(decided, entry.history, background);
       fresh.set(entry.history, score);
       return {
         id: model.id,

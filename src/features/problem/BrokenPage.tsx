@@ -15,10 +15,7 @@ export function BrokenPage({ error, retry }: { error: Error; retry: () => Promis
 function Broken({ error, retry }: { error: Error; retry: () => Promise<void> }) {
   const colors = useColors();
   return (
-    <View
-      role="main"
-      style={{ flex: 1, justifyContent: "center", backgroundColor: colors.paper }}
-    >
+    <View role="main" style={{ flex: 1, justifyContent: "center", backgroundColor: colors.paper }}>
       <Empty
         icon="alert-outline"
         warm

@@ -43,7 +43,13 @@ describe("planePoint", () => {
   });
 
   it("opens a value printed as log10 to its fraction, with unequal sides", () => {
-    const drawn = point({ scale: "log10", kind: "twoSided", value: "-1", plus: "0.3", minus: "0.3" });
+    const drawn = point({
+      scale: "log10",
+      kind: "twoSided",
+      value: "-1",
+      plus: "0.3",
+      minus: "0.3",
+    });
     expect(drawn?.x).toBeCloseTo(0.1, 12);
     expect(drawn?.xEnds?.[1]).toBeCloseTo(10 ** -0.7, 12);
   });
@@ -70,7 +76,13 @@ describe("planePoint", () => {
 
   it("has no place for an optical depth", () => {
     expect(
-      point({ quantity: "opticalDepth", kind: "twoSided", value: "0.05", plus: "0.01", minus: "0.01" }),
+      point({
+        quantity: "opticalDepth",
+        kind: "twoSided",
+        value: "0.05",
+        plus: "0.01",
+        minus: "0.01",
+      }),
     ).toBeNull();
   });
 });
@@ -92,7 +104,14 @@ describe("markOf", () => {
   });
 
   it("gives a bin end ticks and an uncertain redshift none", () => {
-    const fields = { kind: "twoSided", value: "0.5", plus: "0.1", minus: "0.1", zLow: "6.8", zHigh: "7.2" } as const;
+    const fields = {
+      kind: "twoSided",
+      value: "0.5",
+      plus: "0.1",
+      minus: "0.1",
+      zLow: "6.8",
+      zHigh: "7.2",
+    } as const;
     const bin = point({ ...fields, zRole: "binAverage" });
     const uncertain = point({ ...fields, zRole: "uncertain" });
     expect(bin && markOf(bin, zScale, xScale, box, WIDE_SIZES)?.ends).toHaveLength(2);
@@ -100,7 +119,13 @@ describe("markOf", () => {
   });
 
   it("dashes what states no level", () => {
-    const drawn = point({ kind: "twoSided", value: "0.5", plus: "0.1", minus: "0.1", level: "notStated" });
+    const drawn = point({
+      kind: "twoSided",
+      value: "0.5",
+      plus: "0.1",
+      minus: "0.1",
+      level: "notStated",
+    });
     expect(drawn && markOf(drawn, zScale, xScale, box, WIDE_SIZES)?.dashed).toBe(true);
   });
 
