@@ -3,6 +3,7 @@ import { User } from "~server/account/user.entity";
 import type { Revision } from "~server/constraint/revision.entity";
 import type { Acting, Change } from "~server/event/acting";
 import { formatQuotable } from "~shared/identifiers/recordNumber";
+import { isAuthor } from "~shared/review/recusal";
 import type { FieldName } from "~shared/statement/fields";
 import { FIELD_NAMES } from "~shared/statement/words";
 
@@ -18,7 +19,7 @@ function paper(revision: Revision): string {
   return citation ? `${citation.title} (${citation.key})` : "a paper";
 }
 
-/** Tells every editor but the contributor that something waits. */
+/** Tells every editor who may read it that something waits: not the contributor, nor an author. */
 export async function tellEditors(here: Change, who: Acting, revision: Revision): Promise<void> {
   const editors = await here.manager
     .createQueryBuilder(User, "user")
@@ -28,7 +29,9 @@ export async function tellEditors(here: Change, who: Acting, revision: Revision)
     })
     .orderBy("user.email")
     .getMany();
+  const authors = revision.citation?.authors ?? [];
   for (const editor of editors) {
+    if (isAuthor(editor.nameOnPapers, authors)) continue;
     await here.mail({
       to: editor.email,
       subject: `${quotable(revision)} waits for a second reading`,

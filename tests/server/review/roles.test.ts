@@ -198,6 +198,7 @@ describe("roles", () => {
       code: "barred",
       message: expect.stringMatching(/author of this paper/),
     });
+    expect(await server.mailsTo(author.user.email)).toEqual([]);
     const items = await desk.queue();
     expect(items.find(({ id }: { id: string }) => id === submitted.id).barredBecause).toMatch(
       /author/,
