@@ -1,4 +1,6 @@
 import type { MigrationInterface } from "typeorm";
 
+import { Schema1796111633401 } from "./1796111633401-Schema";
+
 /** Every migration, oldest first. A list, not a glob: it is the same under swc, Jest and build/. */
-export const migrations: (new () => MigrationInterface)[] = [];
+export const migrations: (new () => MigrationInterface)[] = [Schema1796111633401];
