@@ -1,3 +1,4 @@
+import { DomainError } from "~shared/errors/DomainError";
 import type { FitProblem } from "~shared/inference/problem";
 import type { Task } from "~shared/inference/task";
 
@@ -24,6 +25,8 @@ const CANDIDATES = 256;
  * downhill simplex, restarted until it gains nothing, and tried along the edges they end near.
  *
  * Our own because the small libraries at hand have no bounds and no word about edges or degeneracy.
+ *
+ * @throws {DomainError} If no place was found where the likelihood is above zero.
  *
  * Source: Nelder & Mead (1965), Computer Journal 7, 308; scan after Halton (1960).
  */
@@ -52,6 +55,9 @@ export function* maximumLikelihood(problem: FitProblem): Task<MaximumLikelihood>
   }
   ends.sort(byHeight);
   let best = ends[0]!;
+  if (best.height === Infinity) {
+    throw new DomainError("rows", "this table", "allowed by at least one history inside the prior");
+  }
   // Along an edge the simplex may have collapsed too early.
   for (let d = 0; d < dimension; d++) {
     for (const edge of [0, 1]) {

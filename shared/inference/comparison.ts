@@ -1,0 +1,118 @@
+import type { Background } from "~shared/cosmology/background";
+import type { FitFamily } from "~shared/inference/families";
+import {
+  type GridOptions,
+  gridPosterior,
+  type GridPosterior,
+} from "~shared/inference/gridPosterior";
+import type { Summary } from "~shared/inference/marginal";
+import { FitProblem } from "~shared/inference/problem";
+import type { Task } from "~shared/inference/task";
+import { CompiledTable, type TableSpec } from "~shared/likelihood/compile";
+
+/** What one term of a table does to a fit. */
+export interface TermInfluence {
+  readonly id: string;
+  /** −2 ln L at the best point of all rows. */
+  readonly minus2LnL: number;
+  /** Signed root of it: positive where the model lies above the row's peak; null for a group. */
+  readonly pull: number | null;
+  /** Shift of each parameter's mean without the term, in units of the full posterior's width. */
+  readonly shift: Readonly<Record<string, number>>;
+}
+
+/** Accuracy enough for a shift shown to two digits. */
+const COARSE: GridOptions = { tolerance: 5e-3, withoutDerived: true };
+
+/**
+ * −2 ln L, pull and leave-one-out shift of every term of a table, one or two parameters.
+ *
+ * @param full - The posterior of all rows.
+ * @param spec - The table; a mixture or correlated set is left out as a whole.
+ */
+export function* leaveOneOut(
+  problem: FitProblem,
+  full: GridPosterior,
+  spec: TableSpec,
+): Task<TermInfluence[]> {
+  const values = problem.termValues(full.best.theta);
+  const models = problem.modelValues(full.best.theta);
+  const byRow = new Map(problem.table.rowIds.map((id, i) => [id, models[i]!]));
+  const results: TermInfluence[] = [];
+  for (let t = 0; t < problem.table.terms.length; t++) {
+    const term = problem.table.terms[t]!;
+    const dropped = new Set(term.members);
+    const reduced: TableSpec = {
+      rows: spec.rows.filter(({ id }) => !dropped.has(id)),
+      mixtures: spec.mixtures?.filter(({ id }) => id !== term.id) ?? [],
+      correlated: spec.correlated?.filter(({ id }) => id !== term.id) ?? [],
+    };
+    const without = new FitProblem(new CompiledTable(reduced), problem.family, problem.background);
+    const posterior = yield* gridPosterior(without, COARSE);
+    const shift = Object.fromEntries(
+      problem.names.map((name) => {
+        const { mean, sd } = full.parameters[name]!;
+        return [name, (posterior.parameters[name]!.mean - mean) / sd];
+      }),
+    );
+    results.push({
+      id: term.id,
+      minus2LnL: values[t]!,
+      pull: term.kind === "row" ? pullOf(spec, term.id, byRow.get(term.id)!, values[t]!) : null,
+      shift,
+    });
+    yield { stage: "leave one out", fraction: (t + 1) / problem.table.terms.length };
+  }
+  return results;
+}
+
+function pullOf(spec: TableSpec, id: string, model: number, minus2LnL: number): number {
+  const row = spec.rows.find((candidate) => candidate.id === id)!;
+  const x = row.evaluatedIn === "log10" ? Math.log10(model) : model;
+  return Math.sign(x - row.shape.peak) * Math.sqrt(Math.max(0, minus2LnL));
+}
+
+/** How far two parts of a table pull apart. */
+export interface Tension {
+  /** (μ_A − μ_B)/√(σ_A² + σ_B²) of each parameter. */
+  readonly parameters: Readonly<Record<string, number>>;
+  /** ln Z_AB − ln Z_A − ln Z_B: above zero, the parts agree better than separate histories would. */
+  readonly logEvidenceRatio: number;
+}
+
+/**
+ * Tension of two sets of rows under one family of one or two parameters.
+ *
+ * @param a - Rows of the one method family.
+ * @param b - Rows of the other; no row in both.
+ */
+export function* tension(
+  a: TableSpec,
+  b: TableSpec,
+  family: FitFamily,
+  background: Background,
+  options: GridOptions = {},
+): Task<Tension> {
+  const fit = function* (spec: TableSpec): Task<GridPosterior> {
+    const problem = new FitProblem(new CompiledTable(spec), family, background);
+    return yield* gridPosterior(problem, { ...options, withoutDerived: true });
+  };
+  const both: TableSpec = {
+    rows: [...a.rows, ...b.rows],
+    mixtures: [...(a.mixtures ?? []), ...(b.mixtures ?? [])],
+    correlated: [...(a.correlated ?? []), ...(b.correlated ?? [])],
+  };
+  const ofA = yield* fit(a);
+  const ofB = yield* fit(b);
+  const ofBoth = yield* fit(both);
+  const apart = (p: Summary, q: Summary): number => (p.mean - q.mean) / Math.hypot(p.sd, q.sd);
+  return {
+    parameters: Object.fromEntries(
+      family.parameters.map(({ name }) => [
+        name,
+        apart(ofA.parameters[name]!, ofB.parameters[name]!),
+      ]),
+    ),
+    logEvidenceRatio: ofBoth.logEvidence - ofA.logEvidence - ofB.logEvidence,
+  };
+}

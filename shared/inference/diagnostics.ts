@@ -1,0 +1,85 @@
+/** How well a chain knows the mean of one quantity. */
+export interface ChainDiagnostics {
+  /** Integrated autocorrelation time, steps; averaged over the ensembles. */
+  readonly autocorrelationTime: number;
+  /** Independent draws that all ensembles together are worth. */
+  readonly effectiveSize: number;
+  /** Standard error of the mean by Monte Carlo, sd/√(effective size). */
+  readonly standardError: number;
+  /** √((1 − 1/n) + variance of the ensembles' means / variance within), over independent ensembles. */
+  readonly rHat: number;
+}
+
+/** Sokal's window: the sum ends at the first lag of at least this many autocorrelation times. */
+const WINDOW = 5;
+
+/**
+ * Integrated autocorrelation time of one ensemble: the autocorrelation averaged over its walkers, summed
+ * up to Sokal's window.
+ *
+ * @param draws - One quantity, [steps, walkers].
+ * @returns Steps, at least 1/walkers short of nothing; NaN for a quantity that never changes.
+ *
+ * Source: Sokal (1996), Monte Carlo Methods in Statistical Mechanics; windows as Foreman-Mackey et al. (2013).
+ */
+export function autocorrelationTime(draws: Float64Array, steps: number, walkers: number): number {
+  const mean = new Float64Array(walkers);
+  for (let s = 0; s < steps; s++) {
+    for (let w = 0; w < walkers; w++) mean[w]! += draws[s * walkers + w]! / steps;
+  }
+  const variance = covariances(0);
+  let time = 1;
+  for (let lag = 1; lag < steps; lag++) {
+    const at = covariances(lag);
+    let correlation = 0;
+    for (let w = 0; w < walkers; w++) correlation += at[w]! / variance[w]! / walkers;
+    time += 2 * correlation;
+    if (lag >= WINDOW * time) break;
+  }
+  return time;
+
+  /** Σ over steps of deviations this many steps apart, each walker. */
+  function covariances(lag: number): Float64Array {
+    const sums = new Float64Array(walkers);
+    for (let s = 0; s + lag < steps; s++) {
+      const a = s * walkers;
+      const b = a + lag * walkers;
+      for (let w = 0; w < walkers; w++) {
+        sums[w]! += (draws[a + w]! - mean[w]!) * (draws[b + w]! - mean[w]!);
+      }
+    }
+    return sums;
+  }
+}
+
+/**
+ * Diagnostics of one quantity over independent ensembles.
+ *
+ * @param chains - One array per ensemble, [steps, walkers] each; two or more for R̂ to mean something.
+ */
+export function chainDiagnostics(
+  chains: readonly Float64Array[],
+  steps: number,
+  walkers: number,
+): ChainDiagnostics {
+  const count = steps * walkers;
+  const means = chains.map((chain) => chain.reduce((sum, value) => sum + value, 0) / count);
+  const within =
+    chains.reduce(
+      (sum, chain, c) =>
+        sum + chain.reduce((part, value) => part + (value - means[c]!) ** 2, 0) / (count - 1),
+      0,
+    ) / chains.length;
+  const grand = means.reduce((sum, value) => sum + value, 0) / means.length;
+  const between = means.reduce((sum, value) => sum + (value - grand) ** 2, 0) / (means.length - 1);
+  const time =
+    chains.reduce((sum, chain) => sum + autocorrelationTime(chain, steps, walkers), 0) /
+    chains.length;
+  const effectiveSize = (chains.length * count) / Math.max(time, 1e-12);
+  return {
+    autocorrelationTime: time,
+    effectiveSize,
+    standardError: Math.sqrt(within / effectiveSize),
+    rHat: Math.sqrt(1 - 1 / count + between / within),
+  };
+}
