@@ -39,7 +39,7 @@ export function Form({
 }) {
   const form = useRef<HTMLFormElement>(null);
   useEffect(() => {
-    if (problemField) form.current?.querySelector<HTMLElement>(`[name="${problemField}"]`)?.focus();
+    if (problemField) form.current?.querySelector<HTMLElement>("[aria-invalid=true]")?.focus();
   }, [problemField]);
   return (
     <form

@@ -120,38 +120,46 @@ function Import() {
   }
   if ((step === "match" || step === "preview") && preview) {
     footer = (
-      <View style={{ flexDirection: "row", flexWrap: "wrap", alignItems: "center", gap: 12 }}>
-        <Button
-          kind="outline"
-          label="Back"
-          onPress={() => setAt(step === "match" ? "files" : "match")}
-        />
-        <View role="status" style={{ flexGrow: 1 }}>
+      <View style={{ gap: 8 }}>
+        <View role="status">
           <Caption>
             {work.busy
               ? "Reading the list again"
               : `${preview.good} good, ${preview.refused} refused, ${preview.alreadyHere} already here`}
           </Caption>
         </View>
-        {step === "match" ? (
-          <Button kind="filled" label="See the rows" onPress={() => setAt("preview")} />
-        ) : (
+        <View style={{ flexDirection: "row", flexWrap: "wrap", gap: 12 }}>
           <Button
-            kind="filled"
-            label={preview.good === 1 ? "Create one draft" : `Create ${preview.good} drafts`}
-            busy={work.busy}
-            disabledBecause={
-              preview.good === 0 ? "No row of this list is new and good." : undefined
-            }
-            onPress={() => void work.run()}
+            kind="outline"
+            label="Back"
+            onPress={() => setAt(step === "match" ? "files" : "match")}
           />
-        )}
+          {step === "match" ? (
+            <Button kind="filled" label="See the rows" onPress={() => setAt("preview")} />
+          ) : (
+            <Button
+              kind="filled"
+              label={preview.good === 1 ? "Create one draft" : `Create ${preview.good} drafts`}
+              busy={work.busy}
+              disabledBecause={
+                preview.good === 0 ? "No row of this list is new and good." : undefined
+              }
+              onPress={() => void work.run()}
+            />
+          )}
+        </View>
       </View>
     );
   }
 
   return (
-    <Screen title="Import a file" subtitle="A list of your group" back="/desk" footer={footer}>
+    <Screen
+      key={step}
+      title="Import a file"
+      subtitle="A list of your group"
+      back="/desk"
+      footer={footer}
+    >
       <View style={{ gap: 24, maxWidth: 1040 }}>
         <StepBar
           label="Steps of the import"

@@ -43,7 +43,7 @@ export function MatchStep({
       <View style={{ gap: 12 }}>
         <Section>Columns</Section>
         <Dense muted>A column that stays without a field is left out.</Dense>
-        <View style={{ flexDirection: phone ? "column" : "row", flexWrap: "wrap", gap: 12 }}>
+        <View style={phone ? { gap: 12 } : { flexDirection: "row", flexWrap: "wrap", gap: 12 }}>
           {preview.columns.map(({ column, proposedField, sample }) => (
             <View key={column} style={phone ? undefined : { width: 300 }}>
               <Card style={{ gap: 8 }}>

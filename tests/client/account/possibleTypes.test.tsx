@@ -9,7 +9,13 @@ it("the cache knows the members of every union of the API", () => {
   const sdl = readFileSync(join(__dirname, "../../../graphql/schema.graphql"), "utf8");
   const unions = Object.values(buildSchema(sdl).getTypeMap()).filter(isUnionType);
   const members = Object.fromEntries(
-    unions.map((union) => [union.name, union.getTypes().map(({ name }) => name).sort()]),
+    unions.map((union) => [
+      union.name,
+      union
+        .getTypes()
+        .map(({ name }) => name)
+        .sort(),
+    ]),
   );
   const known = Object.fromEntries(
     Object.entries(possibleTypes).map(([name, types]) => [name, [...types].sort()]),

@@ -12,7 +12,14 @@ import {
 } from "~graphql/generated/graphql";
 import { READING_FIELDS } from "~shared/review/reading";
 
-import { CITATION, completeFields, type MockedResponse, route, show, WIDTHS } from "../desk/support";
+import {
+  CITATION,
+  completeFields,
+  type MockedResponse,
+  route,
+  show,
+  WIDTHS,
+} from "../desk/support";
 
 jest.mock("expo-router", () => ({
   useRouter: () => jest.requireActual("../desk/support").router,

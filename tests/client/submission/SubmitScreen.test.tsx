@@ -201,7 +201,7 @@ describe.each(WIDTHS)("the submission form at %i points", (width) => {
   });
 
   it("asks once before it discards", async () => {
-    route.params = { id: "s1", step: "printed" };
+    route.params = { id: "s1", step: "paper" };
     at([load()]);
     fireEvent.click(await screen.findByRole("button", { name: "Discard this draft" }));
     expect(await screen.findByText("Discard this draft?")).toBeInTheDocument();
@@ -253,7 +253,9 @@ describe.each(WIDTHS)("the citation step at %i points", (width) => {
     fireEvent.change(await screen.findByLabelText("BibTeX"), {
       target: { value: "@article{Osuwande2027, ...}" },
     });
-    expect(await screen.findByText("Osuwande, A.; Vask, I.", {}, { timeout: 3000 })).toBeInTheDocument();
+    expect(
+      await screen.findByText("Osuwande, A.; Vask, I.", {}, { timeout: 3000 }),
+    ).toBeInTheDocument();
     expect(screen.getByText("10.5555/aic.13.204")).toBeInTheDocument();
     expect(screen.getByText("Entry 2, Vask2028, line 9")).toBeInTheDocument();
     expect(screen.getByText("The brace opened in the title is never closed.")).toBeInTheDocument();
@@ -273,9 +275,7 @@ describe.each(WIDTHS)("the citation step at %i points", (width) => {
             data: {
               keepCitations: {
                 __typename: "KeptCitations",
-                kept: [
-                  { __typename: "KeptCitation", index: 0, created: true, citation: CITATION },
-                ],
+                kept: [{ __typename: "KeptCitation", index: 0, created: true, citation: CITATION }],
                 problems: [],
               },
             },
