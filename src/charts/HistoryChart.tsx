@@ -1,19 +1,6 @@
-import { memo, type ReactNode, useId, useMemo, useRef, useState } from "react";
+import { memo, type ReactNode, useEffect, useId, useMemo, useRef, useState } from "react";
 import { View } from "react-native";
-import Svg, {
-  Circle,
-  ClipPath,
-  Defs,
-  G,
-  Line,
-  LinearGradient,
-  Mask,
-  Path,
-  Rect,
-  Stop,
-  Text as SvgText,
-  TSpan,
-} from "react-native-svg";
+import Svg, { Circle, G, Line, Path, Rect, Text as SvgText, TSpan } from "react-native-svg";
 import {
   type Box,
   type Mark,
@@ -186,6 +173,15 @@ export function HistoryChart(props: HistoryChartProps) {
     ? current
     : (order.find(({ point }) => point.id === selectedId)?.point.id ?? order[0]?.point.id ?? null);
 
+  // Closing a point's panel takes the focus with it: it comes back to where it was opened from.
+  const before = useRef(selectedId);
+  useEffect(() => {
+    const closed = before.current;
+    before.current = selectedId;
+    if (closed === null || selectedId !== null || document.activeElement !== document.body) return;
+    stopOf(area.current, closed)?.focus({ preventScroll: true });
+  }, [selectedId]);
+
   function pick(event: { clientX: number; clientY: number }) {
     const bounds = area.current?.getBoundingClientRect();
     if (!bounds) return;
@@ -221,7 +217,7 @@ export function HistoryChart(props: HistoryChartProps) {
     const id = order[target]?.point.id;
     if (id === undefined) return;
     setCurrent(id);
-    area.current?.querySelector<HTMLElement>(`[data-point="${CSS.escape(id)}"]`)?.focus();
+    stopOf(area.current, id)?.focus();
   }
 
   return (
@@ -235,40 +231,69 @@ export function HistoryChart(props: HistoryChartProps) {
         style={{ position: "absolute", inset: 0, cursor: "crosshair", touchAction: "manipulation" }}
       >
         <HistoryDrawing {...props} />
-        {order.map(({ point, mark }) => (
-          <button
-            key={point.id}
-            type="button"
-            data-point={point.id}
-            className="fogline-focusable"
-            tabIndex={point.id === stop ? 0 : -1}
-            aria-label={point.label}
-            aria-pressed={point.id === selectedId}
-            onFocus={() => setCurrent(point.id)}
-            onClick={(event) => {
-              event.stopPropagation();
-              onSelect?.(point.id);
-            }}
-            style={{
-              position: "absolute",
-              left: mark.x - 12,
-              top: mark.y - 12,
-              width: 24,
-              height: 24,
-              padding: 0,
-              border: 0,
-              borderRadius: 12,
-              background: "transparent",
-              // Crowded markers: the pointer goes through to the chart, which finds the nearest.
-              pointerEvents: "none",
-            }}
-          />
-        ))}
+        <PointStops
+          order={order}
+          stop={stop}
+          selectedId={selectedId}
+          onFocus={setCurrent}
+          onSelect={onSelect}
+        />
       </div>
     </View>
   );
 }
 
+function stopOf(area: HTMLElement | null, id: string): HTMLElement | undefined {
+  const stops = Array.from(area?.querySelectorAll<HTMLElement>("[data-point]") ?? []);
+  return stops.find((stop) => stop.dataset.point === id);
+}
+
+/** A button per point, for keyboard and screen reader. */
+const PointStops = memo(function PointStops({
+  order,
+  stop,
+  selectedId,
+  onFocus,
+  onSelect,
+}: {
+  order: readonly { point: ChartPoint; mark: Mark }[];
+  stop: string | null;
+  selectedId: string | null;
+  onFocus: (id: string) => void;
+  onSelect: ((id: string | null) => void) | undefined;
+}) {
+  return order.map(({ point, mark }) => (
+    <button
+      key={point.id}
+      type="button"
+      data-point={point.id}
+      className="fogline-focusable"
+      tabIndex={point.id === stop ? 0 : -1}
+      aria-label={point.label}
+      aria-pressed={point.id === selectedId}
+      onFocus={() => onFocus(point.id)}
+      onClick={(event) => {
+        event.stopPropagation();
+        onSelect?.(point.id);
+      }}
+      style={{
+        position: "absolute",
+        left: mark.x - 12,
+        top: mark.y - 12,
+        width: 24,
+        height: 24,
+        padding: 0,
+        border: 0,
+        borderRadius: 12,
+        background: "transparent",
+        // Crowded markers: the pointer goes through to the chart, which finds the nearest.
+        pointerEvents: "none",
+      }}
+    />
+  ));
+});
+
+/** What a slider moves. Plain SVG elements: the wrapped ones cost more than the curve itself. */
 const Curves = memo(function Curves({
   frame,
   histories,
@@ -298,18 +323,18 @@ const Curves = memo(function Curves({
   const foggy = sampled[0];
   const mask = scheme === "light" ? ([0.32, 0.72, 1] as const) : ([0.5, 0.85, 1] as const);
   return (
-    <G>
-      <Defs>
-        <ClipPath id={`${id}-box`}>
-          <Rect
+    <g>
+      <defs>
+        <clipPath id={`${id}-box`}>
+          <rect
             x={box.left}
             y={box.top}
             width={box.right - box.left}
             height={box.bottom - box.top}
           />
-        </ClipPath>
+        </clipPath>
         {first ? (
-          <LinearGradient
+          <linearGradient
             id={`${id}-fog`}
             gradientUnits="userSpaceOnUse"
             x1={box.left}
@@ -318,11 +343,11 @@ const Curves = memo(function Curves({
             y2={0}
           >
             {fogStops(domain[0], domain[1], first.x).map(({ offset, opacity }) => (
-              <Stop key={offset} offset={offset} stopColor={colors.fog} stopOpacity={opacity} />
+              <stop key={offset} offset={offset} stopColor={colors.fog} stopOpacity={opacity} />
             ))}
-          </LinearGradient>
+          </linearGradient>
         ) : null}
-        <LinearGradient
+        <linearGradient
           id={`${id}-down`}
           gradientUnits="userSpaceOnUse"
           x1={0}
@@ -330,11 +355,11 @@ const Curves = memo(function Curves({
           x2={0}
           y2={box.bottom}
         >
-          <Stop offset={0} stopColor="#fff" stopOpacity={mask[0]} />
-          <Stop offset={0.45} stopColor="#fff" stopOpacity={mask[1]} />
-          <Stop offset={1} stopColor="#fff" stopOpacity={mask[2]} />
-        </LinearGradient>
-        <Mask
+          <stop offset={0} stopColor="#fff" stopOpacity={mask[0]} />
+          <stop offset={0.45} stopColor="#fff" stopOpacity={mask[1]} />
+          <stop offset={1} stopColor="#fff" stopOpacity={mask[2]} />
+        </linearGradient>
+        <mask
           id={`${id}-mask`}
           maskUnits="userSpaceOnUse"
           x={box.left}
@@ -342,31 +367,31 @@ const Curves = memo(function Curves({
           width={box.right - box.left}
           height={box.bottom - box.top}
         >
-          <Rect
+          <rect
             x={box.left}
             y={box.top}
             width={box.right - box.left}
             height={box.bottom - box.top}
             fill={`url(#${id}-down)`}
           />
-        </Mask>
-      </Defs>
-      <G clipPath={`url(#${id}-box)`}>
+        </mask>
+      </defs>
+      <g clipPath={`url(#${id}-box)`}>
         {foggy ? (
-          <G mask={`url(#${id}-mask)`}>
-            <Path
+          <g mask={`url(#${id}-mask)`}>
+            <path
               d={areaPath(foggy.zs, foggy.xs, z, x, box.bottom)}
               fill={`url(#${id}-fog)`}
               opacity={scheme === "light" ? 0.8 : 1}
             />
-          </G>
+          </g>
         ) : null}
         {[...sampled.keys()].reverse().map((index) => {
           const curve = sampled[index];
           const look = HISTORY_LOOKS[index];
           if (!curve || look === undefined) return null;
           return (
-            <Path
+            <path
               key={curve.id}
               d={linePath(curve.zs, curve.xs, z, x)}
               fill="none"
@@ -375,8 +400,8 @@ const Curves = memo(function Curves({
             />
           );
         })}
-      </G>
-    </G>
+      </g>
+    </g>
   );
 });
 

@@ -1,6 +1,6 @@
 import type { ReactNode } from "react";
+import { createPortal } from "react-dom";
 import { ScrollView, StyleSheet, View } from "react-native";
-import { Portal } from "react-native-paper";
 import { web } from "@/components/web";
 import { Ground } from "@/theme/Ground";
 import { useColors } from "@/theme/ThemeProvider";
@@ -21,25 +21,25 @@ export function BottomPanel({
   children: ReactNode;
 }) {
   const colors = useColors();
-  return (
-    <Portal>
-      <View
-        role="complementary"
-        aria-label={label}
-        style={[styles.panel, { backgroundColor: colors.surface, maxHeight: `${height * 100}%` }]}
-      >
-        <View style={[styles.grip, { backgroundColor: colors.outline }]} />
-        <ScrollView style={styles.scroll} contentContainerStyle={styles.content}>
-          <Ground on="surface">{children}</Ground>
-        </ScrollView>
-      </View>
-    </Portal>
+  // Outside the page's stacking order, so that it covers the bottom bar too.
+  return createPortal(
+    <View
+      role="complementary"
+      aria-label={label}
+      style={[styles.panel, { backgroundColor: colors.surface, maxHeight: `${height * 100}%` }]}
+    >
+      <View style={[styles.grip, { backgroundColor: colors.outline }]} />
+      <ScrollView style={styles.scroll} contentContainerStyle={styles.content}>
+        <Ground on="surface">{children}</Ground>
+      </ScrollView>
+    </View>,
+    document.body,
   );
 }
 
 const styles = StyleSheet.create({
   panel: {
-    position: "absolute",
+    ...web({ position: "fixed", zIndex: 5 }),
     left: 0,
     right: 0,
     bottom: 0,

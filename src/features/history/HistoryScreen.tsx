@@ -3,7 +3,6 @@ import { useQuery } from "@apollo/client/react";
 import { StyleSheet, useWindowDimensions, View } from "react-native";
 import { filterInput } from "@/apollo/filterInput";
 import { useSession } from "@/apollo/useSession";
-import { type ChartHistory, HistoryChart, type HistoryChartProps } from "@/charts/HistoryChart";
 import { useMeasuredWidth } from "@/charts/useMeasuredWidth";
 import { Button, IconButton } from "@/components/Button";
 import { Card, Divider } from "@/components/Card";
@@ -23,18 +22,23 @@ import { background as backgroundOf } from "~shared/cosmology/background";
 import type { CanonicalFilter } from "~shared/filter/filter";
 import type { MethodFamily } from "~shared/methods/vocabulary";
 import { FamilyLegend } from "./FamilyLegend";
-import { FigureSheet } from "./FigureSheet";
 import { FilterBar } from "./FilterBar";
 import { HowDrawn } from "./HowDrawn";
-import { ModelPanel } from "./ModelPanel";
-import { PointPanel } from "./PointPanel";
+import {
+  LiveChart,
+  LiveFigureSheet,
+  LiveModelPanel,
+  LivePointPanel,
+  LiveReadouts,
+  LiveScoreNote,
+  LiveStrip,
+  type StillChart,
+} from "./Live";
+import { ModelsProvider } from "./ModelsProvider";
 import { PointTable } from "./PointTable";
-import { QuantityStrip, stripGroups } from "./QuantityStrip";
-import { ReadoutBlock, ReadoutTable, ScoreNote } from "./Readouts";
+import { stripGroups } from "./QuantityStrip";
 import { chartPoints, historyRow } from "./rows";
 import { decideByDefault } from "./scoring";
-import { useModels } from "./useModels";
-import { type Overlay, useOverlays } from "./useOverlays";
 import { useView } from "./useView";
 
 const PLANCK = backgroundOf();
@@ -61,7 +65,6 @@ export function HistoryScreen() {
   const session = useSession();
   const address = useAddressFilter();
   const view = useView();
-  const models = useModels();
   const { width, onLayout } = useMeasuredWidth();
   const [figureOpen, setFigureOpen] = useState(false);
   const [slidersOpen, setSlidersOpen] = useState(false);
@@ -106,18 +109,6 @@ export function HistoryScreen() {
   }, [rows, points, groups, domain]);
 
   const decided = useMemo(() => decideByDefault(shownRows), [shownRows]);
-  const overlays = useOverlays(models.models, decided, PLANCK);
-  const visible = useMemo(
-    () => overlays.filter((overlay): overlay is Overlay => overlay !== null),
-    [overlays],
-  );
-  const histories = useMemo(
-    () =>
-      overlays.map((overlay): ChartHistory | null =>
-        overlay === null ? null : { id: overlay.id, history: overlay.history },
-      ),
-    [overlays],
-  );
   const selected = rows.find((row) => row.number === view.point) ?? null;
 
   const { filter, setFilter } = address;
@@ -146,14 +137,13 @@ export function HistoryScreen() {
     (chartArea.current as unknown as HTMLElement | null)?.scrollIntoView?.({ block: "start" });
   }, [panelOpen, view.point]);
   const chartWidth = width === null ? null : width - (phone ? 0 : 2);
-  const chart: HistoryChartProps = {
+  const chart: StillChart = {
     width: chartWidth ?? 0,
     height: chartHeight(layout, window.height, panelOpen),
     scheme,
     phone,
     ...(phone ? { ground: colors.paper } : {}),
     points,
-    histories,
     domain,
     upperAxis: view.upperAxis,
     ageOf,
@@ -171,199 +161,192 @@ export function HistoryScreen() {
     : undefined;
 
   return (
-    <Screen
-      title="History"
-      subtitle={subtitle}
-      actions={
-        <IconButton
-          icon="tray-arrow-down"
-          label="Download the figure"
-          onPress={() => setFigureOpen(true)}
-        />
-      }
-      aside={
-        wide ? (
-          <Inspector
-            point={
-              selected ? (
-                <PointPanel row={selected} overlays={visible} onClose={() => view.setPoint(null)} />
-              ) : null
-            }
-          >
-            <ModelPanel state={models} />
-            <Divider />
+    <ModelsProvider decided={decided} background={PLANCK}>
+      <Screen
+        title="History"
+        subtitle={subtitle}
+        actions={
+          <IconButton
+            icon="tray-arrow-down"
+            label="Download the figure"
+            onPress={() => setFigureOpen(true)}
+          />
+        }
+        aside={
+          wide ? (
+            <Inspector
+              point={
+                selected ? (
+                  <LivePointPanel row={selected} onClose={() => view.setPoint(null)} />
+                ) : null
+              }
+            >
+              <LiveModelPanel />
+              <Divider />
+              <FamilyLegend
+                counts={counts}
+                chosen={families ?? []}
+                onToggle={toggleFamily}
+                onAll={allFamilies}
+              />
+              <Divider />
+              <HowDrawn />
+            </Inspector>
+          ) : null
+        }
+      >
+        {panelOpen ? null : (
+          <FilterBar
+            filter={filter}
+            setFilter={setFilter}
+            view={view}
+            counts={counts}
+            onToggleFamily={toggleFamily}
+            phone={phone}
+            wide={wide}
+          />
+        )}
+        <View
+          style={[
+            phone
+              ? styles.chartPhone
+              : [styles.chart, { backgroundColor: colors.surface, borderColor: colors.hairline }],
+          ]}
+          onLayout={onLayout}
+          ref={chartArea}
+        >
+          {page === undefined && error ? (
+            <Failed
+              title="The constraints did not arrive"
+              error={error}
+              onRetry={() => void refetch()}
+            />
+          ) : page === undefined ? (
+            <View style={{ minHeight: chart.height }}>
+              <Loading label="Fetching the constraints" rows={5} />
+            </View>
+          ) : chartWidth === null ? (
+            <View style={{ height: chart.height }} />
+          ) : (
+            <LiveChart {...chart} />
+          )}
+        </View>
+        {page !== undefined && drawn === 0 && !loading ? (
+          <Card>
+            {total === 0 ? (
+              <Empty
+                icon="chart-bell-curve-cumulative"
+                title="No approved constraint yet"
+                text="The chart fills as editors approve submissions. Model histories can be moved already."
+                action={<Button label="Submit a constraint" kind="tonal" href="/desk" />}
+              />
+            ) : (
+              <Empty
+                title="No row matches"
+                text={`${total} constraints are in the registry. Widen the redshift or clear the families.`}
+                action={
+                  <Button label="Clear the filter" kind="tonal" onPress={() => setFilter({})} />
+                }
+              />
+            )}
+          </Card>
+        ) : null}
+        {wide ? (
+          <LiveReadouts wide />
+        ) : (
+          <Card style={phone ? styles.flush : undefined}>
+            <LiveReadouts wide={false} />
+            <View style={styles.adjust}>
+              <Button
+                label="Model histories"
+                kind="outline"
+                icon="tune-vertical"
+                onPress={() => {
+                  view.setPoint(null);
+                  setSlidersOpen(true);
+                }}
+              />
+            </View>
+          </Card>
+        )}
+        <View>
+          <LiveScoreNote rows={shownRows} />
+          {outside > 0 ? (
+            <View style={styles.outside}>
+              <Caption>
+                {outside === 1 ? "One constraint lies" : `${outside} constraints lie`} outside
+                redshift {domain[0]} to {domain[1]}.
+              </Caption>
+              <Button
+                label="Widen the axis"
+                kind="text"
+                onPress={() => {
+                  const zs = points.map(({ plane }) => plane.z);
+                  setFilter({
+                    ...filter,
+                    zFrom: Math.min(domain[0], Math.floor(Math.min(...zs))),
+                    zTo: Math.max(domain[1], Math.ceil(Math.max(...zs))),
+                  });
+                }}
+              />
+            </View>
+          ) : null}
+        </View>
+        <Cautions complete={lastEvent ? dayOf(lastEvent.at) : null} />
+        <LiveStrip groups={groups} selected={view.point} onSelect={view.setPoint} />
+        {!wide && !phone ? (
+          <Card>
             <FamilyLegend
               counts={counts}
               chosen={families ?? []}
               onToggle={toggleFamily}
               onAll={allFamilies}
             />
-            <Divider />
             <HowDrawn />
-          </Inspector>
-        ) : null
-      }
-    >
-      {panelOpen ? null : (
-        <FilterBar
-          filter={filter}
-          setFilter={setFilter}
-          view={view}
-          counts={counts}
-          onToggleFamily={toggleFamily}
-          phone={phone}
-          wide={wide}
-        />
-      )}
-      <View
-        style={[
-          phone
-            ? styles.chartPhone
-            : [styles.chart, { backgroundColor: colors.surface, borderColor: colors.hairline }],
-        ]}
-        onLayout={onLayout}
-        ref={chartArea}
-      >
-        {page === undefined && error ? (
-          <Failed
-            title="The constraints did not arrive"
-            error={error}
-            onRetry={() => void refetch()}
-          />
-        ) : page === undefined ? (
-          <View style={{ minHeight: chart.height }}>
-            <Loading label="Fetching the constraints" rows={5} />
-          </View>
-        ) : chartWidth === null ? (
-          <View style={{ height: chart.height }} />
-        ) : (
-          <HistoryChart {...chart} />
-        )}
-      </View>
-      {page !== undefined && drawn === 0 && !loading ? (
-        <Card>
-          {total === 0 ? (
-            <Empty
-              icon="chart-bell-curve-cumulative"
-              title="No approved constraint yet"
-              text="The chart fills as editors approve submissions. Model histories can be moved already."
-              action={<Button label="Submit a constraint" kind="tonal" href="/desk" />}
-            />
-          ) : (
-            <Empty
-              title="No row matches"
-              text={`${total} constraints are in the registry. Widen the redshift or clear the families.`}
-              action={
-                <Button label="Clear the filter" kind="tonal" onPress={() => setFilter({})} />
-              }
-            />
-          )}
-        </Card>
-      ) : null}
-      {wide ? (
-        visible.length > 0 ? (
-          <ReadoutTable overlays={visible} />
-        ) : null
-      ) : (
-        <Card style={phone ? styles.flush : undefined}>
-          {visible.length > 0 ? <ReadoutBlock overlays={visible} /> : null}
-          <View style={styles.adjust}>
+          </Card>
+        ) : null}
+        {phone ? <HowDrawn /> : null}
+        {shownRows.length > 0 ? (
+          <View>
             <Button
-              label="Model histories"
-              kind="outline"
-              icon="tune-vertical"
-              onPress={() => {
-                view.setPoint(null);
-                setSlidersOpen(true);
-              }}
-            />
-          </View>
-        </Card>
-      )}
-      <View>
-        <ScoreNote overlays={visible} rows={shownRows} />
-        {outside > 0 ? (
-          <View style={styles.outside}>
-            <Caption>
-              {outside === 1 ? "One constraint lies" : `${outside} constraints lie`} outside
-              redshift {domain[0]} to {domain[1]}.
-            </Caption>
-            <Button
-              label="Widen the axis"
+              label={tableOpen ? "Hide the table" : "Show the points as a table"}
               kind="text"
-              onPress={() => {
-                const zs = points.map(({ plane }) => plane.z);
-                setFilter({
-                  ...filter,
-                  zFrom: Math.min(domain[0], Math.floor(Math.min(...zs))),
-                  zTo: Math.max(domain[1], Math.ceil(Math.max(...zs))),
-                });
-              }}
+              icon="table"
+              onPress={() => setTableOpen(!tableOpen)}
             />
+            {tableOpen ? <PointTable rows={shownRows} onOpen={view.setPoint} /> : null}
           </View>
         ) : null}
-      </View>
-      <Cautions complete={lastEvent ? dayOf(lastEvent.at) : null} />
-      <QuantityStrip
-        groups={groups}
-        overlays={visible}
-        selected={view.point}
-        onSelect={view.setPoint}
-      />
-      {!wide && !phone ? (
-        <Card>
-          <FamilyLegend
-            counts={counts}
-            chosen={families ?? []}
-            onToggle={toggleFamily}
-            onAll={allFamilies}
-          />
-          <HowDrawn />
-        </Card>
-      ) : null}
-      {phone ? <HowDrawn /> : null}
-      {shownRows.length > 0 ? (
-        <View>
-          <Button
-            label={tableOpen ? "Hide the table" : "Show the points as a table"}
-            kind="text"
-            icon="table"
-            onPress={() => setTableOpen(!tableOpen)}
-          />
-          {tableOpen ? <PointTable rows={shownRows} onOpen={view.setPoint} /> : null}
-        </View>
-      ) : null}
 
-      {!wide && selected ? (
-        <BottomPanel label="Point" height={0.6}>
-          <PointPanel row={selected} overlays={visible} onClose={() => view.setPoint(null)} />
-        </BottomPanel>
-      ) : !wide && slidersOpen ? (
-        <BottomPanel label="Model histories" height={0.52}>
-          <ModelPanel
-            state={models}
-            trailing={
-              <IconButton
-                icon="close"
-                label="Close the sliders"
-                onPress={() => setSlidersOpen(false)}
-              />
-            }
-          />
-        </BottomPanel>
-      ) : null}
-      <FigureSheet
-        visible={figureOpen}
-        onClose={() => setFigureOpen(false)}
-        chart={chart}
-        rows={shownRows}
-        overlays={visible}
-        source={
-          source ? `Fogline registry, ${source.charAt(0).toLowerCase()}${source.slice(1)}.` : ""
-        }
-        demonstration={session.demonstration}
-      />
-    </Screen>
+        {!wide && selected ? (
+          <BottomPanel label="Point" height={0.6}>
+            <LivePointPanel row={selected} onClose={() => view.setPoint(null)} />
+          </BottomPanel>
+        ) : !wide && slidersOpen ? (
+          <BottomPanel label="Model histories" height={0.52}>
+            <LiveModelPanel
+              trailing={
+                <IconButton
+                  icon="close"
+                  label="Close the sliders"
+                  onPress={() => setSlidersOpen(false)}
+                />
+              }
+            />
+          </BottomPanel>
+        ) : null}
+        <LiveFigureSheet
+          visible={figureOpen}
+          onClose={() => setFigureOpen(false)}
+          chart={chart}
+          rows={shownRows}
+          source={
+            source ? `Fogline registry, ${source.charAt(0).toLowerCase()}${source.slice(1)}.` : ""
+          }
+          demonstration={session.demonstration}
+        />
+      </Screen>
+    </ModelsProvider>
   );
 }
 

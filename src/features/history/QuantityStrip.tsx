@@ -22,7 +22,7 @@ import type { Overlay } from "./useOverlays";
 const LINE = 44;
 const AXIS = 24;
 
-interface Group {
+export interface StripGroup {
   key: string;
   title: string;
   /** Decimals of the models' values. */
@@ -31,8 +31,8 @@ interface Group {
 }
 
 /** Optical depths by their range, durations by their fractions and unit: one axis each. */
-export function stripGroups(rows: readonly HistoryRow[]): Group[] {
-  const groups = new Map<string, Group>();
+export function stripGroups(rows: readonly HistoryRow[]): StripGroup[] {
+  const groups = new Map<string, StripGroup>();
   for (const row of rows) {
     const title = groupTitle(row);
     if (title === null || row.used === null || statementSpan(row.used) === null) continue;
@@ -69,7 +69,7 @@ export const QuantityStrip = memo(function QuantityStrip({
   selected,
   onSelect,
 }: {
-  groups: readonly Group[];
+  groups: readonly StripGroup[];
   overlays: readonly Overlay[];
   selected: string | null;
   onSelect: (number: string) => void;
@@ -79,7 +79,7 @@ export const QuantityStrip = memo(function QuantityStrip({
     <Card style={styles.card}>
       <Block level={2}>Optical depths and durations</Block>
       {groups.map((group) => (
-        <StripGroup
+        <GroupView
           key={group.key}
           group={group}
           overlays={overlays}
@@ -97,13 +97,13 @@ export const QuantityStrip = memo(function QuantityStrip({
   );
 });
 
-function StripGroup({
+function GroupView({
   group,
   overlays,
   selected,
   onSelect,
 }: {
-  group: Group;
+  group: StripGroup;
   overlays: readonly Overlay[];
   selected: string | null;
   onSelect: (number: string) => void;
@@ -184,7 +184,7 @@ function StripDrawing({
   width,
   height,
 }: {
-  group: Group;
+  group: StripGroup;
   models: readonly { overlay: Overlay; value: number }[];
   scale: Scale;
   domain: readonly [number, number];

@@ -1,4 +1,4 @@
-import { useCallback, useEffect, useRef, useState } from "react";
+import { useCallback, useEffect, useMemo, useRef, useState } from "react";
 import { useLocalSearchParams, useRouter } from "expo-router";
 import {
   DEFAULT_MODELS,
@@ -71,5 +71,8 @@ export function useModels(): Models {
     (id: string) => update((all) => all.filter((model) => model.id !== id)),
     [update],
   );
-  return { models, change, toggle, add, remove };
+  return useMemo(
+    () => ({ models, change, toggle, add, remove }),
+    [models, change, toggle, add, remove],
+  );
 }

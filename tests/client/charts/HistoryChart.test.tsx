@@ -43,11 +43,6 @@ const base = {
   logarithmic: false,
 } as const;
 
-// jsdom has no layout: the chart's own units are then taken for pixels.
-beforeAll(() => {
-  Object.defineProperty(globalThis, "CSS", { value: { escape: (text: string) => text } });
-});
-
 describe("HistoryChart", () => {
   it("is one stop of the keyboard, walked through by redshift with the arrows", () => {
     render(<HistoryChart {...base} />);
@@ -75,6 +70,13 @@ describe("HistoryChart", () => {
     expect(select.mock.calls).toEqual([["C"], [null]]);
   });
 
+  it("takes the focus back when the panel of a point is gone", () => {
+    const { rerender } = render(<HistoryChart {...base} selectedId="B" />);
+    rerender(<HistoryChart {...base} selectedId={null} />);
+    expect(document.activeElement?.getAttribute("aria-label")).toBe("Point B");
+  });
+
+  // jsdom has no layout: the chart's own units are then taken for pixels.
   it("picks the nearest point of a touch, and none far from all", () => {
     const select = jest.fn();
     render(<HistoryChart {...base} onSelect={select} />);
