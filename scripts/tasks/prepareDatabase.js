@@ -14,7 +14,7 @@ const { isDemonstration } = require("../../build/server/database/settings");
 const STARTED_EMPTY = "startedEmpty";
 
 async function main() {
-  const { databaseUrl, demo } = readConfig(process.env);
+  const { databaseUrl, demo, publicUrl } = readConfig(process.env);
   const dataSource = createDataSource(databaseUrl);
   try {
     await prepareDatabase(dataSource);
@@ -27,7 +27,7 @@ async function main() {
       );
     if (!demonstration && demo && (await isUntouched(dataSource))) {
       const { seedDemonstration } = require("../../build/server/seed");
-      await seedDemonstration(dataSource);
+      await seedDemonstration(dataSource, undefined, publicUrl);
       demonstration = await isDemonstration(dataSource.manager);
       seeded = true;
     }

@@ -41,6 +41,7 @@ const HOUR_MS = 3_600_000;
 export async function seedDemonstration(
   dataSource: DataSource,
   passwordCost: Config["passwordCost"] = DEFAULT_PASSWORD_COST,
+  publicUrl = "",
 ): Promise<boolean> {
   return dataSource
     .transaction("READ COMMITTED", async (manager) => {
@@ -53,7 +54,7 @@ export async function seedDemonstration(
       });
       if ((await manager.count(Constraint)) > 0) throw new AlreadyFilled();
       await markDemonstration(manager);
-      await new Teller(manager, await createPeople(manager, passwordCost)).tell();
+      await new Teller(manager, await createPeople(manager, passwordCost), publicUrl).tell();
       return true;
     })
     .catch((error: unknown) => {
@@ -131,6 +132,8 @@ class Teller {
   constructor(
     private readonly manager: EntityManager,
     private readonly people: ReadonlyMap<PersonName, User>,
+    /** Base of the address in a saved table's files. */
+    private readonly publicUrl: string,
   ) {}
 
   async tell(): Promise<void> {
@@ -167,7 +170,7 @@ class Teller {
       },
       now,
       licence: "CC BY 4.0",
-      publicUrl: "",
+      publicUrl: this.publicUrl,
       sendsMail: false,
     };
   }

@@ -14,7 +14,7 @@ async function main(): Promise<void> {
   const dataSource = createDataSource(config.databaseUrl);
   try {
     await prepareDatabase(dataSource);
-    const seeded = await seedDemonstration(dataSource, config.passwordCost);
+    const seeded = await seedDemonstration(dataSource, config.passwordCost, config.publicUrl);
     process.stdout.write(
       seeded
         ? "The demonstration is in place.\n"

@@ -1,5 +1,6 @@
 import type { Citation } from "~server/citation/citation.entity";
 import type { ApprovedRow } from "~server/constraint/constraint.query";
+import type { FileKind } from "~server/download/send";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 import type { CanonicalFilter } from "~shared/filter/filter";
 import type { RecordState } from "~shared/review/states";
@@ -10,7 +11,7 @@ export interface SnapshotRow {
   /** FL-0042 */
   number: string;
   included: boolean;
-  /** Why it is out; null for a row that is in. */
+  /** Why it is out, or in against the proposal; null for a row that is in as proposed. */
   reason: string | null;
   /** Whether this is what the program proposed, rather than a person's own choice. */
   proposed: boolean;
@@ -29,12 +30,17 @@ export interface SnapshotConstraint {
   citation: Omit<Citation, "createdById" | "createdAt">;
 }
 
-/** Everything a saved table hands out. Rows and constraints are in the same order. */
+/**
+ * Everything a saved table hands out. Rows and constraints are in the same order. The files are
+ * kept as they were written, so that neither a setting nor a newer program changes a byte of them.
+ */
 export interface TableSnapshot {
   format: 1;
   filter: CanonicalFilter;
+  filterWords: string;
   rows: SnapshotRow[];
   constraints: SnapshotConstraint[];
+  files: Record<FileKind, string>;
 }
 
 export function snapshotConstraint(

@@ -1,20 +1,34 @@
 import { randomBytes } from "node:crypto";
 
-import { In, IsNull } from "typeorm";
+import { In, IsNull, type EntityManager } from "typeorm";
 
 import { User } from "~server/account/user.entity";
 import { done, refuse, type Done, type Refusal } from "~server/common/outcomes";
-import { findApproved, type Asking } from "~server/constraint/constraint.query";
+import {
+  findApproved,
+  MOST_ROWS,
+  type ApprovedRow,
+  type Asking,
+} from "~server/constraint/constraint.query";
+import { isDemonstration } from "~server/database/settings";
+import { REGISTRY } from "~server/download/header";
 import { change, type Acting } from "~server/event/acting";
-import { digestOf, lastEvent } from "~server/event/eventLog";
+import { lastEvent } from "~server/event/eventLog";
 import { recordsReadBlind } from "~server/review/blindness";
 import { canonicalFilter } from "~shared/filter/address";
+import { filterWords } from "~shared/filter/describe";
 import type { ConstraintFilter } from "~shared/filter/filter";
 import { formatRecordNumber, parseRecordNumber } from "~shared/identifiers/recordNumber";
 import { proposeRows } from "~shared/table/proposeRows";
 
-import { snapshotConstraint, type SnapshotRow, type TableSnapshot } from "./snapshot";
+import {
+  snapshotConstraint,
+  type SnapshotConstraint,
+  type SnapshotRow,
+  type TableSnapshot,
+} from "./snapshot";
 import { SavedTable } from "./table.entity";
+import { writeFiles } from "./tableFiles";
 
 export interface TableInput {
   name: string;
@@ -24,15 +38,14 @@ export interface TableInput {
 
 const LONGEST_NAME = 120;
 const LONGEST_REASON = 500;
-const MOST_ROWS = 2000;
 const MOST_TABLES = 500;
 
 /**
  * Saves a table with all it will ever hand out: the approved revisions of its rows as they stand
- * now, their citations, what is in and why the rest is out.
+ * now, their citations, what is in and out and why, and its files.
  *
- * The digest is SHA-256 over the RFC 8785 form of that content. It holds no clock, name or owner:
- * the same choices over the same revisions have the same digest.
+ * The digest is SHA-256 over the RFC 8785 form of `content` in its JSON file. That holds no clock,
+ * name or owner: the same choices over the same revisions have the same digest.
  */
 export async function saveTable(who: Acting, input: TableInput): Promise<SavedTable | Refusal> {
   const name = input.name.replace(/\s+/g, " ").trim();
@@ -43,98 +56,56 @@ export async function saveTable(who: Acting, input: TableInput): Promise<SavedTa
   if (wrong) return wrong;
 
   return change<SavedTable | Refusal>(who, async (here) => {
-    const own = await here.manager.countBy(SavedTable, {
-      ownerId: who.viewer.id,
-      deletedAt: IsNull(),
-    });
+    const { manager } = here;
+    const own = await manager.countBy(SavedTable, { ownerId: who.viewer.id, deletedAt: IsNull() });
     if (own >= MOST_TABLES) {
       return refuse("tooMany", `You have ${own} tables. Delete one first.`);
     }
     // Read through the transaction, so that rows and last event belong together.
-    const asking: Asking = {
-      database: { manager: here.manager },
-      viewer: who.viewer,
-    };
     const filter = canonicalFilter(input.filter);
-    const found = await findApproved(asking, filter, "redshift");
-    const given = new Map(
-      input.rows.map((row) => [parseRecordNumber(row.number) ?? 0, row] as const),
+    const found = await findApproved(
+      { database: { manager }, viewer: who.viewer },
+      filter,
+      "redshift",
     );
-    const unnamed = found.find((row) => !given.has(row.constraint.id));
-    if (unnamed) {
-      return refuse(
-        "stale",
-        `${formatRecordNumber(unnamed.constraint.id)} matches the filter too and is neither in nor out. Look at the rows again.`,
-      );
-    }
-    const foundIds = new Set(found.map((row) => row.constraint.id));
-    const strange = [...given.keys()].find((id) => !foundIds.has(id));
-    if (strange !== undefined) {
-      return refuse(
-        "stale",
-        `${given.get(strange)?.number ?? "A row"} doesn't match the filter any more. Look at the rows again.`,
-      );
-    }
-    const last = await lastEvent(here.manager);
+    const stale = refuseStale(found, input.rows);
+    if (stale) return stale;
+    const rows = chosenRows(found, input.rows);
+    const wrongChoice = refuseQualitative(found, rows) ?? refuseWithoutReason(rows);
+    if (wrongChoice) return wrongChoice;
+    const last = await lastEvent(manager);
     if (!last) return refuse("empty", "There is nothing in the registry yet.");
 
-    const proposals = new Map(
-      proposeRows(
-        found.map(({ constraint, revision, citation }) => ({
-          number: formatRecordNumber(constraint.id),
-          fields: revision.fields,
-          citation: citation.id,
-          year: citation.year,
-        })),
-      ).map((row) => [row.number, row]),
-    );
-    const rows = found.map(({ constraint }): SnapshotRow => {
-      const number = formatRecordNumber(constraint.id);
-      const choice = given.get(constraint.id);
-      const proposal = proposals.get(number);
-      const included = choice?.included ?? false;
-      const reason = included ? null : (choice?.reason?.trim() ?? "");
-      return {
-        number,
-        included,
-        reason,
-        proposed:
-          proposal !== undefined &&
-          proposal.included === included &&
-          (included || proposal.reason === reason),
-      };
+    const slug = newSlug();
+    const words = filterWords(filter);
+    const constraints = await snapshotConstraints(manager, found);
+    const { digest, files } = writeFiles({
+      registry: REGISTRY,
+      demonstration: await isDemonstration(manager),
+      lastEvent: { ...last, at: last.at.toISOString() },
+      filter: words,
+      filterRecipe: filter,
+      licence: who.licence,
+      name,
+      address: `${who.publicUrl}/tables/${slug}`,
+      rows,
+      constraints,
     });
-    const people = await here.manager.find(User, {
-      select: { id: true, nameOnPapers: true },
-      where: {
-        id: In(
-          found.flatMap(({ constraint, revision }) => [
-            constraint.ownerId,
-            ...(revision.decidedById === null ? [] : [revision.decidedById]),
-          ]),
-        ),
-      },
-    });
-    const names = new Map(people.map((person) => [person.id, person.nameOnPapers]));
     const snapshot: TableSnapshot = {
       format: 1,
       filter,
+      filterWords: words,
       rows,
-      constraints: found.map((row) =>
-        snapshotConstraint(row, {
-          submittedBy: names.get(row.constraint.ownerId) ?? "a former member",
-          readBy: names.get(row.revision.decidedById ?? "") ?? "a former member",
-        }),
-      ),
+      constraints,
+      files,
     };
-    const slug = newSlug();
-    await here.manager.insert(SavedTable, {
+    await manager.insert(SavedTable, {
       slug,
       name,
       ownerId: who.viewer.id,
       createdAt: who.now,
       deletedAt: null,
-      digest: tableDigest(snapshot),
+      digest,
       lastEventSequence: last.sequence,
       lastEventDigest: last.digest,
       lastEventAt: last.at,
@@ -143,25 +114,102 @@ export async function saveTable(who: Acting, input: TableInput): Promise<SavedTa
     await here.event({
       kind: "table.saved",
       subject: `table:${slug}`,
-      detail: { digest: tableDigest(snapshot), rowsIn: rows.filter((row) => row.included).length },
+      detail: { digest, rowsIn: rows.filter((row) => row.included).length },
     });
-    return here.manager.findOneOrFail(SavedTable, { where: { slug }, relations: { owner: true } });
+    return manager.findOneOrFail(SavedTable, { where: { slug }, relations: { owner: true } });
   });
 }
 
-/** Ids and names of this database are no part of what a table says. */
-export function tableDigest(snapshot: TableSnapshot): string {
-  return digestOf({
-    format: snapshot.format,
-    filter: snapshot.filter,
-    rows: snapshot.rows,
-    constraints: snapshot.constraints.map(({ number, ordinal, fields, citation }) => ({
-      number,
-      ordinal,
-      fields,
-      citation: { key: citation.key, csl: citation.csl, bibtex: citation.entryBibtex },
+/** Every row of the filter is in or out, and no other is named: else the person saw another list. */
+function refuseStale(found: readonly ApprovedRow[], rows: TableInput["rows"]): Refusal | null {
+  const given = new Map(rows.map((row) => [parseRecordNumber(row.number) ?? 0, row] as const));
+  const unnamed = found.find((row) => !given.has(row.constraint.id));
+  if (unnamed) {
+    return refuse(
+      "stale",
+      `${formatRecordNumber(unnamed.constraint.id)} matches the filter too and is neither in nor out. Look at the rows again.`,
+    );
+  }
+  const foundIds = new Set(found.map((row) => row.constraint.id));
+  const strange = [...given.keys()].find((id) => !foundIds.has(id));
+  if (strange === undefined) return null;
+  return refuse(
+    "stale",
+    `${given.get(strange)?.number ?? "A row"} doesn't match the filter any more. Look at the rows again.`,
+  );
+}
+
+/** Each row as a person chose it, beside what the program proposes. A reason for what needs none is not kept. */
+function chosenRows(found: readonly ApprovedRow[], rows: TableInput["rows"]): SnapshotRow[] {
+  const given = new Map(rows.map((row) => [parseRecordNumber(row.number), row] as const));
+  const proposals = proposeRows(
+    found.map(({ constraint, revision, citation }) => ({
+      number: formatRecordNumber(constraint.id),
+      fields: revision.fields,
+      citation: citation.id,
+      year: citation.year,
     })),
+  );
+  return proposals.map((proposal, index): SnapshotRow => {
+    const { number } = proposal;
+    const choice = given.get(found[index]?.constraint.id ?? 0);
+    const isIn = choice?.included ?? false;
+    const needsReason = !isIn || !proposal.included;
+    const reason = needsReason ? (choice?.reason?.trim() ?? "") : null;
+    return {
+      number,
+      included: isIn,
+      reason,
+      proposed: proposal.included === isIn && (isIn || proposal.reason === reason),
+    };
   });
+}
+
+function refuseQualitative(
+  found: readonly ApprovedRow[],
+  rows: readonly SnapshotRow[],
+): Refusal | null {
+  const taken = rows.find(
+    (row, index) => row.included && found[index]?.revision.fields.kind === "qualitative",
+  );
+  if (!taken) return null;
+  return refuse("qualitative", `${taken.number} is qualitative: shown, never fitted.`, "rows");
+}
+
+function refuseWithoutReason(rows: readonly SnapshotRow[]): Refusal | null {
+  const bare = rows.find((row) => row.reason === "");
+  if (!bare) return null;
+  return refuse(
+    "reason",
+    bare.included
+      ? `${bare.number} is proposed to be left out: say why it is in all the same.`
+      : `Say why ${bare.number} is left out.`,
+    "rows",
+  );
+}
+
+async function snapshotConstraints(
+  manager: EntityManager,
+  found: readonly ApprovedRow[],
+): Promise<SnapshotConstraint[]> {
+  const people = await manager.find(User, {
+    select: { id: true, nameOnPapers: true },
+    where: {
+      id: In(
+        found.flatMap(({ constraint, revision }) => [
+          constraint.ownerId,
+          ...(revision.decidedById === null ? [] : [revision.decidedById]),
+        ]),
+      ),
+    },
+  });
+  const names = new Map(people.map((person) => [person.id, person.nameOnPapers]));
+  return found.map((row) =>
+    snapshotConstraint(row, {
+      submittedBy: names.get(row.constraint.ownerId) ?? "a former member",
+      readBy: names.get(row.revision.decidedById ?? "") ?? "a former member",
+    }),
+  );
 }
 
 function refuseRows(rows: TableInput["rows"]): Refusal | null {
@@ -181,9 +229,6 @@ function refuseRows(rows: TableInput["rows"]): Refusal | null {
   }
   for (const row of rows) {
     const reason = row.reason?.trim() ?? "";
-    if (!row.included && reason === "") {
-      return refuse("reason", `Say why ${row.number} is left out.`, "rows");
-    }
     if (reason.length > LONGEST_REASON) {
       return refuse(
         "reason",

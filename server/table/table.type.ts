@@ -6,7 +6,6 @@ import { Refusal } from "~server/common/outcomes";
 import { ConstraintFilterInput, ConstraintType } from "~server/constraint/constraint.type";
 import { fieldsType } from "~server/constraint/fields.type";
 import { EventMark, eventMark } from "~server/event/event.type";
-import { filterWords } from "~shared/filter/describe";
 import { formatQuotable } from "~shared/identifiers/recordNumber";
 
 import type { SnapshotConstraint } from "./snapshot";
@@ -85,7 +84,7 @@ export function fittingTableType(
   viewerId: string | null,
   readBlind: ReadonlySet<number>,
 ): FittingTable {
-  const { rows, constraints, filter } = table.snapshot;
+  const { rows, constraints, filterWords } = table.snapshot;
   const hidden = new Set(
     constraints.filter(({ id }) => readBlind.has(id)).map(({ number }) => number),
   );
@@ -95,7 +94,7 @@ export function fittingTableType(
     owner: table.owner.nameOnPapers,
     ownedByMe: table.ownerId === viewerId,
     createdAt: table.createdAt,
-    filter: filterWords(filter),
+    filter: filterWords,
     digest: table.digest,
     rowsIn: rows.filter((row) => row.included).length,
     rowsOut: rows.filter((row) => !row.included).length,

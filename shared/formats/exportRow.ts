@@ -42,7 +42,8 @@ export const EXPORT_CAUTIONS = [
 ] as const;
 
 export const TABLE_CAUTIONS = [
-  "The choices are this table's, not the authors'.",
+  "The choices are this table's, not the authors'; cite the originals.",
+  "Rows are taken as independent of one another.",
   ...EXPORT_CAUTIONS,
 ] as const;
 

@@ -1,4 +1,5 @@
 /** Which rows of a filtered list a fitting table takes by default, and why it leaves the others out. */
+import { rowLikelihood } from "~shared/likelihood";
 import { METHOD_TAGS } from "~shared/methods/vocabulary";
 import { asUsed, type AsUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields } from "~shared/statement/fields";
@@ -46,7 +47,7 @@ export function proposeRows(candidates: readonly CandidateRow[]): ProposedRow[] 
     data: namedData(row.fields),
     reason: unusable(row.fields),
   }));
-  for (const row of rows) row.reason ??= row.used === null ? "Not complete enough to use" : null;
+  for (const row of rows) row.reason ??= withoutLikelihood(row.used);
   keepOneAlternative(rows);
   leaveJointInferenceOut(rows);
   keepOneOfOverlapping(rows);
@@ -63,6 +64,13 @@ function unusable(fields: ConstraintFields): string | null {
   if (fields.kind === "curve") return "Tabulated curve without its nodes";
   if (fields.level === "notStated") return "Level not stated";
   return null;
+}
+
+/** What no default form takes, such as a mass-weighted fraction, waits for a person's decision. */
+function withoutLikelihood(used: AsUsed | null): string | null {
+  if (used === null) return "Not complete enough to use";
+  const row = rowLikelihood(used);
+  return "leftOut" in row ? row.leftOut.replace(/\.$/, "") : null;
 }
 
 function namedData(fields: ConstraintFields): Map<string, string> {

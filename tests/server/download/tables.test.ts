@@ -1,11 +1,18 @@
 import "reflect-metadata";
 
-import Papa from "papaparse";
+import { createHash } from "node:crypto";
 
-import type { User } from "~server/account/user.entity";
+import canonicalize from "canonicalize";
+import Papa from "papaparse";
+import request from "supertest";
+
+import { User } from "~server/account/user.entity";
+import { buildApp } from "~server/app";
 import { isProblem, parseBibtex } from "~server/citation/bibtex";
 import { Constraint } from "~server/constraint/constraint.entity";
 import { reviseSubmission } from "~server/constraint/draft.service";
+import { markDemonstration } from "~server/database/settings";
+import { createLogger } from "~server/logging/logger";
 import { claim, storeReading } from "~server/review/review.service";
 import type { SavedTable } from "~server/table/table.entity";
 import { deleteTable, saveTable } from "~server/table/table.service";
@@ -92,11 +99,11 @@ it("anybody fetches a saved table in three forms, to be saved, never sniffed", a
   expect(json).toMatchObject({
     digest: `sha256:${table.digest}`,
     name: "Table of Amberfield",
-    licence: "CC BY 4.0",
-    filter: { recipe: { text: "Amberfield" } },
+    address: `http://fogline.test/tables/${table.slug}`,
     lastEvent: { sequence: table.lastEventSequence },
+    content: { licence: "CC BY 4.0", filter: { recipe: { text: "Amberfield" } } },
   });
-  expect(json.rows).toMatchObject([
+  expect(json.content.rows).toMatchObject([
     { record: first, included: true, printed: { value: "0.21" } },
     { record: second, included: false, printed: { value: "0.50" } },
   ]);
@@ -107,22 +114,75 @@ it("anybody fetches a saved table in three forms, to be saved, never sniffed", a
   expect(bib[0]).toMatchObject({ givenKey: data[0]!.citation_key });
 });
 
-it("its bytes stay when a record is revised or superseded afterwards", async () => {
+it("its digest is SHA-256 over the RFC 8785 form of the content in the fetched JSON", async () => {
+  const { table } = await buildTable("Birchfield");
+  const file = JSON.parse((await fetchTable(table.slug, "json")).text);
+  const digest = createHash("sha256")
+    .update(canonicalize(file.content) ?? "", "utf8")
+    .digest("hex");
+  expect(file.digest).toBe(`sha256:${digest}`);
+  // It is over all that is said: another reason is another digest.
+  file.content.rows[1].reason = "Another reason";
+  expect(
+    createHash("sha256")
+      .update(canonicalize(file.content) ?? "", "utf8")
+      .digest("hex"),
+  ).not.toBe(digest);
+});
+
+const threeFiles = (slug: string, agent = server.agent()) =>
+  Promise.all(
+    ["csv", "json", "bib"].map(async (kind) => (await fetchTable(slug, kind, agent)).text),
+  );
+
+it("its bytes stay when records, people and settings change and another program serves them", async () => {
   const { dataSource } = server;
   const { table, ids } = await buildTable("Cobaltfield");
-  const before = await Promise.all(
-    ["csv", "json", "bib"].map(async (kind) => (await fetchTable(table.slug, kind)).text),
-  );
+  const before = await threeFiles(table.slug);
   const record = await dataSource.manager.findOneByOrFail(Constraint, { id: ids[0]! });
   const who = actingAs(dataSource, owner);
   const draft = granted(await reviseSubmission(who, record.approvedRevisionId!));
   const fields = { ...draft.fields, value: "0.22", printedText: "we find 6.20, 0.22, 0.12, 0.15" };
   await approveAs(dataSource, editor, await send(dataSource, owner, { ...draft, fields }));
   await dataSource.manager.update(Constraint, { id: ids[1]! }, { state: "superseded" });
-  const after = await Promise.all(
-    ["csv", "json", "bib"].map(async (kind) => (await fetchTable(table.slug, kind)).text),
+  const renamed = { nameOnPapers: "Quite Another" };
+  await dataSource.manager.update(User, { id: owner.id }, renamed);
+  await dataSource.manager.update(User, { id: editor.id }, renamed);
+  await markDemonstration(dataSource.manager);
+  expect(await threeFiles(table.slug)).toEqual(before);
+
+  // As after a restart with other settings.
+  const config = { ...server.config, licence: "CC0 1.0", publicUrl: "http://moved.test" };
+  const restarted = await buildApp(config, dataSource, createLogger("silent"));
+  expect(await threeFiles(table.slug, request.agent(restarted.app))).toEqual(before);
+  const list = (await request(restarted.app).get("/api/constraints.csv")).text;
+  expect(list).toContain("CC0 1.0");
+  expect(list).toContain("Demonstration");
+  await restarted.close();
+});
+
+it("a row in against the proposal has its reason in every file", async () => {
+  const { dataSource } = server;
+  const numbers: string[] = [];
+  for (const z of ["6.2", "6.4"]) {
+    const fields = { z, dataUsed: ["Sightline of Hazelfield"] };
+    const revision = await buildApproved(dataSource, owner, editor, fields);
+    numbers.push(formatRecordNumber(revision.constraintId));
+  }
+  const reason = "The parts used are disjoint, says its Table 1";
+  const rows = numbers.map((number) => ({ number, included: true, reason }));
+  const table = granted(
+    await saveTable(actingAs(dataSource, owner), {
+      name: "Both halves",
+      filter: { text: "Hazelfield" },
+      rows,
+    }),
   );
-  expect(after).toEqual(before);
+  for (const text of await threeFiles(table.slug)) expect(text.split(reason)).not.toHaveLength(1);
+  const { content } = (await fetchTable(table.slug, "json")).body;
+  expect(content.choices).toEqual([
+    { record: expect.stringContaining(numbers[1]!), included: true, by: "person", reason },
+  ]);
 });
 
 it("answers 304 to who has it already", async () => {

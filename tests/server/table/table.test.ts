@@ -1,7 +1,3 @@
-import { createHash } from "node:crypto";
-
-import canonicalize from "canonicalize";
-
 import { EventRecord } from "~server/event/event.entity";
 import { loadTableFile } from "~server/table/table.service";
 import { SavedTable } from "~server/table/table.entity";
@@ -161,26 +157,65 @@ describe("fitting tables", () => {
       rows: [rows[0], { ...rows[1], reason: "too faint" }],
     });
     expect(changed.digest).not.toBe(one.digest);
+  });
 
-    // From outside: SHA-256 over the RFC 8785 form, as the documentation of saveTable says.
-    const found = await loadTableFile({ database: server.dataSource, viewer: null }, one.slug);
-    if (found.found !== "table") throw new Error("the table is there");
-    const { format, filter: kept, rows: keptRows, constraints } = found.table.snapshot;
-    const said = {
-      format,
-      filter: kept,
-      rows: keptRows,
-      constraints: constraints.map(({ number, ordinal, fields, citation }) => ({
-        number,
-        ordinal,
-        fields,
-        citation: { key: citation.key, csl: citation.csl, bibtex: citation.entryBibtex },
-      })),
-    };
-    const digest = createHash("sha256")
-      .update(canonicalize(said) ?? "")
-      .digest("hex");
-    expect(digest).toBe(one.digest);
+  it("keep the reason of a row taken in against the proposal, and refuse one without", async () => {
+    const contributor = await server.signedIn(["contributor"]);
+    const editor = await server.signedIn(["editor"]);
+    const word = `Shared ${contributor.user.id}`;
+    const numbers: string[] = [];
+    for (const z of ["6.2", "7.4"]) {
+      const { constraintId } = await buildApproved(
+        server.dataSource,
+        contributor.user,
+        editor.user,
+        { z, dataUsed: [word] },
+      );
+      numbers.push(formatRecordNumber(constraintId));
+    }
+    const input = (reason: string | null) => ({
+      name: "Both",
+      filter: { text: word },
+      rows: numbers.map((number) => ({ number, included: true, reason })),
+    });
+    for (const nothing of [null, "  "]) {
+      expect(await save(contributor.agent, input(nothing))).toMatchObject({
+        __typename: "Refusal",
+        code: "reason",
+        field: "rows",
+        message: `${numbers[1]} is proposed to be left out: say why it is in all the same.`,
+      });
+    }
+    const saved = await save(contributor.agent, input("Disjoint halves of it"));
+    expect(saved.rows).toEqual([
+      { number: numbers[0], included: true, reason: null, proposed: true },
+      { number: numbers[1], included: true, reason: "Disjoint halves of it", proposed: false },
+    ]);
+  });
+
+  it("never take a qualitative statement in", async () => {
+    const contributor = await server.signedIn(["contributor"]);
+    const editor = await server.signedIn(["editor"]);
+    const { constraintId } = await buildApproved(server.dataSource, contributor.user, editor.user, {
+      kind: "qualitative",
+      value: null,
+      plus: null,
+      minus: null,
+      level: null,
+      estimator: null,
+      dataUsed: [`Words ${contributor.user.id}`],
+    });
+    const number = formatRecordNumber(constraintId);
+    expect(
+      await save(contributor.agent, {
+        name: "Words",
+        filter: { text: `Words ${contributor.user.id}` },
+        rows: [{ number, included: true, reason: "I like it" }],
+      }),
+    ).toMatchObject({
+      code: "qualitative",
+      message: `${number} is qualitative: shown, never fitted.`,
+    });
   });
 
   it("are deleted by their owner only; the address then says that it is gone", async () => {

@@ -52,6 +52,13 @@ describe("proposeRows", () => {
     expect(reasons([row(), row(), row()])).toEqual([null, null, null]);
   });
 
+  it("leaves out what waits for a decision about its likelihood", () => {
+    expect(reasons([row({ weighting: "mass" }), row()])).toEqual([
+      "Mass-weighted: not converted to a volume average",
+      null,
+    ]);
+  });
+
   it("leaves out what no likelihood can take, each with its reason", () => {
     expect(
       reasons([
