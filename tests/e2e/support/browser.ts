@@ -1,5 +1,4 @@
 import { mkdirSync, readFileSync } from "node:fs";
-import os from "node:os";
 import path from "node:path";
 
 import type axeCore from "axe-core";
@@ -64,6 +63,8 @@ export async function openPage(
     });
   });
   const page = await context.newPage();
+  // As patient as the tests: a browser beside a busy build is slow, not broken.
+  page.setDefaultTimeout(60_000);
   page.on("console", (message) => {
     if (message.type() === "error") problems.push(`console: ${message.text()}`);
   });
@@ -93,18 +94,27 @@ export async function signIn(
 type Axe = typeof axeCore;
 const AXE = readFileSync(require.resolve("axe-core/axe.min.js"), "utf8");
 
-/** Serious and critical findings of axe, each as rule, element and reason. */
-export async function axeViolations(page: Page): Promise<string[]> {
-  await page.evaluate(AXE);
-  return page.evaluate(async () => {
+/** Serious and critical findings of axe, each as rule, element and reason; of all its rules unless some are named. */
+export async function axeViolations(page: Page, rules?: string[]): Promise<string[]> {
+  if (!(await page.evaluate(() => "axe" in window))) await page.evaluate(AXE);
+  return page.evaluate(async (only) => {
     const { axe } = window as unknown as { axe: Axe };
-    const { violations } = await axe.run(document, { resultTypes: ["violations"] });
+    const { violations } = await axe.run(document, {
+      resultTypes: ["violations"],
+      ...(only ? { runOnly: only } : {}),
+    });
     return violations
       .filter(({ impact }) => impact === "serious" || impact === "critical")
       .flatMap(({ id, nodes }) =>
         nodes.map(({ target, failureSummary }) => `${id}: ${target.join(" ")}: ${failureSummary}`),
       );
-  });
+  }, rules);
+}
+
+/** Lets the system ask for a scheme, and waits until the page wears it. */
+export async function wear(page: Page, scheme: Scheme): Promise<void> {
+  await page.emulateMedia({ colorScheme: scheme });
+  await page.locator(`html[data-scheme=${scheme}]`).waitFor({ state: "attached" });
 }
 
 /** Elements that reach beyond the window, and texts that are cut off, in words. */
@@ -135,7 +145,8 @@ export function layoutProblems(page: Page): Promise<string[]> {
       const style = getComputedStyle(element);
       const hidden = style.visibility === "hidden" || style.opacity === "0";
       // Text for screen readers only is clipped to a point on purpose.
-      if (hidden || box.width <= 1 || box.height <= 1) continue;
+      const clipped = style.clip !== "auto" || style.clipPath !== "none";
+      if (hidden || clipped || box.width <= 1 || box.height <= 1) continue;
       if ((box.right > width + 1 || box.left < -1) && !scrollsSideways(element.parentElement))
         found.push(`${describe(element)} reaches from ${box.left} to ${box.right} of ${width}`);
       const ownText = Array.from(element.childNodes).some(
@@ -161,11 +172,10 @@ export async function transferredBytes(page: Page, load: () => Promise<unknown>)
   return bytes;
 }
 
-/** Saves what the page looks like for a person to judge; kept only if E2E_SCREENSHOTS names a folder. */
-export async function screenshot(page: Page, name: string): Promise<string> {
-  const folder = process.env.E2E_SCREENSHOTS ?? path.join(os.tmpdir(), "screenshots");
+/** Saves what the page looks like for a person to judge, if E2E_SCREENSHOTS names a folder. */
+export async function screenshot(page: Page, name: string): Promise<void> {
+  const folder = process.env.E2E_SCREENSHOTS;
+  if (!folder) return;
   mkdirSync(folder, { recursive: true });
-  const file = path.join(folder, `${name}.png`);
-  await page.screenshot({ path: file, fullPage: true });
-  return file;
+  await page.screenshot({ path: path.join(folder, `${name}.png`), fullPage: true });
 }
