@@ -4,6 +4,9 @@ import { type History, historyOf } from "~shared/history/history";
 import { gaussLegendre } from "~shared/numerics/quadrature";
 import { requirePositive, requireWithin } from "~shared/numerics/require";
 
+// Taken once: in a sandboxed realm every look-up of a global costs more than the arithmetic.
+const { exp, expm1, log1p, max, min, sqrt } = Math;
+
 /** Where the first sources switch on unless said otherwise (Planck intermediate results XLVII). */
 export const DEFAULT_Z_EARLY = 20;
 
@@ -52,18 +55,17 @@ export function powerLawHistory({
     covered: null,
     warnings: [],
     // expm1 keeps the digits of a small neutral fraction just above z_end.
-    x: (z) =>
-      z <= zEnd ? 0 : z >= zEarly ? 1 : -Math.expm1(alpha * Math.log1p((zEnd - z) / span)),
+    x: (z) => (z <= zEnd ? 0 : z >= zEarly ? 1 : -expm1(alpha * log1p((zEnd - z) / span))),
     ionized,
     hydrogenDepth: (background, z1, z2) => {
       let depth = 0;
-      if (z1 < zEnd) depth += background.depthBetween(z1, Math.min(z2, zEnd));
-      const from = Math.max(z1, zEnd);
-      const to = Math.min(z2, zEarly);
+      if (z1 < zEnd) depth += background.depthBetween(z1, min(z2, zEnd));
+      const from = max(z1, zEnd);
+      const to = min(z2, zEarly);
       if (to > from) depth += powerDepth(background, alpha, zEarly, span, from, to);
       return depth;
     },
-    redshiftAtFraction: (f) => zEarly - span * Math.exp(Math.log1p(-f) / alpha),
+    redshiftAtFraction: (f) => zEarly - span * exp(log1p(-f) / alpha),
     integral: (zLow, zHigh) => {
       if (zLow >= zEnd && zHigh <= zEarly && alpha * (zHigh - zEnd) < 0.01 * span) {
         // Close above z_end the closed form is a difference of nearly equal numbers.
@@ -87,23 +89,23 @@ function powerDepth(
   to: number,
 ): number {
   const { nodes, weights } = RULE;
-  const vLow = Math.sqrt(Math.max(0, zEarly - to) / span);
-  const vHigh = Math.sqrt((zEarly - from) / span);
+  const vLow = sqrt(max(0, zEarly - to) / span);
+  const vHigh = sqrt((zEarly - from) / span);
   let total = 0;
   // Halving towards v = 0 meets the branch point there; the last sliver holds below 1e-13.
   let high = vHigh;
   for (let p = 0; p < 60 && high > vLow; p++) {
     // H(z) bends on the scale of 1 + z: no panel may more than double it.
     const a = 1 + zEarly - span * high * high;
-    const doubled = Math.sqrt(Math.max(0, 1 + zEarly - 2 * a) / span);
-    let low = p < 59 ? Math.max(vLow, 0.5 * high, doubled) : vLow;
+    const doubled = sqrt(max(0, 1 + zEarly - 2 * a) / span);
+    let low = p < 59 ? max(vLow, 0.5 * high, doubled) : vLow;
     if (low - vLow < 1e-3 * high) low = vLow;
     const half = 0.5 * (high - low);
     const centre = 0.5 * (high + low);
     let sum = 0;
     for (let i = 0; i < nodes.length; i++) {
       const v = centre + half * nodes[i]!;
-      const u = Math.sqrt(1 + zEarly - span * v * v);
+      const u = sqrt(1 + zEarly - span * v * v);
       // Q dτ/dz |dz/dv|, with dz = 2u du and dz = −2 span v dv.
       sum += weights[i]! * v ** (2 * alpha + 1) * (background.depthDensity(u) / u);
     }
@@ -129,7 +131,7 @@ function smallIntegral(
   let sum = 0;
   for (let i = 0; i < nodes.length; i++) {
     const z = centre + half * nodes[i]!;
-    sum -= weights[i]! * Math.expm1(alpha * Math.log1p((zEnd - z) / span));
+    sum -= weights[i]! * expm1(alpha * log1p((zEnd - z) / span));
   }
   return sum * half;
 }

@@ -4,6 +4,9 @@ import { gaussLegendre } from "~shared/numerics/quadrature";
 import { requirePositive, requireWithin } from "~shared/numerics/require";
 import { logistic } from "~shared/numerics/special";
 
+// Taken once: in a sandboxed realm every look-up of a global costs more than the arithmetic.
+const { abs, cbrt, ceil, exp, log, max, min, sqrt } = Math;
+
 /** Width of the tanh unless said otherwise (Planck's convention). */
 export const DEFAULT_DELTA_Z = 0.5;
 
@@ -38,12 +41,12 @@ export function tanhHistory({
 }): History {
   requireWithin("zRe", zRe, 0, 1000);
   requirePositive("deltaZ", deltaZ);
-  const root = Math.sqrt(1 + zRe);
+  const root = sqrt(1 + zRe);
   const yRe = (1 + zRe) * root;
   const deltaY = 1.5 * root * deltaZ;
   const slope = 2 / deltaY;
 
-  const argument = (z: number): number => slope * ((1 + z) * Math.sqrt(1 + z) - yRe);
+  const argument = (z: number): number => slope * ((1 + z) * sqrt(1 + z) - yRe);
   return historyOf({
     kind: "tanh",
     parameters: { zRe, deltaZ },
@@ -54,8 +57,8 @@ export function tanhHistory({
     ionized: (z) => logistic(-argument(z)),
     hydrogenDepth: (background, z1, z2) => tanhDepth(background, zRe, deltaY, z1, z2),
     redshiftAtFraction: (f) => {
-      const y = yRe + 0.5 * deltaY * Math.log(f / (1 - f));
-      return y >= 1 ? Math.cbrt(y) ** 2 - 1 : null;
+      const y = yRe + 0.5 * deltaY * log(f / (1 - f));
+      return y >= 1 ? cbrt(y) ** 2 - 1 : null;
     },
     integral: (zLow, zHigh) => tanhIntegral(yRe, deltaY, deltaZ, zLow, zHigh),
   });
@@ -73,17 +76,17 @@ function tanhDepth(
   z1: number,
   z2: number,
 ): number {
-  const u1 = Math.sqrt(1 + z1);
-  const u2 = Math.sqrt(1 + z2);
-  const uRe = Math.sqrt(1 + zRe);
+  const u1 = sqrt(1 + z1);
+  const u2 = sqrt(1 + z2);
+  const uRe = sqrt(1 + zRe);
   const yRe = uRe * uRe * uRe;
   let depth = 0;
   if (z1 < zRe) {
-    const top = Math.min(u2, uRe);
-    depth += background.depthBetween(z1, Math.min(z2, zRe));
+    const top = min(u2, uRe);
+    depth += background.depthBetween(z1, min(z2, zRe));
     depth -= deviation(background, yRe, deltaY, top, u1);
   }
-  if (z2 > zRe) depth += deviation(background, yRe, deltaY, Math.max(u1, uRe), u2);
+  if (z2 > zRe) depth += deviation(background, yRe, deltaY, max(u1, uRe), u2);
   return depth;
 }
 
@@ -105,11 +108,11 @@ function deviation(
     if (!panel) break;
     const { nodes, weights } = panel.rule;
     const y = yStart + direction * deltaY * panel.end;
-    let to = y > 1 ? Math.cbrt(y) : 1;
+    let to = y > 1 ? cbrt(y) : 1;
     if ((to - stop) * direction >= 0) to = stop;
     // H(z) bends on the scale of u near today: wide steps are cut there.
     const widest = from < 2 || to < 2 ? 0.4 : 1.2;
-    if (Math.abs(to - from) > widest) to = from + direction * widest;
+    if (abs(to - from) > widest) to = from + direction * widest;
     else p++;
     const half = 0.5 * (to - from);
     const centre = 0.5 * (to + from);
@@ -117,9 +120,9 @@ function deviation(
     for (let i = 0; i < nodes.length; i++) {
       const u = centre + half * nodes[i]!;
       const t = rate * (u * u * u - yRe);
-      if (t < 700) sum += (weights[i]! / (1 + Math.exp(t))) * background.depthDensity(u);
+      if (t < 700) sum += (weights[i]! / (1 + exp(t))) * background.depthDensity(u);
     }
-    total += sum * Math.abs(half);
+    total += sum * abs(half);
     from = to;
   }
   return total;
@@ -136,20 +139,20 @@ function tanhIntegral(
   const { nodes, weights } = MEAN_RULE;
   // Beyond |s| = 20 the fraction is 0 or 1 to the last digit.
   const yBottom = yRe - 20 * deltaY;
-  const bottom = yBottom > 1 ? Math.cbrt(yBottom) ** 2 - 1 : 0;
-  const top = Math.cbrt(yRe + 20 * deltaY) ** 2 - 1;
-  const from = Math.min(Math.max(zLow, bottom), zHigh);
-  const to = Math.max(Math.min(zHigh, top), zLow);
+  const bottom = yBottom > 1 ? cbrt(yBottom) ** 2 - 1 : 0;
+  const top = cbrt(yRe + 20 * deltaY) ** 2 - 1;
+  const from = min(max(zLow, bottom), zHigh);
+  const to = max(min(zHigh, top), zLow);
   let total = zHigh > to ? zHigh - to : 0;
   if (!(to > from)) return total;
-  const panels = Math.ceil((to - from) / Math.min(0.8 * deltaZ, 0.8));
+  const panels = ceil((to - from) / min(0.8 * deltaZ, 0.8));
   const half = (to - from) / panels / 2;
   const slope = 2 / deltaY;
   for (let p = 0; p < panels; p++) {
     const centre = from + (2 * p + 1) * half;
     for (let i = 0; i < nodes.length; i++) {
       const a = 1 + centre + half * nodes[i]!;
-      total += half * weights[i]! * logistic(slope * (a * Math.sqrt(a) - yRe));
+      total += half * weights[i]! * logistic(slope * (a * sqrt(a) - yRe));
     }
   }
   return total;

@@ -6,6 +6,9 @@ import { DERIVED_NAMES, type DerivedName, type FitProblem } from "~shared/infere
 import type { Task } from "~shared/inference/task";
 import { RandomStream } from "~shared/numerics/random";
 
+// Taken once: in a sandboxed realm every look-up of a global costs more than the arithmetic.
+const { ceil, exp, floor, log, min, sqrt } = Math;
+
 export interface SamplerOptions {
   /** Whole number; equal seeds give equal chains. */
   readonly seed: number;
@@ -88,8 +91,8 @@ export function* sampleEnsemble(
   const draws = new Float64Array(steps * walkers * dimension);
   const kept = new Float64Array(steps * walkers);
   const half = walkers / 2;
-  const rootLow = 1 / Math.sqrt(stretch);
-  const rootSpan = Math.sqrt(stretch) - rootLow;
+  const rootLow = 1 / sqrt(stretch);
+  const rootSpan = sqrt(stretch) - rootLow;
   let accepted = 0;
   for (let step = -burn; step < steps; step++) {
     for (let side = 0; side < 2; side++) {
@@ -106,8 +109,8 @@ export function* sampleEnsemble(
         }
         const found = logPosterior(trial);
         // A logarithm is spared where the step climbs anyway.
-        const gain = (dimension - 1) * Math.log(scale) + found - height[w]!;
-        if (gain >= 0 || random.uniform() < Math.exp(gain)) {
+        const gain = (dimension - 1) * log(scale) + found - height[w]!;
+        if (gain >= 0 || random.uniform() < exp(gain)) {
           for (let d = 0; d < dimension; d++) place[w * dimension + d] = trial[d]!;
           height[w] = found;
           if (step >= 0) accepted++;
@@ -136,7 +139,7 @@ export function* samplePosterior(
     seed,
     walkers = 32,
     steps = 2000,
-    burn = Math.ceil(steps / 4),
+    burn = ceil(steps / 4),
     ensembles = 4,
     stretch = 2,
   }: SamplerOptions,
@@ -255,8 +258,8 @@ function sampleMarginal(chains: readonly Float64Array[]): Marginal | null {
   all.sort();
   const quantile = (p: number): number => {
     const place = p * (all.length - 1);
-    const i = Math.min(Math.floor(place), all.length - 2);
+    const i = min(floor(place), all.length - 2);
     return all[i]! + (place - i) * (all[i + 1]! - all[i]!);
   };
-  return { summary: summaryOf(mean, Math.sqrt(variance), quantile), quantile };
+  return { summary: summaryOf(mean, sqrt(variance), quantile), quantile };
 }

@@ -10,6 +10,9 @@ import { maximumLikelihood, type MaximumLikelihood } from "~shared/inference/max
 import { DERIVED_NAMES, type DerivedName, type FitProblem } from "~shared/inference/problem";
 import type { Task } from "~shared/inference/task";
 
+// Taken once: in a sandboxed realm every look-up of a global costs more than the arithmetic.
+const { abs, exp, floor, log, max, min } = Math;
+
 /** A posterior on a grid that was refined until its numbers stood still. */
 export interface GridPosterior {
   readonly best: MaximumLikelihood;
@@ -116,17 +119,17 @@ function* boxThatMatters(problem: FitProblem, best: MaximumLikelihood): Task<Box
     for (let d = 0; d < dimension; d++) {
       const h = (box.highs[d]! - box.lows[d]!) / (n - 1);
       // The best point itself may stand between the nodes.
-      let first = Math.floor((best.theta[d]! - box.lows[d]!) / h);
+      let first = floor((best.theta[d]! - box.lows[d]!) / h);
       let last = first + 1;
       const stride = d === dimension - 1 ? 1 : n;
       for (let k = 0; k < grid.length; k++) {
         if (grid[k]! < top - 0.5 * KEPT) continue;
-        const i = stride === 1 ? k % n : Math.floor(k / n);
+        const i = stride === 1 ? k % n : floor(k / n);
         if (i < first) first = i;
         if (i > last) last = i;
       }
-      lows[d] = Math.max(box.lows[d]!, box.lows[d]! + (first - 1) * h);
-      highs[d] = Math.min(box.highs[d]!, box.lows[d]! + (last + 1) * h);
+      lows[d] = max(box.lows[d]!, box.lows[d]! + (first - 1) * h);
+      highs[d] = min(box.highs[d]!, box.lows[d]! + (last + 1) * h);
       if (highs[d]! - lows[d]! < 0.6 * (box.highs[d]! - box.lows[d]!)) shrunk = true;
     }
     box = { lows, highs };
@@ -190,14 +193,14 @@ function estimateFrom(
   let mass = 0;
   if (dimension === 1) {
     for (let i = 0; i < n; i++) {
-      density[0]![i] = Math.exp(grid[i]! - top);
+      density[0]![i] = exp(grid[i]! - top);
       mass += weights[0]![i]! * density[0]![i]!;
     }
   } else {
     for (let i = 0; i < n; i++) {
       let row = 0;
       for (let j = 0; j < n; j++) {
-        const value = Math.exp(grid[i * n + j]! - top);
+        const value = exp(grid[i * n + j]! - top);
         row += weights[1]![j]! * value;
         density[1]![j]! += weights[0]![i]! * value;
       }
@@ -208,7 +211,7 @@ function estimateFrom(
   // A one- or two-parameter family has the same prior density all over its box.
   const logPrior = problem.family.logPrior(best.theta);
   return {
-    logEvidence: Math.log(mass) + top + logPrior,
+    logEvidence: log(mass) + top + logPrior,
     parameters: density.map((values, d) => densityMarginal(box.lows[d]!, box.highs[d]!, values)),
     derived: withoutDerived ? [] : derivedMarginals(problem, box, grid, n, top, weights),
   };
@@ -254,8 +257,8 @@ function derivedMarginals(
         if (va !== va || vb !== vb) continue;
         // Two halves of a cell keep the slope of the density inside it to second order.
         const middle = 0.5 * (va + vb);
-        const pa = Math.exp(grid[a]! - top);
-        const pb = Math.exp(grid[b]! - top);
+        const pa = exp(grid[a]! - top);
+        const pb = exp(grid[b]! - top);
         histogram.add(va, middle, across * (3 * pa + pb));
         histogram.add(middle, vb, across * (pa + 3 * pb));
       }
@@ -280,7 +283,7 @@ function derivedOnGrid(
     i === n - 1 ? box.highs[d]! : box.lows[d]! + (i * (box.highs[d]! - box.lows[d]!)) / (n - 1);
   for (let k = 0; k < grid.length; k++) {
     if (grid[k]! < cut) continue;
-    theta[0] = place(0, dimension === 1 ? k : Math.floor(k / n));
+    theta[0] = place(0, dimension === 1 ? k : floor(k / n));
     if (dimension === 2) theta[1] = place(1, k % n);
     problem.derived(theta, out);
     for (let q = 0; q < values.length; q++) values[q]![k] = out[q]!;
@@ -300,9 +303,9 @@ function changesMoreAlongLast(
     for (let j = 0; j + 1 < n; j++) {
       const k = i * n + j;
       if (grid[k]! < cut || grid[k + 1]! < cut || grid[k + n]! < cut) continue;
-      const mass = Math.exp(grid[k]! - cut);
-      const down = Math.abs(value[k + n]! - value[k]!);
-      const right = Math.abs(value[k + 1]! - value[k]!);
+      const mass = exp(grid[k]! - cut);
+      const down = abs(value[k + n]! - value[k]!);
+      const right = abs(value[k + 1]! - value[k]!);
       if (down === down && right === right) {
         first += mass * down;
         last += mass * right;
@@ -313,7 +316,7 @@ function changesMoreAlongLast(
 }
 
 function largestChange(a: Estimate, b: Estimate): number {
-  let change = Math.abs(a.logEvidence - b.logEvidence);
+  let change = abs(a.logEvidence - b.logEvidence);
   const compare = (p: Marginal | null | undefined, q: Marginal | null | undefined): void => {
     if (!p || !q) return;
     const width = q.summary.sd;
@@ -321,7 +324,7 @@ function largestChange(a: Estimate, b: Estimate): number {
     const numbers = (s: Summary): number[] => [s.mean, s.median, ...s.interval68, ...s.interval95];
     const before = numbers(p.summary);
     numbers(q.summary).forEach((value, i) => {
-      change = Math.max(change, Math.abs(value - before[i]!) / width);
+      change = max(change, abs(value - before[i]!) / width);
     });
   };
   b.parameters.forEach((marginal, i) => compare(a.parameters[i], marginal));

@@ -1,6 +1,9 @@
 import { brentRoot } from "~shared/numerics/roots";
 import { pchipSlopes } from "~shared/numerics/pchip";
 
+// Taken once: in a sandboxed realm every look-up of a global costs more than the arithmetic.
+const { max, min, sqrt } = Math;
+
 /** One quantity under a posterior. */
 export interface Summary {
   readonly mean: number;
@@ -72,7 +75,7 @@ export function densityMarginal(low: number, high: number, density: Float64Array
     const t = excess(1) <= 0 ? 1 : brentRoot(excess, 0, 1, 1e-12);
     return places[i]! + t * h;
   };
-  return { summary: summaryOf(mean, Math.sqrt(Math.max(0, second / mass)), quantile), quantile };
+  return { summary: summaryOf(mean, sqrt(max(0, second / mass)), quantile), quantile };
 }
 
 /** ∫ of the cubic in cell i from its left end over the part t of it. */
@@ -139,12 +142,12 @@ export class SpreadHistogram {
     this.total += mass;
     this.first += 0.5 * mass * (a + b);
     this.second += (mass * (a * a + a * b + b * b)) / 3;
-    let from = (Math.min(a, b) - this.low) * this.perBin;
-    let to = (Math.max(a, b) - this.low) * this.perBin;
-    from = Math.min(Math.max(from, 0), this.bins);
-    to = Math.min(Math.max(to, 0), this.bins);
-    const start = Math.min(from | 0, this.bins - 1);
-    const stop = Math.min(to | 0, this.bins - 1);
+    let from = (min(a, b) - this.low) * this.perBin;
+    let to = (max(a, b) - this.low) * this.perBin;
+    from = min(max(from, 0), this.bins);
+    to = min(max(to, 0), this.bins);
+    const start = min(from | 0, this.bins - 1);
+    const stop = min(to | 0, this.bins - 1);
     if (start === stop) {
       this.mass[start]! += mass;
       return;
@@ -171,10 +174,10 @@ export class SpreadHistogram {
         else top = middle;
       }
       const inside = this.mass[i]! > 0 ? (target - cumulative[i]!) / this.mass[i]! : 0;
-      return this.low + (i + Math.min(1, Math.max(0, inside))) / this.perBin;
+      return this.low + (i + min(1, max(0, inside))) / this.perBin;
     };
     const mean = this.first / this.total;
-    const sd = Math.sqrt(Math.max(0, this.second / this.total - mean * mean));
+    const sd = sqrt(max(0, this.second / this.total - mean * mean));
     return { summary: summaryOf(mean, sd, quantile), quantile };
   }
 }

@@ -4,6 +4,9 @@ import type { FitParameter } from "~shared/inference/families";
 import { depthSurfaces, type Predictor, rootsPredictor } from "~shared/inference/predictor";
 import type { ModelRequests } from "~shared/likelihood/compile";
 
+// Taken once: in a sandboxed realm every look-up of a global costs more than the arithmetic.
+const { exp, expm1, log1p, max } = Math;
+
 /**
  * The power-law family at a fixed z_early without objects: points and bins in closed form, optical
  * depths from a surface over the prior's box.
@@ -26,18 +29,17 @@ export function powerLawPredictor(
     let at = 0;
     for (let i = 0; i < points.length; i++) {
       const z = points[i]!;
-      out[at++] =
-        z <= zEnd ? 0 : z >= zEarly ? 1 : -Math.expm1(alpha * Math.log1p((zEnd - z) / span));
+      out[at++] = z <= zEnd ? 0 : z >= zEarly ? 1 : -expm1(alpha * log1p((zEnd - z) / span));
     }
     for (let i = 0; i < binLows.length; i++) {
       const low = binLows[i]!;
       const high = binHighs[i]!;
       const ionized =
         ionizedAbove(low, zEnd, zEarly, alpha) - ionizedAbove(high, zEnd, zEarly, alpha);
-      out[at++] = Math.max(0, 1 - ionized / (high - low));
+      out[at++] = max(0, 1 - ionized / (high - low));
     }
     for (let i = 0; i < depths.length; i++) out[at++] = depths[i]!(zEnd, alpha);
-    roots((f) => zEarly - span * Math.exp(Math.log1p(-f) / alpha), out);
+    roots((f) => zEarly - span * exp(log1p(-f) / alpha), out);
   };
 }
 

@@ -6,6 +6,9 @@ import { gaussLegendre } from "~shared/numerics/quadrature";
 import { goldenMinimum } from "~shared/numerics/roots";
 import type { Quantity } from "~shared/statement/fields";
 
+// Taken once: in a sandboxed realm every look-up of a global costs more than the arithmetic.
+const { exp, log, max, min, sqrt } = Math;
+
 /** What an alternatives mixture needs of a member. */
 export interface MixtureMember {
   readonly shape: Form;
@@ -40,7 +43,7 @@ export function mixtureOf(members: readonly MixtureMember[]): Mixture {
   const logWeights = Float64Array.from(members, (member, i) => {
     const area = areaOf(member);
     if (area === null) throw new DomainError(`members[${i}]`, member.shape.name, "normalizable");
-    return -Math.log(n) - Math.log(area);
+    return -log(n) - log(area);
   });
   const commonPeak = members.every(
     (member) =>
@@ -72,11 +75,11 @@ export function mixtureMinus2LnL(
   from: number,
 ): number {
   let top = -Infinity;
-  for (let i = 0; i < n; i++) top = Math.max(top, logWeights[at + i]! - 0.5 * values[from + i]!);
+  for (let i = 0; i < n; i++) top = max(top, logWeights[at + i]! - 0.5 * values[from + i]!);
   if (top === -Infinity) return Infinity;
   let sum = 0;
-  for (let i = 0; i < n; i++) sum += Math.exp(logWeights[at + i]! - 0.5 * values[from + i]! - top);
-  return -2 * (top + Math.log(sum) - logPeak);
+  for (let i = 0; i < n; i++) sum += exp(logWeights[at + i]! - 0.5 * values[from + i]! - top);
+  return -2 * (top + log(sum) - logPeak);
 }
 
 /** Standard deviation of an equal mixture of Gaussians on the real line. */
@@ -84,7 +87,7 @@ export function equalMixtureSd(means: readonly number[], sigmas: readonly number
   const n = means.length;
   const mean = means.reduce((sum, m) => sum + m, 0) / n;
   const second = means.reduce((sum, m, i) => sum + (m - mean) ** 2 + sigmas[i]! ** 2, 0) / n;
-  return Math.sqrt(second);
+  return sqrt(second);
 }
 
 /** Below this log10 of a fraction nothing is left of an area in x. */
@@ -96,8 +99,8 @@ function areaOf({ shape, evaluatedIn, quantity }: MixtureMember): number | null 
     const range = quantity === "neutralFraction" ? ([0, 1] as const) : shape.reach;
     return distributionOf(shape, range)?.area ?? null;
   }
-  const from = Math.max(shape.reach[0], LOWEST_LOG);
-  const to = Math.min(shape.reach[1], 0);
+  const from = max(shape.reach[0], LOWEST_LOG);
+  const to = min(shape.reach[1], 0);
   const edges = [from, ...shape.kinks.filter((t) => t > from && t < to), to];
   const { nodes, weights } = gaussLegendre(10);
   let area = 0;
@@ -108,7 +111,7 @@ function areaOf({ shape, evaluatedIn, quantity }: MixtureMember): number | null 
       const centre = edges[e]! + (2 * p + 1) * half;
       for (let i = 0; i < nodes.length; i++) {
         const t = centre + half * nodes[i]!;
-        area += half * weights[i]! * Math.LN10 * 10 ** t * Math.exp(-0.5 * shape.minus2LnL(t));
+        area += half * weights[i]! * Math.LN10 * 10 ** t * exp(-0.5 * shape.minus2LnL(t));
       }
     }
   }
@@ -128,12 +131,12 @@ function highestLogDensity(members: readonly MixtureMember[], logWeights: Float6
     ? first!.evaluatedIn === "log10"
       ? LOWEST_LOG
       : 0
-    : Math.min(...members.map(({ shape }) => shape.reach[0]));
+    : min(...members.map(({ shape }) => shape.reach[0]));
   const high = fraction
     ? first!.evaluatedIn === "log10"
       ? 0
       : 1
-    : Math.max(...members.map(({ shape }) => shape.reach[1]));
+    : max(...members.map(({ shape }) => shape.reach[1]));
   const places = new Set<number>();
   const steps = 1000;
   for (let i = 0; i <= steps; i++) places.add(low + ((high - low) * i) / steps);
@@ -150,11 +153,11 @@ function highestLogDensity(members: readonly MixtureMember[], logWeights: Float6
   });
   const place = goldenMinimum(
     (x) => -heightAt(x),
-    ordered[Math.max(0, best - 1)]!,
-    ordered[Math.min(ordered.length - 1, best + 1)]!,
+    ordered[max(0, best - 1)]!,
+    ordered[min(ordered.length - 1, best + 1)]!,
     1e-9 * (high - low),
   );
-  return Math.max(heights[best]!, heightAt(place));
+  return max(heights[best]!, heightAt(place));
 }
 
 function logSum(logWeights: ArrayLike<number>, values: ArrayLike<number>): number {

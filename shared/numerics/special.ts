@@ -5,6 +5,9 @@ import erfcScaled from "@stdlib/math-base-special-erfcx";
 import erfInverse from "@stdlib/math-base-special-erfinv";
 import { requireProbability } from "~shared/numerics/require";
 
+// Taken once: in a sandboxed realm every look-up of a global costs more than the arithmetic.
+const { exp, log } = Math;
+
 /** Error function; any real x, result in [−1, 1]. */
 export function erf(x: number): number {
   return erfLibrary(x);
@@ -20,9 +23,9 @@ export function erfc(x: number): number {
  * Uses erfc(x) = erfcx(x) exp(−x²) above zero. −Infinity at +Infinity.
  */
 export function logErfc(x: number): number {
-  if (x <= 0) return Math.log(erfcLibrary(x));
+  if (x <= 0) return log(erfcLibrary(x));
   // erfcx underflows gently (1/(x√π)), so that the product below never does.
-  return x === Infinity ? -Infinity : Math.log(erfcScaled(x)) - x * x;
+  return x === Infinity ? -Infinity : log(erfcScaled(x)) - x * x;
 }
 
 /** Standard normal cumulative distribution Φ(x); result in [0, 1]. */
@@ -32,7 +35,7 @@ export function normalCdf(x: number): number {
 
 /** Standard normal density φ(x). */
 export function normalPdf(x: number): number {
-  return Math.exp(-0.5 * x * x) * 0.3989422804014327;
+  return exp(-0.5 * x * x) * 0.3989422804014327;
 }
 
 /**
@@ -60,7 +63,7 @@ export function sigmasOfLevel(level: number): number {
 
 /** Logistic function 1/(1 + e^−t): ½(1 + tanh(t/2)) without losing digits in the tails. */
 export function logistic(t: number): number {
-  if (t >= 0) return 1 / (1 + Math.exp(-t));
-  const e = Math.exp(t);
+  if (t >= 0) return 1 / (1 + exp(-t));
+  const e = exp(t);
   return e / (1 + e);
 }
