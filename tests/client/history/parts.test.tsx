@@ -1,0 +1,161 @@
+import { figureCitations, figureSvg, wrapWords } from "@/features/history/exportFigure";
+import { domainOf } from "@/features/history/HistoryScreen";
+import {
+  DEFAULT_MODELS,
+  modelNames,
+  modelsToParam,
+  newModel,
+  paramToModels,
+} from "@/features/history/models";
+import { readoutOf, shownNumber } from "@/features/history/readouts";
+import { stripGroups } from "@/features/history/QuantityStrip";
+import { decideByDefault, scoreHistory } from "@/features/history/scoring";
+import { background } from "~shared/cosmology/background";
+import { tanhHistory } from "~shared/history/tanh";
+import { buildRow } from "./rows";
+
+describe("models in the address", () => {
+  it("come back as they were", () => {
+    const text = "tanh_7.35_0.95,powerLaw_6_8.6_off";
+    expect(modelsToParam(paramToModels(text))).toBe(text);
+  });
+  it("keep an empty list apart from an open one", () => {
+    expect(paramToModels("none")).toEqual([]);
+    expect(paramToModels(undefined)).toBe(DEFAULT_MODELS);
+  });
+  it("hold mistyped numbers inside their sliders", () => {
+    const [model] = paramToModels("tanh_99_wide");
+    expect(model?.values).toEqual({ zRe: 12, deltaZ: 0.5 });
+  });
+  it("never bring more than three", () => {
+    expect(paramToModels("tanh_7_1,tanh_7_1,tanh_7_1,tanh_7_1")).toHaveLength(3);
+  });
+  it("tell several of one family apart", () => {
+    expect(
+      modelNames([newModel("tanh", "a"), newModel("powerLaw", "b"), newModel("tanh", "c")]),
+    ).toEqual(["tanh", "power law", "tanh 2"]);
+  });
+});
+
+describe("readouts", () => {
+  it("are the engine's for the conventional tanh", () => {
+    // PHYSICS, worked values: τ(tanh 7.67, Δz 0.5) = 0.0541970146; duration 0.75 → 0.25 is 0.5494.
+    const readout = readoutOf(tanhHistory({ zRe: 7.67 }), background());
+    expect(readout.opticalDepth).toBeCloseTo(0.0541970146, 9);
+    expect(shownNumber(readout.duration, 4)).toBe("0.5494");
+    expect(readout.midpoint).toBeCloseTo(7.67, 10);
+  });
+  it("say when a number rounds to nothing or does not exist", () => {
+    expect(shownNumber(1e-9, 4)).toBe("< 0.0001");
+    expect(shownNumber(null, 2)).toBe("none");
+    expect(shownNumber(Infinity, 1)).toBe("infinite");
+    expect(shownNumber(-0.5, 1)).toBe("−0.5");
+  });
+});
+
+describe("default decisions", () => {
+  it("count one of several alternatives: the preferred one", () => {
+    const decided = decideByDefault([
+      buildRow("FL-0001", { alternativesGroup: "prior" }),
+      buildRow("FL-0002", { alternativesGroup: "prior", alternativesPreferred: true }),
+      buildRow("FL-0003", {}),
+    ]);
+    expect(decided.rows.map(({ id }) => id)).toEqual(["FL-0002", "FL-0003"]);
+    expect(decided.before[0]).toMatchObject({ id: "FL-0001" });
+    expect(decided.before[0]?.reason).toContain("FL-0002");
+  });
+  it("keep equal group names of two papers apart", () => {
+    const other = buildRow("FL-0002", { alternativesGroup: "prior" }, { key: "other2025" });
+    const decided = decideByDefault([buildRow("FL-0001", { alternativesGroup: "prior" }), other]);
+    expect(decided.rows).toHaveLength(2);
+  });
+  it("read a two-sided value without a level as one sigma", () => {
+    // A symmetric value 0.5 ± 0.1 read at one sigma: −2 ln L one width away is 1.
+    const row = buildRow("FL-0001", { level: "notStated", estimator: "mode" });
+    const history = tanhHistory({ zRe: 7 });
+    const at = history.redshiftAtFraction(0.6) ?? NaN;
+    const moved = buildRow("FL-0001", { level: "notStated", estimator: "mode", z: String(at) });
+    expect(scoreHistory(decideByDefault([row]), history, background()).scored).toBe(1);
+    const score = scoreHistory(decideByDefault([moved]), history, background());
+    // 0.6827 is one sigma to four digits, so the width is one sigma to 1e-4.
+    expect(score.minus2LnL).toBeCloseTo(1, 3);
+  });
+  it("name every row they leave out", () => {
+    const decided = decideByDefault([
+      buildRow("FL-0001", {}),
+      buildRow("FL-0002", { kind: "qualitative", value: null, plus: null, minus: null }),
+      buildRow("FL-0003", { weighting: "mass" }),
+    ]);
+    const score = scoreHistory(decided, tanhHistory({ zRe: 7 }), background());
+    expect(score.scored).toBe(1);
+    expect(score.reasons.map(({ id }) => id)).toEqual(["FL-0002", "FL-0003"]);
+    for (const { reason } of score.reasons) expect(reason).not.toBe("");
+  });
+});
+
+describe("stripGroups", () => {
+  it("puts optical depths and durations on axes of their own and leaves fractions to the chart", () => {
+    const depth = {
+      quantity: "opticalDepth",
+      value: "0.057",
+      plus: "0.011",
+      minus: "0.011",
+    } as const;
+    const groups = stripGroups([
+      buildRow("FL-0001", {}),
+      buildRow("FL-0002", depth),
+      buildRow("FL-0003", depth),
+      buildRow("FL-0004", {
+        ...depth,
+        quantity: "opticalDepthRange",
+        rangeLow: "15",
+        rangeHigh: "30",
+      }),
+    ]);
+    expect(groups.map(({ title, rows }) => [title, rows.length])).toEqual([
+      ["Optical depth, total", 2],
+      ["Optical depth, z 15 to 30", 1],
+    ]);
+  });
+});
+
+describe("domainOf", () => {
+  it("is 5 to 11 unless the filter asks for other redshifts", () => {
+    expect(domainOf({})).toEqual([5, 11]);
+    expect(domainOf({ zFrom: 6, zTo: 7.5 })).toEqual([6, 8]);
+    expect(domainOf({ zFrom: 12 })).toEqual([12, 18]);
+  });
+});
+
+describe("figure", () => {
+  const row = buildRow("FL-0001", {});
+  it("cites every paper once, with its key", () => {
+    expect(figureCitations([row, buildRow("FL-0002", {})])).toEqual(["Vask 2024 [vask2024]"]);
+  });
+  it("wraps its words without losing any", () => {
+    const text = "one two three four five six seven";
+    const lines = wrapWords(text, 9);
+    expect(lines.join(" ")).toBe(text);
+    expect(Math.max(...lines.map((line) => line.length))).toBeLessThanOrEqual(9);
+  });
+  it("is well-formed XML that holds legend, citation and the demonstration label", () => {
+    const text = figureSvg({
+      drawing: "<svg/>",
+      rows: [buildRow("FL-0001", {}, { shortName: "Vask & Osuwande 2024" })],
+      overlays: [],
+      source: "Fogline registry, to event 3.",
+      demonstration: true,
+      faces: "",
+    });
+    const parsed = new DOMParser().parseFromString(text, "image/svg+xml");
+    expect(parsed.querySelector("parsererror")).toBeNull();
+    const words = parsed.documentElement.textContent ?? "";
+    for (const part of [
+      "Damping wing",
+      "Vask & Osuwande 2024 [vask2024]",
+      "Invented demonstration data",
+    ]) {
+      expect(words).toContain(part);
+    }
+  });
+});
