@@ -33,6 +33,7 @@ const BIBTEX = `@article{thessing26,
 }`;
 const PRINTED = { value: "0.40", plus: "0.17", minus: "0.11", redshift: "7.19" };
 const PRINTED_TEXT = "we infer a neutral fraction of 0.40 +0.17 -0.11 at z = 7.19";
+const COMMENT = "I read 0.11 in the table, and again in the abstract.";
 /** The slip of the main job: the upper error typed twice. */
 const SLIP = { ...PRINTED, minus: "0.17" };
 
@@ -178,7 +179,7 @@ describe.each(SIZE_NAMES)("the main job on a %s screen", (size) => {
       await button(table, "Return with a comment at Minus").click();
       const comment = editor.getByRole("group", { name: "Comment 1" });
       expect(await entry(comment, "At the field").inputValue()).toBe("minus");
-      await entry(comment, "Comment").fill("I read 0.11 in the table, and again in the abstract.");
+      await entry(comment, "Comment").fill(COMMENT);
       await look(editor, "09-returning");
       await button(editor, "Return to contributor").click();
       await button(editor.getByRole("dialog"), "Return it").click();
@@ -196,8 +197,14 @@ describe.each(SIZE_NAMES)("the main job on a %s screen", (size) => {
       .click();
     await button(contributor, "Answer with a new revision").click();
     await button(contributor, "Go to the comment at Minus").click();
-    const atField = contributor.locator("#field-minus").locator("xpath=..");
-    await atField.getByText("I read 0.11 in the table, and again in the abstract.").waitFor();
+    // The least part of the form that holds the field and the comment: the number and its errors.
+    const atField = contributor
+      .locator("div")
+      .filter({ has: contributor.locator("#field-minus") })
+      .filter({ hasText: COMMENT })
+      .last();
+    await atField.waitFor();
+    expect(await atField.locator("#field-plus, #field-level, #field-z").count()).toBe(1);
     await look(contributor, "11-comment");
     await entry(atField, "− minus").fill(PRINTED.minus);
     await entry(atField, "Your answer").fill("The upper error, typed twice. It is 0.11.");
@@ -261,7 +268,10 @@ describe.each(SIZE_NAMES)("the main job on a %s screen", (size) => {
     await entry(filter, "to").first().press("Enter");
     if (size === "phone") await button(filter, /^Show \d+ rows$/).click();
     await contributor.waitForURL((url) => url.searchParams.get("z") === "6-8");
-    await contributor.getByText("Damping wing, redshift 6 to 8").first().waitFor();
+    await contributor
+      .getByText(/Family: damping wing; redshift 6 to 8$/)
+      .first()
+      .waitFor();
     const row = contributor.getByRole("checkbox", { name: /^Thessing.*7\.19/ });
     await row.waitFor();
     expect(await row.isChecked()).toBe(true);

@@ -21,6 +21,8 @@ export interface Fogline {
   databaseUrl: string;
   /** Mails the local mail server caught for an address, oldest first; waits until there are `atLeast`. */
   mailsTo(address: string, atLeast?: number): Promise<Mail[]>;
+  /** The mail that waits for an address where nothing delivers it. */
+  waitingMail(address: string): Promise<Mail>;
   /** First link in a mail, as a path of this server. */
   linkIn(mail: Mail): string;
   stop(): Promise<void>;
@@ -64,6 +66,7 @@ export async function startFogline({
       url: running.url,
       databaseUrl,
       mailsTo: (address, atLeast = 1) => mailsTo(database, address, atLeast),
+      waitingMail: (address) => waitingMail(database, address),
       linkIn: (mail) => linkIn(mail, running.url),
       stop,
     };
@@ -85,6 +88,15 @@ async function mailsTo(database: Connection, address: string, atLeast: number): 
       throw new Error(`${rows.length} mails reached ${address}, expected ${atLeast}`);
     await new Promise((resolve) => setTimeout(resolve, 200));
   }
+}
+
+async function waitingMail(database: Connection, address: string): Promise<Mail> {
+  const [rows] = await database.query<RowDataPacket[]>(
+    "SELECT subject, text FROM outbox_mail WHERE `to` = ? ORDER BY id DESC LIMIT 1",
+    [address],
+  );
+  if (!rows[0]) throw new Error(`no mail waits for ${address}`);
+  return { subject: rows[0].subject, text: rows[0].text };
 }
 
 function linkIn(mail: Mail, url: string): string {
