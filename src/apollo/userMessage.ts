@@ -1,8 +1,4 @@
-import {
-  CombinedGraphQLErrors,
-  ServerError,
-  ServerParseError,
-} from "@apollo/client/errors";
+import { CombinedGraphQLErrors, ServerError, ServerParseError } from "@apollo/client/errors";
 
 const MESSAGES: Record<string, string> = {
   UNAUTHENTICATED: "Sign in to do this; you may have been signed out meanwhile.",

@@ -9,7 +9,7 @@ import { NotationText } from "@/components/NotationText";
 import { Press } from "@/components/Press";
 import { Block, Caption, Dense, Label } from "@/components/Text";
 import { FAMILY_MARKS } from "@/theme/families";
-import { useTheme } from "@/theme/ThemeProvider";
+import { useColors, useTheme } from "@/theme/ThemeProvider";
 import { fonts, radius, schemes, space } from "@/theme/tokens";
 import { limitDirection, statementSpan } from "~shared/chart/points";
 import { linearScale, type Scale } from "~shared/chart/scales";
@@ -108,8 +108,6 @@ function GroupView({
   selected: string | null;
   onSelect: (number: string) => void;
 }) {
-  const { scheme } = useTheme();
-  const colors = schemes[scheme];
   const { width, onLayout } = useMeasuredWidth();
   const first = group.rows[0];
   const models = overlays.flatMap((overlay) => {
@@ -130,26 +128,7 @@ function GroupView({
     <View style={styles.group}>
       <Label>{group.title}</Label>
       <View style={styles.columns}>
-        <View style={styles.names}>
-          {group.rows.map((row) => (
-            <Press
-              key={row.number}
-              onPress={() => onSelect(row.number)}
-              attributes={{ "aria-pressed": selected === row.number }}
-              style={[
-                styles.name,
-                selected === row.number && { backgroundColor: colors.petrolTint },
-              ]}
-            >
-              <View>
-                <Dense muted numberOfLines={1}>
-                  {row.citation.shortName}
-                </Dense>
-                {row.used ? <NotationText notation={notationAsUsed(row.used)} /> : null}
-              </View>
-            </Press>
-          ))}
-        </View>
+        <StripNames rows={group.rows} selected={selected} onSelect={onSelect} />
         <View style={styles.drawing} onLayout={onLayout}>
           {width === null ? null : (
             <Svg width={width} height={height} viewBox={`0 0 ${width} ${height}`} aria-hidden>
@@ -175,6 +154,38 @@ function GroupView({
     </View>
   );
 }
+
+/** The records' names and numbers, which no slider changes. */
+const StripNames = memo(function StripNames({
+  rows,
+  selected,
+  onSelect,
+}: {
+  rows: readonly HistoryRow[];
+  selected: string | null;
+  onSelect: (number: string) => void;
+}) {
+  const colors = useColors();
+  return (
+    <View style={styles.names}>
+      {rows.map((row) => (
+        <Press
+          key={row.number}
+          onPress={() => onSelect(row.number)}
+          attributes={{ "aria-pressed": selected === row.number }}
+          style={[styles.name, selected === row.number && { backgroundColor: colors.petrolTint }]}
+        >
+          <View>
+            <Dense muted numberOfLines={1}>
+              {row.citation.shortName}
+            </Dense>
+            {row.used ? <NotationText notation={notationAsUsed(row.used)} /> : null}
+          </View>
+        </Press>
+      ))}
+    </View>
+  );
+});
 
 function StripDrawing({
   group,
