@@ -46,3 +46,13 @@ export async function newcomer(
     });
   return { email, password };
 }
+
+/** A new draft of whoever the context is signed in as; nothing is typed in it yet. */
+export async function emptyDraft(request: APIRequestContext): Promise<string> {
+  const { startDraft } = await ask<{ startDraft: { id?: string } }>(
+    request,
+    "mutation Start { startDraft { __typename ... on Submission { id } } }",
+  );
+  if (!startDraft.id) throw new Error("no draft was started");
+  return startDraft.id;
+}
