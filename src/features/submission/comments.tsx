@@ -5,6 +5,8 @@ import { Caption, Dense, Label } from "@/components/Text";
 import { dateTime } from "@/components/when";
 import { useColors } from "@/theme/ThemeProvider";
 import type { CommentPartsFragment } from "~graphql/generated/graphql";
+import type { FieldName } from "~shared/statement/fields";
+import { FIELD_NAMES } from "~shared/statement/words";
 
 /** A comment of the return at its field, with room for the answer. */
 export function CommentAtField({
@@ -19,6 +21,8 @@ export function CommentAtField({
   onBlur?: () => void;
 }) {
   const colors = useColors();
+  // Several fields of a row have their comments below the row: each says whose it is.
+  const field = FIELD_NAMES[comment.field as FieldName]?.toLowerCase() ?? "the paper";
   return (
     <View
       style={{
@@ -29,7 +33,7 @@ export function CommentAtField({
         marginTop: 8,
       }}
     >
-      <Label style={{ color: colors.emberText }}>{`${comment.by} asks`}</Label>
+      <Label style={{ color: colors.emberText }}>{`${comment.by} asks at ${field}`}</Label>
       <Dense>{comment.text}</Dense>
       <Caption>{dateTime(comment.at)}</Caption>
       {onAnswer ? (
