@@ -5,23 +5,20 @@ import Icon from "@/components/Icon";
 import { Press } from "@/components/Press";
 import { useColors } from "@/theme/ThemeProvider";
 
-/** A row of a desk list that leads somewhere. */
+/** A row of a desk list that leads somewhere; heard as what it shows. */
 export function ListRow({
   href,
-  label,
   first,
   children,
 }: {
   href: string;
-  /** What the link is called when it is heard. */
-  label: string;
   first: boolean;
   children: ReactNode;
 }) {
   const colors = useColors();
   return (
     <View role="listitem" style={{ borderTopWidth: first ? 0 : 1, borderColor: colors.hairline }}>
-      <Press href={href} label={label} style={{ minHeight: 64, justifyContent: "center" }}>
+      <Press href={href} style={{ minHeight: 64, justifyContent: "center" }}>
         <View
           style={{
             flexDirection: "row",

@@ -14,12 +14,12 @@ export function MaintainerDesk() {
       <Section>Maintaining</Section>
       <Card flush>
         <View role="list" aria-label="Maintaining">
-          <ListRow href="/desk/people" label="People" first>
+          <ListRow href="/desk/people" first>
             <Dense style={{ fontWeight: "600" }}>People</Dense>
             <Dense muted>Find a person, grant and revoke roles</Dense>
           </ListRow>
           {demonstration ? (
-            <ListRow href="/desk/mail" label="Caught mail" first={false}>
+            <ListRow href="/desk/mail" first={false}>
               <Dense style={{ fontWeight: "600" }}>Caught mail</Dense>
               <Dense muted>Mails the demonstration would have sent</Dense>
             </ListRow>

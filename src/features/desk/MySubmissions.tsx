@@ -98,11 +98,7 @@ function Row({ row, first }: { row: Mine; first: boolean }) {
   const asked = row.state === "returned" || (row.state === "draft" && open.length > 0);
   const paper = row.citation?.shortName ?? "No paper chosen yet";
   return (
-    <ListRow
-      href={`/desk/submit/${row.id}`}
-      label={`${row.number}, ${paper}, ${row.state}`}
-      first={first}
-    >
+    <ListRow href={`/desk/submit/${row.id}`} first={first}>
       <View style={{ flexDirection: "row", flexWrap: "wrap", alignItems: "center", gap: 8 }}>
         <Mono style={{ fontSize: 14 }}>
           {row.ordinal > 1 ? `${row.number}.${row.ordinal}` : row.number}

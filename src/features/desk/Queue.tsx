@@ -64,11 +64,7 @@ function Row({ item, first }: { item: QueueItemPartsFragment; first: boolean }) 
   const { citation, place, page } = item;
   const where = [place, page ? `page ${page}` : null].filter(Boolean).join(", ");
   return (
-    <ListRow
-      href={`/desk/review/${item.id}`}
-      label={`${item.number}, ${citation.shortName}, ${standing(item)}`}
-      first={first}
-    >
+    <ListRow href={`/desk/review/${item.id}`} first={first}>
       <View style={{ flexDirection: "row", flexWrap: "wrap", alignItems: "center", gap: 8 }}>
         <Mono style={{ fontSize: 14 }}>
           {item.ordinal > 1 ? `${item.number}.${item.ordinal}` : item.number}
