@@ -7,10 +7,8 @@ import {
   type Score,
   scoreRows,
 } from "~shared/likelihood";
+import { proposeRows } from "~shared/table/proposeRows";
 import type { HistoryRow } from "./rows";
-
-/** Level taken where a paper states none: the default decision of a fitting table. */
-const DEFAULT_LEVEL = 0.6827;
 
 export interface ScoredRows {
   rows: readonly RowToScore[];
@@ -19,50 +17,33 @@ export interface ScoredRows {
 }
 
 /**
- * Rows with the default decisions taken: of several answers to one question the preferred one, else
- * the first, stays; a level that is not stated is read as one sigma for two-sided values; a limit
- * that has no default form is a hard step.
+ * Rows with the default decisions taken, the same that a new fitting table proposes: one of several
+ * answers to a question, one of rows that share data, no row without a level. A limit that has no
+ * default form is a hard step.
  */
 export function decideByDefault(rows: readonly HistoryRow[]): ScoredRows {
-  const kept = new Map<string, HistoryRow>();
-  for (const row of rows) {
-    const group = groupOf(row);
-    if (group === null) continue;
-    const first = kept.get(group);
-    if (!first || (row.fields.alternativesPreferred && !first.fields.alternativesPreferred)) {
-      kept.set(group, row);
-    }
-  }
+  const proposals = proposeRows(
+    rows.map(({ number, fields, citation }) => ({
+      number,
+      fields,
+      citation: citation.key,
+      year: citation.year,
+    })),
+  );
   const before: { id: string; reason: string }[] = [];
   const scored: RowToScore[] = [];
-  for (const row of rows) {
-    const group = groupOf(row);
-    const chosen = group === null ? row : kept.get(group);
-    if (chosen !== row) {
-      before.push({
-        id: row.number,
-        reason: `One of several answers of its paper; ${chosen?.number ?? "another"} stands for them.`,
-      });
-      continue;
-    }
-    const options = optionsOf(row);
-    scored.push({ id: row.number, asUsed: row.used, ...(options ? { options } : {}) });
-  }
+  rows.forEach((row, index) => {
+    const reason = proposals[index]?.reason ?? null;
+    if (reason !== null) before.push({ id: row.number, reason: `${reason}.` });
+    else scored.push({ id: row.number, asUsed: row.used, ...optionsOf(row) });
+  });
   return { rows: scored, before };
 }
 
-function groupOf(row: HistoryRow): string | null {
-  const { alternativesGroup } = row.fields;
-  return alternativesGroup ? `${row.citation.key}\u0000${alternativesGroup}` : null;
-}
-
-function optionsOf(row: HistoryRow): RowOptions | null {
+function optionsOf(row: HistoryRow): { options?: RowOptions } {
   const plain = rowLikelihood(row.used);
-  if (!("leftOut" in plain)) return null;
-  if (plain.code === "levelNotStated" && row.used?.kind === "twoSided") {
-    return { level: DEFAULT_LEVEL };
-  }
-  return plain.code === "limitNeedsForm" ? { form: "hardStep" } : null;
+  const needsForm = "leftOut" in plain && plain.code === "limitNeedsForm";
+  return needsForm ? { options: { form: "hardStep" } } : {};
 }
 
 export interface HistoryScore extends Score {

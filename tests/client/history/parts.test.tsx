@@ -69,16 +69,21 @@ describe("default decisions", () => {
     const decided = decideByDefault([buildRow("FL-0001", { alternativesGroup: "prior" }), other]);
     expect(decided.rows).toHaveLength(2);
   });
-  it("read a two-sided value without a level as one sigma", () => {
-    // A symmetric value 0.5 ± 0.1 read at one sigma: −2 ln L one width away is 1.
-    const row = buildRow("FL-0001", { level: "notStated", estimator: "mode" });
-    const history = tanhHistory({ zRe: 7 });
-    const at = history.redshiftAtFraction(0.6) ?? NaN;
-    const moved = buildRow("FL-0001", { level: "notStated", estimator: "mode", z: String(at) });
-    expect(scoreHistory(decideByDefault([row]), history, background()).scored).toBe(1);
-    const score = scoreHistory(decideByDefault([moved]), history, background());
-    // 0.6827 is one sigma to four digits, so the width is one sigma to 1e-4.
-    expect(score.minus2LnL).toBeCloseTo(1, 3);
+  it("leave a row without a level out, as a new table proposes", () => {
+    const decided = decideByDefault([
+      buildRow("FL-0001", { level: "notStated", estimator: "mode" }),
+      buildRow("FL-0002", {}),
+    ]);
+    expect(decided.rows.map(({ id }) => id)).toEqual(["FL-0002"]);
+    expect(decided.before).toEqual([{ id: "FL-0001", reason: "Level not stated." }]);
+  });
+  it("count one of two papers on the same sightline, the later one", () => {
+    const decided = decideByDefault([
+      buildRow("FL-0001", { dataUsed: ["QV 0719+31"] }, { key: "early2021", year: 2021 }),
+      buildRow("FL-0002", { dataUsed: ["QV 0719+31"] }, { key: "late2025", year: 2025 }),
+    ]);
+    expect(decided.rows.map(({ id }) => id)).toEqual(["FL-0002"]);
+    expect(decided.before[0]?.reason).toBe("Shares QV 0719+31 with FL-0002.");
   });
   it("name every row they leave out", () => {
     const decided = decideByDefault([
