@@ -68,6 +68,39 @@ describe("scoreRows", () => {
 
   it("sums to zero over no rows", () => {
     const score = scoreRows([], tanhHistory({ zRe: 7 }), background());
-    expect(score).toEqual({ rows: [], minus2LnL: 0, scored: 0, leftOut: 0 });
+    expect(score).toEqual({ rows: [], mixtures: [], minus2LnL: 0, scored: 0, leftOut: 0 });
+  });
+
+  describe("alternatives of one paper", () => {
+    const history = tanhHistory({ zRe: 7, deltaZ: 0.5 });
+    const alternatives = (preferred: number | null) =>
+      ["0.45", "0.55", "0.65"].map((value, i) => ({
+        id: value,
+        asUsed: used({ z: "7.0", value }),
+        alternativesGroup: "three answers",
+        alternativesPreferred: i === preferred,
+      }));
+
+    it("enter as the preferred one alone", () => {
+      const score = scoreRows(alternatives(1), history, background());
+      expect(score.rows.map(({ code }) => code)).toEqual([
+        "anotherAlternative",
+        null,
+        "anotherAlternative",
+      ]);
+      expect(score.mixtures).toEqual([]);
+      expect(score.minus2LnL).toBe(score.rows[1]!.minus2LnL);
+    });
+
+    it("enter as one equal mixture without a preferred one, never multiplied", () => {
+      const score = scoreRows(alternatives(null), history, background());
+      expect(score.mixtures.map(({ group }) => group)).toEqual(["three answers"]);
+      expect(score.minus2LnL).toBe(score.mixtures[0]!.minus2LnL);
+      expect(score.scored).toBe(3);
+      // x = 0.5 lies among the three: the mixture is close to its peak, their product is not.
+      expect(score.minus2LnL).toBeLessThan(0.5);
+      expect(score.rows.reduce((sum, row) => sum + row.minus2LnL!, 0)).toBeGreaterThan(2);
+      expect(scoreRows(alternatives(null), history, background()).minus2LnL).toBe(score.minus2LnL);
+    });
   });
 });
