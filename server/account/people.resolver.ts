@@ -1,7 +1,8 @@
-import { Arg, Authorized, Ctx, ID, Mutation, Query, Resolver } from "type-graphql";
+import { Arg, Ctx, ID, Mutation, Query, Resolver } from "type-graphql";
 
 import type { RequestContext } from "~server/common/context";
 import { RoleEnum } from "~server/common/enums";
+import { Requires } from "~server/common/requires";
 import type { Role } from "~shared/review/states";
 
 import { Person, PersonResult } from "./account.type";
@@ -9,7 +10,7 @@ import * as people from "./people.service";
 
 @Resolver()
 export class PeopleResolver {
-  @Authorized("maintainer")
+  @Requires("readPeople")
   @Query(() => [Person])
   people(
     @Ctx() ctx: RequestContext,
@@ -18,7 +19,7 @@ export class PeopleResolver {
     return people.findPeople(ctx, text ?? "");
   }
 
-  @Authorized("maintainer")
+  @Requires("grantRole")
   @Mutation(() => PersonResult)
   grantRole(
     @Ctx() ctx: RequestContext,
@@ -28,7 +29,7 @@ export class PeopleResolver {
     return people.grantRole(ctx, personId, role);
   }
 
-  @Authorized("maintainer")
+  @Requires("revokeRole")
   @Mutation(() => PersonResult)
   revokeRole(
     @Ctx() ctx: RequestContext,

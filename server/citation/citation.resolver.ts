@@ -1,6 +1,7 @@
-import { Arg, Authorized, Ctx, ID, Int, Mutation, Query, Resolver } from "type-graphql";
+import { Arg, Ctx, ID, Int, Mutation, Query, Resolver } from "type-graphql";
 
 import type { RequestContext } from "~server/common/context";
+import { Requires } from "~server/common/requires";
 import { acting } from "~server/event/acting";
 
 import { Citation } from "./citation.entity";
@@ -9,7 +10,7 @@ import { CitationPreview, CitationType, KeepCitationsResult, citationType } from
 
 @Resolver()
 export class CitationResolver {
-  @Authorized("contributor")
+  @Requires("keepCitations")
   @Query(() => [CitationPreview])
   previewCitations(
     @Ctx() ctx: RequestContext,
@@ -18,7 +19,7 @@ export class CitationResolver {
     return citations.previewCitations(ctx.database.manager, bibtex);
   }
 
-  @Authorized("contributor")
+  @Requires("keepCitations")
   @Query(() => CitationType, { nullable: true })
   async myCitation(
     @Ctx() ctx: RequestContext,
@@ -28,7 +29,7 @@ export class CitationResolver {
     return citation && citationType(citation);
   }
 
-  @Authorized("contributor")
+  @Requires("keepCitations")
   @Mutation(() => KeepCitationsResult, {
     description: "Keeps the readable entries; a paper that is already there is found and used.",
   })

@@ -9,7 +9,7 @@ import { appendEvent, digestOf } from "~server/event/eventLog";
 import { FieldCommentRecord } from "~server/review/comment.entity";
 import { tellEditors } from "~server/review/mails";
 import { formatQuotable } from "~shared/identifiers/recordNumber";
-import { canMove } from "~shared/review/policy";
+import { canMove, mayWithOwn, type Action } from "~shared/review/policy";
 import { diffFields } from "~shared/review/reading";
 import { emptyFields, type ConstraintFields } from "~shared/statement/fields";
 
@@ -117,10 +117,16 @@ export async function loadRevision(manager: EntityManager, id: string): Promise<
   });
 }
 
-/** The revision if this person owns it; what others own is as unknown as what isn't there. */
-async function loadOwn(who: Acting, manager: EntityManager, id: string): Promise<Revision | null> {
+/** The revision if this may be done to it; what others own is as unknown as what isn't there. */
+async function loadFor(
+  action: Action,
+  who: Acting,
+  manager: EntityManager,
+  id: string,
+): Promise<Revision | null> {
   const revision = await loadRevision(manager, id);
-  return revision?.constraint.ownerId === who.viewer.id ? revision : null;
+  if (!revision) return null;
+  return mayWithOwn(action, revision.constraint.ownerId === who.viewer.id) ? revision : null;
 }
 
 const unknownDraft = (): Refusal => refuse("notFound", "There is no such submission among yours.");
@@ -134,7 +140,7 @@ export async function startDraft(
     let fields = emptyFields();
     let citationId = from.citationId ?? null;
     if (from.submissionId) {
-      const other = await loadOwn(who, manager, from.submissionId);
+      const other = await loadFor("readSubmission", who, manager, from.submissionId);
       if (!other) return unknownDraft();
       fields = contextOf(other.fields);
       citationId ??= other.citationId;
@@ -177,7 +183,7 @@ export async function saveDraft(who: Acting, changes: DraftChanges): Promise<Rev
     return refuse("tooLong", `An answer has at most ${LONGEST_ANSWER} characters.`);
   }
   return change(who, async ({ manager }) => {
-    const draft = await loadOwn(who, manager, changes.id);
+    const draft = await loadFor("saveDraft", who, manager, changes.id);
     if (!draft) return unknownDraft();
     if (draft.state !== "draft") return notADraft(draft);
     const citationId = changes.citationId === undefined ? draft.citationId : changes.citationId;
@@ -272,7 +278,7 @@ export async function submitDraft(
 ): Promise<Revision | Refusal> {
   return change<Revision | Refusal>(who, async (here) => {
     const { manager } = here;
-    const draft = await loadOwn(who, manager, id);
+    const draft = await loadFor("submitDraft", who, manager, id);
     if (!draft) return unknownDraft();
     if (draft.state !== "draft") return notADraft(draft);
     if (draft.version !== version) return refuse("stale", STALE);
@@ -350,10 +356,10 @@ export async function discardDraft(
   version: number,
 ): Promise<Done | Refusal> {
   return change<Done | Refusal>(who, async (here) => {
-    const draft = await loadOwn(who, here.manager, id);
+    const draft = await loadFor("discardDraft", who, here.manager, id);
     if (!draft) return unknownDraft();
-    if (draft.state !== "draft" && draft.state !== "submitted") return notADraft(draft);
-    const won = await updateAt(here.manager, id, version, ["draft", "submitted"], {
+    if (!canMove(draft.state, "discarded")) return notADraft(draft);
+    const won = await updateAt(here.manager, id, version, [draft.state], {
       state: "discarded",
       updatedAt: who.now,
     });
@@ -374,7 +380,7 @@ export async function discardDraft(
 export async function reviseSubmission(who: Acting, id: string): Promise<Revision | Refusal> {
   return change<Revision | Refusal>(who, async (here) => {
     const { manager } = here;
-    const followed = await loadOwn(who, manager, id);
+    const followed = await loadFor("reviseSubmission", who, manager, id);
     if (!followed) return unknownDraft();
     // The record's row puts two who revise at once in a line.
     await manager

@@ -1,19 +1,9 @@
-import {
-  Arg,
-  Authorized,
-  Ctx,
-  FieldResolver,
-  ID,
-  Int,
-  Mutation,
-  Query,
-  Resolver,
-  Root,
-} from "type-graphql";
+import { Arg, Ctx, FieldResolver, ID, Int, Mutation, Query, Resolver, Root } from "type-graphql";
 import { In } from "typeorm";
 
 import { requireViewer, type RequestContext } from "~server/common/context";
 import { DoneResult } from "~server/common/outcomes";
+import { Requires } from "~server/common/requires";
 import { acting } from "~server/event/acting";
 import { findingFor, recordsReadBlind } from "~server/review/blindness";
 import { commentsOf } from "~server/review/comments";
@@ -59,7 +49,7 @@ const revisionsOf = perRequest((ctx: RequestContext) =>
 
 @Resolver(() => Submission)
 export class SubmissionResolver {
-  @Authorized()
+  @Requires("readSubmission")
   @Query(() => [Submission])
   async mySubmissions(@Ctx() ctx: RequestContext): Promise<Submission[]> {
     const revisions = await ctx.database.manager.find(Revision, {
@@ -72,7 +62,7 @@ export class SubmissionResolver {
       .map((revision) => submissionType(revision));
   }
 
-  @Authorized()
+  @Requires("readSubmission")
   @Query(() => Submission, { nullable: true })
   async submission(
     @Ctx() ctx: RequestContext,
@@ -83,7 +73,7 @@ export class SubmissionResolver {
     return revision?.constraint.ownerId === requireViewer(ctx).id ? submissionType(revision) : null;
   }
 
-  @Authorized("contributor")
+  @Requires("saveDraft")
   @Query(() => [FindingType], {
     description:
       "Findings for fields not yet saved; needs the registry (near-duplicates, medians).",
@@ -113,7 +103,7 @@ export class SubmissionResolver {
     );
   }
 
-  @Authorized("contributor")
+  @Requires("startDraft")
   @Mutation(() => SubmissionResult, {
     description:
       "Starts a record with a first draft; from another submission it keeps the citation and its context.",
@@ -126,7 +116,7 @@ export class SubmissionResolver {
     return submissionOutcome(await drafts.startDraft(acting(ctx), { citationId, submissionId }));
   }
 
-  @Authorized("contributor")
+  @Requires("saveDraft")
   @Mutation(() => SubmissionResult)
   async saveDraft(
     @Ctx() ctx: RequestContext,
@@ -135,7 +125,7 @@ export class SubmissionResolver {
     return submissionOutcome(await drafts.saveDraft(acting(ctx), input));
   }
 
-  @Authorized("contributor")
+  @Requires("submitDraft")
   @Mutation(() => SubmissionResult)
   async submitDraft(
     @Ctx() ctx: RequestContext,
@@ -146,7 +136,7 @@ export class SubmissionResolver {
     return submissionOutcome(await drafts.submitDraft(acting(ctx), id, version, agreeToLicence));
   }
 
-  @Authorized("contributor")
+  @Requires("discardDraft")
   @Mutation(() => DoneResult)
   discardDraft(
     @Ctx() ctx: RequestContext,
@@ -156,7 +146,7 @@ export class SubmissionResolver {
     return drafts.discardDraft(acting(ctx), id, version);
   }
 
-  @Authorized("contributor")
+  @Requires("reviseSubmission")
   @Mutation(() => SubmissionResult, {
     description: "A new draft revision of a returned or approved record of one's own.",
   })

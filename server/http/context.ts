@@ -3,11 +3,11 @@ import type { DataSource } from "typeorm";
 
 import { User } from "~server/account/user.entity";
 import { viewerOf } from "~server/account/viewer";
-import { hasRole, type RequestContext, type ViewerIdentity } from "~server/common/context";
+import type { RequestContext, ViewerIdentity } from "~server/common/context";
 import { HttpProblem } from "~server/common/errors";
 import type { Config } from "~server/config/config";
 import type { RateLimits } from "~server/security/rateLimits";
-import type { Role } from "~shared/review/states";
+import { may, type Action } from "~shared/review/policy";
 
 import { requestId } from "./requestId";
 import { endSession, SESSION_COOKIE, startSession } from "./session";
@@ -51,10 +51,10 @@ async function findViewer(database: DataSource, req: Request): Promise<ViewerIde
   return viewerOf(user);
 }
 
-/** Guard of a plain HTTP address, with the answers that @Authorized gives in GraphQL. */
-export function requireRole(ctx: RequestContext, role: Role): ViewerIdentity {
+/** Guard of a plain HTTP address, with the answers that GraphQL's guard gives. */
+export function requireMay(ctx: RequestContext, action: Action): ViewerIdentity {
   if (!ctx.viewer) throw new HttpProblem(401, "UNAUTHENTICATED", "Sign in first.");
-  if (!hasRole(ctx.viewer, role)) {
+  if (!may(action, ctx.viewer.roles)) {
     throw new HttpProblem(403, "FORBIDDEN", "Your account may not do this.");
   }
   return ctx.viewer;

@@ -1,6 +1,7 @@
-import { Arg, Authorized, Ctx, Mutation, Resolver } from "type-graphql";
+import { Arg, Ctx, Mutation, Resolver } from "type-graphql";
 
 import type { RequestContext } from "~server/common/context";
+import { Requires } from "~server/common/requires";
 import { acting } from "~server/event/acting";
 
 import { previewImport, runImport } from "./import.service";
@@ -8,7 +9,7 @@ import { ImportInput, ImportPreviewResult, ImportResult } from "./import.type";
 
 @Resolver()
 export class ImportResolver {
-  @Authorized("contributor")
+  @Requires("runImport")
   @Mutation(() => ImportPreviewResult)
   previewImport(
     @Ctx() ctx: RequestContext,
@@ -17,7 +18,7 @@ export class ImportResolver {
     return previewImport(acting(ctx), input);
   }
 
-  @Authorized("contributor")
+  @Requires("runImport")
   @Mutation(() => ImportResult)
   runImport(
     @Ctx() ctx: RequestContext,

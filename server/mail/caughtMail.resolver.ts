@@ -1,7 +1,8 @@
-import { Authorized, Ctx, Field, ID, ObjectType, Query, Resolver } from "type-graphql";
+import { Ctx, Field, ID, ObjectType, Query, Resolver } from "type-graphql";
 
 import type { RequestContext } from "~server/common/context";
 import { forbidden } from "~server/common/errors";
+import { Requires } from "~server/common/requires";
 import { isDemonstration } from "~server/database/settings";
 
 import { CaughtMailRow } from "./caughtMail.entity";
@@ -20,7 +21,7 @@ export class CaughtMail {
 @Resolver()
 export class CaughtMailResolver {
   /** Mails open accounts, so only a registry of invented people shows them. */
-  @Authorized("maintainer")
+  @Requires("readCaughtMail")
   @Query(() => [CaughtMail])
   async caughtMails(@Ctx() ctx: RequestContext): Promise<CaughtMail[]> {
     if (!(await isDemonstration(ctx.database.manager))) throw forbidden();

@@ -1,7 +1,8 @@
-import { Arg, Authorized, Ctx, ID, Int, Mutation, Query, Resolver } from "type-graphql";
+import { Arg, Ctx, ID, Int, Mutation, Query, Resolver } from "type-graphql";
 
 import { requireViewer, type RequestContext } from "~server/common/context";
 import { DoneResult, Refusal } from "~server/common/outcomes";
+import { Requires } from "~server/common/requires";
 import { loadRevision } from "~server/constraint/draft.service";
 import { ConstraintFieldsInput } from "~server/constraint/fields.type";
 import type { Revision } from "~server/constraint/revision.entity";
@@ -14,7 +15,7 @@ import { reviewFor } from "./review.view";
 
 @Resolver()
 export class ReviewResolver {
-  @Authorized("editor")
+  @Requires("readQueue")
   @Query(() => [QueueItem])
   async queue(@Ctx() ctx: RequestContext): Promise<QueueItem[]> {
     const who = acting(ctx);
@@ -22,7 +23,7 @@ export class ReviewResolver {
     return revisions.map((revision) => queueItem(revision, who.viewer, who.now));
   }
 
-  @Authorized("editor")
+  @Requires("readQueue")
   @Query(() => Review, { nullable: true })
   async review(
     @Ctx() ctx: RequestContext,
@@ -37,7 +38,7 @@ export class ReviewResolver {
     return reviewFor(ctx, revision);
   }
 
-  @Authorized("editor")
+  @Requires("claimSubmission")
   @Mutation(() => ReviewResult)
   async claimSubmission(
     @Ctx() ctx: RequestContext,
@@ -46,7 +47,7 @@ export class ReviewResolver {
     return outcome(ctx, await reviews.claim(acting(ctx), id));
   }
 
-  @Authorized("editor")
+  @Requires("releaseClaim")
   @Mutation(() => DoneResult)
   releaseClaim(
     @Ctx() ctx: RequestContext,
@@ -55,7 +56,7 @@ export class ReviewResolver {
     return reviews.releaseClaim(acting(ctx), id);
   }
 
-  @Authorized("editor")
+  @Requires("storeReading")
   @Mutation(() => ReviewResult)
   async storeReading(
     @Ctx() ctx: RequestContext,
@@ -65,7 +66,7 @@ export class ReviewResolver {
     return outcome(ctx, await reviews.storeReading(acting(ctx), id, reading));
   }
 
-  @Authorized("editor")
+  @Requires("correctReading")
   @Mutation(() => ReviewResult, {
     description:
       "Reads one differing field again after the comparison; the first reading stays on record.",
@@ -80,7 +81,7 @@ export class ReviewResolver {
     return outcome(ctx, await reviews.correctReading(acting(ctx), id, field, reading, why));
   }
 
-  @Authorized("editor")
+  @Requires("acceptAnswer")
   @Mutation(() => ReviewResult)
   async acceptAnswer(
     @Ctx() ctx: RequestContext,
@@ -90,7 +91,7 @@ export class ReviewResolver {
     return outcome(ctx, await reviews.acceptAnswer(acting(ctx), id, code));
   }
 
-  @Authorized("editor")
+  @Requires("approveSubmission")
   @Mutation(() => DoneResult)
   approveSubmission(
     @Ctx() ctx: RequestContext,
@@ -101,7 +102,7 @@ export class ReviewResolver {
     return reviews.approve(acting(ctx), id, version, note);
   }
 
-  @Authorized("editor")
+  @Requires("returnSubmission")
   @Mutation(() => DoneResult)
   returnSubmission(
     @Ctx() ctx: RequestContext,

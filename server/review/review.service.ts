@@ -19,6 +19,7 @@ import {
   mergeReading,
   readingMissing,
 } from "~shared/review/reading";
+import { mayWithOwn } from "~shared/review/policy";
 import { isAuthor } from "~shared/review/recusal";
 import { CLAIM_HOURS } from "~shared/review/states";
 import { emptyFields, type ConstraintFields, type FieldName } from "~shared/statement/fields";
@@ -45,7 +46,7 @@ export function barredBecause(
   revision: Revision,
   editor: { id: string; nameOnPapers: string },
 ): string | null {
-  if (revision.constraint.ownerId === editor.id) {
+  if (!mayWithOwn("storeReading", revision.constraint.ownerId === editor.id)) {
     return "You submitted it. Another editor has to read it.";
   }
   if (isAuthor(editor.nameOnPapers, revision.citation?.authors ?? [])) {

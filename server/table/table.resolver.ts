@@ -1,7 +1,8 @@
-import { Arg, Authorized, Ctx, ID, Mutation, Query, Resolver } from "type-graphql";
+import { Arg, Ctx, ID, Mutation, Query, Resolver } from "type-graphql";
 
 import type { RequestContext } from "~server/common/context";
 import { DoneResult, Refusal } from "~server/common/outcomes";
+import { Requires } from "~server/common/requires";
 import { acting } from "~server/event/acting";
 import { recordsReadBlind } from "~server/review/blindness";
 
@@ -34,7 +35,7 @@ export class TableResolver {
     return (await shown(ctx, [table]))[0] ?? null;
   }
 
-  @Authorized()
+  @Requires("saveTable")
   @Mutation(() => FittingTableResult)
   async saveTable(
     @Ctx() ctx: RequestContext,
@@ -47,7 +48,7 @@ export class TableResolver {
     return table;
   }
 
-  @Authorized()
+  @Requires("deleteTable")
   @Mutation(() => DoneResult)
   deleteTable(
     @Ctx() ctx: RequestContext,

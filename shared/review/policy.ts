@@ -48,7 +48,8 @@ export const MAY: Record<Action, Permission> = {
   submitDraft: { roles: CONTRIBUTOR, own: "only" },
   reviseSubmission: { roles: CONTRIBUTOR, own: "only" },
   runImport: { roles: CONTRIBUTOR, own: "any" },
-  readSubmission: { roles: CONTRIBUTOR, own: "only" },
+  // Who is no contributor any more still reads what they sent.
+  readSubmission: { roles: null, own: "only" },
   readQueue: { roles: EDITOR, own: "any" },
   claimSubmission: { roles: EDITOR, own: "never" },
   releaseClaim: { roles: EDITOR, own: "never" },
@@ -77,8 +78,13 @@ export function may(action: Action, roles: readonly Role[] | null, own?: boolean
   if (permission.roles !== null && !permission.roles.some((role) => roles.includes(role))) {
     return false;
   }
-  if (permission.own === "only") return own !== false;
-  return permission.own === "any" || own !== true;
+  return own === undefined || mayWithOwn(action, own);
+}
+
+/** Whether something may be done to a thing that is one's own, or isn't, whatever one's roles. */
+export function mayWithOwn(action: Action, own: boolean): boolean {
+  const rule = MAY[action].own;
+  return rule === "any" || own === (rule === "only");
 }
 
 /** Whether a revision may move from one state to another. */

@@ -1,5 +1,6 @@
 import { useQuery } from "@apollo/client/react";
 import { SessionDocument, type Role, type SessionQuery } from "~graphql/generated/graphql";
+import { may, type Action } from "~shared/review/policy";
 
 type Viewer = NonNullable<SessionQuery["session"]["viewer"]>;
 
@@ -10,6 +11,8 @@ export interface SessionState {
   demonstration: boolean;
   licence: string;
   hasRole(role: Role): boolean;
+  /** The server's own table of who may do what; `own` is whether the thing is this person's. */
+  may(action: Action, own?: boolean): boolean;
   refetch(): Promise<unknown>;
 }
 
@@ -22,6 +25,7 @@ export function useSession(): SessionState {
     loading: loading && data === undefined,
     demonstration: data?.session.demonstration ?? false,
     licence: data?.session.licence ?? "",
+    may: (action, own) => may(action, viewer?.roles ?? null, own),
     hasRole: (role) => viewer?.roles.includes(role) ?? false,
     refetch: () => refetch(),
   };
