@@ -1,4 +1,4 @@
-import { spawn, type ChildProcess } from "node:child_process";
+import { spawn, spawnSync, type ChildProcess } from "node:child_process";
 import { existsSync, mkdtempSync, readFileSync, readdirSync, rmSync, statSync } from "node:fs";
 import os from "node:os";
 import path from "node:path";
@@ -71,6 +71,55 @@ function processesOverData(): string[] {
     .filter((line) => line.includes(data));
 }
 
+/** Addresses of all that a stranger can download: lists, each record's citation, each table's files. */
+async function publicFiles(): Promise<string[]> {
+  const query =
+    "{ constraints(limit: 500) { constraints { number } } fittingTables { slug digest } }";
+  const response = await fetch(`http://127.0.0.1:${port}/graphql`, {
+    method: "POST",
+    headers: { "content-type": "application/json" },
+    body: JSON.stringify({ query }),
+  });
+  const { data: found } = (await response.json()) as {
+    data: {
+      constraints: { constraints: { number: string }[] };
+      fittingTables: { slug: string; digest: string }[];
+    };
+  };
+  const records = found.constraints.constraints.map(({ number }) => number);
+  const tables = found.fittingTables.map(({ slug }) => slug);
+  expect([records.length > 15, tables.length > 0]).toEqual([true, true]);
+  return [
+    "/api/constraints.csv",
+    "/api/constraints.bib",
+    ...records.map((number) => `/api/constraints/${number}.bib`),
+    ...tables.flatMap((slug) => ["csv", "json", "bib"].map((end) => `/api/tables/${slug}.${end}`)),
+  ];
+}
+
+async function bytesOf(addresses: readonly string[]): Promise<[string, number, string][]> {
+  return Promise.all(
+    addresses.map(async (address): Promise<[string, number, string]> => {
+      const response = await fetch(`http://127.0.0.1:${port}${address}`);
+      return [
+        address,
+        response.status,
+        Buffer.from(await response.arrayBuffer()).toString("base64"),
+      ];
+    }),
+  );
+}
+
+/** Runs a command of the README over this test's data folder. */
+function command(script: string, ...words: string[]): void {
+  const result = spawnSync(process.execPath, [path.join(ROOT, "scripts", script), ...words], {
+    cwd: ROOT,
+    env: { ...process.env, FOGLINE_DATA: data, TMPDIR: folder },
+    encoding: "utf8",
+  });
+  if (result.status !== 0) throw new Error(`${script} ended: ${result.stdout}${result.stderr}`);
+}
+
 const answer = async (address: string) =>
   (await fetch(`http://127.0.0.1:${port}${address}`)).status;
 
@@ -122,6 +171,29 @@ it("stopped in the middle of a step, it stops what that step had started too", a
   run.process.kill("SIGINT");
   expect(await run.ended).toBe(130);
   expect(processesOverData()).toEqual([]);
+});
+
+it("backup, wipe, restore: every public file comes back with the same bytes", async () => {
+  const run = start();
+  await untilServing(run);
+  const addresses = await publicFiles();
+  const before = await bytesOf(addresses);
+  const backup = path.join(folder, "backup");
+  command("backup.js", backup);
+  run.process.kill("SIGTERM");
+  expect(await run.ended).toBe(0);
+
+  rmSync(data, { recursive: true });
+  command("restore.js", backup);
+  const again = start();
+  await untilServing(again);
+  expect(again.output()).not.toContain("seeded");
+  expect(await publicFiles()).toEqual(addresses);
+  expect(await bytesOf(addresses)).toEqual(before);
+  expect(before.map(([, status]) => status)).toEqual(addresses.map(() => 200));
+  again.process.kill("SIGTERM");
+  expect(await again.ended).toBe(0);
+  rmSync(backup, { recursive: true });
 });
 
 it("DEMO=0 refuses a registry that holds the demonstration, and a fresh one starts empty", async () => {
