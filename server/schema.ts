@@ -9,6 +9,7 @@ import { SessionResolver } from "~server/account/session.resolver";
 import { CitationResolver } from "~server/citation/citation.resolver";
 import { RoleChecker } from "~server/common/authChecker";
 import { ConstraintResolver } from "~server/constraint/constraint.resolver";
+import { ErrorReportResolver } from "~server/constraint/errorReport.resolver";
 import { SubmissionResolver } from "~server/constraint/submission.resolver";
 import { ImportResolver } from "~server/import/import.resolver";
 import { CaughtMailResolver } from "~server/mail/caughtMail.resolver";
@@ -24,6 +25,7 @@ export const resolvers = [
   ImportResolver,
   CaughtMailResolver,
   ConstraintResolver,
+  ErrorReportResolver,
   SubmissionResolver,
   ReviewResolver,
   TableResolver,

@@ -1,13 +1,10 @@
-import { createHash } from "node:crypto";
-
 import type { EntityManager } from "typeorm";
 
 import { requireViewer, type RequestContext } from "~server/common/context";
-import { tooManySentence } from "~server/common/errors";
 import { done, refuse, type Done, type Refusal } from "~server/common/outcomes";
 import { transact } from "~server/database/transaction";
 import { queueMail } from "~server/mail/outbox";
-import type { LimitName } from "~server/security/rateLimits";
+import { limitKey, overLimit } from "~server/security/overLimit";
 import { normalizeOrcid } from "~shared/identifiers/orcid";
 
 import { viewerType, type Viewer } from "./account.type";
@@ -25,21 +22,6 @@ import {
 import { issueToken, spendToken, tokenOwner } from "./tokens";
 import { User } from "./user.entity";
 import { viewerOf } from "./viewer";
-
-/** Counters keep digests, so that the table of limits is no list of who comes here. */
-function keyOf(text: string): string {
-  return createHash("sha256").update(text, "utf8").digest("base64url");
-}
-
-/** Counts one against each limit; a refusal when any of them is used up. */
-async function overLimit(
-  ctx: RequestContext,
-  counts: readonly (readonly [name: LimitName, key: string])[],
-): Promise<Refusal | null> {
-  const waits = await Promise.all(counts.map(([name, key]) => ctx.limits[name].take(keyOf(key))));
-  const wait = Math.max(...waits);
-  return wait > 0 ? refuse("TOO_MANY_REQUESTS", tooManySentence(wait)) : null;
-}
 
 export async function register(
   ctx: RequestContext,
@@ -159,8 +141,8 @@ export async function signIn(
   }
   // Only failures count.
   await Promise.all([
-    ctx.limits.signInPerAddress.forget(keyOf(email)),
-    ctx.limits.signInPerCaller.giveBack(keyOf(ctx.ip)),
+    ctx.limits.signInPerAddress.forget(limitKey(email)),
+    ctx.limits.signInPerCaller.giveBack(limitKey(ctx.ip)),
   ]);
   await ctx.signIn(user.id, user.sessionEpoch);
   return viewerType(viewerOf(user));
@@ -204,7 +186,7 @@ export async function changePassword(
   if (!changed) {
     return refuse("PASSWORD_MOVED", "Your password was changed a moment ago. Sign in again.");
   }
-  await ctx.limits.signInPerAddress.forget(keyOf(viewer.email));
+  await ctx.limits.signInPerAddress.forget(limitKey(viewer.email));
   await ctx.signIn(user.id, sessionEpoch);
   return done("Your password is changed, and your other sessions are ended.");
 }
@@ -257,7 +239,7 @@ export async function resetPassword(
     return true;
   });
   if (!changed) return refuse("LINK_INVALID", BAD_LINK);
-  await ctx.limits.signInPerAddress.forget(keyOf(user.email));
+  await ctx.limits.signInPerAddress.forget(limitKey(user.email));
   return done("Your new password is set. You can sign in with it now.");
 }
 

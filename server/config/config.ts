@@ -10,6 +10,9 @@ export interface Limits {
   /** Mails asked for (reset, confirmation) per address and per caller, each hour. */
   mailPerAddress: number;
   mailPerCaller: number;
+  /** Reported errors per caller, and from all callers together, each hour. */
+  reportPerCaller: number;
+  reportInAll: number;
   /** GraphQL requests per caller and minute. */
   graphqlPerMinute: number;
   /** Other state-changing requests (uploads) per caller and minute. */
@@ -53,6 +56,8 @@ export const DEFAULT_LIMITS: Limits = {
   registerPerCaller: 30,
   mailPerAddress: 5,
   mailPerCaller: 30,
+  reportPerCaller: 10,
+  reportInAll: 100,
   graphqlPerMinute: 600,
   uploadsPerMinute: 60,
   downloadsPerMinute: 240,

@@ -89,6 +89,21 @@ export async function recordsReadBlind(
   return new Set(rows.map((row) => Number(row.id)));
 }
 
+/** When a person who is reading a record blind at this moment will have to stop; null for who isn't. */
+export async function readsBlindUntil(
+  manager: EntityManager,
+  personId: string,
+  constraintId: number,
+  now: Date,
+): Promise<Date | null> {
+  const [row]: { until: Date }[] = await manager.query(
+    `SELECT held.claimedUntil AS until FROM revision held
+      WHERE held.constraintId = ? AND ${HELD_UNREAD}`,
+    [constraintId, personId, now, personId],
+  );
+  return row ? new Date(row.until) : null;
+}
+
 async function isReadingBlind(
   manager: EntityManager,
   viewer: ViewerIdentity | null,

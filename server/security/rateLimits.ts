@@ -23,6 +23,8 @@ export type LimitName =
   | "registerPerCaller"
   | "mailPerAddress"
   | "mailPerCaller"
+  | "reportPerCaller"
+  | "reportInAll"
   | "upload"
   | "download"
   | "graphql";
@@ -63,6 +65,8 @@ export function createRateLimits(config: Config): RateLimits {
     registerPerCaller: shared("registerPerCaller", limits.registerPerCaller, HOUR_S),
     mailPerAddress: shared("mailPerAddress", limits.mailPerAddress, HOUR_S),
     mailPerCaller: shared("mailPerCaller", limits.mailPerCaller, HOUR_S),
+    reportPerCaller: shared("reportPerCaller", limits.reportPerCaller, HOUR_S),
+    reportInAll: shared("reportInAll", limits.reportInAll, HOUR_S),
     upload: shared("upload", limits.uploadsPerMinute, MINUTE_S),
     download: own("download", limits.downloadsPerMinute),
     graphql: own("graphql", limits.graphqlPerMinute),

@@ -10,6 +10,7 @@ import { DefinitionList } from "@/components/DefinitionList";
 import { Marker } from "@/components/Marker";
 import { NotationText } from "@/components/NotationText";
 import { Notice } from "@/components/Notice";
+import { RecordTitle } from "@/components/RecordTitle";
 import { StatusPill } from "@/components/StatusPill";
 import { Block, Caption, Dense, Label, Mono, Section } from "@/components/Text";
 import { dateTime } from "@/components/when";
@@ -20,14 +21,17 @@ import type { ConstraintByNumberQuery } from "~graphql/generated/graphql";
 import { familyOf, METHOD_TAGS } from "~shared/methods/vocabulary";
 import { asUsed, type AsUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
-import { notationAsPrinted, notationAsUsed, recordTitle } from "~shared/statement/notation";
+import { notationAsPrinted, notationAsUsed } from "~shared/statement/notation";
 import { conditionWord, FIELD_NAMES, fieldText, levelPhrase } from "~shared/statement/words";
+
+import { ReportSheet } from "./ReportSheet";
 
 type RecordData = NonNullable<ConstraintByNumberQuery["constraint"]>;
 
 /** One record whole: as printed beside as used, provenance, data, relations, revisions. */
 export function RecordView({ record }: { record: RecordData }) {
   const [citing, setCiting] = useState(false);
+  const [reporting, setReporting] = useState(false);
   const layout = useLayoutClass();
   const columns = layout !== "compact";
   const { fields, citation } = record;
@@ -47,7 +51,7 @@ export function RecordView({ record }: { record: RecordData }) {
           {family ? <Marker family={family} hollow={fields.kind !== "twoSided"} size={22} /> : null}
           <View style={styles.grow}>
             <Section level={2} style={styles.title}>
-              {recordTitle(fields)}
+              <RecordTitle fields={fields} />
             </Section>
             <CitationLine citation={citation} />
           </View>
@@ -102,6 +106,12 @@ export function RecordView({ record }: { record: RecordData }) {
         </View>
         <View style={[styles.column, columns && styles.third]}>
           <Revisions record={record} />
+          <Button
+            label="Report an error"
+            kind="text"
+            icon="alert-circle-outline"
+            onPress={() => setReporting(true)}
+          />
         </View>
       </View>
       <CiteSheet
@@ -110,6 +120,7 @@ export function RecordView({ record }: { record: RecordData }) {
         quotable={record.quotable}
         citation={citation}
       />
+      <ReportSheet visible={reporting} onClose={() => setReporting(false)} number={record.number} />
     </View>
   );
 }

@@ -9,6 +9,7 @@ import { CiteSheet } from "@/components/CiteSheet";
 import { Marker } from "@/components/Marker";
 import { NotationText } from "@/components/NotationText";
 import { Notice, Strong } from "@/components/Notice";
+import { RecordTitle } from "@/components/RecordTitle";
 import { Block, Caption, Dense, Mono, SymbolText } from "@/components/Text";
 import { FAMILY_MARKS } from "@/theme/families";
 import { useTheme } from "@/theme/ThemeProvider";
@@ -16,12 +17,7 @@ import { space } from "@/theme/tokens";
 import { HistoryPointDocument } from "~graphql/generated/graphql";
 import { FORM_WORDS, type RowLikelihood, rowLikelihood } from "~shared/likelihood";
 import { findTag } from "~shared/methods/vocabulary";
-import {
-  type Notation,
-  notationAsPrinted,
-  notationAsUsed,
-  recordTitle,
-} from "~shared/statement/notation";
+import { type Notation, notationAsPrinted, notationAsUsed } from "~shared/statement/notation";
 import type { AsUsed } from "~shared/statement/asUsed";
 import {
   ESTIMATOR_WORDS,
@@ -80,7 +76,7 @@ export function PointPanel({
         </View>
         <View style={styles.titles} ref={head} {...({ tabIndex: -1 } as object)}>
           <Block level={2}>
-            <TitleText text={recordTitle(fields)} />
+            <RecordTitle fields={fields} />
           </Block>
           <Dense muted>
             {place}
@@ -166,17 +162,6 @@ function inOneSigma(used: AsUsed): Notation {
 }
 
 /** A title with its z set as a symbol. */
-function TitleText({ text }: { text: string }) {
-  const [before, after] = text.split(" z = ");
-  if (after === undefined) return <>{text}</>;
-  return (
-    <>
-      {before} <SymbolText>z</SymbolText>
-      {`\u00A0=\u00A0${after}`}
-    </>
-  );
-}
-
 function PointLikelihood({ row, overlays }: { row: HistoryRow; overlays: readonly Overlay[] }) {
   const { scheme } = useTheme();
   const likelihood = row.used === null ? null : rowLikelihood(row.used);

@@ -51,6 +51,7 @@ const RULES: Record<"Query" | "Mutation", Record<string, Rule>> = {
     previewImport: "contributor",
     register: "public",
     releaseClaim: "editor",
+    reportError: "public",
     requestPasswordReset: "public",
     resendConfirmation: "public",
     resetPassword: "public",
