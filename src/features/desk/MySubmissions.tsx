@@ -27,11 +27,11 @@ export function MySubmissions() {
     fetchPolicy: "cache-and-network",
   });
   const all = data?.mySubmissions ?? [];
-  const returned = all.filter(({ state, answeredBy }) => state === "returned" && !answeredBy);
-  // A returned revision that is being answered is represented by its answer.
+  // A returned revision that was answered is represented by its answer, whatever became of that.
+  const returned = newestOf(all).filter(({ state }) => state === "returned");
   const drafts = all.filter(({ state }) => state === "draft");
   const under = all.filter(({ state }) => state === "submitted" || state === "inReview");
-  const approved = all.filter(({ state }) => state === "approved");
+  const approved = newestOf(all.filter(({ state }) => state === "approved"));
 
   return (
     <View style={{ gap: 16 }}>
@@ -73,6 +73,14 @@ export function MySubmissions() {
       <Group title="Approved" rows={approved} />
     </View>
   );
+}
+
+/** The last revision of each record, in the order given. */
+function newestOf(rows: readonly Mine[]): Mine[] {
+  const last = new Map<string, number>();
+  for (const { number, ordinal } of rows)
+    last.set(number, Math.max(ordinal, last.get(number) ?? 0));
+  return rows.filter(({ number, ordinal }) => last.get(number) === ordinal);
 }
 
 function Group({ title, rows }: { title: string; rows: readonly Mine[] }) {

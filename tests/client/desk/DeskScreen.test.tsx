@@ -104,6 +104,15 @@ describe.each(WIDTHS)("the desk at %i points", (width) => {
     ).toBeTruthy();
   });
 
+  it("shows a returned revision only until its answer is there, whatever became of that", async () => {
+    const revision = (id: string, ordinal: number, state: "returned" | "approved") =>
+      buildSubmission({ id, number: "FL-0063", ordinal, state });
+    at(["contributor"], mine([revision("s1", 1, "returned"), revision("s2", 2, "approved")]));
+    const approved = await screen.findByRole("list", { name: "Approved" });
+    expect(within(approved).getAllByRole("link")).toHaveLength(1);
+    expect(screen.queryByRole("list", { name: "Returned to you" })).not.toBeInTheDocument();
+  });
+
   it("shows an editor the queue oldest first, and own claims before it", async () => {
     at(
       ["editor"],
