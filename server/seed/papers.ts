@@ -19,7 +19,7 @@ export const PAPERS = {
     journal = {Journal of Distant Weather}, year = 2025, volume = 43, pages = {201--219},
     doi = {10.5555/jdw.2025.0201}}`,
   darkPixels: `@article{darkPixels,
-    author = {Quarrelow, Signe and Candlewick Team and others},
+    author = {Quarrelow, Signe and {Candlewick Team} and others},
     title = {Dark pixels in the {Candlewick} forest sample: limits at $5.4 < z < 6.5$},
     journal = {Journal of Distant Weather}, year = 2024, volume = 42, pages = {77--98},
     doi = {10.5555/jdw.2024.0077}}`,

@@ -68,7 +68,9 @@ export function LikelihoodCurve({
           />
         </View>
       )}
-      {symbol === null ? null : <SymbolText style={styles.symbol}>{symbol}</SymbolText>}
+      {symbol === null ? null : (
+        <SymbolText style={[styles.symbol, { color: colors.ink }]}>{symbol}</SymbolText>
+      )}
       {legend ? (
         <View style={styles.legend}>
           {lines.map((line, index) => (

@@ -30,11 +30,10 @@ export function Chip({
 }) {
   const colors = useColors();
   const on = selected || onRemove !== undefined;
-  const spoken = count === undefined ? label : `${label}, ${count}`;
   return (
     <Press
       onPress={onRemove ?? onPress}
-      label={onRemove ? `Remove ${label}` : spoken}
+      label={onRemove ? `Remove ${label}` : undefined}
       attributes={{
         "aria-pressed": onRemove || expanded !== undefined ? undefined : selected,
         "aria-expanded": expanded,

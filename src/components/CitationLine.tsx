@@ -13,7 +13,10 @@ interface CitationParts {
 
 /** "Osuwande, A. & Vask, I." of a list of authors; four or more become "and others". */
 function people(authors: readonly string[]): string {
-  if (authors.length > 3) return `${authors[0]} and others`;
+  // The paper's own list can end in "and others".
+  const named = authors.filter((author) => author !== "and others");
+  if (named.length > 3) return `${named[0]} and others`;
+  if (named.length < authors.length) return `${named.join(", ")} and others`;
   if (authors.length < 2) return authors[0] ?? "";
   return `${authors.slice(0, -1).join(", ")} & ${authors[authors.length - 1]}`;
 }

@@ -75,9 +75,7 @@ export function ConstraintRows({
                 </View>
                 <View style={styles.words}>
                   <Whereabouts fields={fields} />
-                  <Dense muted numberOfLines={1}>
-                    {citation.shortName}
-                  </Dense>
+                  <Dense muted>{citation.shortName}</Dense>
                 </View>
                 <View style={styles.value}>
                   {fields.kind === "qualitative" ? (

@@ -176,9 +176,7 @@ const StripNames = memo(function StripNames({
           style={[styles.name, selected === row.number && { backgroundColor: colors.petrolTint }]}
         >
           <View>
-            <Dense muted numberOfLines={1}>
-              {row.citation.shortName}
-            </Dense>
+            <Dense muted>{row.citation.shortName}</Dense>
             {row.used ? <NotationText notation={notationAsUsed(row.used)} /> : null}
           </View>
         </Press>

@@ -48,7 +48,7 @@ export function MatchStep({
             <View key={column} style={phone ? undefined : { width: 300 }}>
               <Card style={{ gap: 8 }}>
                 <Label>{column}</Label>
-                <Caption numberOfLines={1}>
+                <Caption numberOfLines={2}>
                   {sample.length > 0 ? sample.filter(Boolean).slice(0, 3).join(", ") : "empty"}
                 </Caption>
                 <Choice

@@ -184,7 +184,7 @@ function StateNotice({
           grade="done"
           title={`${number} is approved`}
           action={
-            <View style={{ flexDirection: "row", flexWrap: "wrap", gap: 8 }}>
+            <View style={{ flexDirection: "row", flexWrap: "wrap", flexShrink: 1, gap: 8 }}>
               <Button kind="outline" label="See the record" href={`/constraints/${number}`} />
               {answeredBy ? (
                 <Button
