@@ -171,9 +171,16 @@ describe.each(SIZE_NAMES)("by keyboard alone on a %s screen", (size) => {
   it("claims, reads again and stores the reading", async () => {
     await signIn(page, EDITOR);
     const { queue } = await ask<{
-      queue: { id: string; barredBecause: string | null; claimedUntil: string | null }[];
-    }>(page.context().request, "{ queue { id barredBecause claimedUntil } }");
-    const free = queue.find((item) => !item.barredBecause && !item.claimedUntil);
+      queue: {
+        id: string;
+        ordinal: number;
+        barredBecause: string | null;
+        claimedUntil: string | null;
+      }[];
+    }>(page.context().request, "{ queue { id ordinal barredBecause claimedUntil } }");
+    const free = queue.find(
+      (item) => !item.barredBecause && !item.claimedUntil && item.ordinal === 1,
+    );
     await visit(page, `/desk/review/${free!.id}`, "Second reading");
     await tabTo(page, button(page, "Claim for a second reading"));
     await page.keyboard.press("Enter");

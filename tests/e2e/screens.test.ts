@@ -59,17 +59,18 @@ async function reviewOf(page: Page, wanted: "waiting" | "barred" | "mine"): Prom
   const { queue } = await ask<{
     queue: {
       id: string;
+      ordinal: number;
       claimedUntil: string | null;
       claimedByMe: boolean;
       barredBecause: string | null;
     }[];
-  }>(page.context().request, "{ queue { id claimedUntil claimedByMe barredBecause } }");
+  }>(page.context().request, "{ queue { id ordinal claimedUntil claimedByMe barredBecause } }");
   const found = queue.find((item) =>
     wanted === "mine"
       ? item.claimedByMe
       : wanted === "barred"
         ? item.barredBecause !== null
-        : item.barredBecause === null && item.claimedUntil === null,
+        : item.barredBecause === null && item.claimedUntil === null && item.ordinal === 1,
   );
   if (!found) throw new Error(`no submission of the queue is ${wanted}`);
   return `/desk/review/${found.id}`;
