@@ -173,7 +173,7 @@ function PointLikelihood({ row, overlays }: { row: HistoryRow; overlays: readonl
     );
   }
   const values = overlays.flatMap((overlay) => {
-    const score = overlay.score.rows.find(({ id }) => id === row.number);
+    const score = overlay.score.at(row.number);
     return score?.model === null || score?.model === undefined
       ? []
       : [{ overlay, model: score.model, minus2LnL: score.minus2LnL }];

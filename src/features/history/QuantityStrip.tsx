@@ -109,9 +109,10 @@ function GroupView({
   onSelect: (number: string) => void;
 }) {
   const { width, onLayout } = useMeasuredWidth();
-  const first = group.rows[0];
+  // All rows of a group ask a history for the same number.
   const models = overlays.flatMap((overlay) => {
-    const value = overlay.score.rows.find(({ id }) => id === first?.number)?.model;
+    const values = group.rows.map(({ number }) => overlay.score.at(number)?.model ?? null);
+    const value = values.find((answer) => answer !== null);
     return value === null || value === undefined ? [] : [{ overlay, value }];
   });
   const edges = group.rows.flatMap(({ used }) => {
@@ -146,7 +147,9 @@ function GroupView({
       </View>
       <Caption>
         {models.length === 0
-          ? "No model history is drawn."
+          ? overlays.length === 0
+            ? "No model history is drawn."
+            : "The model histories have no value here."
           : models
               .map(({ overlay, value }) => `${overlay.name} ${shownNumber(value, group.digits)}`)
               .join(", ")}

@@ -3,6 +3,7 @@ import type { History } from "~shared/history/history";
 import {
   type RowOptions,
   rowLikelihood,
+  type RowScore,
   type RowToScore,
   type Score,
   scoreRows,
@@ -14,6 +15,8 @@ export interface ScoredRows {
   rows: readonly RowToScore[];
   /** Left out before any model is asked, with the reason. */
   before: readonly { id: string; reason: string }[];
+  /** The same rows: what a model says there is still shown, and counts nowhere. */
+  aside: readonly RowToScore[];
 }
 
 /**
@@ -32,12 +35,14 @@ export function decideByDefault(rows: readonly HistoryRow[]): ScoredRows {
   );
   const before: { id: string; reason: string }[] = [];
   const scored: RowToScore[] = [];
+  const aside: RowToScore[] = [];
   rows.forEach((row, index) => {
     const reason = proposals[index]?.reason ?? null;
     if (reason !== null) before.push({ id: row.number, reason: `${reason}.` });
-    else scored.push({ id: row.number, asUsed: row.used, ...optionsOf(row) });
+    const list = reason === null ? scored : aside;
+    list.push({ id: row.number, asUsed: row.used, ...optionsOf(row) });
   });
-  return { rows: scored, before };
+  return { rows: scored, before, aside };
 }
 
 function optionsOf(row: HistoryRow): { options?: RowOptions } {
@@ -47,6 +52,8 @@ function optionsOf(row: HistoryRow): { options?: RowOptions } {
 }
 
 export interface HistoryScore extends Score {
+  /** What the history says at a row, and the row's −2 ln L, whether it counts or not. */
+  at(id: string): RowScore | undefined;
   /** Every row that is left out, with its reason. */
   reasons: readonly { id: string; reason: string }[];
 }
@@ -62,5 +69,12 @@ export function scoreHistory(
     ...decided.before,
     ...score.rows.flatMap(({ id, reason }) => (reason === null ? [] : [{ id, reason }])),
   ];
-  return { ...score, leftOut: reasons.length, reasons };
+  let aside: readonly RowScore[] | null = null;
+  const at = (id: string): RowScore | undefined => {
+    const counted = score.rows.find((row) => row.id === id);
+    if (counted) return counted;
+    aside ??= scoreRows(decided.aside, history, background).rows;
+    return aside.find((row) => row.id === id);
+  };
+  return { ...score, leftOut: reasons.length, reasons, at };
 }

@@ -85,6 +85,17 @@ describe("default decisions", () => {
     expect(decided.rows.map(({ id }) => id)).toEqual(["FL-0002"]);
     expect(decided.before[0]?.reason).toBe("Shares QV 0719+31 with FL-0002.");
   });
+  it("still say what a model has at a row that does not count", () => {
+    const decided = decideByDefault([
+      buildRow("FL-0001", { alternativesGroup: "prior", z: "7" }),
+      buildRow("FL-0002", { alternativesGroup: "prior", alternativesPreferred: true }),
+    ]);
+    const history = tanhHistory({ zRe: 7 });
+    const score = scoreHistory(decided, history, background());
+    expect(score.rows.map(({ id }) => id)).toEqual(["FL-0002"]);
+    // At its midpoint a tanh history is half neutral (closed form).
+    expect(score.at("FL-0001")?.model).toBeCloseTo(0.5, 12);
+  });
   it("name every row they leave out", () => {
     const decided = decideByDefault([
       buildRow("FL-0001", {}),
