@@ -190,11 +190,11 @@ best_of(
     lambda: [rows_m2lnl(7.3, 0.9, MANY) + m2lnl_row(TAU, SPLINE.ev(7.3, 0.9)) for _ in range(10)],
     per=10,
 )
-best_of("gridIntegrating", grid_integrating)
-best_of("gridSpline", grid_spline)
-best_of("gridSplineWithBuild", grid_spline_with_build)
+best_of("gridIntegrating", grid_integrating, runs=2)
+best_of("gridSpline", grid_spline, runs=25)
+best_of("gridSplineWithBuild", grid_spline_with_build, runs=25)
 try:
-    best_of("samplerVectorised", lambda: sampler(log_prob_vectorised, True), runs=2)
+    best_of("samplerVectorised", lambda: sampler(log_prob_vectorised, True), runs=3)
     best_of("samplerPlain", lambda: sampler(log_prob, False), runs=1)
 except ImportError:
     print(json.dumps({"name": "emcee", "missing": True}), flush=True)

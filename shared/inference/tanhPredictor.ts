@@ -3,20 +3,45 @@ import { tanhHistory } from "~shared/history/tanh";
 import type { FitParameter } from "~shared/inference/families";
 import { depthSurfaces, type Predictor, rootsPredictor } from "~shared/inference/predictor";
 import type { ModelRequests } from "~shared/likelihood/compile";
+import { HermiteTable } from "~shared/numerics/hermiteTable";
 import { gaussLegendre } from "~shared/numerics/quadrature";
+import { logistic } from "~shared/numerics/special";
 
 // Taken once: in a sandboxed realm every look-up of a global costs more than the arithmetic.
-const { cbrt, exp, log, sqrt } = Math;
+const { cbrt, exp, floor, log, sqrt } = Math;
 
-const RULE = gaussLegendre(8);
-/** A bin is cut into 1, 2, 4 … panels, as narrow as the width of the tanh needs. */
-const MOST_DOUBLINGS = 7;
+/**
+ * How a bin is integrated: the widest bin in units of Δz, nodes a panel, panels. The tanh's poles lie
+ * π/2 Δz off the axis, which leaves 1e-10 or less for each.
+ */
+const RULES = [
+  { widest: 0.3, order: 4, panels: 1 },
+  { widest: 0.75, order: 6, panels: 1 },
+  ...Array.from({ length: 8 }, (_, i) => ({ widest: 1.1 * 2 ** i, order: 8, panels: 2 ** i })),
+] as const;
 
-/** Places y = (1+z)^1.5 of a bin's nodes for each number of panels; found when first needed. */
+/** Places y = (1+z)^1.5 of a bin's nodes and their weights, for each rule; found when first needed. */
 interface Bin {
   readonly low: number;
   readonly width: number;
-  readonly nodes: (Float64Array | null)[];
+  readonly nodes: ({ y: Float64Array; weights: Float64Array } | null)[];
+}
+
+/** Beyond this |t| the logistic function is computed, so that tails keep their relative digits. */
+const TABLE_END = 12;
+/** Good to 2e-11: |f⁗| is below 0.13. */
+const LOGISTIC = new HermiteTable(
+  logistic,
+  (t) => logistic(t) * logistic(-t),
+  -TABLE_END,
+  TABLE_END,
+  64,
+);
+
+function tabulatedLogistic(t: number): number {
+  if (t >= -TABLE_END && t < TABLE_END) return LOGISTIC.at(t);
+  if (t > 40) return 1;
+  return t > 0 ? 1 / (1 + exp(-t)) : exp(t) / (1 + exp(t));
 }
 
 /**
@@ -32,7 +57,7 @@ export function tanhPredictor(
   const bins: Bin[] = Array.from(requests.binLows, (low, i) => ({
     low,
     width: requests.binHighs[i]! - low,
-    nodes: new Array<Float64Array | null>(MOST_DOUBLINGS + 1).fill(null),
+    nodes: RULES.map(() => null),
   }));
   const depths = depthSurfaces(requests, background, parameters, (zRe, deltaZ) =>
     tanhHistory({ zRe, deltaZ }),
@@ -48,12 +73,7 @@ export function tanhPredictor(
     const rate = 2 / (1.5 * root * deltaZ);
     let at = 0;
     for (let i = 0; i < yPoints.length; i++) {
-      const t = rate * (yPoints[i]! - yRe);
-      if (t > 0) out[at++] = 1 / (1 + exp(-t));
-      else {
-        const e = exp(t);
-        out[at++] = e / (1 + e);
-      }
+      out[at++] = tabulatedLogistic(rate * (yPoints[i]! - yRe));
     }
     for (let i = 0; i < bins.length; i++) out[at++] = binMean(bins[i]!, yRe, rate, deltaZ);
     for (let i = 0; i < depths.length; i++) out[at++] = depths[i]!(zRe, deltaZ);
@@ -67,22 +87,26 @@ export function tanhPredictor(
 }
 
 function binMean(bin: Bin, yRe: number, rate: number, deltaZ: number): number {
-  let doublings = 0;
-  // Eight nodes a panel of 1.2 Δz hold 5e-12 (the tanh's poles lie π/2 Δz off the axis).
-  for (let w = bin.width; w > 1.2 * deltaZ && doublings < MOST_DOUBLINGS; w /= 2) doublings++;
-  const nodes = (bin.nodes[doublings] ??= nodesOf(bin, 1 << doublings));
-  const { weights } = RULE;
+  let r = 0;
+  while (r < RULES.length - 1 && bin.width > RULES[r]!.widest * deltaZ) r++;
+  const { y, weights } = (bin.nodes[r] ??= nodesOf(bin, RULES[r]!));
   let sum = 0;
-  for (let k = 0; k < nodes.length; k++) {
-    sum += weights[k & 7]! / (1 + exp(rate * (yRe - nodes[k]!)));
-  }
-  return sum / (2 << doublings);
+  for (let k = 0; k < y.length; k++) sum += weights[k]! * tabulatedLogistic(rate * (y[k]! - yRe));
+  return sum;
 }
 
-function nodesOf({ low, width }: Bin, panels: number): Float64Array {
+function nodesOf(
+  { low, width }: Bin,
+  { order, panels }: { order: number; panels: number },
+): { y: Float64Array; weights: Float64Array } {
+  const rule = gaussLegendre(order);
   const half = width / panels / 2;
-  return Float64Array.from({ length: 8 * panels }, (_, k) => {
-    const a = 1 + low + (2 * (k >> 3) + 1 + RULE.nodes[k & 7]!) * half;
-    return a * sqrt(a);
-  });
+  const y = new Float64Array(order * panels);
+  const weights = new Float64Array(order * panels);
+  for (let k = 0; k < y.length; k++) {
+    const a = 1 + low + (2 * floor(k / order) + 1 + rule.nodes[k % order]!) * half;
+    y[k] = a * sqrt(a);
+    weights[k] = rule.weights[k % order]! / (2 * panels);
+  }
+  return { y, weights };
 }

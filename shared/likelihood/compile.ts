@@ -3,10 +3,12 @@ import { correlatedSet, quadraticForm } from "~shared/likelihood/correlatedSet";
 import { KERNEL, minus2LnLOf } from "~shared/likelihood/kernel";
 import { mixtureMinus2LnL, type MixtureMember, mixtureOf } from "~shared/likelihood/mixture";
 import type { ModelRequest } from "~shared/likelihood/modelRequest";
+import { HermiteTable } from "~shared/numerics/hermiteTable";
 import { gaussLegendre } from "~shared/numerics/quadrature";
+import { logErfc } from "~shared/numerics/special";
 
 // Taken once: in a sandboxed realm every look-up of a global costs more than the arithmetic.
-const { exp, log, log10, max } = Math;
+const { exp, log, log10, max, sqrt } = Math;
 
 /** A row ready for a fit; a RowLikelihood with its id is one. */
 export interface ReadyRow extends MixtureMember {
@@ -61,6 +63,21 @@ export interface ModelRequests {
 const AVERAGE_PANELS = 8;
 const AVERAGE_ORDER = 8;
 const AVERAGE_NODES = AVERAGE_PANELS * AVERAGE_ORDER;
+
+/** −2 ln ½ erfc(t) to 2e-11, from a table where t is not far out; made when a table first needs it. */
+let stepTable: HermiteTable | null = null;
+
+function tabulatedStep(t: number): number {
+  stepTable ??= new HermiteTable(
+    (u) => 2 * (Math.LN2 - logErfc(u)),
+    (u) => (4 / sqrt(Math.PI)) * exp(-u * u - logErfc(u)),
+    -6,
+    8,
+    128,
+  );
+  if (t >= stepTable.low && t < stepTable.high) return stepTable.at(t);
+  return 2 * (Math.LN2 - logErfc(t));
+}
 
 /**
  * A table of rows as typed arrays: built once, then evaluated without allocation.
@@ -145,6 +162,9 @@ export class CompiledTable {
         const d = x - packed[at]!;
         const t = d < 0 ? d * packed[at + 1]! : d * packed[at + 2]!;
         total += t * t;
+      } else if (kernels[i] === KERNEL.smoothedStep) {
+        const at = offsets[i]!;
+        total += tabulatedStep((x - packed[at]!) * packed[at + 1]!);
       } else {
         total += minus2LnLOf(kernels[i]!, packed, offsets[i]!, x);
       }
