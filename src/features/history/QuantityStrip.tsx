@@ -21,6 +21,8 @@ import type { Overlay } from "./useOverlays";
 
 const LINE = 44;
 const AXIS = 24;
+/** Width of a figure in the axis labels. */
+const DIGIT = 7.5;
 
 export interface StripGroup {
   key: string;
@@ -179,7 +181,9 @@ const StripNames = memo(function StripNames({
           style={[styles.name, selected === row.number && { backgroundColor: colors.petrolTint }]}
         >
           <View>
-            <Dense muted>{row.citation.shortName}</Dense>
+            <Dense muted numberOfLines={1}>
+              {row.citation.shortName}
+            </Dense>
             {row.used ? <NotationText notation={notationAsUsed(row.used)} /> : null}
           </View>
         </Press>
@@ -210,6 +214,10 @@ function StripDrawing({
   const power = 10 ** Math.floor(Math.log10(raw));
   const step = ([1, 2, 5, 10].find((factor) => factor * power >= raw) ?? 10) * power;
   const digits = Math.max(0, Math.ceil(-Math.log10(step) - 1e-9));
+  const ticks = linearTicks(domain, step, step);
+  // Long labels on a narrow strip stand at every other tick, or fewer.
+  const labelWidth = domain[1].toFixed(digits).length * DIGIT + 10;
+  const every = Math.ceil(labelWidth / Math.abs(scale.at(step) - scale.at(0)));
   return (
     <G>
       {models.map(({ overlay, value }) => (
@@ -279,7 +287,7 @@ function StripDrawing({
         );
       })}
       <Line x1={4} x2={width - 4} y1={floor} y2={floor} stroke={colors.ink} strokeWidth={1} />
-      {linearTicks(domain, step, step).map((tick) => (
+      {ticks.map((tick) => (
         <G key={tick.value}>
           <Line
             x1={scale.at(tick.value)}
@@ -289,16 +297,18 @@ function StripDrawing({
             stroke={colors.ink}
             strokeWidth={1}
           />
-          <SvgText
-            x={scale.at(tick.value)}
-            y={floor + 16}
-            textAnchor="middle"
-            fontFamily={fonts.mono}
-            fontSize={12.5}
-            fill={colors.ink}
-          >
-            {tick.value.toFixed(digits)}
-          </SvgText>
+          {Math.round(tick.value / step) % every === 0 ? (
+            <SvgText
+              x={scale.at(tick.value)}
+              y={floor + 16}
+              textAnchor="middle"
+              fontFamily={fonts.mono}
+              fontSize={12.5}
+              fill={colors.ink}
+            >
+              {tick.value.toFixed(digits)}
+            </SvgText>
+          ) : null}
         </G>
       ))}
     </G>
@@ -309,7 +319,7 @@ const styles = StyleSheet.create({
   card: { gap: space.m },
   group: { gap: space.xxs },
   columns: { flexDirection: "row", gap: space.s },
-  names: { width: 168, flexShrink: 1 },
+  names: { width: 184, flexShrink: 1 },
   name: {
     height: LINE,
     justifyContent: "center",
