@@ -71,15 +71,16 @@ export function NotationText({
   const stacked = !equal && (plus !== null || minus !== null);
   const sign =
     relation === "<" || relation === ">" ? relation : relation === "=" && symbol ? "=" : "";
+  const band = low !== null || high !== null;
   const text = lineText(notation);
   return (
     <View style={styles.line} role="img" aria-label={text}>
       <View style={styles.row} aria-hidden={Platform.OS === "web"}>
         {symbol ? <NotationSymbolText notation={notation} size={sizes.symbol} /> : null}
-        {sign ? <Mono style={[number, styles.sign]}>{sign}</Mono> : null}
-        {low !== null || high !== null ? (
-          <Mono style={number}>{`${symbol ? "= " : ""}${low ?? "?"}–${high ?? "?"}`}</Mono>
+        {sign || (band && symbol) ? (
+          <Mono style={[number, styles.sign, symbol && styles.afterSymbol]}>{sign || "="}</Mono>
         ) : null}
+        {band ? <Mono style={number}>{`${low ?? "?"}–${high ?? "?"}`}</Mono> : null}
         {value === null ? null : <Mono style={number}>{value}</Mono>}
         {equal ? <Mono style={number}>{` ± ${plus}`}</Mono> : null}
         {stacked ? (
@@ -112,7 +113,9 @@ const styles = StyleSheet.create({
   },
   row: { flexDirection: "row", alignItems: "center" },
   tail: { flexShrink: 1 },
-  sign: { paddingHorizontal: space.xxs },
+  // Without a symbol before it a limit's sign stands where the numbers of other rows begin.
+  sign: { paddingRight: space.xxs },
+  afterSymbol: { paddingLeft: space.xxs },
   stack: { paddingLeft: 3, alignItems: "flex-start" },
   unit: { paddingLeft: 6 },
 });

@@ -21,15 +21,12 @@ import { Caption, Dense, Section } from "@/components/Text";
 import { Screen } from "@/layout/Screen";
 import { useLayoutClass } from "@/layout/useLayoutClass";
 import { space } from "@/theme/tokens";
-import {
-  SaveTableDocument,
-  TableCandidatesDocument,
-  TableListDocument,
-} from "~graphql/generated/graphql";
+import { SaveTableDocument, TableCandidatesDocument } from "~graphql/generated/graphql";
+import { isEmptyFilter } from "~shared/filter/address";
 import { filterWords } from "~shared/filter/describe";
 import { proposeRows } from "~shared/table/proposeRows";
 
-import { BuilderRow, type BuiltRow } from "./BuilderRow";
+import { BuilderHead, BuilderRow, type BuiltRow } from "./BuilderRow";
 import { TableRows } from "./TableRows";
 import { useTableDraft } from "./useTableDraft";
 
@@ -63,7 +60,6 @@ export function TableBuilderScreen() {
         constraint,
         included,
         reason: choice?.reason ?? proposal?.reason ?? "",
-        chosen: choice !== undefined,
         proposedIn: proposal?.included ?? true,
         proposedReason: proposal?.reason ?? null,
         cautions: included ? (proposal?.cautions ?? []) : [],
@@ -108,7 +104,20 @@ export function TableBuilderScreen() {
         ) : (
           <>
             {wanted && !rows.some(({ constraint }) => constraint.number === wanted) ? (
-              <Notice grade="note">{wanted} does not match this filter.</Notice>
+              <Notice
+                grade="note"
+                action={
+                  isEmptyFilter(address.filter) ? undefined : (
+                    <Button
+                      label="Clear the filter"
+                      kind="tonal"
+                      onPress={() => address.setFilter({})}
+                    />
+                  )
+                }
+              >
+                {`${wanted} does not match this filter.`}
+              </Notice>
             ) : null}
             <View style={styles.part}>
               <Section>Rows</Section>
@@ -130,18 +139,21 @@ export function TableBuilderScreen() {
                     }
                   />
                 ) : (
-                  <View role="list">
-                    {rows.map((row, index) => (
-                      <View key={row.constraint.number} role="listitem">
-                        {index > 0 ? <Divider /> : null}
-                        <BuilderRow
-                          row={row}
-                          highlighted={row.constraint.number === wanted}
-                          onChoose={(choice) => choose(row.constraint.number, choice)}
-                        />
-                      </View>
-                    ))}
-                  </View>
+                  <>
+                    {wide ? <BuilderHead /> : null}
+                    <View role="list" aria-label="Candidates">
+                      {rows.map((row, index) => (
+                        <View key={row.constraint.number} role="listitem">
+                          {index > 0 || wide ? <Divider /> : null}
+                          <BuilderRow
+                            row={row}
+                            wanted={row.constraint.number === wanted}
+                            onChoose={(choice) => choose(row.constraint.number, choice)}
+                          />
+                        </View>
+                      ))}
+                    </View>
+                  </>
                 )}
               </Card>
             </View>
@@ -199,7 +211,8 @@ function Save({
   const { viewer } = useSession();
   const [failure, setFailure] = useState<string | null>(null);
   const [save, { loading }] = useMutation(SaveTableDocument, {
-    refetchQueries: [TableListDocument],
+    // The list of tables is asked anew when it is next shown.
+    update: (cache) => void cache.evict({ id: "ROOT_QUERY", fieldName: "fittingTables" }),
   });
   const because = !viewer
     ? undefined

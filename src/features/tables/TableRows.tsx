@@ -1,42 +1,29 @@
-import { StyleSheet, View } from "react-native";
+import { StyleSheet, View, type TextStyle } from "react-native";
 
+import { Card, Divider } from "@/components/Card";
 import { DataTable } from "@/components/DataTable";
-import { Card } from "@/components/Card";
-import { Marker } from "@/components/Marker";
 import { NotationText } from "@/components/NotationText";
-import { Dense, Mono } from "@/components/Text";
+import { Caption, Dense, Mono, SymbolText } from "@/components/Text";
+import { web } from "@/components/web";
+import { useLayoutClass } from "@/layout/useLayoutClass";
 import { space } from "@/theme/tokens";
-import type { TableCandidatesQuery } from "~graphql/generated/graphql";
-import { rowLikelihood } from "~shared/likelihood";
-import { familyOf } from "~shared/methods/vocabulary";
 import { asUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields } from "~shared/statement/fields";
 import { notationAsPrinted, notationAsUsed } from "~shared/statement/notation";
-import { levelPhrase, QUANTITY_WORDS, ROLE_WORDS } from "~shared/statement/words";
+import { levelPhrase } from "~shared/statement/words";
 
-export type TableConstraint = TableCandidatesQuery["constraints"]["constraints"][number];
-
-/** "7.51", "6.5 to 6.7, bin average", or the quantity where a row has no redshift. */
-export function whereText(fields: ConstraintFields): string {
-  if (fields.quantity !== "neutralFraction" && fields.quantity !== null) {
-    return QUANTITY_WORDS[fields.quantity];
-  }
-  const range = fields.zLow && fields.zHigh ? `${fields.zLow} to ${fields.zHigh}` : null;
-  const role =
-    fields.zRole && fields.zRole !== "point" ? `, ${ROLE_WORDS[fields.zRole].toLowerCase()}` : "";
-  return `${fields.z ?? range ?? "open"}${fields.z && range ? ` (${range})` : ""}${role}`;
-}
-
-/** The form a likelihood takes for a row, in words; why there is none otherwise. */
-export function formText(fields: ConstraintFields): string {
-  const used = asUsed(fields);
-  if (used === null) return "none";
-  const row = rowLikelihood(used);
-  return "leftOut" in row ? "none yet" : row.form;
-}
+import { formText, Source, type TableConstraint, Where } from "./RowParts";
 
 /** The rows a table hands out, as printed beside as used. */
 export function TableRows({ constraints }: { constraints: readonly TableConstraint[] }) {
+  return useLayoutClass() === "compact" ? (
+    <Listed constraints={constraints} />
+  ) : (
+    <Tabled constraints={constraints} />
+  );
+}
+
+function Tabled({ constraints }: { constraints: readonly TableConstraint[] }) {
   return (
     <Card flush>
       <DataTable
@@ -50,37 +37,90 @@ export function TableRows({ constraints }: { constraints: readonly TableConstrai
           { key: "form", title: "Form" },
           { key: "number", title: "Record", align: "right" },
         ]}
-        rows={constraints.map(({ number, quotable, fields, citation }) => {
-          const family = familyOf(fields.methodTags);
-          const used = asUsed(fields);
-          return {
-            id: number,
-            source: (
-              <View style={styles.source}>
-                {family ? (
-                  <Marker family={family} hollow={fields.kind !== "twoSided"} size={18} />
-                ) : null}
-                <Dense>{citation.shortName}</Dense>
-              </View>
-            ),
-            where: <Dense>{whereText(fields)}</Dense>,
-            printed: <NotationText notation={notationAsPrinted(fields)} tail={false} symbol />,
-            used: used ? (
-              <NotationText notation={notationAsUsed(used)} tail={false} />
-            ) : (
-              <Dense muted>none</Dense>
-            ),
-            level: <Dense>{levelPhrase(fields.level, fields.levelPercent)}</Dense>,
-            form: <Dense muted>{formText(fields)}</Dense>,
-            number: <Mono>{quotable}</Mono>,
-          };
-        })}
+        rows={constraints.map((constraint) => ({
+          id: constraint.number,
+          source: <Source constraint={constraint} />,
+          where: <Where fields={constraint.fields} />,
+          printed: (
+            <NotationText notation={notationAsPrinted(constraint.fields)} tail={false} symbol />
+          ),
+          used: <Used fields={constraint.fields} />,
+          level: (
+            <Dense>{levelPhrase(constraint.fields.level, constraint.fields.levelPercent)}</Dense>
+          ),
+          form: <Dense muted>{formText(constraint.fields)}</Dense>,
+          number: <Mono style={oneLine}>{constraint.quotable}</Mono>,
+        }))}
         rowKey={({ id }) => id}
       />
     </Card>
   );
 }
 
+function Used({ fields }: { fields: ConstraintFields }) {
+  const used = asUsed(fields);
+  return used ? (
+    <NotationText notation={notationAsUsed(used)} tail={false} />
+  ) : (
+    <Dense muted>none</Dense>
+  );
+}
+
+/** The same on a phone, where seven columns have no room. */
+function Listed({ constraints }: { constraints: readonly TableConstraint[] }) {
+  return (
+    <Card flush>
+      <View role="list" aria-label="Rows of the table">
+        {constraints.map((constraint, index) => {
+          const { number, quotable, fields } = constraint;
+          return (
+            <View key={number} role="listitem">
+              {index > 0 ? <Divider /> : null}
+              <View style={styles.row}>
+                <View style={styles.between}>
+                  <Source constraint={constraint} />
+                  <Mono style={styles.number}>{quotable}</Mono>
+                </View>
+                <View style={styles.facts}>
+                  <View style={styles.fact}>
+                    <Caption muted>As printed</Caption>
+                    <NotationText notation={notationAsPrinted(fields)} tail={false} symbol />
+                  </View>
+                  <View style={styles.fact}>
+                    <Caption muted>As used</Caption>
+                    <Used fields={fields} />
+                  </View>
+                </View>
+                <Caption muted>
+                  {fields.quantity === "neutralFraction" ? (
+                    <>
+                      <SymbolText muted>z</SymbolText>
+                      {" = "}
+                    </>
+                  ) : null}
+                  <Where fields={fields} />
+                  {` · ${[levelPhrase(fields.level, fields.levelPercent), formText(fields)].filter(Boolean).join(" · ")}`}
+                </Caption>
+              </View>
+            </View>
+          );
+        })}
+      </View>
+    </Card>
+  );
+}
+
+const oneLine = web({ whiteSpace: "nowrap" }) as TextStyle;
+
 const styles = StyleSheet.create({
-  source: { flexDirection: "row", alignItems: "center", gap: space.s },
+  row: { paddingHorizontal: space.m, paddingVertical: space.s, gap: space.xs },
+  between: {
+    flexDirection: "row",
+    alignItems: "center",
+    justifyContent: "space-between",
+    gap: space.s,
+  },
+  number: { fontSize: 13 },
+  facts: { flexDirection: "row", flexWrap: "wrap", columnGap: space.s, rowGap: space.xs },
+  fact: { gap: 2, flexGrow: 1, flexShrink: 0, flexBasis: 140 },
 });

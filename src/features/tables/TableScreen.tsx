@@ -4,6 +4,7 @@ import { useState } from "react";
 import { StyleSheet, View } from "react-native";
 
 import { userMessage } from "@/apollo/userMessage";
+import { useSession } from "@/apollo/useSession";
 import { Button } from "@/components/Button";
 import { Card } from "@/components/Card";
 import { DefinitionList } from "@/components/DefinitionList";
@@ -20,7 +21,6 @@ import { space } from "@/theme/tokens";
 import {
   DeleteTableDocument,
   TableBySlugDocument,
-  TableListDocument,
   type TableBySlugQuery,
 } from "~graphql/generated/graphql";
 
@@ -59,7 +59,10 @@ export function TableScreen() {
 
 function TableView({ table }: { table: Table }) {
   const wide = useLayoutClass() === "wide";
+  const { may } = useSession();
+  const rowsIn = new Set(table.rows.filter(({ included }) => included).map(({ number }) => number));
   const out = table.rows.filter(({ included }) => !included);
+  const against = table.rows.filter(({ included, reason }) => included && reason);
   const address = `/api/tables/${table.slug}`;
   const origin = typeof window === "undefined" ? "" : window.location.origin;
   return (
@@ -85,7 +88,7 @@ function TableView({ table }: { table: Table }) {
           <View style={styles.buttons}>
             <Button label="CSV" kind="filled" icon="tray-arrow-down" href={`${address}.csv`} />
             <Button label="JSON" icon="tray-arrow-down" href={`${address}.json`} />
-            <Button label="BibTeX" icon="tray-arrow-down" href={`${address}.bib`} />
+            <Button label=".bib" icon="tray-arrow-down" href={`${address}.bib`} />
           </View>
           <Dense muted>Anyone can fetch it, without an account:</Dense>
           <Mono style={styles.curl}>{`curl -O ${origin}${address}.csv`}</Mono>
@@ -99,25 +102,43 @@ function TableView({ table }: { table: Table }) {
       </Notice>
       <View style={styles.stackSmall}>
         <Section>Rows</Section>
-        <TableRows constraints={table.constraints} />
+        <TableRows constraints={table.constraints.filter(({ number }) => rowsIn.has(number))} />
       </View>
+      {against.length > 0 ? (
+        <View style={styles.stackSmall}>
+          <Block level={2}>In against the proposal</Block>
+          <Reasons rows={against} />
+        </View>
+      ) : null}
       <View style={styles.stackSmall}>
         <Block level={2}>Left out</Block>
         {out.length === 0 ? (
           <Dense muted>Every row of the filter is in.</Dense>
         ) : (
-          out.map(({ number, reason, proposed }) => (
-            <Dense key={number}>
-              <Mono>{number}</Mono>: {reason}
-              {proposed ? "" : " (chosen by hand)"}
-            </Dense>
-          ))
+          <Reasons rows={out} />
         )}
       </View>
       <View style={styles.buttons}>
-        <Button label="Build another from this filter" icon="table-large-plus" href="/tables/new" />
-        {table.ownedByMe ? <Delete table={table} /> : null}
+        <Button label="Build another table" icon="table-large-plus" href="/tables/new" />
+        {may("deleteTable", table.ownedByMe) ? <Delete table={table} /> : null}
       </View>
+    </View>
+  );
+}
+
+/** Rows with the reason of each, and whether a person gave it. */
+function Reasons({ rows }: { rows: Table["rows"] }) {
+  return (
+    <View role="list" style={styles.stackSmall}>
+      {rows.map(({ number, reason, proposed }) => (
+        <View key={number} role="listitem">
+          <Dense>
+            <Mono>{number}</Mono>
+            {reason ? `: ${reason}` : ": hidden until your second reading is stored"}
+            {proposed ? "" : " (chosen by hand)"}
+          </Dense>
+        </View>
+      ))}
     </View>
   );
 }
@@ -127,7 +148,8 @@ function Delete({ table }: { table: Table }) {
   const [asking, setAsking] = useState(false);
   const [failure, setFailure] = useState<string | null>(null);
   const [remove, { loading }] = useMutation(DeleteTableDocument, {
-    refetchQueries: [TableListDocument],
+    // The list of tables is asked anew when it is next shown.
+    update: (cache) => void cache.evict({ id: "ROOT_QUERY", fieldName: "fittingTables" }),
   });
   async function confirm() {
     setAsking(false);
