@@ -1,7 +1,7 @@
 import type { Background } from "~shared/cosmology/background";
 import type { FitFamily } from "~shared/inference/families";
 import type { Predictor } from "~shared/inference/predictor";
-import { CompiledTable, type ModelRequests } from "~shared/likelihood/compile";
+import type { CompiledTable, ModelRequests } from "~shared/likelihood/compile";
 
 /** Derived quantities of every fit, in this order. */
 export const DERIVED_NAMES = ["tau", "tauEarly", "midpoint", "duration"] as const;

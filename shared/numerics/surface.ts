@@ -25,9 +25,14 @@ export class Surface {
   private readonly low1: number;
   private readonly w0 = new Float64Array(STENCIL);
   private readonly w1 = new Float64Array(STENCIL);
+  /** The grid at one value of the first variable: a grid of fits asks for the same one many times. */
+  private readonly line: Float64Array;
+  private lastFirst = Number.NaN;
+  private lineOf = Number.NaN;
 
   private constructor(box: Rectangle, grid: Float64Array, n0: number, n1: number) {
     this.grid = grid;
+    this.line = new Float64Array(n1);
     this.n0 = n0;
     this.n1 = n1;
     this.low0 = box.low[0];
@@ -59,26 +64,34 @@ export class Surface {
 
   /** Value at (a, b), which must lie in the box (not checked). */
   value(a: number, b: number): number {
-    const s0 = (a - this.low0) * this.perStep0;
+    const { n1, w1, line } = this;
     const s1 = (b - this.low1) * this.perStep1;
-    const i0 = start(s0, this.n0);
-    const i1 = start(s1, this.n1);
-    lagrange(s0 - i0, this.w0);
-    lagrange(s1 - i1, this.w1);
-    const { grid, n1, w0, w1 } = this;
-    let sum = 0;
-    for (let i = 0; i < STENCIL; i++) {
-      const at = (i0 + i) * n1 + i1;
-      sum +=
-        w0[i]! *
-        (w1[0]! * grid[at]! +
-          w1[1]! * grid[at + 1]! +
-          w1[2]! * grid[at + 2]! +
-          w1[3]! * grid[at + 3]! +
-          w1[4]! * grid[at + 4]! +
-          w1[5]! * grid[at + 5]!);
+    const i1 = start(s1, n1);
+    lagrange(s1 - i1, w1);
+    if (a === this.lastFirst) {
+      if (a !== this.lineOf) this.drawLine(a);
+      return join(line, i1, w1);
     }
+    this.lastFirst = a;
+    const s0 = (a - this.low0) * this.perStep0;
+    const i0 = start(s0, this.n0);
+    lagrange(s0 - i0, this.w0);
+    let sum = 0;
+    for (let i = 0; i < STENCIL; i++) sum += this.w0[i]! * join(this.grid, (i0 + i) * n1 + i1, w1);
     return sum;
+  }
+
+  private drawLine(a: number): void {
+    const { grid, line, n1, w0 } = this;
+    const s0 = (a - this.low0) * this.perStep0;
+    const i0 = start(s0, this.n0);
+    lagrange(s0 - i0, w0);
+    for (let j = 0; j < n1; j++) {
+      let sum = 0;
+      for (let i = 0; i < STENCIL; i++) sum += w0[i]! * grid[(i0 + i) * n1 + j]!;
+      line[j] = sum;
+    }
+    this.lineOf = a;
   }
 
   /** Largest error over places between the nodes, denser towards the corners where it is largest. */
@@ -94,6 +107,18 @@ export class Surface {
     }
     return worst;
   }
+}
+
+/** Six neighbours from `at` on, weighted. */
+function join(values: Float64Array, at: number, w: Float64Array): number {
+  return (
+    w[0]! * values[at]! +
+    w[1]! * values[at + 1]! +
+    w[2]! * values[at + 2]! +
+    w[3]! * values[at + 3]! +
+    w[4]! * values[at + 4]! +
+    w[5]! * values[at + 5]!
+  );
 }
 
 function start(s: number, n: number): number {
