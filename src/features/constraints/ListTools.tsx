@@ -17,11 +17,22 @@ type AddressFilter = ReturnType<typeof useAddressFilter>;
 /** The search text, put into the address when typing rests. */
 export function SearchField({ address }: { address: AddressFilter }) {
   const { filter, setFilter } = address;
-  const [text, setText] = useState(filter.text ?? "");
-  useEffect(() => setText(filter.text ?? ""), [filter.text]);
+  const kept = filter.text ?? "";
+  const [text, setText] = useState(kept);
+  const [seen, setSeen] = useState(kept);
+  const [sent, setSent] = useState<string | null>(null);
+  if (seen !== kept) {
+    setSeen(kept);
+    // What was typed after it was sent must not be undone by its own arrival in the address.
+    if (kept !== sent) setText(kept);
+  }
+  function send() {
+    setSent(text.trim());
+    setFilter({ ...filter, text });
+  }
   useEffect(() => {
-    if (text.trim() === (filter.text ?? "")) return undefined;
-    const timer = setTimeout(() => setFilter({ ...filter, text }), 350);
+    if (text.trim() === kept) return undefined;
+    const timer = setTimeout(send, 350);
     return () => clearTimeout(timer);
     // Only typing starts the clock; a filter set elsewhere must not send an old text.
     // eslint-disable-next-line react-hooks/exhaustive-deps
@@ -33,7 +44,7 @@ export function SearchField({ address }: { address: AddressFilter }) {
       onChangeText={setText}
       inputMode="search"
       maxLength={200}
-      onSubmit={() => setFilter({ ...filter, text })}
+      onSubmit={send}
     />
   );
 }

@@ -120,6 +120,15 @@ describe.each(WIDTHS)("the list at %i points", (width) => {
     expect(Object.fromEntries(file.searchParams)).toEqual(route.params);
   });
 
+  it("puts the search into the address when typing rests", async () => {
+    show(<ConstraintsScreen />, { width, roles: null, mocks: [list([listed("FL-0042")])] });
+    fireEvent.change(await screen.findByLabelText("Search"), { target: { value: "Corrie" } });
+    expect(router.setParams).not.toHaveBeenCalled();
+    await waitFor(() =>
+      expect(router.setParams).toHaveBeenCalledWith(expect.objectContaining({ q: "Corrie" })),
+    );
+  });
+
   it("says what to do when nothing matches, and clears the filter in the address", async () => {
     route.params = { family: "dampingWing" };
     show(<ConstraintsScreen />, { width, roles: null, mocks: [list([])] });
