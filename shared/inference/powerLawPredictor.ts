@@ -18,8 +18,15 @@ export function powerLawPredictor(
   zEarly: number,
 ): Predictor {
   const { points, binLows, binHighs } = requests;
-  const depths = depthSurfaces(requests, background, parameters, (zEnd, alpha) =>
-    powerLawHistory({ zEnd, alpha, zEarly }),
+  // Optical depths go roughly as 1/(1 + α): in ln(1 + α) they are as smooth as in z_end.
+  const [ends, exponents] = parameters;
+  const smooth = {
+    name: "ln(1 + alpha)",
+    low: log1p(exponents!.low),
+    high: log1p(exponents!.high),
+  };
+  const depths = depthSurfaces(requests, background, [ends!, smooth], (zEnd, logAlpha) =>
+    powerLawHistory({ zEnd, alpha: expm1(logAlpha), zEarly }),
   );
   const roots = rootsPredictor(requests, background);
   return (theta, out) => {
@@ -38,7 +45,8 @@ export function powerLawPredictor(
         ionizedAbove(low, zEnd, zEarly, alpha) - ionizedAbove(high, zEnd, zEarly, alpha);
       out[at++] = max(0, 1 - ionized / (high - low));
     }
-    for (let i = 0; i < depths.length; i++) out[at++] = depths[i]!(zEnd, alpha);
+    const logAlpha = log1p(alpha);
+    for (let i = 0; i < depths.length; i++) out[at++] = depths[i]!(zEnd, logAlpha);
     roots((f) => zEarly - span * exp(log1p(-f) / alpha), out);
   };
 }

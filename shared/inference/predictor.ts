@@ -57,7 +57,7 @@ export function rootsPredictor(
 }
 
 /** How well an interpolated optical depth must agree with the integral, relative to its largest. */
-const DEPTH_TOLERANCE = 1e-9;
+const DEPTH_TOLERANCE = 1e-8;
 
 /**
  * Optical depths of a two-parameter family by interpolation over the prior's box, each checked against

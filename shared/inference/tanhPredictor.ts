@@ -24,6 +24,8 @@ const RULES = [
 interface Bin {
   readonly low: number;
   readonly width: number;
+  readonly yLow: number;
+  readonly yHigh: number;
   readonly nodes: ({ y: Float64Array; weights: Float64Array } | null)[];
 }
 
@@ -46,7 +48,7 @@ function tabulatedLogistic(t: number): number {
 
 /**
  * The tanh family without objects: one exponential a point, optical depths from a surface over the
- * prior's box. Agrees with tanhHistory to 1e-10 in x and 1e-9 in optical depth.
+ * prior's box. Agrees with tanhHistory to 1e-10 in x and 1e-8 of the largest optical depth.
  */
 export function tanhPredictor(
   requests: ModelRequests,
@@ -57,6 +59,8 @@ export function tanhPredictor(
   const bins: Bin[] = Array.from(requests.binLows, (low, i) => ({
     low,
     width: requests.binHighs[i]! - low,
+    yLow: (1 + low) * sqrt(1 + low),
+    yHigh: (1 + requests.binHighs[i]!) * sqrt(1 + requests.binHighs[i]!),
     nodes: RULES.map(() => null),
   }));
   const depths = depthSurfaces(requests, background, parameters, (zRe, deltaZ) =>
@@ -87,8 +91,12 @@ export function tanhPredictor(
 }
 
 function binMean(bin: Bin, yRe: number, rate: number, deltaZ: number): number {
-  let r = 0;
-  while (r < RULES.length - 1 && bin.width > RULES[r]!.widest * deltaZ) r++;
+  const tLow = rate * (bin.yLow - yRe);
+  if (tLow > 30) return 1;
+  // Far below the transition the mean is under 1e-11 and one panel says so.
+  const negligible = rate * (bin.yHigh - yRe) < -26;
+  let r = negligible ? 2 : 0;
+  while (!negligible && r < RULES.length - 1 && bin.width > RULES[r]!.widest * deltaZ) r++;
   const { y, weights } = (bin.nodes[r] ??= nodesOf(bin, RULES[r]!));
   let sum = 0;
   for (let k = 0; k < y.length; k++) sum += weights[k]! * tabulatedLogistic(rate * (y[k]! - yRe));
