@@ -1,5 +1,6 @@
 import { registerEnumType } from "type-graphql";
 
+import { CONSTRAINT_SORTS } from "~shared/filter/filter";
 import { METHOD_FAMILIES, type MethodFamily } from "~shared/methods/vocabulary";
 import {
   RECORD_STATES,
@@ -10,6 +11,7 @@ import {
   type Role,
 } from "~shared/review/states";
 import * as fields from "~shared/statement/fields";
+import { FINDING_GRADES } from "~shared/statement/rules";
 
 /** A GraphQL enum from one of shared's word lists; value and name are the same word. */
 function enumOf<T extends string>(name: string, words: readonly T[]): Record<T, T> {
@@ -40,11 +42,5 @@ export const MethodFamilyEnum = enumOf<MethodFamily>("MethodFamily", METHOD_FAMI
 export const RevisionStateEnum = enumOf<RevisionState>("RevisionState", REVISION_STATES);
 export const RecordStateEnum = enumOf<RecordState>("RecordState", RECORD_STATES);
 export const RoleEnum = enumOf<Role>("Role", ROLES);
-export const FindingGradeEnum = enumOf("FindingGrade", ["error", "mustAnswer", "note"] as const);
-export const ConstraintSortEnum = enumOf("ConstraintSort", [
-  "redshift",
-  "redshiftDescending",
-  "newest",
-  "year",
-  "number",
-] as const);
+export const FindingGradeEnum = enumOf("FindingGrade", FINDING_GRADES);
+export const ConstraintSortEnum = enumOf("ConstraintSort", CONSTRAINT_SORTS);

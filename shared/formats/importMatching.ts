@@ -26,7 +26,6 @@ export {
   isWordField,
   proposeColumns,
   proposeWords,
-  wordChoices,
 } from "./importFields";
 export type { ColumnMatch, ImportField, WordField } from "./importFields";
 

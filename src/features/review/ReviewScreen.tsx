@@ -29,7 +29,6 @@ import {
   type ReviewPartsFragment,
   StoreReadingDocument,
 } from "~graphql/generated/graphql";
-import { readingMissing } from "~shared/review/reading";
 import { CLAIM_HOURS } from "~shared/review/states";
 import { emptyFields, type FieldName } from "~shared/statement/fields";
 import { isOpen } from "~shared/statement/relevant";
@@ -39,7 +38,7 @@ import { Answers, type CommentDraft, Decision } from "./Decision";
 import { Difference } from "./Difference";
 import { PaperCard } from "./PaperCard";
 import { ReadingStep } from "./ReadingStep";
-import { fieldName } from "./readingText";
+import { fieldName, stillToRead } from "./readingText";
 import { useReading } from "./useReading";
 import { type ReviewActions, useReview } from "./useReview";
 
@@ -172,7 +171,7 @@ function Work({ review, actions, onReload }: WorkProps) {
     }
   };
 
-  const missing = readingMissing(reading.fields, review.fieldsToRead as FieldName[]);
+  const missing = stillToRead(reading.fields, review.fieldsToRead as FieldName[]);
   const storeReading = async () => {
     // Only what is asked for leaves the browser.
     const asked = emptyFields() as unknown as Record<string, unknown>;
@@ -447,7 +446,11 @@ function leftWords(
 ): string {
   const typed = asked.filter((name) => !isOpen(fields, name as FieldName)).length;
   const kept = typed > 0 ? `Draft kept, ${typed} typed.` : "Nothing typed yet.";
-  if (missing.length === 0) return `${kept} All that is asked is read.`;
+  if (missing.length === 0) {
+    return typed > 0
+      ? `${kept} All that is asked is read.`
+      : `${kept} What stays open is read as not given.`;
+  }
   const names = missing.slice(0, 3).map((name) => fieldName(name).toLowerCase());
   const more = missing.length - names.length;
   return `${kept} To read: ${names.join(", ")}${more > 0 ? ` and ${more} more` : ""}.`;

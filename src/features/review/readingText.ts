@@ -1,10 +1,32 @@
+import { readingMissing } from "~shared/review/reading";
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
-import { isNumberField } from "~shared/statement/relevant";
+import { isNumberField, isOpen } from "~shared/statement/relevant";
 import { CHOICE_WORDS, FIELD_NAMES } from "~shared/statement/words";
 
 /** A field's name in a sentence or a head; what is no field of the record is the paper itself. */
 export function fieldName(field: string): string {
   return FIELD_NAMES[field as FieldName] ?? "The paper";
+}
+
+/** Of a field that is asked alone, a paper may print nothing: the redshift has other ends, the limit another form. */
+const MAY_STAY_OPEN: ReadonlySet<FieldName> = new Set<FieldName>([
+  "value",
+  "limitBase",
+  "limitSigma",
+  "z",
+  "zLow",
+  "zHigh",
+]);
+
+/** What an editor has yet to type before the reading can be stored. */
+export function stillToRead(
+  reading: ConstraintFields,
+  asked: readonly FieldName[],
+): readonly FieldName[] {
+  // Asked again is only what changed or differed: the rest of the statement is not in this reading.
+  return asked.includes("quantity")
+    ? readingMissing(reading, asked)
+    : asked.filter((name) => isOpen(reading, name) && !MAY_STAY_OPEN.has(name));
 }
 
 export function isNumber(field: string): boolean {

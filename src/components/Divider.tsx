@@ -1,1 +1,0 @@
-export { Divider } from "./Card";

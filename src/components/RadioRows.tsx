@@ -1,1 +1,0 @@
-export { RadioRows } from "./CheckRow";

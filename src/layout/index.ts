@@ -1,1 +1,0 @@
-export { useLayoutClass, type LayoutClass } from "./useLayoutClass";
