@@ -220,6 +220,7 @@ describe.each(SIZE_NAMES)("the main job on a %s screen", (size) => {
     await entry(editor, "Minus").waitFor();
     expect(await entry(editor, "Quantity").count()).toBe(0);
     expect(await entry(editor, "Value").count()).toBe(0);
+    expect(await button(editor, "Store my reading").getAttribute("aria-disabled")).toBe("true");
     await look(editor, "13-again");
     await entry(editor, "Minus").fill(PRINTED.minus);
     await button(editor, "Store my reading").click();
