@@ -133,7 +133,6 @@ export function HistoryDrawing(props: HistoryChartProps & { legend?: ReactNode }
         logarithmic={props.logarithmic}
         phone={phone}
         colors={colors}
-        width={width}
         height={height}
       />
       {props.legend}
@@ -523,7 +522,6 @@ const Axes = memo(function Axes({
   logarithmic,
   phone,
   colors,
-  width,
   height,
 }: {
   frame: Frame;
@@ -533,7 +531,6 @@ const Axes = memo(function Axes({
   logarithmic: boolean;
   phone: boolean;
   colors: Colors;
-  width: number;
   height: number;
 }) {
   const { box, z, x } = frame;

@@ -1,4 +1,4 @@
-import { useEffect, useId, useState } from "react";
+import { useId, useState } from "react";
 import { StyleSheet, View } from "react-native";
 import { useColors } from "@/theme/ThemeProvider";
 import { fonts, target } from "@/theme/tokens";
@@ -36,7 +36,12 @@ export function Slider({
   const colors = useColors();
   const id = useId();
   const [typed, setTyped] = useState<string | null>(null);
-  useEffect(() => setTyped(null), [value]);
+  // A value that changed elsewhere ends what is being typed.
+  const [shown, setShown] = useState(value);
+  if (shown !== value) {
+    setShown(value);
+    setTyped(null);
+  }
   const filled = ((value - min) / (max - min)) * 100;
   const hue = tone ?? colors.primary;
   const name = context ? `${label}, ${context}` : label;

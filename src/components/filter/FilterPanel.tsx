@@ -1,4 +1,4 @@
-import { useEffect, useState } from "react";
+import { useState } from "react";
 import { StyleSheet, View } from "react-native";
 
 import { Button } from "@/components/Button";
@@ -44,12 +44,13 @@ function NumberField({
   onChange: (value: number | undefined) => void;
 }) {
   const [text, setText] = useState(value === undefined ? "" : String(value));
-  useEffect(() => {
-    setText((typed) => {
-      const same = typed.trim() === "" ? value === undefined : Number(typed) === value;
-      return same ? typed : value === undefined ? "" : String(value);
-    });
-  }, [value]);
+  // A filter that changed elsewhere replaces what stands here; the same number keeps its spelling.
+  const [shown, setShown] = useState(value);
+  if (shown !== value) {
+    setShown(value);
+    const same = text.trim() === "" ? value === undefined : Number(text) === value;
+    if (!same) setText(value === undefined ? "" : String(value));
+  }
   const number = Number(text.replace(",", "."));
   const readable =
     text.trim() === "" ||

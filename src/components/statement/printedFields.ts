@@ -57,7 +57,9 @@ export const METHOD_FIELDS: readonly FieldName[] = [
 ];
 
 const BY_CHOICE: ReadonlySet<FieldName> = new Set<FieldName>(
-  PRINTED_FIELDS.filter((name) => !["historyAssumed", "furtherIntervals", "printedText"].includes(name)),
+  PRINTED_FIELDS.filter(
+    (name) => !["historyAssumed", "furtherIntervals", "printedText"].includes(name),
+  ),
 );
 
 /**

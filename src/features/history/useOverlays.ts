@@ -1,4 +1,4 @@
-import { useMemo, useRef } from "react";
+import { useMemo, useState } from "react";
 import type { HistoryLook } from "@/charts/looks";
 import { HISTORY_LOOKS } from "@/charts/looks";
 import type { Background } from "~shared/cosmology/background";
@@ -18,25 +18,25 @@ export interface Overlay {
   score: HistoryScore;
 }
 
-/**
- * Computes what the visible models show. A model whose sliders rest keeps its numbers, so that a
- * move costs one history and its readouts.
- */
-export function useOverlays(
+type Entry = Pick<Overlay, "history" | "readout">;
+type Compute = (
   models: readonly Model[],
   decided: ScoredRows,
   background: Background,
-): readonly (Overlay | null)[] {
-  const known = useRef(new Map<string, { history: History; readout: Readout }>());
-  const scores = useRef(new WeakMap<ScoredRows, Map<History, HistoryScore>>());
-  return useMemo(() => {
+) => readonly (Overlay | null)[];
+
+/** Remembers the numbers of the models it computed last, by what their sliders say. */
+function rememberingCompute(): Compute {
+  let known = new Map<string, Entry>();
+  const scores = new WeakMap<ScoredRows, Map<History, HistoryScore>>();
+  return (models, decided, background) => {
     const names = modelNames(models);
-    const next = new Map<string, { history: History; readout: Readout }>();
-    const scored = scores.current.get(decided) ?? new Map<History, HistoryScore>();
+    const next = new Map<string, Entry>();
+    const scored = scores.get(decided) ?? new Map<History, HistoryScore>();
     const fresh = new Map<History, HistoryScore>();
     const overlays = models.map((model, index): Overlay | null => {
       const key = `${model.kind} ${Object.values(model.values).join(" ")}`;
-      let entry = next.get(key) ?? known.current.get(key);
+      let entry = next.get(key) ?? known.get(key);
       if (!entry) {
         const history = historyOfModel(model);
         entry = { history, readout: readoutOf(history, background) };
@@ -54,8 +54,22 @@ export function useOverlays(
         score,
       };
     });
-    known.current = next;
-    scores.current.set(decided, fresh);
+    known = next;
+    scores.set(decided, fresh);
     return overlays;
-  }, [models, decided, background]);
+  };
+}
+
+/**
+ * Computes what the visible models show. A model whose sliders rest keeps its numbers, so that a
+ * move costs one history and its readouts.
+ */
+export function useOverlays(
+  ...[models, decided, background]: Parameters<Compute>
+): ReturnType<Compute> {
+  const [compute] = useState(rememberingCompute);
+  return useMemo(
+    () => compute(models, decided, background),
+    [compute, models, decided, background],
+  );
 }
