@@ -582,7 +582,7 @@ const MAINTAINER: Situation[] = [
     name: "desk of a maintainer",
     async go(page) {
       await visit(page, "/desk", "Desk");
-      await link(page, "Caught mail").waitFor();
+      await link(page, /^Caught mail/).waitFor();
     },
   },
   {

@@ -25,12 +25,10 @@ const SHORT_ROLE: Record<string, string> = {
 export function Whereabouts({ fields }: { fields: ListedConstraint["fields"] }) {
   const z = fields.z ?? (fields.zLow && fields.zHigh ? `${fields.zLow} to ${fields.zHigh}` : null);
   if (z === null) {
-    return (
-      <Label numberOfLines={1}>{fields.quantity ? QUANTITY_WORDS[fields.quantity] : "Open"}</Label>
-    );
+    return <Label>{fields.quantity ? QUANTITY_WORDS[fields.quantity] : "Open"}</Label>;
   }
   return (
-    <Label numberOfLines={1}>
+    <Label>
       <SymbolText>z</SymbolText> = {z}
       {SHORT_ROLE[fields.zRole ?? ""] ?? ""}
     </Label>
