@@ -889,7 +889,7 @@ export type StatementKind =
 /** A revision as its contributor sees it. */
 export type Submission = {
   __typename?: 'Submission';
-  /** Unsent answer to this returned revision, if there is one. */
+  /** The revision that follows this one, if there is one: the answer to a return, or a later correction. */
   answeredBy: Maybe<Scalars['ID']['output']>;
   answers: Array<FindingAnswer>;
   changes: Array<FieldChange>;

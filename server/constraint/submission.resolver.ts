@@ -219,13 +219,16 @@ export class SubmissionResolver {
 
   @FieldResolver(() => ID, {
     nullable: true,
-    description: "Unsent answer to this returned revision, if there is one.",
+    description:
+      "The revision that follows this one, if there is one: the answer to a return, or a later correction.",
   })
   async answeredBy(
     @Ctx() ctx: RequestContext,
     @Root() { revision }: Submission,
   ): Promise<string | null> {
     const all = (await revisionsOf(ctx)(revision.constraintId)) ?? [];
-    return all.find((one) => one.followsId === revision.id && one.state === "draft")?.id ?? null;
+    return (
+      all.find((one) => one.followsId === revision.id && one.state !== "discarded")?.id ?? null
+    );
   }
 }

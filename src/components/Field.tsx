@@ -171,6 +171,7 @@ const styles = StyleSheet.create({
   input: { minHeight: 54, paddingHorizontal: space.s, paddingVertical: space.xs },
   text: { fontFamily: fonts.sans, fontSize: 16, lineHeight: 24 },
   numeric: { fontFamily: fonts.mono, fontSize: 17, lineHeight: 24 },
-  multiline: { paddingTop: space.m, textAlignVertical: "top" },
+  // A margin, since what scrolls would run under the label through a padding.
+  multiline: { marginTop: space.s, paddingTop: space.xxs, textAlignVertical: "top" },
   below: { flexDirection: "row", gap: 6, alignItems: "flex-start", paddingTop: 4, paddingLeft: 12 },
 });

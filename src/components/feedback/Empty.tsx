@@ -12,18 +12,21 @@ export function Empty({
   text,
   action,
   warm = false,
+  level = 2,
 }: {
   icon?: IconName;
   title: string;
   text: string;
   action?: ReactNode;
   warm?: boolean;
+  /** Level of its heading: 1 where it is the whole page. */
+  level?: 1 | 2;
 }) {
   const colors = useColors();
   return (
     <View style={styles.all}>
       <Icon name={icon} size={32} color={warm ? colors.ember : colors.muted} />
-      <Block level={2} style={styles.centre}>
+      <Block level={level} style={styles.centre}>
         {title}
       </Block>
       <Dense muted style={[styles.centre, styles.text]}>

@@ -3,6 +3,7 @@ import { View } from "react-native";
 
 import { Segments } from "@/components/Segments";
 import { Block } from "@/components/Text";
+import { useLayoutClass } from "@/layout/useLayoutClass";
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
 
 import { FieldInput, type SetField } from "./FieldInput";
@@ -27,6 +28,8 @@ export function PrintedEntry({ fields, set, asked, error, under, onBlur }: Print
   const { kind } = fields;
   const limit = kind === "upperLimit" || kind === "lowerLimit";
 
+  // Half a phone is too narrow for "One sigma (68.27 %)".
+  const phone = useLayoutClass() === "compact";
   const shown = (name: FieldName) => (asked?.(name) ?? true) && isRelevant(name, fields);
   const control = (name: FieldName, label?: string) => (
     <FieldInput
@@ -82,7 +85,14 @@ export function PrintedEntry({ fields, set, asked, error, under, onBlur }: Print
       ) : null}
       {limit ? <LimitEntry fields={fields} set={set} row={row} shown={shown} /> : null}
       {row(["bandLow", "Band from"], ["bandHigh", "Band to"])}
-      {row(["level", "Level"], ["levelPercent", "Level in percent"], ["estimator", "Estimator"])}
+      {phone ? (
+        <>
+          {row(["level", "Level"], ["levelPercent", "Level in percent"])}
+          {row(["estimator", "Estimator"])}
+        </>
+      ) : (
+        row(["level", "Level"], ["levelPercent", "Level in percent"], ["estimator", "Estimator"])
+      )}
       {row(["rangeLow", "From redshift"], ["rangeHigh", "To redshift"])}
       {row(["fraction", "At the fraction"])}
       {row(["fractionFrom", "From fraction"], ["fractionTo", "To fraction"])}

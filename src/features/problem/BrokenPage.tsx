@@ -19,6 +19,7 @@ function Broken({ error, retry }: { error: Error; retry: () => Promise<void> }) 
       <Empty
         icon="alert-outline"
         warm
+        level={1}
         title="This page could not be drawn"
         text={`Saved drafts are safe. Try again; if it happens once more, tell the maintainers this: “${error.message}”`}
         action={

@@ -160,7 +160,7 @@ function StateNotice({
             answeredBy ? (
               <Button
                 kind="filled"
-                label="Go on with your answer"
+                label="Go to your answer"
                 href={String(submissionLink(answeredBy))}
               />
             ) : (
@@ -189,7 +189,7 @@ function StateNotice({
               {answeredBy ? (
                 <Button
                   kind="outline"
-                  label="Go on with the new revision"
+                  label="Go to the newer revision"
                   href={String(submissionLink(answeredBy))}
                 />
               ) : (

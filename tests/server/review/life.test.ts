@@ -84,6 +84,7 @@ describe("a record's life", () => {
     expect(answered.comments[0].answer).toBe("Yes, a slip.");
     expect(answered.changes).toContainEqual({ field: "plus", before: "0.11", after: "0.17" });
     expect(await hers.submit(answer.id, 3)).toMatchObject({ state: "submitted" });
+    expect((await hers.submission(draft.id)).answeredBy).toBe(answer.id);
 
     // Only the changed field is read again.
     const again = await his.claim(answer.id);
