@@ -20,7 +20,7 @@ export interface Correction {
   at: string;
 }
 
-/** An editor's blind transcription of what the paper prints, one for each editor and revision. */
+/** An editor's blind reading of what the paper prints, one for each editor and revision. */
 @Entity("reading")
 @Unique("one_reading", ["revisionId", "editorId"])
 export class Reading {

@@ -184,7 +184,7 @@ export async function fieldsToRead(
 }
 
 /**
- * Stores the blind transcription, once. It must be complete by the editor's own choice of
+ * Stores the blind reading, once. It must be complete by the editor's own choice of
  * quantity and statement: the submitted ones are not known to them.
  */
 export async function storeReading(

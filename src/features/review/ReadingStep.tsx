@@ -10,7 +10,7 @@ import type { ConstraintFields, FieldName } from "~shared/statement/fields";
 
 import { fieldName } from "./readingText";
 
-/** The blind transcription: nothing is filled in, and only what is asked for is shown. */
+/** The blind reading: nothing is filled in, and only what is asked for is shown. */
 export function ReadingStep({
   fields,
   set,
