@@ -234,10 +234,11 @@ const NOBODY: Situation[] = [
   {
     who: "nobody",
     name: "table",
-    async go(page) {
+    async go(page, size) {
       await link(page, /^Damping wings, 6 to 8/).click();
       await heading(page, "Damping wings, 6 to 8").waitFor();
-      await page.getByRole("table", { name: "Rows of the table" }).waitFor();
+      const role = size === "phone" ? "list" : "table";
+      await page.getByRole(role, { name: "Rows of the table" }).waitFor();
     },
   },
   {
