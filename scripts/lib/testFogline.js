@@ -71,18 +71,18 @@ async function test({ projects, jest }, add) {
   for (const name of ["DATABASE_URL", "SMTP_URL", "PUBLIC_URL", "PORT", "DEMO", "FOGLINE_DATA"])
     delete environment[name];
 
-  // In two goes: browsers want the machine for themselves.
+  // In two goes: browsers and the many small files would starve each other.
   for (const group of [projects.filter((name) => name !== "e2e"), withBrowser ? ["e2e"] : []]) {
     if (group.length === 0) continue;
     const report = path.join(folder, `${group[0]}.json`);
     await step(`tests: ${group.join(", ")}`, () =>
-      runJest(group, jest, report, environment, group[0] === "e2e"),
+      runJest(group, jest, report, environment, group[0] === "e2e" ? ["--maxWorkers=2"] : []),
     );
     add(readCounts(report));
   }
 }
 
-async function runJest(projects, more, report, env, inBand) {
+async function runJest(projects, more, report, env, workers) {
   const args = [
     fromRoot("node_modules/jest/bin/jest.js"),
     ...["--selectProjects", ...projects],
@@ -90,7 +90,7 @@ async function runJest(projects, more, report, env, inBand) {
     "--passWithNoTests",
     ...["--json", "--outputFile", report],
     ...["--cacheDirectory", path.join(CACHE, "jest")],
-    ...(inBand ? ["--runInBand"] : []),
+    ...workers,
     ...more,
   ];
   // With --json the report would also go to the output; people read what goes to the error stream.

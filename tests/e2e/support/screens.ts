@@ -5,7 +5,6 @@ import type { Browser, Page } from "playwright-core";
 
 import {
   SCHEMES,
-  SIZE_NAMES,
   axeViolations,
   layoutProblems,
   openBrowser,
@@ -15,10 +14,10 @@ import {
   wear,
   type Size,
   type WatchedPage,
-} from "./support/browser";
-import { DEMONSTRATION_PASSWORD, startFogline, type Fogline } from "./support/fogline";
-import { ask, newcomer } from "./support/people";
-import { button, chooseMethod, entry, heading, link, typeStatement, visit } from "./support/steps";
+} from "./browser";
+import { DEMONSTRATION_PASSWORD, startFogline, type Fogline } from "./fogline";
+import { ask, newcomer } from "./people";
+import { button, chooseMethod, entry, heading, link, typeStatement, visit } from "./steps";
 
 /** Who looks: a person of the demonstration, nobody, or somebody with every role in an empty registry. */
 const VIEWERS = {
@@ -76,7 +75,7 @@ async function reviewOf(page: Page, wanted: "waiting" | "barred" | "mine"): Prom
   return `/desk/review/${found.id}`;
 }
 
-const SAMPLES = path.join(__dirname, "../fixtures/samples");
+const SAMPLES = path.join(__dirname, "../../fixtures/samples");
 const sample = (name: string, mimeType: string) => ({
   name,
   mimeType,
@@ -642,30 +641,24 @@ const EMPTY: Situation[] = (
 
 const SITUATIONS = [...NOBODY, ...READER, ...CONTRIBUTOR, ...EDITOR, ...MAINTAINER, ...EMPTY];
 
-let browser: Browser;
-let empty: Fogline;
-
-beforeAll(async () => {
-  browser = await openBrowser();
-  empty = await startFogline({ demonstration: false });
-});
-
-afterAll(async () => {
-  await browser?.close();
-  await empty?.stop();
-});
-
-describe.each(SIZE_NAMES)("on a %s screen", (size) => {
+/** Every screen at one size, as whoever sees it: whole, within reach of everybody, light and dark. */
+export function describeScreens(size: Size): void {
+  let browser: Browser;
+  let empty: Fogline;
   let demonstration: Fogline;
   const pages = new Map<Viewer, WatchedPage>();
 
   beforeAll(async () => {
+    browser = await openBrowser();
+    empty = await startFogline({ demonstration: false });
     demonstration = await startFogline();
   });
 
   afterAll(async () => {
     for (const { close } of pages.values()) await close();
+    await browser?.close();
     await demonstration?.stop();
+    await empty?.stop();
   });
 
   async function pageOf(who: Viewer): Promise<WatchedPage> {
@@ -706,4 +699,4 @@ describe.each(SIZE_NAMES)("on a %s screen", (size) => {
       expect(found).toEqual([]);
     },
   );
-});
+}

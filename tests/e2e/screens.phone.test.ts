@@ -1,0 +1,3 @@
+import { describeScreens } from "./support/screens";
+
+describeScreens("phone");
