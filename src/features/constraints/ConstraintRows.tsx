@@ -7,13 +7,13 @@ import { Press } from "@/components/Press";
 import { Caption, Dense, Label, SymbolText } from "@/components/Text";
 import { useColors } from "@/theme/ThemeProvider";
 import { space } from "@/theme/tokens";
-import type { ConstraintListQuery } from "~graphql/generated/graphql";
+import type { ListedPartsFragment } from "~graphql/generated/graphql";
 import { familyOf } from "~shared/methods/vocabulary";
 import { asUsed } from "~shared/statement/asUsed";
 import { notationAsPrinted, notationAsUsed } from "~shared/statement/notation";
 import { QUANTITY_WORDS } from "~shared/statement/words";
 
-export type ListedConstraint = ConstraintListQuery["constraints"]["constraints"][number];
+export type ListedConstraint = ListedPartsFragment;
 
 const SHORT_ROLE: Record<string, string> = {
   binAverage: ", bin",

@@ -1,13 +1,13 @@
 import type { ChartPoint } from "@/charts/HistoryChart";
 import { plainFields } from "@/components/statement/plainFields";
-import type { HistoryConstraintsQuery } from "~graphql/generated/graphql";
+import type { ListedPartsFragment } from "~graphql/generated/graphql";
 import { type PlanePoint, planePoint } from "~shared/chart/points";
 import { familyOf, type MethodFamily } from "~shared/methods/vocabulary";
 import { type AsUsed, asUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields } from "~shared/statement/fields";
 import { lineText, notationAsUsed, recordTitle } from "~shared/statement/notation";
 
-export type HistoryConstraint = HistoryConstraintsQuery["constraints"]["constraints"][number];
+export type HistoryConstraint = ListedPartsFragment;
 
 /** One record of the page: as the API gives it and as chart and engine take it. */
 export interface HistoryRow {

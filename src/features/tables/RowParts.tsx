@@ -3,14 +3,14 @@ import { StyleSheet, View } from "react-native";
 import { Marker } from "@/components/Marker";
 import { Caption, Dense, Mono } from "@/components/Text";
 import { space } from "@/theme/tokens";
-import type { TableCandidatesQuery } from "~graphql/generated/graphql";
+import type { ListedPartsFragment } from "~graphql/generated/graphql";
 import { FORM_WORDS, rowLikelihood } from "~shared/likelihood";
 import { familyOf } from "~shared/methods/vocabulary";
 import { asUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields } from "~shared/statement/fields";
 import { QUANTITY_WORDS } from "~shared/statement/words";
 
-export type TableConstraint = TableCandidatesQuery["constraints"]["constraints"][number];
+export type TableConstraint = ListedPartsFragment;
 
 const SHORT_ROLE: Partial<Record<string, string>> = {
   binAverage: "bin",
