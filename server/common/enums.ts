@@ -38,6 +38,7 @@ export const CosmicVarianceEnum = enumOf<fields.CosmicVariance>(
 );
 export const VersionReadEnum = enumOf<fields.VersionRead>("VersionRead", fields.VERSIONS_READ);
 export const DurationUnitEnum = enumOf<fields.DurationUnit>("DurationUnit", fields.DURATION_UNITS);
+export const CurveColumnEnum = enumOf<fields.CurveColumn>("CurveColumn", fields.CURVE_COLUMNS);
 export const MethodFamilyEnum = enumOf<MethodFamily>("MethodFamily", METHOD_FAMILIES);
 export const RevisionStateEnum = enumOf<RevisionState>("RevisionState", REVISION_STATES);
 export const RecordStateEnum = enumOf<RecordState>("RecordState", RECORD_STATES);

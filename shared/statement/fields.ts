@@ -62,6 +62,10 @@ export type VersionRead = (typeof VERSIONS_READ)[number];
 export const DURATION_UNITS = ["redshift", "myr"] as const;
 export type DurationUnit = (typeof DURATION_UNITS)[number];
 
+/** What the second column of a tabulated curve holds. */
+export const CURVE_COLUMNS = ["density", "lnLikelihood"] as const;
+export type CurveColumn = (typeof CURVE_COLUMNS)[number];
+
 export interface ConstraintFields {
   // Quantity
   quantity: Quantity | null;
@@ -80,6 +84,10 @@ export interface ConstraintFields {
   durationUnit: DurationUnit | null;
   /** History family and truncation an optical depth or duration was derived with, in words. */
   historyAssumed: string | null;
+  /** How helium was treated in an optical depth, in words. */
+  heliumAssumed: string | null;
+  /** Where the history or the integral was cut off, in words. */
+  truncationAssumed: string | null;
 
   // Redshift
   z: string | null;
@@ -96,6 +104,9 @@ export interface ConstraintFields {
   limitSigma: string | null;
   bandLow: string | null;
   bandHigh: string | null;
+  /** A tabulated curve as CSV text of two columns: the value as printed, then density or ln L. */
+  curveTable: string | null;
+  curveColumn: CurveColumn | null;
   level: Level | null;
   /** Percent, when level is "other"; 99.7, say. */
   levelPercent: string | null;
@@ -124,6 +135,16 @@ export interface ConstraintFields {
   // Groups: a label shared by the alternatives of one paper
   alternativesGroup: string | null;
   alternativesPreferred: boolean | null;
+
+  // Relations: record numbers ("FL-0012")
+  /** Records that this one takes the place of, once it is approved. */
+  supersedes: string[];
+  /** Records whose printed numbers this one corrects by the paper's own erratum. */
+  erratumOf: string[];
+  /** Records of the same data, analysed anew here. */
+  reanalysisOf: string[];
+  /** Records whose data contain those of this one. */
+  subsetOf: string[];
 
   // Provenance
   versionRead: VersionRead | null;
@@ -157,6 +178,8 @@ export function emptyFields(): ConstraintFields {
     fractionTo: null,
     durationUnit: null,
     historyAssumed: null,
+    heliumAssumed: null,
+    truncationAssumed: null,
     z: null,
     zLow: null,
     zHigh: null,
@@ -169,6 +192,8 @@ export function emptyFields(): ConstraintFields {
     limitSigma: null,
     bandLow: null,
     bandHigh: null,
+    curveTable: null,
+    curveColumn: null,
     level: null,
     levelPercent: null,
     estimator: null,
@@ -185,6 +210,10 @@ export function emptyFields(): ConstraintFields {
     dataKnown: null,
     alternativesGroup: null,
     alternativesPreferred: null,
+    supersedes: [],
+    erratumOf: [],
+    reanalysisOf: [],
+    subsetOf: [],
     versionRead: null,
     preprintVersion: null,
     place: null,

@@ -5,6 +5,7 @@ import type {
   ConditionKind,
   ConstraintFields,
   CosmicVariance,
+  CurveColumn,
   DurationUnit,
   Estimator,
   FieldName,
@@ -33,6 +34,8 @@ export const FIELD_NAMES: Record<FieldName, string> = {
   fractionTo: "To fraction",
   durationUnit: "Unit of the duration",
   historyAssumed: "History assumed",
+  heliumAssumed: "Helium assumed",
+  truncationAssumed: "Truncation assumed",
   z: "Redshift",
   zLow: "Low end of the redshift",
   zHigh: "High end of the redshift",
@@ -45,6 +48,8 @@ export const FIELD_NAMES: Record<FieldName, string> = {
   limitSigma: "Sigma of the limit base",
   bandLow: "Low end of the band",
   bandHigh: "High end of the band",
+  curveTable: "Curve",
+  curveColumn: "Second column of the curve",
   level: "Level",
   levelPercent: "Level in percent",
   estimator: "Estimator",
@@ -61,6 +66,10 @@ export const FIELD_NAMES: Record<FieldName, string> = {
   dataKnown: "Data known",
   alternativesGroup: "Alternatives group",
   alternativesPreferred: "Preferred alternative",
+  supersedes: "Supersedes",
+  erratumOf: "Erratum of",
+  reanalysisOf: "Re-analysis of",
+  subsetOf: "Subset of",
   versionRead: "Version read",
   preprintVersion: "Preprint version",
   place: "Place in the paper",
@@ -149,6 +158,11 @@ export const DURATION_UNIT_WORDS: Record<DurationUnit, string> = {
   myr: "Million years",
 };
 
+export const CURVE_COLUMN_WORDS: Record<CurveColumn, string> = {
+  density: "Probability density",
+  lnLikelihood: "ln L",
+};
+
 export const CONDITION_WORDS: Record<ConditionKind, string> = {
   cmb: "CMB",
   lymanAlpha: "Lyα data",
@@ -170,6 +184,7 @@ export const CHOICE_WORDS: Partial<Record<FieldName, Readonly<Record<string, str
   cosmicVariance: COSMIC_VARIANCE_WORDS,
   versionRead: VERSION_WORDS,
   durationUnit: DURATION_UNIT_WORDS,
+  curveColumn: CURVE_COLUMN_WORDS,
 };
 
 /** What "conditioned on" names: a kind of data in words, or a record's number as it is. */
