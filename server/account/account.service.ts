@@ -68,7 +68,8 @@ async function storeRegistration(
   // goes to the address, and must not open an account whose password somebody else chose before.
   const id =
     existing?.id ??
-    (await manager.insert(User, { ...given, confirmedAt: null, orcid: null })).identifiers[0]?.id;
+    (await manager.insert(User, { ...given, furtherNames: [], confirmedAt: null, orcid: null }))
+      .identifiers[0]?.id;
   if (existing) await manager.update(User, { id }, given);
   const token = await issueToken(manager, String(id), "confirm");
   await queueMail(manager, confirmMail(given, publicUrl, token));

@@ -11,7 +11,7 @@ import {
 
 import { User } from "./user.entity";
 
-export type MailTokenPurpose = "confirm" | "reset";
+export type MailTokenPurpose = "confirm" | "reset" | "address" | "objection";
 
 /** A link sent by mail. Only the hash is kept: reading this table opens no account. */
 @Entity("mail_token")
@@ -30,6 +30,10 @@ export class MailToken {
   @ManyToOne(() => User, { onDelete: "CASCADE" })
   @JoinColumn({ name: "userId" })
   user!: Relation<User>;
+
+  /** The mail address that the link is about: the new one to confirm, or the old one to return to. */
+  @Column({ type: "varchar", length: 254, nullable: true })
+  address!: string | null;
 
   @Column({ type: "datetime", precision: 6 })
   expiresAt!: Date;

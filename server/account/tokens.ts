@@ -9,6 +9,8 @@ const HOUR_MS = 3_600_000;
 const LIFETIME_MS: Record<MailTokenPurpose, number> = {
   confirm: 48 * HOUR_MS,
   reset: HOUR_MS,
+  address: 48 * HOUR_MS,
+  objection: 14 * 24 * HOUR_MS,
 };
 
 /** Longer than any token of ours; anything beyond is not worth hashing. */

@@ -24,6 +24,10 @@ export class User {
   @Column({ type: "varchar", length: 120 })
   nameOnPapers!: string;
 
+  /** Other names under which this person has published; they keep an editor off such papers too. */
+  @Column({ type: "json" })
+  furtherNames!: string[];
+
   @Column({ type: "varchar", length: 19, nullable: true })
   orcid!: string | null;
 
@@ -39,6 +43,10 @@ export class User {
 
   @CreateDateColumn({ type: "datetime", precision: 6 })
   createdAt!: Date;
+
+  /** When the account was deleted. The row stays, for the records and the log name its id. */
+  @Column({ type: "datetime", precision: 6, nullable: true })
+  formerAt!: Date | null;
 
   @OneToMany(() => RoleGrant, (grant) => grant.user)
   roles!: Relation<RoleGrant>[];

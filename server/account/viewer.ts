@@ -10,6 +10,7 @@ export function viewerOf(user: User): ViewerIdentity {
     id: user.id,
     email: user.email,
     nameOnPapers: user.nameOnPapers,
+    furtherNames: user.furtherNames,
     orcid: user.orcid,
     roles: ROLES.filter((role) => held.has(role)),
   };

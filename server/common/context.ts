@@ -9,6 +9,8 @@ export interface ViewerIdentity {
   id: string;
   email: string;
   nameOnPapers: string;
+  /** Other names under which they have published. */
+  furtherNames: readonly string[];
   orcid: string | null;
   roles: readonly Role[];
 }

@@ -4,6 +4,7 @@ import { User } from "~server/account/user.entity";
 import { Citation, CitationGate } from "~server/citation/citation.entity";
 import { Constraint } from "~server/constraint/constraint.entity";
 import { Revision, RevisionData } from "~server/constraint/revision.entity";
+import { ErrorReport, ErrorReportMessage } from "~server/errorReport/errorReport.entity";
 import { EventHead, EventRecord } from "~server/event/event.entity";
 import { ImportMatch } from "~server/import/importMatch.entity";
 import { CaughtMailRow } from "~server/mail/caughtMail.entity";
@@ -39,4 +40,6 @@ export const entities = [
   Reading,
   FieldCommentRecord,
   SavedTable,
+  ErrorReport,
+  ErrorReportMessage,
 ];

@@ -21,6 +21,7 @@ export function actingAs(database: DataSource, user: User, now = new Date()): Ac
       id: user.id,
       email: user.email,
       nameOnPapers: user.nameOnPapers,
+      furtherNames: user.furtherNames,
       orcid: user.orcid,
       roles: user.roles.map((grant) => grant.role),
     },

@@ -18,7 +18,9 @@ const hashes = new Map<string, Promise<string>>();
 export async function buildUser(
   manager: EntityManager,
   roles: readonly Role[] = [],
-  overrides: Partial<Pick<User, "email" | "nameOnPapers" | "orcid" | "confirmedAt">> & {
+  overrides: Partial<
+    Pick<User, "email" | "nameOnPapers" | "furtherNames" | "orcid" | "confirmedAt">
+  > & {
     password?: string;
   } = {},
 ): Promise<User> {
@@ -29,6 +31,7 @@ export async function buildUser(
     manager.create(User, {
       email: `${randomUUID()}@fogline.example`,
       nameOnPapers: "Mirelle Ostrander",
+      furtherNames: [],
       orcid: null,
       passwordHash: await hash,
       confirmedAt: new Date(),

@@ -1,6 +1,10 @@
 import type { MigrationInterface } from "typeorm";
 
 import { Schema1796111633401 } from "./1796111633401-Schema";
+import { PeopleAndReports1796130000008 } from "./1796130000008-PeopleAndReports";
 
 /** Every migration, oldest first. A list, not a glob: it is the same under swc, Jest and build/. */
-export const migrations: (new () => MigrationInterface)[] = [Schema1796111633401];
+export const migrations: (new () => MigrationInterface)[] = [
+  Schema1796111633401,
+  PeopleAndReports1796130000008,
+];

@@ -13,11 +13,11 @@ async function main(): Promise<void> {
   const database = createDataSource(process.env.DATABASE_URL ?? "");
   await database.initialize();
   const user = await database.manager.findOneByOrFail(User, { id: ownerId });
-  const { id, email, nameOnPapers, orcid } = user;
+  const { id, email, nameOnPapers, furtherNames, orcid } = user;
   const outcome = await runImport(
     {
       database,
-      viewer: { id, email, nameOnPapers, orcid, roles: ["contributor"] },
+      viewer: { id, email, nameOnPapers, furtherNames, orcid, roles: ["contributor"] },
       now: new Date(),
       licence: "CC BY 4.0",
       publicUrl: "http://fogline.test",
