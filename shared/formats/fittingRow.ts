@@ -1,10 +1,9 @@
 /** A row of a fitting table as every file hands it out, and its columns. */
-import { familiesOf } from "~shared/methods/vocabulary";
-import type { AsUsed } from "~shared/statement/asUsed";
 import type { SettledRow } from "~shared/table/settleTable";
 
 import type { FileCell, FileColumn, FileRow } from "./columnFile/columnFile";
 import type { ExportRow } from "./exportRow";
+import { listCell, RECORD_COLUMNS, recordCells } from "./recordColumns";
 
 /** A record with what the table decided about it. */
 export interface FittingRow {
@@ -15,202 +14,42 @@ export interface FittingRow {
 }
 
 interface Column extends FileColumn {
-  cell(row: FittingRow, used: AsUsed | null): FileCell;
+  cell(row: FittingRow): FileCell;
 }
 
-const list = (words: readonly string[]): string | null =>
-  words.length === 0 ? null : words.join("; ");
-
-function likelihoodForm({ settled }: FittingRow): string | null {
-  return "leftOut" in settled.likelihood ? null : settled.likelihood.form;
-}
-
-const text = (
-  name: string,
-  meaning: string,
-  cell: Column["cell"],
-  more: Partial<FileColumn> = {},
-): Column => ({ name, meaning, kind: "text", cell, ...more });
-
-const flag = (name: string, meaning: string, cell: Column["cell"]): Column => ({
+const text = (name: string, meaning: string, cell: Column["cell"], ucd?: string): Column => ({
   name,
   meaning,
-  kind: "flag",
-  ucd: "meta.code",
+  kind: "text",
   cell,
+  ...(ucd === undefined ? {} : { ucd }),
 });
 
-const decimal = (name: string, meaning: string, ucd: string, cell: Column["cell"]): Column => ({
-  name,
-  meaning,
-  kind: "decimal",
-  ucd,
-  cell,
-});
-
-const double = (name: string, meaning: string, ucd: string, cell: Column["cell"]): Column => ({
-  name,
-  meaning,
-  kind: "double",
-  ucd,
-  cell,
-});
-
-/**
- * Columns in their order. A limit is told by its kind and its flags, never by a number; an empty cell means that
- * nothing is stated. A number whose unit depends on the quantity (a fraction, an optical depth, a redshift, or
- * million years where duration_unit says so) carries none.
- */
-export const FITTING_COLUMNS: readonly Column[] = [
-  text("record", "Number of the record", ({ record }) => record.number, {
-    ucd: "meta.id;meta.main",
-  }),
-  text("revision", "Number with revision, to be quoted", ({ record }) => record.quotable, {
-    ucd: "meta.id",
-  }),
-  text("citation_key", "Key in the .bib file", ({ record }) => record.citation.key, {
-    ucd: "meta.bib",
-  }),
-  text("citation", "Short reference", ({ record }) => record.citation.shortName, {
-    ucd: "meta.bib.author",
-  }),
-  {
-    name: "year",
-    meaning: "Year of the paper",
-    kind: "integer",
-    ucd: "time.publiYear",
-    unit: "a",
-    cell: ({ record }) => record.citation.year,
-  },
-  text("doi", "DOI", ({ record }) => record.citation.doi, { ucd: "meta.ref.doi" }),
-  text("arxiv", "arXiv number", ({ record }) => record.citation.arxiv, { ucd: "meta.id" }),
-  text("bibcode", "Bibcode", ({ record }) => record.citation.bibcode, { ucd: "meta.bib.bibcode" }),
-  text("method_families", "Families of the methods", ({ record }) =>
-    list(familiesOf(record.fields.methodTags)),
-  ),
-  text("methods", "Tags of the methods", ({ record }) => list(record.fields.methodTags)),
-  text("quantity", "Quantity", ({ record }) => record.fields.quantity, { ucd: "meta.code.class" }),
-  text("duration_unit", "Unit of a duration: redshift or myr", (_, used) =>
-    used?.quantity === "duration" ? used.durationUnit : null,
-  ),
-  text("weighting", "Volume- or mass-weighted, or unknown", (_, used) =>
-    used?.quantity === "neutralFraction" ? used.weighting : null,
-  ),
-  double("z", "Redshift", "src.redshift", (_, used) => used?.z ?? null),
-  double(
-    "z_low",
-    "Low end of the redshift",
-    "src.redshift;stat.min",
-    (_, used) => used?.zLow ?? null,
-  ),
-  double(
-    "z_high",
-    "High end of the redshift",
-    "src.redshift;stat.max",
-    (_, used) => used?.zHigh ?? null,
-  ),
-  text("z_role", "What the redshift stands for", (_, used) => used?.zRole ?? null),
+/** What the table adds to a record. */
+const DECIDED_COLUMNS: readonly Column[] = [
   text(
     "z_treatment",
     "How a history meets it: point, binMean, averagedLikelihood",
     ({ settled }) => ("leftOut" in settled.likelihood ? null : settled.likelihood.redshift),
   ),
-  double(
-    "range_low",
-    "Optical depth from this redshift",
-    "src.redshift;stat.min",
-    (_, used) => used?.rangeLow ?? null,
+  {
+    name: "level",
+    meaning: "Level as a probability: as printed, or as decided where none is",
+    kind: "double",
+    ucd: "stat.confidenceLevel",
+    cell: ({ settled }) => settled.used?.level ?? settled.options.level ?? null,
+  },
+  {
+    name: "level_decided",
+    meaning: "True where the table decided on the level",
+    kind: "flag",
+    ucd: "meta.code",
+    cell: ({ settled: { used, options } }) =>
+      used && used.level === null && options.level !== undefined,
+  },
+  text("likelihood", "Form of the likelihood", ({ settled }) =>
+    "leftOut" in settled.likelihood ? null : settled.likelihood.form,
   ),
-  double(
-    "range_high",
-    "Optical depth to this redshift",
-    "src.redshift;stat.max",
-    (_, used) => used?.rangeHigh ?? null,
-  ),
-  double(
-    "fraction",
-    "Neutral fraction of a redshift at a fraction",
-    "phys.abund",
-    (_, used) => used?.fraction ?? null,
-  ),
-  double(
-    "fraction_from",
-    "Duration from this neutral fraction",
-    "phys.abund",
-    (_, used) => used?.fractionFrom ?? null,
-  ),
-  double(
-    "fraction_to",
-    "Duration to this neutral fraction",
-    "phys.abund",
-    (_, used) => used?.fractionTo ?? null,
-  ),
-  text("used_kind", "Kind of statement as used", (_, used) => used?.kind ?? null),
-  flag(
-    "upper_limit",
-    "True for an upper limit as used",
-    (_, used) => used && used.kind === "upperLimit",
-  ),
-  flag(
-    "lower_limit",
-    "True for a lower limit as used",
-    (_, used) => used && used.kind === "lowerLimit",
-  ),
-  text(
-    "used_in",
-    "linear, or log10 of the neutral fraction",
-    (_, used) => used?.evaluatedIn ?? null,
-  ),
-  decimal("used_value", "Value or limit as used", "phys.abund", (_, used) => used?.value ?? null),
-  decimal(
-    "used_plus",
-    "Error above at the printed level",
-    "stat.error;stat.max",
-    (_, used) => used?.plus ?? null,
-  ),
-  decimal(
-    "used_minus",
-    "Error below at the printed level",
-    "stat.error;stat.min",
-    (_, used) => used?.minus ?? null,
-  ),
-  decimal(
-    "used_limit_base",
-    "Base of a limit with its own sigma",
-    "phys.abund",
-    (_, used) => used?.limitBase ?? null,
-  ),
-  decimal(
-    "used_limit_sigma",
-    "That sigma at the printed level",
-    "stat.error",
-    (_, used) => used?.limitSigma ?? null,
-  ),
-  decimal("used_low", "Low end of a band", "phys.abund;stat.min", (_, used) => used?.low ?? null),
-  decimal(
-    "used_high",
-    "High end of a band",
-    "phys.abund;stat.max",
-    (_, used) => used?.high ?? null,
-  ),
-  double(
-    "level",
-    "Level as a probability: as printed, or as decided where none is",
-    "stat.confidenceLevel",
-    ({ settled }, used) => used?.level ?? settled.options.level ?? null,
-  ),
-  flag(
-    "level_decided",
-    "True where the table decided on the level",
-    ({ settled }, used) => used && used.level === null && settled.options.level !== undefined,
-  ),
-  text("estimator", "What the value is", (_, used) => used?.estimator ?? null),
-  flag(
-    "derived",
-    "True when a number rests on more than an exact change of convention",
-    (_, used) => used?.derived ?? null,
-  ),
-  text("likelihood", "Form of the likelihood", likelihoodForm),
   text("likelihood_formula", "Its -2 ln L with the row's numbers", ({ settled }) =>
     "leftOut" in settled.likelihood ? null : settled.likelihood.formula,
   ),
@@ -220,42 +59,29 @@ export const FITTING_COLUMNS: readonly Column[] = [
     ({ settled }) => settled.formReason,
   ),
   text("mixture", "Alternatives that enter as one equal mixture", ({ settled }) => settled.mixture),
-  double(
-    "weight",
-    "Share in that mixture; 1 for a row by itself",
-    "stat.weight",
-    ({ settled }) => settled.weight,
-  ),
+  {
+    name: "weight",
+    meaning: "Share in that mixture; 1 for a row by itself",
+    kind: "double",
+    ucd: "stat.weight",
+    cell: ({ settled }) => settled.weight,
+  },
   text("correlated_set", "Correlated set it enters with", ({ setLabel }) => setLabel),
-  text("printed_text", "Exact printed text", ({ record }) => record.fields.printedText, {
-    ucd: "meta.note",
-  }),
-  text("printed_species", "Fraction printed", ({ record }) => record.fields.species),
-  text("printed_kind", "Kind of statement as printed", ({ record }) => record.fields.kind),
-  decimal(
-    "printed_value",
-    "Value or limit as printed",
-    "phys.abund",
-    ({ record }) => record.fields.value,
+  text(
+    "cautions",
+    "What to know about the row",
+    ({ settled }) => listCell(settled.cautions),
+    "meta.note",
   ),
-  text("printed_level", "Level as a word", ({ record }) => record.fields.level),
-  text("data_used", "Sightlines, fields, samples", ({ record }) => list(record.fields.dataUsed)),
-  flag(
-    "data_known",
-    "False when the paper does not say which data it used",
-    ({ record }) => record.fields.dataKnown,
-  ),
-  text("conditioned_on", "Records or kinds of data inside the result", ({ record }) =>
-    list(record.fields.conditionedOn),
-  ),
-  text("version_read", "published, preprint or erratum", ({ record }) => record.fields.versionRead),
-  text("place", "Where in the paper", ({ record }) => record.fields.place),
-  text("cautions", "What to know about the row", ({ settled }) => list(settled.cautions), {
-    ucd: "meta.note",
-  }),
 ];
+
+/** Columns of a fitting table in their order: those of the record, then what the table decided. */
+export const FITTING_COLUMNS: readonly FileColumn[] = [...RECORD_COLUMNS, ...DECIDED_COLUMNS];
 
 /** The cells of a row in the order of FITTING_COLUMNS. */
 export function fittingCells(row: FittingRow): FileRow {
-  return FITTING_COLUMNS.map((column) => column.cell(row, row.settled.used));
+  return [
+    ...recordCells(row.record, row.settled.used),
+    ...DECIDED_COLUMNS.map((column) => column.cell(row)),
+  ];
 }

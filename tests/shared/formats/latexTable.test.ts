@@ -129,6 +129,7 @@ describe("the columns of a fitting table", () => {
       used_minus: "0.10",
       printed_value: "0.30",
       level: 0.68,
+      printed_level_probability: 0.68,
       level_decided: false,
       upper_limit: false,
       likelihood: "quantileMatched",

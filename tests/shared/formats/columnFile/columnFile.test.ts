@@ -3,6 +3,7 @@ import Papa from "papaparse";
 import { ascii } from "~shared/formats/columnFile/ascii";
 import { byteByByte, fieldWidths } from "~shared/formats/columnFile/byteByByte";
 import { numberText, type FileColumn, type FileRow } from "~shared/formats/columnFile/columnFile";
+import { csv } from "~shared/formats/columnFile/csv";
 import { ecsv } from "~shared/formats/columnFile/ecsv";
 import { votable } from "~shared/formats/columnFile/votable";
 
@@ -78,6 +79,36 @@ describe("ecsv", () => {
     expect(seen).toEqual([]);
     await pieces.next();
     expect(seen).toEqual([0]);
+  });
+});
+
+describe("csv", () => {
+  it("gives every cell back to another parser, numbers as printed and a missing value empty", async () => {
+    const text = await whole(csv(HEAD, ROWS));
+    expect(text.startsWith("# Invented rows\r\n# All of it is invented.\r\n")).toBe(true);
+    const body = text.replace(/^#.*\r\n/gm, "");
+    const { data, errors } = Papa.parse<string[]>(body, { skipEmptyLines: true });
+    expect(errors).toEqual([]);
+    expect(data[0]).toEqual(HEAD.columns.map(({ name }) => name));
+    expect(data[1]?.slice(0, 5)).toEqual([
+      "FL-0001",
+      "7.10",
+      "0.7512345678901234",
+      "2024",
+      "false",
+    ]);
+    expect(data[2]).toEqual(["FL-0002", "5.9", "", "", "true", ""]);
+  });
+
+  it("lets no spreadsheet take a text for a formula", async () => {
+    expect(await whole(csv(HEAD, ROWS))).toContain('true,"\'="\r\n');
+  });
+
+  it("hands out its names before it reads a row", async () => {
+    const seen: number[] = [];
+    const pieces = csv(HEAD, watched(seen));
+    await pieces.next();
+    expect(seen).toEqual([]);
   });
 });
 
