@@ -1,7 +1,7 @@
-import type { EntityManager } from "typeorm";
+import { Not, type EntityManager } from "typeorm";
 
 import { requireViewer, type RequestContext } from "~server/common/context";
-import { done, refuse, type Done, type Refusal } from "~server/common/outcomes";
+import { done, refuse, Refusal, type Done } from "~server/common/outcomes";
 import { transact } from "~server/database/transaction";
 import { queueMail } from "~server/mail/outbox";
 import { limitKey, overLimit } from "~server/security/overLimit";
@@ -13,6 +13,8 @@ import { MailToken } from "./mailToken.entity";
 import { hashPassword, passwordMatches } from "./password";
 import {
   emailProblem,
+  furtherNamesOf,
+  furtherNamesProblem,
   nameProblem,
   normalEmail,
   normalName,
@@ -75,7 +77,7 @@ async function storeRegistration(
   await queueMail(manager, confirmMail(given, publicUrl, token));
 }
 
-const BAD_LINK = "This link has been used already, or is too old. Ask for a new one.";
+export const BAD_LINK = "This link has been used already, or is too old. Ask for a new one.";
 
 export async function confirmEmail(ctx: RequestContext, token: string): Promise<Done | Refusal> {
   return transact(ctx.database, async (manager) => {
@@ -104,7 +106,7 @@ export async function resendConfirmation(
   return done(`If ${email} waits to be confirmed, a new link is on its way to it.`);
 }
 
-function mailLimit(ctx: RequestContext, email: string): Promise<Refusal | null> {
+export function mailLimit(ctx: RequestContext, email: string): Promise<Refusal | null> {
   return overLimit(ctx, [
     ["mailPerCaller", ctx.ip],
     ["mailPerAddress", email],
@@ -149,24 +151,47 @@ export async function signIn(
   return viewerType(viewerOf(user));
 }
 
+/** Ends every session of this person, the present one included: the epoch moves on. */
+export async function signOutEverywhere(ctx: RequestContext): Promise<Done> {
+  const { id } = requireViewer(ctx);
+  await ctx.database.manager.increment(User, { id }, "sessionEpoch", 1);
+  await ctx.signOut();
+  return done("You are signed out on every device.");
+}
+
+/**
+ * The signed-in person, if the present password is right. Wrong ones count like failed sign-ins:
+ * a borrowed session must not be a way to try passwords.
+ *
+ * @param field - Name of the argument the password came in.
+ */
+export async function withOwnPassword(
+  ctx: RequestContext,
+  password: string,
+  field: string,
+): Promise<User | Refusal> {
+  const viewer = requireViewer(ctx);
+  const over = await overLimit(ctx, [["signInPerAddress", viewer.email]]);
+  if (over) return over;
+  const user = await ctx.database.manager.findOneByOrFail(User, { id: viewer.id });
+  const matches =
+    password.length <= 2 * PASSWORD_MAX &&
+    (await passwordMatches(ctx.config.passwordCost, user.passwordHash, password));
+  if (!matches) return refuse("PASSWORD_WRONG", "Your present password is not this one.", field);
+  await ctx.limits.signInPerAddress.forget(limitKey(viewer.email));
+  return user;
+}
+
 export async function changePassword(
   ctx: RequestContext,
   current: string,
   next: string,
 ): Promise<Done | Refusal> {
   const viewer = requireViewer(ctx);
-  const problem =
-    passwordProblem(next, viewer.email, "next") ??
-    // A borrowed session must not be a way to try passwords.
-    (await overLimit(ctx, [["signInPerAddress", viewer.email]]));
+  const problem = passwordProblem(next, viewer.email, "next");
   if (problem) return problem;
-
-  const user = await ctx.database.manager.findOneByOrFail(User, { id: viewer.id });
-  const matches =
-    current.length <= 2 * PASSWORD_MAX &&
-    (await passwordMatches(ctx.config.passwordCost, user.passwordHash, current));
-  if (!matches)
-    return refuse("PASSWORD_WRONG", "Your present password is not this one.", "current");
+  const user = await withOwnPassword(ctx, current, "current");
+  if (user instanceof Refusal) return user;
   if (current === next) {
     return refuse("PASSWORD_SAME", "The new password is the old one.", "next");
   }
@@ -187,7 +212,6 @@ export async function changePassword(
   if (!changed) {
     return refuse("PASSWORD_MOVED", "Your password was changed a moment ago. Sign in again.");
   }
-  await ctx.limits.signInPerAddress.forget(limitKey(viewer.email));
   await ctx.signIn(user.id, sessionEpoch);
   return done("Your password is changed, and your other sessions are ended.");
 }
@@ -235,7 +259,8 @@ export async function resetPassword(
       })
       .where("id = :id", { id: user.id })
       .execute();
-    await inside.delete(MailToken, { userId: user.id });
+    // A way to object against a change of address outlives whatever is done at the new one.
+    await inside.delete(MailToken, { userId: user.id, purpose: Not("objection") });
     await queueMail(inside, passwordChangedMail(user, ctx.config.publicUrl));
     return true;
   });
@@ -248,10 +273,12 @@ export async function updateProfile(
   ctx: RequestContext,
   name: string,
   orcid: string | null,
+  further: readonly string[] | null,
 ): Promise<Viewer | Refusal> {
   const viewer = requireViewer(ctx);
   const nameOnPapers = normalName(name);
-  const problem = nameProblem(nameOnPapers);
+  const furtherNames = furtherNamesOf(further ?? viewer.furtherNames, nameOnPapers);
+  const problem = nameProblem(nameOnPapers) ?? furtherNamesProblem(furtherNames);
   if (problem) return problem;
   const given = orcid?.trim() ?? "";
   const normal = given === "" ? null : normalizeOrcid(given.slice(0, 100));
@@ -262,6 +289,7 @@ export async function updateProfile(
       "orcid",
     );
   }
-  await ctx.database.manager.update(User, { id: viewer.id }, { nameOnPapers, orcid: normal });
-  return viewerType({ ...viewer, nameOnPapers, orcid: normal });
+  const profile = { nameOnPapers, furtherNames, orcid: normal };
+  await ctx.database.manager.update(User, { id: viewer.id }, profile);
+  return viewerType({ ...viewer, ...profile });
 }

@@ -15,13 +15,22 @@ export class Viewer {
   @Field(() => ID) id!: string;
   @Field(() => String) email!: string;
   @Field(() => String) nameOnPapers!: string;
+  @Field(() => [String], {
+    description:
+      "Other names under which this person has published; they keep an editor off such papers.",
+  })
+  furtherNames!: string[];
   @Field(() => String, { nullable: true }) orcid!: string | null;
   @Field(() => [RoleEnum]) roles!: Role[];
 }
 
 export function viewerType(viewer: ViewerIdentity): Viewer {
-  const { id, email, nameOnPapers, orcid, roles } = viewer;
-  return Object.assign(new Viewer(), { id, email, nameOnPapers, orcid, roles: [...roles] });
+  const { roles, furtherNames, ...rest } = viewer;
+  return Object.assign(new Viewer(), {
+    ...rest,
+    furtherNames: [...furtherNames],
+    roles: [...roles],
+  });
 }
 
 @ObjectType()

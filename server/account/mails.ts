@@ -58,3 +58,53 @@ export function roleMail(to: Addressee, role: Role, change: "granted" | "revoked
         `A maintainer took the role ${role} from your account. What you did in it stays.`,
       );
 }
+
+export function newAddressMail(
+  to: Pick<User, "nameOnPapers">,
+  address: string,
+  publicUrl: string,
+  token: string,
+): OutgoingMail {
+  return mail(
+    { email: address, nameOnPapers: to.nameOnPapers },
+    "Confirm your new address",
+    "Somebody, we hope you, wants this to be the mail address of their Fogline account. To confirm it, open",
+    `${publicUrl}/account/address?token=${token}`,
+    "The link works once and for 48 hours. If it was not you, do nothing.",
+  );
+}
+
+/** To an address that was asked for by one account and belongs to another. */
+export function addressTakenMail(to: Addressee, publicUrl: string): OutgoingMail {
+  return mail(
+    to,
+    "This address has an account already",
+    "Somebody, perhaps you, wanted to give this address to another Fogline account. It has an account already, and nothing was changed. Sign in to it at",
+    `${publicUrl}/account/sign-in`,
+    "If it was not you, do nothing.",
+  );
+}
+
+export function addressChangeMail(
+  to: Addressee,
+  address: string,
+  publicUrl: string,
+  token: string,
+): OutgoingMail {
+  return mail(
+    to,
+    "A change of your address was asked for",
+    `Somebody, we hope you, gave ${address} as the new address of your account. The account moves there once it is confirmed from there.`,
+    `If it was not you, object here: ${publicUrl}/account/object?token=${token}`,
+    "The link works for 14 days, also after the change: the account comes back to this address, every session ends, and you set a new password.",
+  );
+}
+
+export function accountDeletedMail(to: Addressee): OutgoingMail {
+  return mail(
+    to,
+    "Your account is deleted",
+    "Your Fogline account is deleted, with this address and your password. What you brought to the registry stays in it, as you chose.",
+    "You can register again at any time.",
+  );
+}

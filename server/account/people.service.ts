@@ -24,11 +24,12 @@ export async function findPeople(ctx: RequestContext, text: string): Promise<Per
   const query = ctx.database.manager
     .createQueryBuilder(User, "user")
     .leftJoinAndSelect("user.roles", "grant")
+    .where("user.formerAt is null")
     .orderBy("user.nameOnPapers")
     .addOrderBy("user.email")
     .take(LISTED);
   if (wanted !== "") {
-    query.where("user.nameOnPapers like :like or user.email like :mail", {
+    query.andWhere("(user.nameOnPapers like :like or user.email like :mail)", {
       like: `%${wanted}%`,
       mail: `%${wanted.toLowerCase()}%`,
     });
@@ -86,14 +87,19 @@ export async function revokeRole(
  * other, so that two maintainers can't take the role from each other at once.
  */
 async function requireMaintainer(manager: EntityManager, viewerId: string): Promise<RoleGrant[]> {
-  const maintainers = await manager
+  const maintainers = await lockMaintainers(manager);
+  if (!maintainers.some((grant) => grant.userId === viewerId)) throw forbidden();
+  return maintainers;
+}
+
+/** Every maintainer's grant, locked until the transaction ends. */
+export function lockMaintainers(manager: EntityManager): Promise<RoleGrant[]> {
+  return manager
     .createQueryBuilder(RoleGrant, "grant")
     .setLock("pessimistic_write")
     .where("grant.role = :role", { role: "maintainer" })
     .orderBy("grant.userId")
     .getMany();
-  if (!maintainers.some((grant) => grant.userId === viewerId)) throw forbidden();
-  return maintainers;
 }
 
 function findPerson(manager: EntityManager, id: string): Promise<User | null> {
@@ -102,7 +108,7 @@ function findPerson(manager: EntityManager, id: string): Promise<User | null> {
     .createQueryBuilder(User, "user")
     .setLock("pessimistic_write")
     .leftJoinAndSelect("user.roles", "grant")
-    .where("user.id = :id", { id })
+    .where("user.id = :id and user.formerAt is null", { id })
     .getOne();
 }
 

@@ -6,6 +6,7 @@ export const PASSWORD_MIN = 12;
 export const PASSWORD_MAX = 128;
 const EMAIL_MAX = 254;
 const NAME_MAX = 120;
+const FURTHER_NAMES_MAX = 10;
 
 /** The form an address is kept and looked up in. */
 export function normalEmail(email: string): string {
@@ -22,17 +23,31 @@ export function emailProblem(email: string): Refusal | null {
   return fits ? null : refuse("EMAIL_INVALID", "That is not a mail address.", "email");
 }
 
-export function nameProblem(name: string): Refusal | null {
-  if (name === "") return refuse("NAME_MISSING", "Give your name as on papers.", "nameOnPapers");
+export function nameProblem(name: string, field = "nameOnPapers"): Refusal | null {
+  if (name === "") return refuse("NAME_MISSING", "Give your name as on papers.", field);
   if (name.length > NAME_MAX) {
-    return refuse("NAME_TOO_LONG", `A name has at most ${NAME_MAX} characters.`, "nameOnPapers");
+    return refuse("NAME_TOO_LONG", `A name has at most ${NAME_MAX} characters.`, field);
   }
   if (/[\u0000-\u001f\u007f<>]/.test(name)) {
-    return refuse(
-      "NAME_INVALID",
-      "A name has no line breaks and no angle brackets.",
-      "nameOnPapers",
-    );
+    return refuse("NAME_INVALID", "A name has no line breaks and no angle brackets.", field);
+  }
+  return null;
+}
+
+/** Further names in one spelling, each once and without the name as on papers itself. */
+export function furtherNamesOf(names: readonly string[], nameOnPapers: string): string[] {
+  const normal = names.map(normalName).filter((name) => name !== "" && name !== nameOnPapers);
+  return [...new Set(normal)];
+}
+
+export function furtherNamesProblem(names: readonly string[]): Refusal | null {
+  if (names.length > FURTHER_NAMES_MAX) {
+    const message = `Give at most ${FURTHER_NAMES_MAX} further names.`;
+    return refuse("TOO_MANY_NAMES", message, "furtherNames");
+  }
+  for (const name of names) {
+    const problem = nameProblem(name, "furtherNames");
+    if (problem) return problem;
   }
   return null;
 }

@@ -20,21 +20,42 @@ function hashOf(token: string): string {
   return createHash("sha256").update(token, "utf8").digest("hex");
 }
 
-/** Makes a link's token; older ones for the same purpose stop working. */
+/**
+ * Makes a link's token; older ones for the same purpose stop working. Only a way to object stays
+ * open beside a newer one: who takes an account over must not close it by asking again.
+ *
+ * @param address - The mail address that the link is about, where it is about one.
+ */
 export async function issueToken(
   manager: EntityManager,
   userId: string,
   purpose: MailTokenPurpose,
+  address: string | null = null,
 ): Promise<string> {
   const token = randomBytes(32).toString("base64url");
-  await manager.delete(MailToken, { userId, purpose });
+  if (purpose !== "objection") await manager.delete(MailToken, { userId, purpose });
   await manager.insert(MailToken, {
     hash: hashOf(token),
     purpose,
     userId,
+    address,
     expiresAt: new Date(Date.now() + LIFETIME_MS[purpose]),
   });
   return token;
+}
+
+/** What a token stands for, without using it up; null when it is worth nothing. */
+export async function readToken(
+  manager: EntityManager,
+  token: string,
+  purpose: MailTokenPurpose,
+): Promise<Pick<MailToken, "userId" | "address"> | null> {
+  if (token.length > TOKEN_MAX) return null;
+  return manager.findOneBy(MailToken, {
+    hash: hashOf(token),
+    purpose,
+    expiresAt: MoreThan(new Date()),
+  });
 }
 
 /** The person a token belongs to, without using it up; null when it is worth nothing. */
@@ -43,13 +64,7 @@ export async function tokenOwner(
   token: string,
   purpose: MailTokenPurpose,
 ): Promise<string | null> {
-  if (token.length > TOKEN_MAX) return null;
-  const row = await manager.findOneBy(MailToken, {
-    hash: hashOf(token),
-    purpose,
-    expiresAt: MoreThan(new Date()),
-  });
-  return row?.userId ?? null;
+  return (await readToken(manager, token, purpose))?.userId ?? null;
 }
 
 /** Uses a token up. Of two who try at once, one is told true. */

@@ -2,6 +2,8 @@ import { registerEnumType } from "type-graphql";
 
 import { CONSTRAINT_SORTS } from "~shared/filter/filter";
 import { METHOD_FAMILIES, type MethodFamily } from "~shared/methods/vocabulary";
+import { REPORT_OUTCOMES, REPORT_STATES } from "~shared/review/errorReport";
+import { CREDITS_AFTERWARDS } from "~shared/review/formerMember";
 import {
   RECORD_STATES,
   REVISION_STATES,
@@ -45,3 +47,6 @@ export const RecordStateEnum = enumOf<RecordState>("RecordState", RECORD_STATES)
 export const RoleEnum = enumOf<Role>("Role", ROLES);
 export const FindingGradeEnum = enumOf("FindingGrade", FINDING_GRADES);
 export const ConstraintSortEnum = enumOf("ConstraintSort", CONSTRAINT_SORTS);
+export const ReportStateEnum = enumOf("ReportState", REPORT_STATES);
+export const ReportOutcomeEnum = enumOf("ReportOutcome", REPORT_OUTCOMES);
+export const CreditAfterwardsEnum = enumOf("CreditAfterwards", CREDITS_AFTERWARDS);

@@ -2,6 +2,7 @@ import { In } from "typeorm";
 
 import { User } from "~server/account/user.entity";
 import type { RequestContext } from "~server/common/context";
+import { FORMER_MEMBER } from "~shared/review/formerMember";
 
 import { batched, perRequest } from "./batch";
 
@@ -15,5 +16,5 @@ export const nameOf = perRequest((ctx: RequestContext) => {
     return new Map(people.map((person) => [person.id, person.nameOnPapers]));
   });
   return async (id: string | null): Promise<string> =>
-    (id === null ? undefined : await load(id)) ?? "a former member";
+    (id === null ? undefined : await load(id)) ?? FORMER_MEMBER;
 });

@@ -20,6 +20,8 @@ export async function queueMail(
   mail: OutgoingMail,
   notBefore: Date | null = null,
 ): Promise<void> {
+  // Who has left the registry has no address any more (server/account/leave.service.ts).
+  if (!mail.to.includes("@")) return;
   await manager.insert(OutboxMail, {
     to: mail.to,
     // A subject may quote what a person typed: a line break in it would start another header.

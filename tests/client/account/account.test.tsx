@@ -73,6 +73,7 @@ describe.each(WIDTHS)("the account pages at %i points", (width) => {
           id: "u1",
           email: "person@fogline.example",
           nameOnPapers: "Vask, Inna",
+          furtherNames: [],
           orcid: null,
           roles: [],
         }),

@@ -57,6 +57,7 @@ export function sessionMock(roles: Role[] | null, demonstration = true): MockedR
                   id: "u1",
                   email: "person@fogline.example",
                   nameOnPapers: "Vask, Inna",
+                  furtherNames: [],
                   orcid: null,
                   roles,
                 },

@@ -2,7 +2,7 @@ import type { Agent, GraphqlBody, TestServer } from "../support/harness";
 
 const DONE = "{ __typename ... on Done { message } ... on Refusal { code field message } }";
 const VIEWER =
-  "{ __typename ... on Viewer { id email nameOnPapers orcid roles } ... on Refusal { code field message } }";
+  "{ __typename ... on Viewer { id email nameOnPapers furtherNames orcid roles } ... on Refusal { code field message } }";
 const PERSON =
   "{ __typename ... on Person { id email confirmed roles } ... on Refusal { code message } }";
 
@@ -53,15 +53,50 @@ export function accountOperations(server: TestServer) {
         `mutation ($token: String!, $next: String!) { resetPassword(token: $token, next: $next) ${DONE} }`,
         { token, next },
       ),
-    updateProfile: (agent: Agent, nameOnPapers: string, orcid: string | null) =>
+    updateProfile: (
+      agent: Agent,
+      nameOnPapers: string,
+      orcid: string | null,
+      furtherNames?: string[],
+    ) =>
       one(
         agent,
-        `mutation ($nameOnPapers: String!, $orcid: String) {
-          updateProfile(nameOnPapers: $nameOnPapers, orcid: $orcid) ${VIEWER} }`,
-        { nameOnPapers, orcid },
+        `mutation ($nameOnPapers: String!, $orcid: String, $furtherNames: [String!]) {
+          updateProfile(nameOnPapers: $nameOnPapers, orcid: $orcid, furtherNames: $furtherNames) ${VIEWER} }`,
+        { nameOnPapers, orcid, furtherNames },
+      ),
+    signOutEverywhere: (agent: Agent) =>
+      one(agent, "mutation { signOutEverywhere { message } }", {}),
+    requestAddressChange: (agent: Agent, email: string, password: string) =>
+      one(
+        agent,
+        `mutation ($email: String!, $password: String!) {
+          requestAddressChange(email: $email, password: $password) ${DONE} }`,
+        { email, password },
+      ),
+    confirmAddressChange: (agent: Agent, token: string) =>
+      one(agent, `mutation ($token: String!) { confirmAddressChange(token: $token) ${DONE} }`, {
+        token,
+      }),
+    objectToAddressChange: (agent: Agent, token: string) =>
+      one(agent, `mutation ($token: String!) { objectToAddressChange(token: $token) ${DONE} }`, {
+        token,
+      }),
+    deleteAccount: (agent: Agent, password: string, credit: "named" | "anonymous") =>
+      one(
+        agent,
+        `mutation ($password: String!, $credit: CreditAfterwards!) {
+          deleteAccount(password: $password, credit: $credit) ${DONE} }`,
+        { password, credit },
       ),
     viewer: async (agent: Agent) =>
-      (await one(agent, "{ session { viewer { id email nameOnPapers orcid roles } } }", {})).viewer,
+      (
+        await one(
+          agent,
+          "{ session { viewer { id email nameOnPapers furtherNames orcid roles } } }",
+          {},
+        )
+      ).viewer,
     changeRole: (
       agent: Agent,
       change: "grantRole" | "revokeRole",

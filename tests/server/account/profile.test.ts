@@ -24,6 +24,7 @@ it("name and ORCID are kept, in one spelling", async () => {
     id: user.id,
     email: user.email,
     nameOnPapers: "Mirelle Ostrander",
+    furtherNames: [],
     orcid: ORCID,
     roles: ["contributor"],
   });
@@ -46,6 +47,30 @@ it.each(["0000-0002-1825-0098", "not one", "0".repeat(50_000)])(
     });
   },
 );
+
+it("further names are kept once each, without the name as on papers, and stay until they are given again", async () => {
+  const { agent } = await server.signedIn(["editor"]);
+  const given = [" M.  Quellorn ", "M. Quellorn", "", "Mirelle Ostrander"];
+  expect(await account.updateProfile(agent, "Mirelle Ostrander", null, given)).toMatchObject({
+    furtherNames: ["M. Quellorn"],
+  });
+  await account.updateProfile(agent, "Mirelle O. Ostrander", null);
+  expect(await account.viewer(agent)).toMatchObject({ furtherNames: ["M. Quellorn"] });
+  await account.updateProfile(agent, "Mirelle O. Ostrander", null, []);
+  expect(await account.viewer(agent)).toMatchObject({ furtherNames: [] });
+});
+
+it.each([
+  ["TOO_MANY_NAMES", Array.from({ length: 11 }, (_, index) => `Name Number${index}`)],
+  ["NAME_TOO_LONG", ["n".repeat(121)]],
+  ["NAME_INVALID", ["A <b>name</b>"]],
+])("further names are refused at their field: %s", async (code, names) => {
+  const { agent } = await server.signedIn();
+  expect(await account.updateProfile(agent, "Mirelle Ostrander", null, names)).toMatchObject({
+    code,
+    field: "furtherNames",
+  });
+});
 
 it("nobody has no profile", async () => {
   const body = await server.graphql(
