@@ -9,6 +9,7 @@ import { SessionResolver } from "~server/account/session.resolver";
 import { CitationResolver } from "~server/citation/citation.resolver";
 import { RoleChecker } from "~server/common/authChecker";
 import { ConstraintResolver } from "~server/constraint/constraint.resolver";
+import { CorrelatedSetResolver } from "~server/correlatedSet/correlatedSet.resolver";
 import { ErrorReportResolver } from "~server/constraint/errorReport.resolver";
 import { SubmissionResolver } from "~server/constraint/submission.resolver";
 import { ImportResolver } from "~server/import/import.resolver";
@@ -29,6 +30,7 @@ export const resolvers = [
   SubmissionResolver,
   ReviewResolver,
   TableResolver,
+  CorrelatedSetResolver,
 ] as const satisfies BuildSchemaOptions["resolvers"];
 
 /** Builds the schema; needs no database. With a path it also writes the SDL there, sorted. */

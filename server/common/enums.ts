@@ -1,6 +1,12 @@
 import { registerEnumType } from "type-graphql";
 
 import { CONSTRAINT_SORTS } from "~shared/filter/filter";
+import {
+  MATRIX_KINDS,
+  SET_STATES,
+  type MatrixKind,
+  type SetState,
+} from "~shared/correlatedSet/content";
 import { METHOD_FAMILIES, type MethodFamily } from "~shared/methods/vocabulary";
 import { REPORT_OUTCOMES, REPORT_STATES } from "~shared/review/errorReport";
 import { CREDITS_AFTERWARDS } from "~shared/review/formerMember";
@@ -50,3 +56,5 @@ export const ConstraintSortEnum = enumOf("ConstraintSort", CONSTRAINT_SORTS);
 export const ReportStateEnum = enumOf("ReportState", REPORT_STATES);
 export const ReportOutcomeEnum = enumOf("ReportOutcome", REPORT_OUTCOMES);
 export const CreditAfterwardsEnum = enumOf("CreditAfterwards", CREDITS_AFTERWARDS);
+export const MatrixKindEnum = enumOf<MatrixKind>("MatrixKind", MATRIX_KINDS);
+export const SetStateEnum = enumOf<SetState>("SetState", SET_STATES);

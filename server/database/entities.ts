@@ -4,6 +4,7 @@ import { User } from "~server/account/user.entity";
 import { Citation, CitationGate } from "~server/citation/citation.entity";
 import { Constraint } from "~server/constraint/constraint.entity";
 import { Revision, RevisionData } from "~server/constraint/revision.entity";
+import { CorrelatedSet, SetReading } from "~server/correlatedSet/correlatedSet.entity";
 import { ErrorReport, ErrorReportMessage } from "~server/errorReport/errorReport.entity";
 import { EventHead, EventRecord } from "~server/event/event.entity";
 import { ImportMatch } from "~server/import/importMatch.entity";
@@ -42,4 +43,6 @@ export const entities = [
   SavedTable,
   ErrorReport,
   ErrorReportMessage,
+  CorrelatedSet,
+  SetReading,
 ];

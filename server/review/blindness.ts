@@ -2,7 +2,7 @@ import { Brackets, type EntityManager, type SelectQueryBuilder, type ObjectLiter
 
 import { hasRole, type ViewerIdentity } from "~server/common/context";
 import type { Revision } from "~server/constraint/revision.entity";
-import { formatRecordNumber } from "~shared/identifiers/recordNumber";
+import { formatRecordNumber, parseRecordNumber } from "~shared/identifiers/recordNumber";
 import type { Finding } from "~shared/statement/rules";
 
 import { Reading } from "./reading.entity";
@@ -157,4 +157,72 @@ export function findingFor(finding: Finding, readBlind: ReadonlySet<number>): Fi
         message: "It concerns a record that you are reading yourself. Store that reading first.",
       }
     : finding;
+}
+
+/** What this file asks of a correlated set. */
+interface SeenSet {
+  id: number;
+  chainId: number;
+  ownerId: string;
+  state: string;
+  /** FL-0042 */
+  members: readonly string[];
+}
+
+/** Whether this editor has stored a reading of this set. */
+export async function hasReadSet(
+  manager: EntityManager,
+  editorId: string,
+  setId: number,
+): Promise<boolean> {
+  const [row]: unknown[] = await manager.query(
+    "SELECT 1 FROM set_reading WHERE setId = ? AND editorId = ? LIMIT 1",
+    [setId, editorId],
+  );
+  return row !== undefined;
+}
+
+/**
+ * Whether a person sees the matrix of a correlated set, with its findings, answers and comment. The
+ * same rules, for sets that follow one another as for revisions of a record; and since a variance
+ * is an error squared, a set shows nothing to who is reading one of its records blind.
+ */
+export async function seesSet(
+  manager: EntityManager,
+  viewer: ViewerIdentity | null,
+  set: SeenSet,
+  now: Date,
+): Promise<boolean> {
+  if (viewer?.id === set.ownerId) return true;
+  const records = await recordsReadBlind(manager, viewer, now);
+  if (set.members.some((number) => records.has(parseRecordNumber(number) ?? 0))) return false;
+  if (set.state === "approved" || set.state === "withdrawn") {
+    return !(await setsReadBlind(manager, viewer, now)).has(set.chainId);
+  }
+  if (!viewer || !hasRole(viewer, "editor")) return false;
+  if (!(await hasReadSet(manager, viewer.id, set.id))) return false;
+  const [unread]: unknown[] = await manager.query(
+    `SELECT 1 FROM correlated_set pending
+      WHERE pending.chainId = ? AND pending.state IN ('submitted', 'inReview')
+        AND NOT EXISTS (SELECT 1 FROM set_reading r WHERE r.setId = pending.id AND r.editorId = ?)
+      LIMIT 1`,
+    [set.chainId, viewer.id],
+  );
+  return unread === undefined;
+}
+
+/** Chains of sets of which this person is reading one blind at this moment (rule 4). */
+export async function setsReadBlind(
+  manager: EntityManager,
+  viewer: ViewerIdentity | null,
+  now: Date,
+): Promise<Set<number>> {
+  if (!viewer) return new Set();
+  const rows: { id: number }[] = await manager.query(
+    `SELECT held.chainId AS id FROM correlated_set held
+      WHERE held.state = 'inReview' AND held.claimedById = ? AND held.claimedUntil > ?
+        AND NOT EXISTS (SELECT 1 FROM set_reading r WHERE r.setId = held.id AND r.editorId = ?)`,
+    [viewer.id, now, viewer.id],
+  );
+  return new Set(rows.map((row) => Number(row.id)));
 }

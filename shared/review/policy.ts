@@ -25,6 +25,14 @@ export const ACTIONS = [
   "grantRole",
   "revokeRole",
   "readCaughtMail",
+  "startSet",
+  "saveSet",
+  "submitSet",
+  "discardSet",
+  "reviseSet",
+  "readSet",
+  "reviewSet",
+  "withdrawSet",
 ] as const;
 export type Action = (typeof ACTIONS)[number];
 
@@ -64,6 +72,14 @@ export const MAY: Record<Action, Permission> = {
   grantRole: { roles: MAINTAINER, own: "any" },
   revokeRole: { roles: MAINTAINER, own: "any" },
   readCaughtMail: { roles: MAINTAINER, own: "any" },
+  startSet: { roles: CONTRIBUTOR, own: "any" },
+  saveSet: { roles: CONTRIBUTOR, own: "only" },
+  submitSet: { roles: CONTRIBUTOR, own: "only" },
+  discardSet: { roles: CONTRIBUTOR, own: "only" },
+  reviseSet: { roles: CONTRIBUTOR, own: "only" },
+  readSet: { roles: null, own: "only" },
+  reviewSet: { roles: EDITOR, own: "never" },
+  withdrawSet: { roles: MAINTAINER, own: "any" },
 };
 
 /**

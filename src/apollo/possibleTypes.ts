@@ -4,6 +4,7 @@
  * against the emitted schema.
  */
 export const possibleTypes: Record<string, string[]> = {
+  CorrelatedSetResult: ["CorrelatedSet", "Refusal"],
   DoneResult: ["Done", "Refusal"],
   FittingTableResult: ["FittingTable", "Refusal"],
   ImportPreviewResult: ["ImportPreview", "Refusal"],
@@ -11,6 +12,7 @@ export const possibleTypes: Record<string, string[]> = {
   KeepCitationsResult: ["KeptCitations", "Refusal"],
   PersonResult: ["Person", "Refusal"],
   ReviewResult: ["Refusal", "Review"],
+  SetReviewResult: ["Refusal", "SetReview"],
   SignInResult: ["Refusal", "Viewer"],
   SubmissionResult: ["Refusal", "Submission"],
   ViewerResult: ["Refusal", "Viewer"],
