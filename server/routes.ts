@@ -4,6 +4,7 @@ import type { DataSource } from "typeorm";
 import type { RequestContext } from "~server/common/context";
 import type { Config } from "~server/config/config";
 import { constraintDownloads } from "~server/download/constraint.routes";
+import { releaseDownloads } from "~server/download/release.routes";
 import { tableDownloads } from "~server/download/table.routes";
 import type { RateLimits } from "~server/security/rateLimits";
 import { uploadRoutes } from "~server/upload/upload.routes";
@@ -24,4 +25,9 @@ export type RouteInstaller = (router: Router, parts: RouteParts) => void;
  * ("/api/uploads"). Sessions, the same-origin check and the general limits are in front of it;
  * throw an HttpProblem for an answer in words.
  */
-export const routes: RouteInstaller[] = [uploadRoutes, constraintDownloads, tableDownloads];
+export const routes: RouteInstaller[] = [
+  uploadRoutes,
+  constraintDownloads,
+  tableDownloads,
+  releaseDownloads,
+];

@@ -10,10 +10,11 @@ import { CitationResolver } from "~server/citation/citation.resolver";
 import { RoleChecker } from "~server/common/authChecker";
 import { ConstraintResolver } from "~server/constraint/constraint.resolver";
 import { CorrelatedSetResolver } from "~server/correlatedSet/correlatedSet.resolver";
-import { ErrorReportResolver } from "~server/constraint/errorReport.resolver";
+import { ErrorReportCountResolver, ErrorReportResolver } from "~server/errorReport/errorReport.resolver";
 import { SubmissionResolver } from "~server/constraint/submission.resolver";
 import { ImportResolver } from "~server/import/import.resolver";
 import { CaughtMailResolver } from "~server/mail/caughtMail.resolver";
+import { ReleaseResolver } from "~server/release/release.resolver";
 import { ReviewResolver } from "~server/review/review.resolver";
 import { TableResolver } from "~server/table/table.resolver";
 
@@ -27,9 +28,11 @@ export const resolvers = [
   CaughtMailResolver,
   ConstraintResolver,
   ErrorReportResolver,
+  ErrorReportCountResolver,
   SubmissionResolver,
   ReviewResolver,
   TableResolver,
+  ReleaseResolver,
   CorrelatedSetResolver,
 ] as const satisfies BuildSchemaOptions["resolvers"];
 

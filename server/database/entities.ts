@@ -12,6 +12,7 @@ import { CaughtMailRow } from "~server/mail/caughtMail.entity";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
 import { FieldCommentRecord } from "~server/review/comment.entity";
 import { Reading } from "~server/review/reading.entity";
+import { Release, ReleaseRow } from "~server/release/release.entity";
 import { RateLimitRow } from "~server/security/rateLimit.entity";
 import { SavedTable } from "~server/table/table.entity";
 import { Upload } from "~server/upload/upload.entity";
@@ -41,6 +42,8 @@ export const entities = [
   Reading,
   FieldCommentRecord,
   SavedTable,
+  Release,
+  ReleaseRow,
   ErrorReport,
   ErrorReportMessage,
   CorrelatedSet,

@@ -1,9 +1,11 @@
-import { IsNull, LessThan, type EntityManager } from "typeorm";
+import { IsNull, LessThan, Not, type EntityManager } from "typeorm";
 
 import { MailToken } from "~server/account/mailToken.entity";
 import { User } from "~server/account/user.entity";
+import { ErrorReport } from "~server/errorReport/errorReport.entity";
 import { CaughtMailRow } from "~server/mail/caughtMail.entity";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
+import { ADDRESS_KEPT_DAYS } from "~shared/review/errorReport";
 
 const DAY_MS = 86_400_000;
 /** A mail that was sent or given up is kept this long, for questions about it. */
@@ -11,13 +13,21 @@ const MAIL_DAYS = 30;
 /** An address nobody confirmed is forgotten; its owner may never have heard of us. */
 const UNCONFIRMED_DAYS = 30;
 
-/** Removes what has no use any more: old links, sent mails, registrations never confirmed. */
+/**
+ * Removes what has no use any more: old links, sent mails, registrations never confirmed, the
+ * address of a reader whose report was closed long ago.
+ */
 export async function sweep(manager: EntityManager, now = new Date()): Promise<void> {
   const before = (days: number): Date => new Date(now.getTime() - days * DAY_MS);
   await manager.delete(MailToken, { expiresAt: LessThan(now) });
   await manager.delete(OutboxMail, { deliveredAt: LessThan(before(MAIL_DAYS)) });
   await manager.delete(OutboxMail, { failedAt: LessThan(before(MAIL_DAYS)) });
   await manager.delete(CaughtMailRow, { at: LessThan(before(MAIL_DAYS)) });
+  await manager.update(
+    ErrorReport,
+    { closedAt: LessThan(before(ADDRESS_KEPT_DAYS)), reporterEmail: Not(IsNull()) },
+    { reporterEmail: null },
+  );
   await manager.delete(User, {
     confirmedAt: IsNull(),
     createdAt: LessThan(before(UNCONFIRMED_DAYS)),

@@ -25,6 +25,9 @@ export const ACTIONS = [
   "grantRole",
   "revokeRole",
   "readCaughtMail",
+  "readErrorReports",
+  "answerErrorReport",
+  "cutRelease",
   "startSet",
   "saveSet",
   "submitSet",
@@ -46,6 +49,7 @@ export interface Permission {
 const CONTRIBUTOR: readonly Role[] = ["contributor"];
 const EDITOR: readonly Role[] = ["editor"];
 const MAINTAINER: readonly Role[] = ["maintainer"];
+const EDITOR_OR_MAINTAINER: readonly Role[] = ["editor", "maintainer"];
 
 /** Adding an action without a row does not compile. */
 export const MAY: Record<Action, Permission> = {
@@ -72,6 +76,10 @@ export const MAY: Record<Action, Permission> = {
   grantRole: { roles: MAINTAINER, own: "any" },
   revokeRole: { roles: MAINTAINER, own: "any" },
   readCaughtMail: { roles: MAINTAINER, own: "any" },
+  readErrorReports: { roles: EDITOR_OR_MAINTAINER, own: "any" },
+  // Nobody says of a record of their own that it holds no error.
+  answerErrorReport: { roles: EDITOR_OR_MAINTAINER, own: "never" },
+  cutRelease: { roles: MAINTAINER, own: "any" },
   startSet: { roles: CONTRIBUTOR, own: "any" },
   saveSet: { roles: CONTRIBUTOR, own: "only" },
   submitSet: { roles: CONTRIBUTOR, own: "only" },

@@ -16,7 +16,7 @@ import type { Role } from "~shared/review/states";
 
 import { startTestServer, type Agent, type TestServer } from "../support/harness";
 
-type Rule = "public" | "signedIn" | Role;
+type Rule = "public" | "signedIn" | Role | "editorOrMaintainer";
 type Who = "nobody" | "noRole" | Role;
 
 /** Who may call what. An operation without a row fails the first test below. */
@@ -28,6 +28,8 @@ const RULES: Record<"Query" | "Mutation", Record<string, Rule>> = {
     constraints: "public",
     correlatedSet: "public",
     correlatedSets: "public",
+    errorReport: "signedIn",
+    errorReports: "editorOrMaintainer",
     fittingTable: "public",
     fittingTables: "public",
     myCitation: "contributor",
@@ -36,6 +38,11 @@ const RULES: Record<"Query" | "Mutation", Record<string, Rule>> = {
     people: "maintainer",
     previewCitations: "contributor",
     queue: "editor",
+    release: "public",
+    releaseDifference: "public",
+    reportedError: "public",
+    releaseReadiness: "maintainer",
+    releases: "public",
     review: "editor",
     session: "public",
     setCandidates: "contributor",
@@ -45,14 +52,17 @@ const RULES: Record<"Query" | "Mutation", Record<string, Rule>> = {
   },
   Mutation: {
     acceptAnswer: "editor",
+    answerErrorReport: "editorOrMaintainer",
     approveSet: "editor",
     approveSubmission: "editor",
     changePassword: "signedIn",
     claimSet: "editor",
     claimSubmission: "editor",
+    closeErrorReport: "editorOrMaintainer",
     confirmAddressChange: "public",
     confirmEmail: "public",
     correctReading: "editor",
+    cutRelease: "maintainer",
     correctSetReading: "editor",
     deleteAccount: "signedIn",
     deleteTable: "signedIn",
@@ -65,6 +75,7 @@ const RULES: Record<"Query" | "Mutation", Record<string, Rule>> = {
     register: "public",
     releaseClaim: "editor",
     releaseSet: "editor",
+    replyToReport: "public",
     reportError: "public",
     requestAddressChange: "signedIn",
     requestPasswordReset: "public",
@@ -150,6 +161,8 @@ it("every operation of the API has a rule here", () => {
 function expected(rule: Rule, who: Who): "UNAUTHENTICATED" | "FORBIDDEN" | null {
   if (rule === "public") return null;
   if (who === "nobody") return "UNAUTHENTICATED";
+  if (rule === "editorOrMaintainer")
+    return who === "editor" || who === "maintainer" ? null : "FORBIDDEN";
   return rule === "signedIn" || rule === who ? null : "FORBIDDEN";
 }
 
