@@ -6,7 +6,7 @@ import { Requires } from "~server/common/requires";
 import { ConstraintType } from "~server/constraint/constraint.type";
 import { acting } from "~server/event/acting";
 import { hasReadSet, seesSet } from "~server/review/blindness";
-import { formatRecordNumber } from "~shared/identifiers/recordNumber";
+import { formatRecordNumber, parseRecordNumber } from "~shared/identifiers/recordNumber";
 
 import { CorrelatedSet } from "./correlatedSet.entity";
 import {
@@ -14,6 +14,7 @@ import {
   CorrelatedSetType,
   SaveSetInput,
   SetEntryInput,
+  SetLink,
   SetMemberType,
   SetQueueItem,
   SetReadingInput,
@@ -24,25 +25,37 @@ import {
 import * as drafts from "./draft";
 import * as reviews from "./review";
 import { loadSet, membersOfPaper } from "./store";
-import { approvedSets, memberType, setQueueItem, setReviewFor, setType } from "./view";
+import { approvedSets, memberType, setLink, setQueueItem, setReviewFor, setType } from "./view";
 
 @Resolver(() => ConstraintType)
 export class CorrelatedSetResolver {
-  @FieldResolver(() => [CorrelatedSetType], {
+  @FieldResolver(() => [SetLink], {
     description: "Approved correlated sets that this record is part of.",
   })
   async correlatedSets(
     @Ctx() ctx: RequestContext,
     @Root() root: ConstraintType,
-  ): Promise<CorrelatedSetType[]> {
+  ): Promise<SetLink[]> {
     const number = formatRecordNumber(root.constraintId);
-    const sets = (await approvedSets(ctx)()).filter(({ members }) => members.includes(number));
-    return Promise.all(sets.map((set) => setType(ctx, set)));
+    return (await approvedSets(ctx)())
+      .filter(({ members }) => members.includes(number))
+      .map(setLink);
   }
 
-  @Query(() => [CorrelatedSetType], { name: "correlatedSets" })
-  async allSets(@Ctx() ctx: RequestContext): Promise<CorrelatedSetType[]> {
-    return Promise.all((await approvedSets(ctx)()).map((set) => setType(ctx, set)));
+  @Query(() => [CorrelatedSetType], {
+    name: "correlatedSets",
+    description: "Approved sets: all of them, or those that a record is part of.",
+  })
+  async allSets(
+    @Ctx() ctx: RequestContext,
+    @Arg("member", () => String, { nullable: true }) member: string | null = null,
+  ): Promise<CorrelatedSetType[]> {
+    const id = member === null ? null : parseRecordNumber(member);
+    const wanted = id === null ? null : formatRecordNumber(id);
+    const sets = (await approvedSets(ctx)()).filter(({ members }) =>
+      wanted === null ? member === null : members.includes(wanted),
+    );
+    return Promise.all(sets.map((set) => setType(ctx, set)));
   }
 
   @Query(() => CorrelatedSetType, {

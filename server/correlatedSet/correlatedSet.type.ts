@@ -26,6 +26,13 @@ export class SetMemberType {
   cannotJoin!: string | null;
 }
 
+@ObjectType({ description: "An approved correlated set, for its records." })
+export class SetLink {
+  @Field(() => String) number!: string;
+  @Field(() => String) label!: string;
+  @Field(() => [String]) members!: string[];
+}
+
 @ObjectType("CorrelatedSet", {
   description:
     "Records of one paper with the matrix it prints for them: all of them count together, or a part by its exact marginal.",

@@ -18,6 +18,7 @@ import { CorrelatedSet, type SetReading } from "./correlatedSet.entity";
 import {
   CorrelatedSetType,
   SetEntry,
+  SetLink,
   SetMemberType,
   SetQueueItem,
   SetReview,
@@ -32,6 +33,15 @@ export function memberType(found: FoundMember): SetMemberType {
     fields: fieldsType(found.fields),
     approved: found.approved,
     cannotJoin: whyNotMember(found.fields),
+  });
+}
+
+export function setLink(set: CorrelatedSet): SetLink {
+  const number = formatSetNumber(set.id);
+  return Object.assign(new SetLink(), {
+    number,
+    label: set.label ?? number,
+    members: set.members,
   });
 }
 

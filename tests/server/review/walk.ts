@@ -22,7 +22,7 @@ import type { Agent, TestServer } from "../support/harness";
 export interface Known {
   /** Ids and slugs of every kind. */
   ids: readonly string[];
-  /** Record numbers, quotable ones too. */
+  /** Record numbers, quotable ones too, and numbers of correlated sets. */
   numbers: readonly string[];
   /** Texts worth searching for; each is a guess of a number. */
   guesses: readonly string[];
@@ -71,7 +71,7 @@ function valuesFor(type: GraphQLInputType, name: string, known: Known): unknown[
     case "ID":
       return [null, ...known.ids];
     case "String":
-      return name === "number" ? [...known.numbers] : [null, "", ...known.guesses];
+      return name === "number" || name === "member" ? [...known.numbers] : [null, "", ...known.guesses];
     case "Int":
     case "Float":
       return [null, 0, 7];
