@@ -104,7 +104,8 @@ export async function readsBlindUntil(
   return row ? new Date(row.until) : null;
 }
 
-async function isReadingBlind(
+/** Whether this person is reading the record blind at this moment (rule 4). */
+export async function isReadingBlind(
   manager: EntityManager,
   viewer: ViewerIdentity | null,
   constraintId: number,

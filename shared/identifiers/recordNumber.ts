@@ -27,3 +27,10 @@ export function parseRecordNumber(text: string): number | null {
   const digits = /^\s*fl-?0*([1-9]\d{0,8})(?:\.\d{1,6})?\s*$/i.exec(text)?.[1];
   return digits === undefined ? null : Number(digits);
 }
+
+/** Reads "FL-0042.3" whole; null for anything else, a number without its revision included. */
+export function parseQuotable(text: string): { number: number; ordinal: number } | null {
+  const number = parseRecordNumber(text);
+  const ordinal = /\.0*([1-9]\d{0,5})\s*$/.exec(text)?.[1];
+  return number === null || ordinal === undefined ? null : { number, ordinal: Number(ordinal) };
+}

@@ -1,6 +1,7 @@
 import { useMutation } from "@apollo/client/react";
 import { useState } from "react";
 
+import { useSession } from "@/apollo/useSession";
 import { userMessage } from "@/apollo/userMessage";
 import { Button } from "@/components/Button";
 import { Field } from "@/components/Field";
@@ -8,10 +9,9 @@ import { Notice } from "@/components/Notice";
 import { Sheet } from "@/components/Sheet";
 import { Dense } from "@/components/Text";
 import { ReportErrorDocument } from "~graphql/generated/graphql";
+import { ADDRESS_KEPT_DAYS, REPORT_LENGTH } from "~shared/review/errorReport";
 
-const LONGEST = 2000;
-
-/** Tells the maintainers what is wrong with a record. What was typed stays when the sheet is closed. */
+/** Tells the editors what is wrong with a record. What was typed stays when the sheet is closed. */
 export function ReportSheet({
   visible,
   onClose,
@@ -23,8 +23,11 @@ export function ReportSheet({
   number: string;
 }) {
   const [text, setText] = useState("");
-  const [email, setEmail] = useState("");
-  const [thanks, setThanks] = useState<string | null>(null);
+  const { viewer } = useSession();
+  // Null until it is touched: an account's own address is offered, and may be taken out.
+  const [typedEmail, setEmail] = useState<string | null>(null);
+  const email = typedEmail ?? viewer?.email ?? "";
+  const [thanks, setThanks] = useState<{ message: string; token: string } | null>(null);
   const [refusal, setRefusal] = useState<{ message: string; field: string | null } | null>(null);
   const [report, { loading }] = useMutation(ReportErrorDocument);
   const at = (field: string) => (refusal?.field === field ? refusal.message : undefined);
@@ -36,8 +39,8 @@ export function ReportSheet({
       const variables = { number, text, email: email.trim() === "" ? null : email.trim() };
       const { data } = await report({ variables });
       const result = data?.reportError;
-      if (result?.__typename === "Done") {
-        setThanks(result.message);
+      if (result?.__typename === "ErrorReported") {
+        setThanks(result);
         setText("");
       } else {
         setRefusal({
@@ -75,11 +78,20 @@ export function ReportSheet({
       }
     >
       {thanks ? (
-        <Notice grade="done">{thanks}</Notice>
+        <Notice
+          grade="done"
+          title={thanks.message}
+          action={<Button kind="outline" label="See the report" href={`/report/${thanks.token}`} />}
+        >
+          {email.trim() === ""
+            ? "The answer will stand on a page of its own. Keep its address: only who has it can open it."
+            : "The answer comes by mail, and stands on a page of its own."}
+        </Notice>
       ) : (
         <>
           <Dense muted>
-            It goes to the maintainers of this registry. Say what the paper prints, and where.
+            It goes to the editors of this registry, who answer it. Say what the paper prints, and
+            where. The record shows that there is a report, not what it says.
           </Dense>
           <Field
             label="What is wrong"
@@ -88,7 +100,7 @@ export function ReportSheet({
             onChangeText={setText}
             error={at("text")}
             multiline
-            maxLength={LONGEST}
+            maxLength={REPORT_LENGTH.longest}
           />
           <Field
             label="Your mail address (optional)"
@@ -96,7 +108,7 @@ export function ReportSheet({
             value={email}
             onChangeText={setEmail}
             error={at("email")}
-            hint="Only for an answer; it is kept nowhere else."
+            hint={`Only for the answer: shown to nobody, and forgotten ${ADDRESS_KEPT_DAYS} days after it.`}
             inputMode="email"
             autoComplete="email"
             maxLength={254}

@@ -186,7 +186,13 @@ describe.each(WIDTHS)("a record at %i points", (width) => {
 });
 
 describe("reporting an error in a record", () => {
-  type Answer = { __typename: string; code?: string; message: string; field?: string | null };
+  type Answer = {
+    __typename: string;
+    code?: string;
+    message: string;
+    field?: string | null;
+    token?: string;
+  };
 
   async function report(answers: (Answer | Error)[]) {
     const sent = jest.fn();
@@ -213,11 +219,19 @@ describe("reporting an error in a record", () => {
 
   it("needs no account, and thanks", async () => {
     const { sent, type, send } = await report([
-      { __typename: "Done", message: "Thank you. The maintainers have your report." },
+      {
+        __typename: "ErrorReported",
+        message: "Thank you. The editors have your report.",
+        token: "r1.abc",
+      },
     ]);
     type(/What is wrong/, "Table 3 prints 0.31 here.");
     send();
     expect(await screen.findByText(/Thank you/)).toBeInTheDocument();
+    expect(screen.getByRole("link", { name: "See the report" })).toHaveAttribute(
+      "href",
+      "/report/r1.abc",
+    );
     expect(sent).toHaveBeenCalledWith({
       number: "FL-0042",
       text: "Table 3 prints 0.31 here.",

@@ -1,3 +1,5 @@
+import type { User } from "~server/account/user.entity";
+import { ErrorReport } from "~server/errorReport/errorReport.entity";
 import { EventRecord } from "~server/event/event.entity";
 import { verifyChain } from "~server/event/eventLog";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
@@ -12,13 +14,15 @@ const TEXT = "Table 3 prints 0.31 here, not 0.43.";
 
 describe("reportError", () => {
   let server: TestServer;
+  let contributor: User;
+  let approver: User;
   let number: string;
   let quotable: string;
   beforeAll(async () => {
     server = await startTestServer();
-    const { user } = await server.signedIn(["contributor"]);
-    const editor = await server.signedIn(["editor"]);
-    const { constraintId, ordinal } = await buildApproved(server.dataSource, user, editor.user);
+    ({ user: contributor } = await server.signedIn(["contributor"]));
+    ({ user: approver } = await server.signedIn(["editor"]));
+    const { constraintId, ordinal } = await buildApproved(server.dataSource, contributor, approver);
     number = formatRecordNumber(constraintId);
     quotable = formatQuotable(constraintId, ordinal);
   });
@@ -29,7 +33,7 @@ describe("reportError", () => {
       agent,
       `mutation ($number: String!, $text: String!, $email: String) {
         reportError(number: $number, text: $text, email: $email) {
-          __typename ... on Done { message } ... on Refusal { code message field } } }`,
+          __typename ... on ErrorReported { message token } ... on Refusal { code message field } } }`,
       { number, text: TEXT, ...variables },
     );
     if (errors) throw new Error(errors[0]?.message);
@@ -41,42 +45,54 @@ describe("reportError", () => {
       order: { sequence: "ASC" },
     });
 
-  it("says so when there is no maintainer who could read it, and keeps nothing", async () => {
-    expect(await report({})).toMatchObject({ __typename: "Refusal", code: "NOBODY" });
-    expect(await reported()).toEqual([]);
-  });
+  const kept = () => server.dataSource.manager.find(ErrorReport, { order: { createdAt: "ASC" } });
 
-  it("mails every maintainer, for anybody without an account, in plain words", async () => {
-    const maintainers = [
-      await server.signedIn(["maintainer"]),
-      await server.signedIn(["maintainer"]),
-    ];
-    const other = await server.signedIn(["editor"]);
+  it("keeps the report and tells the desk and the contributor, without the words", async () => {
+    const maintainer = await server.signedIn(["maintainer"]);
+    const both = await server.signedIn(["editor", "maintainer"]);
+    const reader = await server.signedIn([]);
     const text = "It reads <b>0.31</b>.\r\nYours,\u0000 a reader\u202e";
-    expect(await report({ text, email: " Reader@Example.org " })).toEqual({
-      __typename: "Done",
-      message: "Thank you. The maintainers have your report.",
+    expect(await report({ text, email: " Reader@Example.org " })).toMatchObject({
+      __typename: "ErrorReported",
+      message: "Thank you. The editors have your report.",
     });
-    for (const { user } of maintainers) {
-      const [mail, ...more] = await server.mailsTo(user.email);
-      expect(more).toEqual([]);
-      expect(mail?.subject).toBe(`An error is reported in ${quotable}`);
-      expect(mail?.text).toContain("> It reads <b>0.31</b>.\n> Yours,  a reader\n");
-      expect(mail?.text).toContain("reader@example.org; nobody has confirmed");
-      expect(mail?.text).toContain(`http://fogline.test/constraints/${number}`);
+    expect(await kept()).toMatchObject([
+      {
+        text: "It reads <b>0.31</b>.\nYours,  a reader",
+        reporterEmail: "reader@example.org",
+        state: "open",
+      },
+    ]);
+    for (const { user } of [maintainer, both, { user: contributor }, { user: approver }]) {
+      const told = (await server.mailsTo(user.email)).filter(({ subject }) =>
+        subject.includes("An error is reported"),
+      );
+      expect(told).toHaveLength(1);
+      expect(told[0]?.subject).toBe(`An error is reported in ${quotable}`);
+      expect(told[0]?.text).not.toMatch(/0\.31|example\.org/);
+      expect(told[0]?.text).toMatch(/http:\/\/fogline\.test\/desk\/reports\/[0-9a-f-]{36}/);
     }
-    expect(await server.mailsTo(other.user.email)).toEqual([]);
+    expect(await server.mailsTo(reader.user.email)).toEqual([]);
 
     // The log, which is never cleared, holds neither the words nor the reader's address.
     const [event] = await reported();
     expect(event).toMatchObject({ subject: quotable, actorId: null });
-    expect(JSON.stringify(event)).not.toMatch(/reader|0\.31/i);
+    expect(JSON.stringify(event)).not.toMatch(/example|0\.31/i);
     expect((await verifyChain(server.dataSource.manager)).intact).toBe(true);
+  });
+
+  it("mails the reporter where the answer will stand, and nothing that was typed", async () => {
+    const email = "someone-else@lanternmoor.example";
+    const { token } = await report({ text: "Buy at https://elsewhere.example now", email });
+    const [mail, ...more] = await server.mailsTo(email);
+    expect(more).toEqual([]);
+    expect(mail?.text).toContain(`http://fogline.test/report/${token}`);
+    expect(mail?.text).not.toContain("elsewhere");
   });
 
   it("names the person in the log when somebody is signed in", async () => {
     const { agent, user } = await server.signedIn([]);
-    expect(await report({}, agent)).toMatchObject({ __typename: "Done" });
+    expect(await report({}, agent)).toMatchObject({ __typename: "ErrorReported" });
     expect((await reported()).at(-1)).toMatchObject({ actorId: user.id });
   });
 
@@ -99,9 +115,13 @@ describe("reportError", () => {
   });
 
   it("takes a text of exactly 10 and of exactly 2000 characters", async () => {
-    expect(await report({ text: "0123456789" })).toMatchObject({ __typename: "Done" });
+    expect(await report({ text: "0123456789" })).toMatchObject({
+      __typename: "ErrorReported",
+    });
     // Outside the basic plane a character is two code units; it counts once.
-    expect(await report({ text: "𝒙".repeat(2000) })).toMatchObject({ __typename: "Done" });
+    expect(await report({ text: "𝒙".repeat(2000) })).toMatchObject({
+      __typename: "ErrorReported",
+    });
   });
 
   it("doesn't tell whether a draft of that number exists", async () => {
@@ -111,7 +131,7 @@ describe("reportError", () => {
     expect(drafted).toEqual(await report({ number: "FL-9999" }));
   });
 
-  it("keeps the words from a maintainer who is reading that record blind", async () => {
+  it("tells a maintainer who is reading that record blind only once the claim has ended", async () => {
     const { dataSource } = server;
     const owner = await server.signedIn(["contributor"]);
     const editor = await server.signedIn(["editor"]);
@@ -125,7 +145,7 @@ describe("reportError", () => {
     const held = granted(await claim(actingAs(dataSource, reader.user), submitted.id));
     await report({ number: formatRecordNumber(approved.constraintId) });
     const [mail] = (await server.mailsTo(reader.user.email)).slice(-1);
-    expect(mail?.text).toContain(TEXT);
+    expect(mail?.subject).toContain(formatRecordNumber(approved.constraintId));
     expect(mail?.nextTryAt).toEqual(held.claimedUntil);
     expect(
       await report({ number: formatRecordNumber(approved.constraintId) }, reader.agent),
