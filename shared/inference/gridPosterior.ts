@@ -153,11 +153,15 @@ function* evaluateGrid(problem: FitProblem, box: Box, n: number): Task<Float64Ar
     }
     return grid;
   }
+  const seconds = Float64Array.from({ length: n }, (_, j) => place(1, j));
+  const along = problem.alongSecond(seconds);
   for (let i = 0; i < n; i++) {
     theta[0] = place(0, i);
+    const line = grid.subarray(i * n, i * n + n);
+    along(theta[0], line);
     for (let j = 0; j < n; j++) {
-      theta[1] = place(1, j);
-      grid[i * n + j] = logLikelihood(problem, theta);
+      theta[1] = seconds[j]!;
+      line[j] = problem.family.logPrior(theta) === -Infinity ? -Infinity : -0.5 * line[j]!;
     }
     if (i % 16 === 15) yield { stage: `grid of ${n} × ${n}`, fraction: (i + 1) / n };
   }

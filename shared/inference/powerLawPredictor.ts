@@ -46,7 +46,7 @@ export function powerLawPredictor(
       out[at++] = max(0, 1 - ionized / (high - low));
     }
     const logAlpha = log1p(alpha);
-    for (let i = 0; i < depths.length; i++) out[at++] = depths[i]!(zEnd, logAlpha);
+    for (let i = 0; i < depths.length; i++) out[at++] = depths[i]!.value(zEnd, logAlpha);
     roots((f) => zEarly - span * exp(log1p(-f) / alpha), out);
   };
 }

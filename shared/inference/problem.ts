@@ -48,6 +48,32 @@ export class FitProblem {
     return this.table.evaluate(this.values);
   }
 
+  /**
+   * −2 ln L along lines of a two-parameter grid, without a call for each point.
+   *
+   * @param seconds - Values of the second parameter inside its prior, ascending, [n].
+   * @returns Fills out, [n], for one value of the first parameter.
+   */
+  alongSecond(seconds: Float64Array): (first: number, out: Float64Array) => void {
+    const n = seconds.length;
+    const line = this.predict.along?.(seconds);
+    if (!line) {
+      const theta = new Float64Array(2);
+      return (first, out) => {
+        theta[0] = first;
+        for (let j = 0; j < n; j++) {
+          theta[1] = seconds[j]!;
+          out[j] = this.minus2LnL(theta);
+        }
+      };
+    }
+    const values = new Float64Array(this.table.requests.size * n);
+    return (first, out) => {
+      line(first, values);
+      this.table.evaluateLine(values, n, out);
+    };
+  }
+
   /** ln of likelihood times normalized prior; −Infinity outside the box. */
   logPosterior(theta: ArrayLike<number>): number {
     for (let i = 0; i < this.dimension; i++) {

@@ -1,14 +1,12 @@
 import { DomainError } from "~shared/errors/DomainError";
 import { correlatedSet, quadraticForm } from "~shared/likelihood/correlatedSet";
-import { KERNEL, minus2LnLOf } from "~shared/likelihood/kernel";
+import { addMinus2LnL, KERNEL, minus2LnLOf, tabulatedStep } from "~shared/likelihood/kernel";
 import { mixtureMinus2LnL, type MixtureMember, mixtureOf } from "~shared/likelihood/mixture";
 import type { ModelRequest } from "~shared/likelihood/modelRequest";
-import { HermiteTable } from "~shared/numerics/hermiteTable";
 import { gaussLegendre } from "~shared/numerics/quadrature";
-import { logErfc } from "~shared/numerics/special";
 
 // Taken once: in a sandboxed realm every look-up of a global costs more than the arithmetic.
-const { exp, log, log10, max, sqrt } = Math;
+const { exp, log, log10, max } = Math;
 
 /** A row ready for a fit; a RowLikelihood with its id is one. */
 export interface ReadyRow extends MixtureMember {
@@ -63,21 +61,6 @@ export interface ModelRequests {
 const AVERAGE_PANELS = 8;
 const AVERAGE_ORDER = 8;
 const AVERAGE_NODES = AVERAGE_PANELS * AVERAGE_ORDER;
-
-/** −2 ln ½ erfc(t) to 2e-11, from a table where t is not far out; made when a table first needs it. */
-let stepTable: HermiteTable | null = null;
-
-function tabulatedStep(t: number): number {
-  stepTable ??= new HermiteTable(
-    (u) => 2 * (Math.LN2 - logErfc(u)),
-    (u) => (4 / sqrt(Math.PI)) * exp(-u * u - logErfc(u)),
-    -6,
-    8,
-    128,
-  );
-  if (t >= stepTable.low && t < stepTable.high) return stepTable.at(t);
-  return 2 * (Math.LN2 - logErfc(t));
-}
 
 /**
  * A table of rows as typed arrays: built once, then evaluated without allocation.
@@ -174,6 +157,31 @@ export class CompiledTable {
   }
 
   /**
+   * −2 ln L for a line of histories at once.
+   *
+   * @param values - The histories' answers, [requests.size, n]: all of one request stand together.
+   * @param n - How many histories.
+   * @param out - Filled with what `evaluate` gives for each, [n].
+   */
+  evaluateLine(values: Float64Array, n: number, out: Float64Array): void {
+    const { kernels, slots, offsets, packed, requests } = this;
+    // A history always has an x, a bin mean and a depth; further down it may have no value.
+    const alwaysThere =
+      requests.points.length + requests.binLows.length + requests.depthLows.length;
+    out.fill(0, 0, n);
+    for (let i = 0; i < this.plain; i++) {
+      if (this.averaged[i] === 0 && this.inLog[i] === 0 && slots[i]! < alwaysThere) {
+        addMinus2LnL(kernels[i]!, packed, offsets[i]!, values, slots[i]! * n, n, out);
+      } else {
+        for (let j = 0; j < n; j++) out[j]! += this.rowValue(i, values, n, j);
+      }
+    }
+    for (const group of this.groups) {
+      for (let j = 0; j < n; j++) out[j]! += this.groupValue(group, values, n, j);
+    }
+  }
+
+  /**
    * −2 ln L of each term, in the order of `terms`.
    *
    * @param values - As for `evaluate`.
@@ -199,13 +207,14 @@ export class CompiledTable {
     });
   }
 
-  private rowValue(i: number, values: Float64Array): number {
+  /** Answers stand `stride` apart, those of one history from `column` on: 1 and 0 for a single one. */
+  private rowValue(i: number, values: Float64Array, stride = 1, column = 0): number {
     const slot = this.slots[i]!;
     const count = this.averaged[i]!;
-    if (count === 0) return this.kernelValue(i, values[slot]!);
+    if (count === 0) return this.kernelValue(i, values[slot * stride + column]!);
     let least = Infinity;
     for (let k = 0; k < count; k++) {
-      const value = this.kernelValue(i, values[slot + k]!);
+      const value = this.kernelValue(i, values[(slot + k) * stride + column]!);
       this.scratch[k] = value;
       if (value < least) least = value;
     }
@@ -223,16 +232,18 @@ export class CompiledTable {
     return minus2LnLOf(this.kernels[i]!, this.packed, this.offsets[i]!, x);
   }
 
-  private groupValue(group: Group, values: Float64Array): number {
+  private groupValue(group: Group, values: Float64Array, stride = 1, column = 0): number {
     const { first, count } = group;
     const scratch = this.termScratch;
     if (group.kind === "mixture") {
-      for (let k = 0; k < count; k++) scratch[k] = this.rowValue(first + k, values);
+      for (let k = 0; k < count; k++) {
+        scratch[k] = this.rowValue(first + k, values, stride, column);
+      }
       return mixtureMinus2LnL(group.numbers, 0, count, group.logPeak, scratch, 0);
     }
     for (let k = 0; k < count; k++) {
       const at = this.offsets[first + k]!;
-      const model = values[this.slots[first + k]!]!;
+      const model = values[this.slots[first + k]! * stride + column]!;
       const d = (this.inLog[first + k] === 0 ? model : log10(model)) - this.packed[at]!;
       if (Number.isNaN(d)) return Infinity;
       scratch[k] = d < 0 ? d * this.packed[at + 1]! : d * this.packed[at + 2]!;

@@ -1,7 +1,8 @@
+import { PolynomialTable } from "~shared/numerics/polynomialTable";
 import { logErfc } from "~shared/numerics/special";
 
 // Taken once: in a sandboxed realm every look-up of a global costs more than the arithmetic.
-const { log, min } = Math;
+const { LN2, log, min } = Math;
 
 /**
  * The arithmetic of every likelihood form, over numbers packed into one array: written once, used by
@@ -39,27 +40,14 @@ export type Kernel = (typeof KERNEL)[keyof typeof KERNEL];
  */
 export function minus2LnLOf(kernel: number, p: Float64Array, at: number, x: number): number {
   switch (kernel) {
-    case KERNEL.twoPiece: {
-      const d = x - p[at]!;
-      const t = d < 0 ? d * p[at + 1]! : d * p[at + 2]!;
-      return t * t;
-    }
-    case KERNEL.plateau: {
-      const low = p[at]!;
-      const high = p[at + 1]!;
-      const beyond = x < low ? low - x : x > high ? x - high : 0;
-      if (beyond === 0) return 0;
-      const t = beyond * p[at + 2]!;
-      return t * t;
-    }
-    case KERNEL.variableWidth: {
-      const d = x - p[at]!;
-      const variance = p[at + 1]! + p[at + 2]! * d;
-      if (!(variance > 0) || d === -Infinity || d === Infinity) return Infinity;
-      return (d * d) / variance;
-    }
+    case KERNEL.twoPiece:
+      return twoPieceOf(x - p[at]!, p[at + 1]!, p[at + 2]!);
+    case KERNEL.plateau:
+      return plateauOf(x, p[at]!, p[at + 1]!, p[at + 2]!);
+    case KERNEL.variableWidth:
+      return variableWidthOf(x - p[at]!, p[at + 1]!, p[at + 2]!);
     case KERNEL.smoothedStep:
-      return 2 * (Math.LN2 - logErfc((x - p[at]!) * p[at + 1]!));
+      return smoothedStepOf((x - p[at]!) * p[at + 1]!);
     case KERNEL.quantileMatched:
       return quantileMatchedMinus2LnL(p, at, x);
     case KERNEL.hardStep:
@@ -69,6 +57,79 @@ export function minus2LnLOf(kernel: number, p: Float64Array, at: number, x: numb
     default:
       return 0;
   }
+}
+
+/**
+ * The same for a line of model values, added up: one choice of arithmetic for all of them. The smoothed
+ * step comes from a table inside fits, good to 1e-10.
+ *
+ * @param values - Model values, from `from` on, [n]; NaN is not allowed.
+ * @param out - −2 ln L is added to its first n numbers.
+ */
+export function addMinus2LnL(
+  kernel: number,
+  p: Float64Array,
+  at: number,
+  values: Float64Array,
+  from: number,
+  n: number,
+  out: Float64Array,
+): void {
+  const p0 = p[at]!;
+  const p1 = p[at + 1]!;
+  const p2 = p[at + 2]!;
+  switch (kernel) {
+    case KERNEL.twoPiece:
+      for (let j = 0; j < n; j++) out[j]! += twoPieceOf(values[from + j]! - p0, p1, p2);
+      return;
+    case KERNEL.plateau:
+      for (let j = 0; j < n; j++) out[j]! += plateauOf(values[from + j]!, p0, p1, p2);
+      return;
+    case KERNEL.variableWidth:
+      for (let j = 0; j < n; j++) out[j]! += variableWidthOf(values[from + j]! - p0, p1, p2);
+      return;
+    case KERNEL.smoothedStep:
+      for (let j = 0; j < n; j++) out[j]! += tabulatedStep((values[from + j]! - p0) * p1);
+      return;
+    case KERNEL.tabulated:
+      if (p1 > 0) addTabulatedEvenly(p, at, values, from, n, out);
+      else for (let j = 0; j < n; j++) out[j]! += tabulatedMinus2LnL(p, at, values[from + j]!);
+      return;
+    case KERNEL.flat:
+      return;
+    default:
+      for (let j = 0; j < n; j++) out[j]! += minus2LnLOf(kernel, p, at, values[from + j]!);
+  }
+}
+
+/** d from the centre, 1/σ of each side. */
+function twoPieceOf(d: number, perBelow: number, perAbove: number): number {
+  const t = d < 0 ? d * perBelow : d * perAbove;
+  return t * t;
+}
+
+function plateauOf(x: number, low: number, high: number, perSigma: number): number {
+  const t = x < low ? (low - x) * perSigma : x > high ? (x - high) * perSigma : 0;
+  return t * t;
+}
+
+function variableWidthOf(d: number, v: number, slope: number): number {
+  const variance = v + slope * d;
+  if (!(variance > 0) || d === -Infinity || d === Infinity) return Infinity;
+  return (d * d) / variance;
+}
+
+function smoothedStepOf(t: number): number {
+  return 2 * (LN2 - logErfc(t));
+}
+
+/** −2 ln ½ erfc(t) to 1e-10 from a table where t is not far out; made when a fit first needs it. */
+let stepTable: PolynomialTable | null = null;
+
+/** The smoothed step inside fits; t as in the kernel. */
+export function tabulatedStep(t: number): number {
+  stepTable ??= new PolynomialTable(smoothedStepOf, -6, 8, 128);
+  return t >= stepTable.low && t <= stepTable.high ? stepTable.at(t) : smoothedStepOf(t);
 }
 
 /*
@@ -155,4 +216,31 @@ function tabulatedMinus2LnL(p: Float64Array, at: number, x: number): number {
   }
   const t = (x - p[xs + i]!) / (p[xs + i + 1]! - p[xs + i]!);
   return -2 * (p[lnp + i]! + t * (p[lnp + i + 1]! - p[lnp + i]!));
+}
+
+function addTabulatedEvenly(
+  p: Float64Array,
+  at: number,
+  values: Float64Array,
+  from: number,
+  n: number,
+  out: Float64Array,
+): void {
+  const nodes = p[at]!;
+  const perStep = p[at + 1]!;
+  const xs = at + 2;
+  const lnp = xs + nodes;
+  const first = p[xs]!;
+  const last = p[xs + nodes - 1]!;
+  for (let j = 0; j < n; j++) {
+    const x = values[from + j]!;
+    if (!(x >= first && x <= last)) {
+      out[j] = Infinity;
+      continue;
+    }
+    const i = min(((x - first) * perStep) | 0, nodes - 2);
+    const low = p[xs + i]!;
+    const v = p[lnp + i]!;
+    out[j]! -= 2 * (v + ((x - low) / (p[xs + i + 1]! - low)) * (p[lnp + i + 1]! - v));
+  }
 }

@@ -81,6 +81,37 @@ export class Surface {
     return sum;
   }
 
+  /**
+   * Values at one first variable and all of `seconds`, whose weights are found once.
+   *
+   * @param seconds - Values of the second variable inside the box, [n].
+   * @returns Fills `out` from `at` on, [n].
+   */
+  along(seconds: Float64Array): (a: number, out: Float64Array, at: number) => void {
+    const n = seconds.length;
+    const starts = new Int32Array(n);
+    const weights = new Float64Array(n * STENCIL);
+    for (let j = 0; j < n; j++) {
+      const s = (seconds[j]! - this.low1) * this.perStep1;
+      starts[j] = start(s, this.n1);
+      lagrange(s - starts[j]!, weights.subarray(j * STENCIL));
+    }
+    return (a, out, at) => {
+      if (a !== this.lineOf) this.drawLine(a);
+      const { line } = this;
+      for (let j = 0, k = 0; j < n; j++, k += STENCIL) {
+        const i = starts[j]!;
+        out[at + j] =
+          weights[k]! * line[i]! +
+          weights[k + 1]! * line[i + 1]! +
+          weights[k + 2]! * line[i + 2]! +
+          weights[k + 3]! * line[i + 3]! +
+          weights[k + 4]! * line[i + 4]! +
+          weights[k + 5]! * line[i + 5]!;
+      }
+    };
+  }
+
   private drawLine(a: number): void {
     const { grid, line, n1, w0 } = this;
     const s0 = (a - this.low0) * this.perStep0;
