@@ -1,0 +1,10 @@
+"use strict";
+// The tests of what is mutated: elsewhere it is only used, at a length that every mutant would wait for.
+const [shared] = require("../../jest.config").projects;
+
+/** @type {import('jest').Config} */
+module.exports = {
+  ...shared,
+  rootDir: "../..",
+  testMatch: ["<rootDir>/tests/shared/{likelihood,statement}/**/*.test.ts"],
+};
