@@ -10,8 +10,12 @@ import { CitationResolver } from "~server/citation/citation.resolver";
 import { RoleChecker } from "~server/common/authChecker";
 import { ConstraintResolver } from "~server/constraint/constraint.resolver";
 import { CorrelatedSetResolver } from "~server/correlatedSet/correlatedSet.resolver";
-import { ErrorReportCountResolver, ErrorReportResolver } from "~server/errorReport/errorReport.resolver";
 import { SubmissionResolver } from "~server/constraint/submission.resolver";
+import { CreditResolver } from "~server/credit/credit.resolver";
+import {
+  ErrorReportCountResolver,
+  ErrorReportResolver,
+} from "~server/errorReport/errorReport.resolver";
 import { ImportResolver } from "~server/import/import.resolver";
 import { CaughtMailResolver } from "~server/mail/caughtMail.resolver";
 import { ReleaseResolver } from "~server/release/release.resolver";
@@ -27,6 +31,7 @@ export const resolvers = [
   ImportResolver,
   CaughtMailResolver,
   ConstraintResolver,
+  CreditResolver,
   ErrorReportResolver,
   ErrorReportCountResolver,
   SubmissionResolver,

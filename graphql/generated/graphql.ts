@@ -316,6 +316,13 @@ export type CosmicVariance =
   | 'included'
   | 'unknown';
 
+export type Credit = {
+  __typename?: 'Credit';
+  name: Scalars['String']['output'];
+  /** Address of the person's page, /people/…; null for an anonymous former member. */
+  personId: Maybe<Scalars['ID']['output']>;
+};
+
 export type CreditAfterwards =
   | 'anonymous'
   | 'named';
@@ -945,13 +952,32 @@ export type Person = {
   roles: Array<Role>;
 };
 
+export type PersonCredit = {
+  __typename?: 'PersonCredit';
+  /** Records this person entered, newest first. */
+  entered: Array<Constraint>;
+  enteredTotal: Scalars['Int']['output'];
+  /** True for who has deleted the account. */
+  former: Scalars['Boolean']['output'];
+  id: Scalars['ID']['output'];
+  nameOnPapers: Scalars['String']['output'];
+  orcid: Maybe<Scalars['String']['output']>;
+  /** Records of which this person did a second reading that was approved. */
+  read: Array<Constraint>;
+  readTotal: Scalars['Int']['output'];
+  /** First approval of something this person entered or read. */
+  since: Scalars['DateTimeISO']['output'];
+};
+
 export type PersonResult = Person | Refusal;
 
 export type PublicRevision = {
   __typename?: 'PublicRevision';
   at: Scalars['DateTimeISO']['output'];
   changes: Array<FieldChange>;
+  enteredBy: Credit;
   ordinal: Scalars['Int']['output'];
+  readBy: Credit;
   state: RevisionState;
 };
 
@@ -983,6 +1009,8 @@ export type Query = {
   mySets: Array<CorrelatedSet>;
   mySubmissions: Array<Submission>;
   people: Array<Person>;
+  /** A contributor's or an editor's page; null for who has brought nothing yet. */
+  personCredit: Maybe<PersonCredit>;
   previewCitations: Array<CitationPreview>;
   queue: Array<QueueItem>;
   release: Maybe<Release>;
@@ -1056,6 +1084,11 @@ export type QueryMyCitationArgs = {
 
 export type QueryPeopleArgs = {
   text?: InputMaybe<Scalars['String']['input']>;
+};
+
+
+export type QueryPersonCreditArgs = {
+  id: Scalars['ID']['input'];
 };
 
 

@@ -34,6 +34,10 @@ export class PublicRevision {
   @Field(() => enums.RevisionStateEnum) state!: RevisionState;
   @Field(() => Date) at!: Date;
   @Field(() => [FieldChange]) changes!: FieldChange[];
+
+  // Not in the API: credits are made of them (server/credit).
+  enteredById!: string | null;
+  readById!: string | null;
 }
 
 @ObjectType()

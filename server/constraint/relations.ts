@@ -77,6 +77,7 @@ export const approvedRevisions = perRequest((ctx: RequestContext) =>
   batched<number, PublicRevision[]>(async (ids) => {
     const revisions = await ctx.database.manager.find(Revision, {
       where: { constraintId: In([...ids]), state: "approved" },
+      relations: { constraint: true },
       order: { constraintId: "ASC", ordinal: "ASC" },
     });
     const byRecord = new Map<number, PublicRevision[]>(ids.map((id) => [id, []]));
@@ -90,6 +91,8 @@ export const approvedRevisions = perRequest((ctx: RequestContext) =>
           state: revision.state,
           at: revision.decidedAt ?? revision.updatedAt,
           changes: sameRecord ? fieldChanges(sameRecord.fields, revision.fields) : [],
+          enteredById: revision.constraint.ownerId,
+          readById: revision.decidedById,
         }),
       );
       before = revision;

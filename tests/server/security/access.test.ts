@@ -36,6 +36,7 @@ const RULES: Record<"Query" | "Mutation", Record<string, Rule>> = {
     mySets: "signedIn",
     mySubmissions: "signedIn",
     people: "maintainer",
+    personCredit: "public",
     previewCitations: "contributor",
     queue: "editor",
     release: "public",

@@ -5,6 +5,7 @@ import { normalizeOrcid } from "~shared/identifiers/orcid";
 import {
   formatQuotable,
   formatRecordNumber,
+  parseQuotable,
   parseRecordNumber,
 } from "~shared/identifiers/recordNumber";
 
@@ -27,6 +28,17 @@ describe("record numbers", () => {
     ["FL-00x", null],
   ])("%p is read as %p", (text, number) => {
     expect(parseRecordNumber(text)).toBe(number);
+  });
+
+  it.each([
+    ["FL-0042.3", { number: 42, ordinal: 3 }],
+    [" fl42.03 ", { number: 42, ordinal: 3 }],
+    ["FL-0042", null],
+    ["FL-0042.0", null],
+    ["42.3", null],
+    ["", null],
+  ])("%p with its revision is read as %p", (text, quotable) => {
+    expect(parseQuotable(text)).toEqual(quotable);
   });
 
   it.each([0, -1, 1.5, NaN])("there is no record %p", (number) => {
