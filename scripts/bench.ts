@@ -1,7 +1,8 @@
 /**
  * Times the engine beside the same work in Debian's python3 with numpy, scipy and emcee, in one run:
  * `npm run bench`. Prints a table and JSON lines. Python's packages are installed with apt where that is
- * allowed; what can't be compared is skipped loudly.
+ * allowed; what can't be compared is skipped loudly. Moves of a slider on History are timed in a headless
+ * Chromium.
  */
 import { spawnSync } from "node:child_process";
 import { readFileSync } from "node:fs";
@@ -12,6 +13,7 @@ import { tanhHistory } from "~shared/history/tanh";
 import { FitProblem, runTask, sampleEnsemble, tanhFamily } from "~shared/inference";
 import { CompiledTable, type ReadyRow } from "~shared/likelihood/compile";
 import { RandomStream } from "~shared/numerics/random";
+import { type SliderTiming, timeSlider } from "./bench/slider";
 import { type JsonObject, rowsOfSet } from "./checkFiles";
 
 const FIT = path.join("tests", "fixtures", "checks", "fit.json");
@@ -174,9 +176,25 @@ function shown(ms: number): string {
       : `${ms.toFixed(1)} ms`;
 }
 
-function main(): void {
+/** What a move of a slider on History may cost, milliseconds. */
+const SLIDER_LIMIT_MS = 4;
+
+function sliderWords(slider: SliderTiming | null): string {
+  const title = "A slider move on History in headless Chromium";
+  if (slider === null) return `\nSKIPPED: ${title}; chromium is missing.\n`;
+  const { median, p95, mean, first, moves, scored } = slider;
+  const ms = (value: number): string => `${value.toFixed(2)} ms`;
+  return (
+    `\n${title}\n  two histories, ${scored} rows, τ, durations, −2 ln L, curves; ${moves} moves:` +
+    ` median ${ms(median)}, mean ${ms(mean)}, 95 % below ${ms(p95)} (limit ${SLIDER_LIMIT_MS} ms);` +
+    ` the page's first, which fills every table, ${ms(first)}\n`
+  );
+}
+
+async function main(): Promise<void> {
   const mine = ours();
   const other = theirs();
+  const slider = await timeSlider();
   process.stdout.write("\nEngine on this machine\n");
   for (const { what, ms } of mine) {
     process.stdout.write(`  ${what.padEnd(40)} ${shown(ms).padStart(12)}\n`);
@@ -199,7 +217,7 @@ function main(): void {
       );
     }
   }
-  process.stdout.write("\n");
+  process.stdout.write(`${sliderWords(slider)}\n`);
   for (const timing of mine) {
     const ratios = PAIRS.filter(([name]) => name === timing.name).flatMap(([, theirName]) => {
       const ms = other?.get(theirName);
@@ -209,6 +227,7 @@ function main(): void {
       `${JSON.stringify({ name: timing.name, ms: timing.ms, ratios: Object.fromEntries(ratios) })}\n`,
     );
   }
+  if (slider !== null) process.stdout.write(`${JSON.stringify({ name: "slider", ...slider })}\n`);
 }
 
-main();
+void main();
