@@ -1,0 +1,1 @@
+export { SetReviewScreen as default } from "@/features/correlatedSets/SetReviewScreen";

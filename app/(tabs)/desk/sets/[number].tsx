@@ -1,0 +1,1 @@
+export { SetDraftScreen as default } from "@/features/correlatedSets/SetDraftScreen";

@@ -1,0 +1,1 @@
+export { NewSetScreen as default } from "@/features/correlatedSets/NewSetScreen";

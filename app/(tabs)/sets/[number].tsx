@@ -1,0 +1,1 @@
+export { SetScreen as default } from "@/features/correlatedSets/SetScreen";
