@@ -9,8 +9,11 @@ const { atEnd, endChild, pause, run, startChild } = require("./processes");
 
 /** What every part of the program gets to know; the password travels in the environment only. */
 function serverEnvironment(databaseUrl, port, extra = {}) {
+  const inherited = { ...process.env };
+  // The running server never learns of the user that owns the schema.
+  delete inherited.DATABASE_OWNER_URL;
   return {
-    ...process.env,
+    ...inherited,
     NODE_ENV: "production",
     DATABASE_URL: databaseUrl,
     PORT: String(port),
@@ -19,10 +22,20 @@ function serverEnvironment(databaseUrl, port, extra = {}) {
   };
 }
 
-/** Migrates, and seeds an empty database unless DEMO=0. */
-async function prepareDatabase(environment, log) {
+/**
+ * Migrates, gives the running server's database user its rights, and seeds an empty database
+ * unless DEMO=0.
+ *
+ * @param environment - That of the running server.
+ * @param ownerUrl - Address of the database for the user that owns the schema.
+ */
+async function prepareDatabase(environment, log, ownerUrl = environment.DATABASE_URL) {
   const result = await run(process.execPath, [fromRoot("scripts/tasks/prepareDatabase.js")], {
-    env: environment,
+    env: {
+      ...environment,
+      DATABASE_URL: ownerUrl,
+      APPLICATION_DATABASE_URL: environment.DATABASE_URL,
+    },
     log,
     allowFailure: true,
   });

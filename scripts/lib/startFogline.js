@@ -32,7 +32,9 @@ async function start(status) {
   const port = server.readPort(process.env.PORT || "4600");
   const directory = dataDirectory();
   const external = process.env.DATABASE_URL?.trim();
+  const externalOwner = external && process.env.DATABASE_OWNER_URL?.trim();
   if (external) parseDatabaseUrl(external);
+  if (externalOwner) parseDatabaseUrl(externalOwner, "DATABASE_OWNER_URL");
 
   fs.mkdirSync(path.join(directory, "log"), { recursive: true, mode: 0o700 });
   await lockDirectory(directory, "running");
@@ -47,11 +49,13 @@ async function start(status) {
     await buildServer(logs.start);
   });
   // A database that can't be used shows before the long export.
-  const database = external ? { url: external } : await startMariaDb(directory);
-  const environment = server.serverEnvironment(database.url, port);
+  const database = external
+    ? { url: externalOwner || external, applicationUrl: external }
+    : await startMariaDb(directory);
+  const environment = server.serverEnvironment(database.applicationUrl, port);
   let prepared;
   await step("database migrated", async () => {
-    prepared = await server.prepareDatabase(environment, logs.start);
+    prepared = await server.prepareDatabase(environment, logs.start, database.url);
     return prepared.seeded ? "database migrated, demonstration seeded" : "database migrated";
   });
   await withProject(() => buildClient(logs.start));
@@ -85,7 +89,8 @@ function openLogs(directory) {
   return { start: file("start"), server: file("server") };
 }
 
-function announce(environment, url, { demonstration, accounts }, logs, tookMs) {
+function announce(environment, url, prepared, logs, tookMs) {
+  const { demonstration, accounts, logProtected } = prepared;
   say();
   say(`Fogline is ready after ${(tookMs / 1000).toFixed(1)} s: ${url}`);
   if (environment.PUBLIC_URL) say(`Links in mails begin with ${environment.PUBLIC_URL}`);
@@ -99,6 +104,11 @@ function announce(environment, url, { demonstration, accounts }, logs, tookMs) {
     if (!environment.SMTP_URL)
       say("No mail leaves this machine until SMTP_URL names a mail server.");
   }
+  if (!logProtected)
+    say(
+      "The database does not protect the event log: DATABASE_URL's user may change it. " +
+        "Give a second user with DATABASE_OWNER_URL (README, Own MariaDB).",
+    );
   say();
   say(`Log: ${path.relative(fromRoot(), logs.server)}. Stop with Ctrl-C.`);
 }

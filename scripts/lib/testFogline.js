@@ -68,7 +68,10 @@ async function test({ projects, jest }, add) {
     TMPDIR: folder,
     NODE_ENV: "test",
   };
-  for (const name of ["DATABASE_URL", "SMTP_URL", "PUBLIC_URL", "PORT", "DEMO", "FOGLINE_DATA"])
+  for (const name of [
+    ...["DATABASE_URL", "DATABASE_OWNER_URL", "SMTP_URL", "PUBLIC_URL"],
+    ...["PORT", "DEMO", "FOGLINE_DATA", "LOOKUP_URL"],
+  ])
     delete environment[name];
 
   // In two goes: browsers and the many small files would starve each other.

@@ -10,8 +10,9 @@ const { dataDirectory, shortTemporaryFolder } = require("./paths");
 const { atEnd } = require("./processes");
 
 /**
- * The registry's database for a command beside the server: the one of DATABASE_URL, that of a
- * start that runs, or this folder's own, started for as long as the command takes.
+ * The registry's database for a command beside the server, as the user that owns the schema: the
+ * one of DATABASE_OWNER_URL or DATABASE_URL, that of a start that runs, or this folder's own,
+ * started for as long as the command takes.
  *
  * @param options.alone - True if no server may run over it meanwhile (only checked for our own).
  * @param options.make - True to make this folder's own database if there is none.
@@ -20,9 +21,12 @@ const { atEnd } = require("./processes");
  */
 async function registryDatabase({ alone = false, make = false, doing }) {
   const external = process.env.DATABASE_URL?.trim();
+  const owner = external && process.env.DATABASE_OWNER_URL?.trim();
   if (external) {
     await ensurePrograms(MARIADB_CLIENT);
-    return withOptions(parseDatabaseUrl(external));
+    return withOptions(
+      owner ? parseDatabaseUrl(owner, "DATABASE_OWNER_URL") : parseDatabaseUrl(external),
+    );
   }
   const directory = dataDirectory();
   const running = runningMariaDb(directory);

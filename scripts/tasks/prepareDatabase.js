@@ -1,13 +1,15 @@
 "use strict";
 /**
- * Brings the database of DATABASE_URL up to date and fills an empty one with the demonstration,
- * unless DEMO=0. Prints one JSON line: { migrated, seeded, demonstration, accounts }.
+ * Brings the database of DATABASE_URL up to date, gives the user of APPLICATION_DATABASE_URL its
+ * rights there, and fills an empty one with the demonstration, unless DEMO=0.
+ * Prints one JSON line: { seeded, demonstration, accounts, logProtected }.
  */
 require("reflect-metadata");
 
 const { readConfig } = require("../../build/server/config/config");
 const { createDataSource } = require("../../build/server/database/dataSource");
 const { prepareDatabase } = require("../../build/server/database/prepare");
+const { grantToApplication, isLogProtected } = require("../../build/server/database/privileges");
 const { isDemonstration } = require("../../build/server/database/settings");
 
 /** Remembers that a registry began empty, so that no later start fills it with invented data. */
@@ -15,9 +17,11 @@ const STARTED_EMPTY = "startedEmpty";
 
 async function main() {
   const { databaseUrl, demo, publicUrl } = readConfig(process.env);
+  const applicationUrl = process.env.APPLICATION_DATABASE_URL || databaseUrl;
   const dataSource = createDataSource(databaseUrl);
   try {
     await prepareDatabase(dataSource);
+    if (applicationUrl !== databaseUrl) await grant(dataSource, applicationUrl);
     let demonstration = await isDemonstration(dataSource.manager);
     let seeded = false;
     if (demonstration && !demo)
@@ -37,9 +41,25 @@ async function main() {
         new Date().toISOString(),
       ]);
     const accounts = demonstration ? await accountsOf(dataSource) : [];
-    process.stdout.write(`${JSON.stringify({ seeded, demonstration, accounts })}\n`);
+    const logProtected = await isLogProtected(applicationUrl);
+    process.stdout.write(`${JSON.stringify({ seeded, demonstration, accounts, logProtected })}\n`);
   } finally {
     if (dataSource.isInitialized) await dataSource.destroy();
+  }
+}
+
+async function grant(dataSource, applicationUrl) {
+  try {
+    await grantToApplication(dataSource, applicationUrl);
+  } catch (error) {
+    if (error.code === "ER_ACCESS_DENIED_ERROR")
+      throw new Error("The database refused the user or password of DATABASE_URL.");
+    if (/^ER_(TABLEACCESS|DBACCESS|ACCESS)_DENIED/.test(error.code ?? ""))
+      throw new Error(
+        "The user of DATABASE_OWNER_URL may not give rights to that of DATABASE_URL: " +
+          "it needs all rights on the database, with grant option.",
+      );
+    throw error;
   }
 }
 

@@ -10,6 +10,8 @@ export class DatabaseProblem extends Error {
 /** The first with a uuid column type. */
 const OLDEST = [10, 7] as const;
 const LOCK = "fogline-migrate";
+/** The running server's user may not change the schema; see privileges.ts. */
+const DENIED = new Set(["ER_TABLEACCESS_DENIED_ERROR", "ER_DBACCESS_DENIED_ERROR"]);
 
 /**
  * Connects, checks what it connected to and brings the schema up to date.
@@ -29,11 +31,24 @@ export async function prepareDatabase(dataSource: DataSource): Promise<void> {
       throw new DatabaseProblem("Another process has been migrating the database for two minutes.");
     }
     await useUtf8(dataSource);
-    if (migrations.length > 0) await dataSource.runMigrations();
+    if (migrations.length > 0) await migrate(dataSource);
     else await dataSource.synchronize();
   } finally {
     await runner.query("SELECT RELEASE_LOCK(CONCAT(?, ':', DATABASE()))", [LOCK]);
     await runner.release();
+  }
+}
+
+async function migrate(dataSource: DataSource): Promise<void> {
+  try {
+    await dataSource.runMigrations();
+  } catch (error) {
+    if (!DENIED.has((error as { code?: string }).code ?? "")) throw error;
+    throw new DatabaseProblem(
+      "The database is not up to date, and the user of DATABASE_URL may not change its schema: " +
+        "run npm start, with DATABASE_OWNER_URL if the database is your own.",
+      { cause: error },
+    );
   }
 }
 

@@ -41,8 +41,11 @@ export async function startFogline({
   const name = `fogline_e2e_${randomBytes(5).toString("hex")}`;
   const database = await createConnection(server);
   await database.query(`CREATE DATABASE ${name} CHARACTER SET utf8mb4 COLLATE utf8mb4_unicode_ci`);
+  // As npm start does it: the server runs as a user that can't touch what stands in the event log.
+  await database.query(`CREATE USER '${name}'@'%' IDENTIFIED BY '${name}'`);
   const stops = [
     async () => {
+      await database.query(`DROP USER '${name}'@'%'`);
       await database.query(`DROP DATABASE IF EXISTS ${name}`);
       await database.end();
     },
@@ -52,13 +55,14 @@ export async function startFogline({
   };
   try {
     const databaseUrl = `${server.replace(/\/$/, "")}/${name}`;
+    const applicationUrl = Object.assign(new URL(databaseUrl), { username: name, password: name });
     const port = await freePort();
-    const environment = serverEnvironment(databaseUrl, port, {
+    const environment = serverEnvironment(applicationUrl.href, port, {
       DEMO: demonstration ? "1" : "0",
       PUBLIC_URL: `http://127.0.0.1:${port}`,
     });
     const log = path.join(os.tmpdir(), `${name}.log`);
-    await prepareDatabase(environment, log);
+    await prepareDatabase(environment, log, databaseUrl);
     const running = await launchServer(environment, { log });
     stops.push(running.stop);
     await database.query(`USE ${name}`);
