@@ -5,6 +5,7 @@ import { createServer, type Server } from "node:http";
 import type { DataSource } from "typeorm";
 
 import { buildApp } from "~server/app";
+import { startLookUpFake } from "~server/citation/lookUpFake";
 import { ConfigError, readConfig, type Config } from "~server/config/config";
 import { createDataSource } from "~server/database/dataSource";
 import { DatabaseProblem, prepareDatabase } from "~server/database/prepare";
@@ -43,11 +44,17 @@ async function start(config: Config, open: Closing[]): Promise<void> {
   await prepareDatabase(dataSource);
 
   open.push(keepSwept(dataSource, logger));
-  const { app, close } = await buildApp(config, dataSource, logger);
+  const demonstration = await isDemonstration(dataSource.manager);
+  let { lookUpUrl, smtpUrl } = config;
+  if (lookUpUrl === null && demonstration) {
+    const fake = await startLookUpFake();
+    open.push(fake.close);
+    lookUpUrl = fake.url;
+  }
+  const { app, close } = await buildApp({ ...config, lookUpUrl }, dataSource, logger);
   open.push(close);
 
-  let { smtpUrl } = config;
-  if (smtpUrl === null && (await isDemonstration(dataSource.manager))) {
+  if (smtpUrl === null && demonstration) {
     const catcher = await startMailCatcher(dataSource);
     open.push(catcher.close);
     smtpUrl = catcher.url;

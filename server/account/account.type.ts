@@ -42,6 +42,8 @@ export class Session {
   })
   demonstration!: boolean;
 
+  @Field(() => Boolean, { description: "Whether papers can be looked up by DOI or arXiv number." })
+  looksUpCitations!: boolean;
   @Field(() => String, { description: "Data licence every export names." }) licence!: string;
   @Field(() => EventMark, { nullable: true }) lastEvent!: EventMark | null;
 }

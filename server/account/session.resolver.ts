@@ -16,6 +16,7 @@ export class SessionResolver {
     return Object.assign(new Session(), {
       viewer: ctx.viewer && viewerType(ctx.viewer),
       demonstration,
+      looksUpCitations: ctx.config.lookUpUrl !== null,
       licence: ctx.config.licence,
       lastEvent: last && eventMark(last),
     });

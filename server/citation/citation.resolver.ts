@@ -7,6 +7,7 @@ import { acting } from "~server/event/acting";
 import { Citation } from "./citation.entity";
 import * as citations from "./citation.service";
 import { CitationPreview, CitationType, KeepCitationsResult, citationType } from "./citation.type";
+import { lookUpCitation, LookUpResult } from "./lookUp.service";
 
 @Resolver()
 export class CitationResolver {
@@ -27,6 +28,18 @@ export class CitationResolver {
   ): Promise<CitationType | null> {
     const citation = await ctx.database.manager.findOneBy(Citation, { id });
     return citation && citationType(citation);
+  }
+
+  @Requires("keepCitations")
+  @Mutation(() => LookUpResult, {
+    description:
+      "A paper by DOI or arXiv number, as BibTeX: from the registry, or from the look-up service.",
+  })
+  lookUpCitation(
+    @Ctx() ctx: RequestContext,
+    @Arg("identifier", () => String) identifier: string,
+  ): Promise<typeof LookUpResult> {
+    return lookUpCitation(ctx, identifier);
   }
 
   @Requires("keepCitations")

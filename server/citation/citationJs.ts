@@ -44,3 +44,13 @@ export function cslOf(type: string, fields: ReadonlyMap<string, string>): Csl {
   const { _graph, "citation-key": _key, ...csl } = first;
   return csl as Csl;
 }
+
+/**
+ * BibTeX of one CSL-JSON item; everything that TeX would act on is escaped.
+ *
+ * @throws Whatever citation-js throws on an item it can't write.
+ */
+export function bibtexOf(csl: Csl): string {
+  // forceType: otherwise text that looks like an address would be fetched.
+  return new Cite([csl], { forceType: "@csl/list+object" }).format("bibtex").trim();
+}

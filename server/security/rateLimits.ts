@@ -25,6 +25,7 @@ export type LimitName =
   | "mailPerCaller"
   | "reportPerCaller"
   | "reportInAll"
+  | "lookUp"
   | "upload"
   | "download"
   | "graphql";
@@ -67,6 +68,7 @@ export function createRateLimits(config: Config): RateLimits {
     mailPerCaller: shared("mailPerCaller", limits.mailPerCaller, HOUR_S),
     reportPerCaller: shared("reportPerCaller", limits.reportPerCaller, HOUR_S),
     reportInAll: shared("reportInAll", limits.reportInAll, HOUR_S),
+    lookUp: shared("lookUp", limits.lookUpsPerPerson, HOUR_S),
     upload: shared("upload", limits.uploadsPerMinute, MINUTE_S),
     download: own("download", limits.downloadsPerMinute),
     graphql: own("graphql", limits.graphqlPerMinute),

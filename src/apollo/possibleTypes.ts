@@ -11,6 +11,7 @@ export const possibleTypes: Record<string, string[]> = {
   ImportPreviewResult: ["ImportPreview", "Refusal"],
   ImportResult: ["ImportDone", "Refusal"],
   KeepCitationsResult: ["KeptCitations", "Refusal"],
+  LookUpResult: ["LookedUpCitation", "Refusal"],
   PersonResult: ["Person", "Refusal"],
   ReplyResult: ["Refusal", "ReportedError"],
   ReportErrorResult: ["ErrorReported", "Refusal"],

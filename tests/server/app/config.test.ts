@@ -9,6 +9,7 @@ it("with a database alone everything else has a value", () => {
     port: 4600,
     publicUrl: "http://127.0.0.1:4600",
     smtpUrl: null,
+    lookUpUrl: null,
     trustProxy: false,
     licence: "CC BY 4.0",
     demo: true,
@@ -24,6 +25,7 @@ it("what is set is taken, without space around it and slashes behind it", () => 
     DEMO: "0",
     LICENCE: "CC0 1.0",
     TRUST_PROXY: "2",
+    LOOKUP_URL: " https://citations.example/csl/{id} ",
   });
   expect(config).toMatchObject({
     port: 8080,
@@ -32,6 +34,7 @@ it("what is set is taken, without space around it and slashes behind it", () => 
     demo: false,
     licence: "CC0 1.0",
     trustProxy: 2,
+    lookUpUrl: "https://citations.example/csl/{id}",
     mailFrom: "Fogline <fogline@fogline.example>",
   });
 });
@@ -47,6 +50,10 @@ it.each([
   [{ DATABASE_URL: "postgres://a@b/c" }, /^DATABASE_URL must read/],
   [{ DATABASE_URL: "mysql://a@b" }, /^DATABASE_URL must read/],
   [{ DATABASE_URL, PORT: "many" }, /^PORT must be/],
+  [{ DATABASE_URL, LOOKUP_URL: "https://citations.example/csl" }, /^LOOKUP_URL must be/],
+  [{ DATABASE_URL, LOOKUP_URL: "https://{id}.example/csl" }, /^LOOKUP_URL must be/],
+  [{ DATABASE_URL, LOOKUP_URL: "https://a.example/{id}/{id}" }, /^LOOKUP_URL must be/],
+  [{ DATABASE_URL, LOOKUP_URL: "file:///etc/{id}" }, /^LOOKUP_URL must be/],
   [{ DATABASE_URL, PORT: "70000" }, /^PORT must be/],
   [{ DATABASE_URL, PUBLIC_URL: "fogline.example" }, /^PUBLIC_URL must be/],
   [{ DATABASE_URL, PUBLIC_URL: "ftp://fogline.example" }, /^PUBLIC_URL must be/],

@@ -71,6 +71,7 @@ const RULES: Record<"Query" | "Mutation", Record<string, Rule>> = {
     discardSet: "contributor",
     grantRole: "maintainer",
     keepCitations: "contributor",
+    lookUpCitation: "contributor",
     objectToAddressChange: "public",
     previewImport: "contributor",
     register: "public",
