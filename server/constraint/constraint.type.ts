@@ -45,6 +45,11 @@ export class RecordLink {
   @Field(() => String) number!: string;
   @Field(() => String) shortName!: string;
   @Field(() => String) via!: string;
+  @Field(() => Boolean, {
+    nullable: true,
+    description: "Whether the authors prefer this one of several alternatives; null elsewhere.",
+  })
+  preferred!: boolean | null;
 }
 
 @ObjectType("Constraint", {

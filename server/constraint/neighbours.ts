@@ -1,6 +1,7 @@
 import type { EntityManager } from "typeorm";
 
 import type { ViewerIdentity } from "~server/common/context";
+import { alternativesFindings } from "~shared/statement/alternatives";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 import type { ConstraintFields } from "~shared/statement/fields";
 import {
@@ -44,5 +45,6 @@ export function allFindings(
   return sortFindings([
     ...fieldFindings(fields, { citation: citationId !== null }),
     ...registryFindings(fields, others),
+    ...alternativesFindings(fields, others),
   ]);
 }

@@ -50,24 +50,31 @@ export const sharingData = perRequest((ctx: RequestContext) =>
 /** Members of the same alternatives group of the same paper, the record itself included. */
 export const alternativesOf = perRequest((ctx: RequestContext) =>
   batched<number, RecordLink[]>(async (ids) => {
-    const pairs: { own: number; other: number; via: string }[] = await ctx.database.manager
-      .createQueryBuilder(Revision, "own")
-      .innerJoin("constraint_record", "ownRecord", "ownRecord.approvedRevisionId = own.id")
-      .innerJoin(Revision, "other", "other.alternativesKey = own.alternativesKey")
-      .innerJoin("constraint_record", "otherRecord", "otherRecord.approvedRevisionId = other.id")
-      .select("ownRecord.id", "own")
-      .addSelect("otherRecord.id", "other")
-      .addSelect("JSON_VALUE(own.fields, '$.alternativesGroup')", "via")
-      .where("ownRecord.id IN (:...ids)", { ids: [...ids] })
-      .orderBy("otherRecord.id")
-      .getRawMany();
+    const pairs: { own: number; other: number; via: string; preferred: string | null }[] =
+      await ctx.database.manager
+        .createQueryBuilder(Revision, "own")
+        .innerJoin("constraint_record", "ownRecord", "ownRecord.approvedRevisionId = own.id")
+        .innerJoin(Revision, "other", "other.alternativesKey = own.alternativesKey")
+        .innerJoin("constraint_record", "otherRecord", "otherRecord.approvedRevisionId = other.id")
+        .select("ownRecord.id", "own")
+        .addSelect("otherRecord.id", "other")
+        .addSelect("JSON_VALUE(own.fields, '$.alternativesGroup')", "via")
+        .addSelect("JSON_VALUE(other.fields, '$.alternativesPreferred')", "preferred")
+        .where("ownRecord.id IN (:...ids)", { ids: [...ids] })
+        .orderBy("otherRecord.id")
+        .getRawMany();
     const shortNames = await shortNamesOf(
       ctx,
       pairs.map((pair) => Number(pair.other)),
     );
     return grouped(ids, pairs, (pair) => {
       const shortName = shortNames.get(Number(pair.other));
-      return shortName === undefined ? null : link(Number(pair.other), shortName, pair.via);
+      return shortName === undefined
+        ? null
+        : Object.assign(link(Number(pair.other), shortName, pair.via), {
+            // MariaDB gives a JSON flag as 1 or as its word.
+            preferred: pair.preferred === "1" || pair.preferred === "true",
+          });
     });
   }),
 );

@@ -9,4 +9,5 @@ export {
   type RowLikelihood,
   type RowOptions,
 } from "./rowLikelihood";
+export { scoreSet, type SetScore, type SetToScore } from "./scoreSet";
 export { scoreRows, type RowScore, type RowToScore, type Score } from "./scoreRows";

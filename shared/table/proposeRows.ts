@@ -4,7 +4,7 @@ import { METHOD_TAGS } from "~shared/methods/vocabulary";
 import { asUsed, type AsUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields } from "~shared/statement/fields";
 
-import { comparableDataName } from "./dataName";
+import { comparableDataName } from "~shared/dependence/dataName";
 
 /** An approved record as the proposal needs it. */
 export interface CandidateRow {
@@ -30,6 +30,8 @@ interface Weighed extends CandidateRow {
   used: AsUsed | null;
   data: ReadonlyMap<string, string>;
   reason: string | null;
+  /** Which correlated set it is part of. */
+  set: number | null;
 }
 
 /**
@@ -37,15 +39,22 @@ interface Weighed extends CandidateRow {
  * alternatives, rows that share named data with a better one, and joint inferences beside other rows.
  *
  * @param candidates - In any order; numbers are unique.
+ * @param sets - Members of each correlated set: their matrix says what they share, so that they
+ *   don't stand against each other.
  * @returns One row for each candidate, in the order given. The same candidates in another order
  *   are proposed alike.
  */
-export function proposeRows(candidates: readonly CandidateRow[]): ProposedRow[] {
+export function proposeRows(
+  candidates: readonly CandidateRow[],
+  sets: readonly { readonly members: readonly string[] }[] = [],
+): ProposedRow[] {
+  const setOf = new Map(sets.flatMap(({ members }, at) => members.map((number) => [number, at])));
   const rows: Weighed[] = candidates.map((row) => ({
     ...row,
     used: asUsed(row.fields),
     data: namedData(row.fields),
     reason: unusable(row.fields),
+    set: setOf.get(row.number) ?? null,
   }));
   for (const row of rows) row.reason ??= withoutLikelihood(row.used);
   keepOneAlternative(rows);
@@ -143,6 +152,7 @@ function keepOneOfOverlapping(rows: readonly Weighed[]): void {
 /** Joint inferences without anything else beside them overlap with each other, too. */
 function overlaps(a: Weighed, b: Weighed): boolean {
   if (isJoint(a) && isJoint(b)) return true;
+  if (a.set !== null && a.set === b.set) return false;
   if (![...a.data.keys()].some((name) => b.data.has(name))) return false;
   // One paper cuts one sample into bins: parts at separate redshifts are different data.
   return !(a.citation === b.citation && atSeparateRedshifts(a.used, b.used));
@@ -187,7 +197,9 @@ function cautions(row: Weighed, rows: readonly Weighed[]): string[] {
   }
   const part = others.find(
     (other) =>
-      other.citation === row.citation && [...row.data.keys()].some((name) => other.data.has(name)),
+      other.citation === row.citation &&
+      !(row.set !== null && row.set === other.set) &&
+      [...row.data.keys()].some((name) => other.data.has(name)),
   );
   if (part) said.push(`Another redshift of the same sample is in the table: ${part.number}`);
   return said;

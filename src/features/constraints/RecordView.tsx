@@ -6,6 +6,7 @@ import { Button } from "@/components/Button";
 import { Card, Divider } from "@/components/Card";
 import { CitationLine } from "@/components/CitationLine";
 import { CiteSheet } from "@/components/CiteSheet";
+import { RecordSets } from "@/components/correlatedSet/RecordSets";
 import { DefinitionList } from "@/components/DefinitionList";
 import { Marker } from "@/components/Marker";
 import { NotationText } from "@/components/NotationText";
@@ -79,6 +80,7 @@ export function RecordView({ record }: { record: RecordData }) {
         </View>
       </Card>
       <Cautions record={record} />
+      <RecordSets number={record.number} citationId={citation.id} fields={fields} />
       <View style={columns ? styles.columns : styles.stack}>
         <View style={[styles.column, columns && styles.third]}>
           <Block>Provenance</Block>
@@ -184,6 +186,15 @@ function UsedPart({ used, wide }: { used: AsUsed | null; wide: boolean }) {
   );
 }
 
+/** Which of the alternatives its authors prefer. */
+function preferredWords({ number, alternatives }: RecordData): string {
+  const preferred = alternatives.find((link) => link.preferred);
+  if (!preferred) return "The authors prefer none of them.";
+  return preferred.number === number
+    ? "The authors prefer this one."
+    : `The authors prefer ${preferred.number}.`;
+}
+
 function Cautions({ record }: { record: RecordData }) {
   const { fields, sharesDataWith, alternatives } = record;
   const others = alternatives.filter(({ number }) => number !== record.number);
@@ -197,7 +208,7 @@ function Cautions({ record }: { record: RecordData }) {
       : "",
     fields.dataKnown === false ? "The paper does not name its data: unknown is not none." : "",
     others.length > 0
-      ? "One of several answers of this paper to the same question: never multiply them."
+      ? `One of ${others.length + 1} answers of this paper to the same question: take one or their equal mixture, never multiply them. ${preferredWords(record)}`
       : "",
     fields.level === "notStated" ? "The paper states no level: a table has to choose one." : "",
     fields.conditionedOn.length > 0
@@ -281,7 +292,12 @@ function Relations({ record }: { record: RecordData }) {
     ...record.sharesDataWith.map((link) => ({ ...link, word: `Shares ${link.via}` })),
     ...record.alternatives
       .filter(({ number }) => number !== record.number)
-      .map((link) => ({ ...link, word: "Alternative answer" })),
+      .map((link) => ({
+        ...link,
+        word: link.preferred
+          ? "Alternative answer, preferred by the authors"
+          : "Alternative answer",
+      })),
   ];
   return (
     <View style={styles.stackSmall}>

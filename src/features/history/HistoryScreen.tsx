@@ -17,7 +17,7 @@ import { Screen } from "@/layout/Screen";
 import { useLayoutClass } from "@/layout/useLayoutClass";
 import { useTheme } from "@/theme/ThemeProvider";
 import { space } from "@/theme/tokens";
-import { HistoryConstraintsDocument } from "~graphql/generated/graphql";
+import { HistoryConstraintsDocument, UsedSetsDocument } from "~graphql/generated/graphql";
 import { background as backgroundOf } from "~shared/cosmology/background";
 import type { CanonicalFilter } from "~shared/filter/filter";
 import type { MethodFamily } from "~shared/methods/vocabulary";
@@ -108,7 +108,17 @@ export function HistoryScreen() {
     return rows.filter((row) => drawn.has(row.number));
   }, [rows, points, groups, domain]);
 
-  const decided = useMemo(() => decideByDefault(shownRows), [shownRows]);
+  const { data: setData } = useQuery(UsedSetsDocument);
+  const sets = useMemo(
+    () =>
+      (setData?.correlatedSets ?? []).flatMap(({ number, usedRho, members }) =>
+        usedRho
+          ? [{ id: number, members: members.map((member) => member.number), rho: usedRho }]
+          : [],
+      ),
+    [setData],
+  );
+  const decided = useMemo(() => decideByDefault(shownRows, sets), [shownRows, sets]);
   const selected = rows.find((row) => row.number === view.point) ?? null;
 
   const { filter, setFilter } = address;

@@ -96,6 +96,34 @@ describe("default decisions", () => {
     // At its midpoint a tanh history is half neutral (closed form).
     expect(score.at("FL-0001")?.model).toBeCloseTo(0.5, 12);
   });
+  it("count the rows of a correlated set together, by χ² = tᵀ ρ⁻¹ t", () => {
+    // Both bins one sigma below a history that is half neutral at 7: x(7) = 0.5 (closed form).
+    const bin = { z: "7", value: "0.40", plus: "0.10", minus: "0.10", dataUsed: ["Fen field"] };
+    const rows = [buildRow("FL-0001", bin), buildRow("FL-0002", bin), buildRow("FL-0003", bin)];
+    const set = {
+      id: "FLS-0001",
+      members: ["FL-0001", "FL-0002"],
+      rho: [
+        [1, 0.6],
+        [0.6, 1],
+      ],
+    };
+    const decided = decideByDefault(rows, [set]);
+    // The third shares the field without a matrix that would say how much.
+    expect(decided.before.map(({ id }) => id)).toEqual(["FL-0003"]);
+    const score = scoreHistory(decided, tanhHistory({ zRe: 7 }), background());
+    expect(score.sets[0]).toMatchObject({ members: ["FL-0001", "FL-0002"], whole: true });
+    // PHYSICS.md, worked values: χ² = 1.25 for +1σ, +1σ at ρ 0.6; by themselves they would sum to 2.
+    // One sigma is kept as 68.27 %, which is 1.00002 sigma: hence four digits.
+    expect(score.minus2LnL).toBeCloseTo(1.25, 3);
+    expect(score.scored).toBe(2);
+    expect(score.at("FL-0001")?.minus2LnL).toBeCloseTo(1, 3);
+
+    // A part is the exact marginal: one bin by itself.
+    const part = decideByDefault(rows.slice(0, 1), [set]);
+    expect(part.sets).toEqual([]);
+    expect(scoreHistory(part, tanhHistory({ zRe: 7 }), background()).minus2LnL).toBeCloseTo(1, 3);
+  });
   it("name every row they leave out", () => {
     const decided = decideByDefault([
       buildRow("FL-0001", {}),
