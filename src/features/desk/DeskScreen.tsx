@@ -2,6 +2,8 @@ import { useSession } from "@/apollo/useSession";
 import { Button } from "@/components/Button";
 import { Card } from "@/components/Card";
 import { Loading } from "@/components/feedback/Loading";
+import { MySets } from "@/components/setQueue/MySets";
+import { SetQueue } from "@/components/setQueue/SetQueue";
 import { Body, Dense, Section } from "@/components/Text";
 import { Screen } from "@/layout/Screen";
 import { View } from "react-native";
@@ -27,7 +29,9 @@ export function DeskScreen() {
         ) : (
           <>
             {hasRole("contributor") ? <MySubmissions /> : null}
+            {hasRole("contributor") ? <MySets /> : null}
             {hasRole("editor") ? <Queue /> : null}
+            {hasRole("editor") ? <SetQueue /> : null}
             {hasRole("maintainer") ? <MaintainerDesk /> : null}
             {hasRole("contributor") ? null : <BecomeContributor alone={roles.length === 0} />}
           </>

@@ -5,7 +5,12 @@ import type { ReactNode } from "react";
 
 import { createCache } from "@/apollo/client";
 import { ThemeProvider } from "@/theme/ThemeProvider";
-import { SessionDocument, type SubmissionPartsFragment } from "~graphql/generated/graphql";
+import {
+  MySetsDocument,
+  SessionDocument,
+  SetQueueDocument,
+  type SubmissionPartsFragment,
+} from "~graphql/generated/graphql";
 import type { Role } from "~shared/review/states";
 import { type ConstraintFields, emptyFields } from "~shared/statement/fields";
 
@@ -68,6 +73,12 @@ export function sessionMock(roles: Role[] | null, demonstration = true): MockedR
   };
 }
 
+/** A desk without correlated sets, for the tests that are about something else. */
+const NO_SETS = [
+  { request: { query: MySetsDocument }, result: { data: { mySets: [] } } },
+  { request: { query: SetQueueDocument }, result: { data: { setQueue: [] } } },
+].map((mock) => ({ ...mock, maxUsageCount: Number.POSITIVE_INFINITY }) as MockedResponse);
+
 /** A page as one person sees it at one width. */
 export function show(
   page: ReactNode,
@@ -77,7 +88,7 @@ export function show(
   return render(
     <MockedProvider
       cache={createCache()}
-      mocks={[sessionMock(options.roles), ...(options.mocks ?? [])]}
+      mocks={[sessionMock(options.roles), ...(options.mocks ?? []), ...NO_SETS]}
     >
       <ThemeProvider>{page}</ThemeProvider>
     </MockedProvider>,
