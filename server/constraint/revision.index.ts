@@ -6,7 +6,7 @@ import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 import { METHOD_TAGS } from "~shared/methods/vocabulary";
 import { asUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields } from "~shared/statement/fields";
-import { comparableDataName } from "~shared/table/dataName";
+import { comparableDataName } from "~shared/dependence/dataName";
 
 import { RevisionData, type Revision } from "./revision.entity";
 

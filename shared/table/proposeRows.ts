@@ -1,10 +1,11 @@
 /** Which rows of a filtered list a fitting table takes by default, and why it leaves the others out. */
+import { conditionChains, conditionChainWords, conditionsIn } from "~shared/dependence/conditions";
+import { comparableDataName } from "~shared/dependence/dataName";
 import { rowLikelihood } from "~shared/likelihood";
 import { METHOD_TAGS } from "~shared/methods/vocabulary";
+import type { RecordState } from "~shared/review/states";
 import { asUsed, type AsUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields } from "~shared/statement/fields";
-
-import { comparableDataName } from "~shared/dependence/dataName";
 
 /** An approved record as the proposal needs it. */
 export interface CandidateRow {
@@ -15,6 +16,8 @@ export interface CandidateRow {
   citation: string;
   /** Year of the paper. */
   year: number | null;
+  /** Current unless said. */
+  state?: RecordState;
 }
 
 export interface ProposedRow {
@@ -53,7 +56,7 @@ export function proposeRows(
     ...row,
     used: asUsed(row.fields),
     data: namedData(row.fields),
-    reason: unusable(row.fields),
+    reason: lifeless(row.state) ?? unusable(row.fields),
     set: setOf.get(row.number) ?? null,
   }));
   for (const row of rows) row.reason ??= withoutLikelihood(row.used);
@@ -66,6 +69,11 @@ export function proposeRows(
     reason: row.reason,
     cautions: row.reason === null ? cautions(row, rows) : [],
   }));
+}
+
+function lifeless(state: RecordState | undefined): string | null {
+  if (state === "superseded") return "Superseded by another record";
+  return state === "withdrawn" ? "Withdrawn" : null;
 }
 
 function unusable(fields: ConstraintFields): string | null {
@@ -186,13 +194,24 @@ function cautions(row: Weighed, rows: readonly Weighed[]): string[] {
   const others = included(rows).filter((other) => other !== row);
   const said: string[] = [];
   if (row.fields.dataKnown === false) said.push("The data it uses are unknown");
+  const byNumber = new Map(rows.map((one) => [one.number, one.fields]));
+  const chains = conditionChains(row.number, (number) =>
+    conditionsIn(byNumber.get(number)?.conditionedOn ?? []),
+  );
   const cmb = others.find(isCmb);
-  if (row.fields.conditionedOn.includes("cmb") && cmb) {
-    said.push(`Conditioned on a CMB prior, and ${cmb.number} is in the table`);
-  }
-  for (const other of others) {
-    if (row.fields.conditionedOn.includes(other.number)) {
-      said.push(`Conditioned on ${other.number}, which is in the table`);
+  for (const chain of chains) {
+    const met = [...chain.through.slice(1), chain.on].filter((number) =>
+      others.some((other) => other.number === number),
+    );
+    const direct = chain.through.length === 1;
+    if (chain.on === "cmb" && cmb) {
+      const words = direct ? "Conditioned on a CMB prior" : conditionChainWords(chain);
+      said.push(`${words}, and ${cmb.number} is in the table`);
+    } else if (met.length > 0) {
+      const words = direct
+        ? `Conditioned on ${chain.on}, which is`
+        : `${conditionChainWords(chain)};`;
+      said.push(direct ? `${words} in the table` : `${words} in the table: ${met.join(", ")}`);
     }
   }
   const part = others.find(

@@ -1,7 +1,7 @@
 import fc from "fast-check";
 
 import { emptyFields, type ConstraintFields } from "~shared/statement/fields";
-import { comparableDataName } from "~shared/table/dataName";
+import { comparableDataName } from "~shared/dependence/dataName";
 import { proposeRows, type CandidateRow } from "~shared/table/proposeRows";
 
 let next = 0;
@@ -177,6 +177,28 @@ describe("proposeRows", () => {
     });
     next = 0;
     expect(proposeRows([row({ conditionedOn: ["cmb"] })])[0]?.cautions).toEqual([]);
+  });
+
+  it("follows conditions through records of the list, and leaves superseded ones out", () => {
+    const cmb = row({
+      quantity: "opticalDepth",
+      species: null,
+      scale: null,
+      weighting: null,
+      z: null,
+      zRole: null,
+      value: "0.0561",
+      plus: "0.0071",
+      minus: "0.0071",
+      methodTags: ["cmbPolarization"],
+    });
+    const through = row({ conditionedOn: ["cmb"], dataUsed: ["One"] });
+    const last = row({ conditionedOn: [through.number], dataUsed: ["Two"] });
+    const [, superseded, end] = proposeRows([cmb, { ...through, state: "superseded" }, last]);
+    expect(superseded).toMatchObject({ included: false, reason: "Superseded by another record" });
+    expect(end?.cautions).toEqual([
+      `${last.number} is conditioned on ${through.number}, which is conditioned on CMB, and ${cmb.number} is in the table`,
+    ]);
   });
 
   it("proposes the same whatever the order of the candidates", () => {
