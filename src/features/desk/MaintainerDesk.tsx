@@ -2,9 +2,8 @@ import { View } from "react-native";
 
 import { useSession } from "@/apollo/useSession";
 import { Card } from "@/components/Card";
+import { ListRow } from "@/components/ListRow";
 import { Dense, Section } from "@/components/Text";
-
-import { ListRow } from "./ListRow";
 
 /** What a maintainer keeps. */
 export function MaintainerDesk() {

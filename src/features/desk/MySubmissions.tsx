@@ -6,6 +6,7 @@ import { Card } from "@/components/Card";
 import { Empty } from "@/components/feedback/Empty";
 import { Failed } from "@/components/feedback/Failed";
 import { Loading } from "@/components/feedback/Loading";
+import { ListRow } from "@/components/ListRow";
 import { NotationText } from "@/components/NotationText";
 import { plainFields } from "@/components/statement/plainFields";
 import { StatusPill } from "@/components/StatusPill";
@@ -16,8 +17,6 @@ import { MyDeskDocument, type MyDeskQuery } from "~graphql/generated/graphql";
 import type { FieldName } from "~shared/statement/fields";
 import { notationAsPrinted } from "~shared/statement/notation";
 import { FIELD_NAMES, tagName } from "~shared/statement/words";
-
-import { ListRow } from "./ListRow";
 
 type Mine = MyDeskQuery["mySubmissions"][number];
 

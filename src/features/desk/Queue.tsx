@@ -5,13 +5,12 @@ import { Card } from "@/components/Card";
 import { Empty } from "@/components/feedback/Empty";
 import { Failed } from "@/components/feedback/Failed";
 import { Loading } from "@/components/feedback/Loading";
+import { ListRow } from "@/components/ListRow";
 import { StatusPill } from "@/components/StatusPill";
 import { Block, Caption, Dense, Mono, Section } from "@/components/Text";
 import { dateTime, waitingTime } from "@/components/when";
 import { useColors } from "@/theme/ThemeProvider";
 import { type QueueItemPartsFragment, ReviewQueueDocument } from "~graphql/generated/graphql";
-
-import { ListRow } from "./ListRow";
 
 /** An editor's work: what one has claimed, then what waits, oldest first. */
 export function Queue() {

@@ -1,11 +1,11 @@
 import type { ReactNode } from "react";
 import { View } from "react-native";
 
-import Icon from "@/components/Icon";
-import { Press } from "@/components/Press";
+import Icon from "./Icon";
+import { Press } from "./Press";
 import { useColors } from "@/theme/ThemeProvider";
 
-/** A row of a desk list that leads somewhere; heard as what it shows. */
+/** A row of a list that leads somewhere; heard as what it shows. */
 export function ListRow({
   href,
   first,
