@@ -470,7 +470,8 @@ export function smoothedStep(side: LimitSide, place: number, s: number): Form {
     kernel: KERNEL.smoothedStep,
     packed: Float64Array.of(place, (upper ? 1 : -1) / (Math.SQRT2 * s)),
     reach: upper ? [-Infinity, place + REACH * s] : [place - REACH * s, Infinity],
-    kinks: [],
+    // No kink, but where a quadrature and a drawing have to look.
+    kinks: [place],
     peak: upper ? -Infinity : Infinity,
     quantile: null,
   });

@@ -157,9 +157,11 @@ function leftOut(code: LeftOutCode, text: string): RowLeftOut {
   return { leftOut: text, code };
 }
 
+const QUALITATIVE = leftOut("qualitative", "Qualitative: shown, never fitted.");
+
 function obstacleOf(used: AsUsed, options: RowOptions): RowLeftOut | null {
   if (used.kind === "qualitative") {
-    return leftOut("qualitative", "Qualitative: shown, never fitted.");
+    return QUALITATIVE;
   }
   if (
     used.weighting === "mass" &&
@@ -193,40 +195,45 @@ function obstacleOf(used: AsUsed, options: RowOptions): RowLeftOut | null {
 /** The form of a statement: its default, or the one chosen. */
 function shapeOf(used: AsUsed, options: RowOptions): Form | RowLeftOut {
   const level = used.level ?? options.level ?? null;
-  const k =
-    level === null
-      ? null
-      : used.level === null
-        ? sigmasOfLevel(level)
-        : (used.k ?? sigmasOfLevel(level));
+  const stated = level === null ? null : { level, k: sigmasOfLevel(level) };
   switch (used.kind) {
     case "twoSided":
-      return twoSidedShape(used, options, k);
+      return twoSidedShape(used, options, stated);
     case "upperLimit":
-      return limitShape(used, options, "upper", level, k);
+      return limitShape(used, options, "upper", stated);
     case "lowerLimit":
-      return limitShape(used, options, "lower", level, k);
+      return limitShape(used, options, "lower", stated);
     case "band":
-      return bandShape(used, options, level, k);
+      return bandShape(used, options, stated);
     case "curve":
       return options.curve
         ? tabulated(options.curve.x, options.curve.p)
         : leftOut("curveMissing", "The nodes of the curve are not at hand.");
     case "qualitative":
-      return leftOut("qualitative", "Qualitative: shown, never fitted.");
+      return QUALITATIVE;
   }
+}
+
+/** A level, stated or decided on, with the half-width it has in sigma. */
+interface StatedLevel {
+  readonly level: number;
+  readonly k: number;
 }
 
 const LEVEL_OPEN = leftOut("levelNotStated", "The paper states no level: a decision is needed.");
 
-function twoSidedShape(used: AsUsed, options: RowOptions, k: number | null): Form | RowLeftOut {
+function twoSidedShape(
+  used: AsUsed,
+  options: RowOptions,
+  stated: StatedLevel | null,
+): Form | RowLeftOut {
   const m = numberIn(used.value);
   const minus = numberIn(used.minus);
   const plus = numberIn(used.plus);
   if (m === null || minus === null || plus === null) {
     return leftOut("incomplete", "The value or one of its errors is missing.");
   }
-  if (k === null) return LEVEL_OPEN;
+  if (stated === null) return LEVEL_OPEN;
   if (!(minus > 0 && plus > 0)) {
     return leftOut("formDoesNotFit", "A two-sided value needs errors above zero.");
   }
@@ -239,8 +246,9 @@ function twoSidedShape(used: AsUsed, options: RowOptions, k: number | null): For
       : used.estimator === "median"
         ? "quantileMatched"
         : "twoPiece");
-  const below = used.level === null ? minus / k : (used.sigmaMinus ?? minus / k);
-  const above = used.level === null ? plus / k : (used.sigmaPlus ?? plus / k);
+  const { k } = stated;
+  const below = minus / k;
+  const above = plus / k;
   switch (chosen) {
     case "twoPiece":
       return twoPiece(m, below, above);
@@ -261,12 +269,13 @@ function limitShape(
   used: AsUsed,
   options: RowOptions,
   side: LimitSide,
-  level: number | null,
-  k: number | null,
+  stated: StatedLevel | null,
 ): Form | RowLeftOut {
   const limit = numberIn(used.limitBase) ?? numberIn(used.value);
   if (limit === null) return leftOut("incomplete", "The limit is missing.");
-  const own = numberIn(used.limitSigma);
+  const width = numberIn(used.limitSigma);
+  // A width of nothing is no width.
+  const own = width !== null && width > 0 ? width : null;
   const isFraction = used.quantity === "neutralFraction" && used.evaluatedIn === "linear";
   const chosen = options.form ?? defaultLimitForm(used, side, own, isFraction);
   if (chosen === null) {
@@ -279,16 +288,16 @@ function limitShape(
   }
   switch (chosen) {
     case "flatThenGaussian":
-      if (own === null || !(own > 0)) {
+      if (own === null) {
         return leftOut(
           "formDoesNotFit",
           "Flat, then Gaussian needs a base and a width of its own.",
         );
       }
-      return k === null ? LEVEL_OPEN : flatThenGaussian(side, limit, own / k);
+      return stated === null ? LEVEL_OPEN : flatThenGaussian(side, limit, own / stated.k);
     case "smoothedStep": {
       // A width stated is a width at the level; a width entered is the step's own.
-      const s = options.smoothing ?? (own !== null && k !== null ? own / k : null);
+      const s = options.smoothing ?? (own !== null && stated !== null ? own / stated.k : null);
       return s !== null && s > 0
         ? smoothedStep(side, limit, s)
         : leftOut("formDoesNotFit", "A smoothed step needs a width.");
@@ -296,14 +305,14 @@ function limitShape(
     case "hardStep":
       return hardStep(side, limit);
     case "halfGaussianBounded":
-      if (level === null) return LEVEL_OPEN;
+      if (stated === null) return LEVEL_OPEN;
       return isFraction && limit > 0 && limit < 1
-        ? halfGaussianBounded(side, limit, level)
+        ? halfGaussianBounded(side, limit, stated.level)
         : leftOut("formDoesNotFit", "The bounded half-Gaussian needs a limit between 0 and 1.");
     case "halfGaussianUnbounded":
-      if (k === null) return LEVEL_OPEN;
+      if (stated === null) return LEVEL_OPEN;
       return (side === "upper" ? limit > 0 : isFraction && limit < 1)
-        ? halfGaussianUnbounded(side, limit, k)
+        ? halfGaussianUnbounded(side, limit, stated.k)
         : leftOut(
             "formDoesNotFit",
             "The half-Gaussian needs a limit away from where it is centred.",
@@ -319,7 +328,7 @@ function defaultLimitForm(
   own: number | null,
   isFraction: boolean,
 ): FormName | null {
-  if (own !== null && own > 0) return "flatThenGaussian";
+  if (own !== null) return "flatThenGaussian";
   if (isFraction) return "halfGaussianBounded";
   if (used.quantity === "redshiftAtFraction" || side === "lower") return null;
   return "halfGaussianUnbounded";
@@ -328,20 +337,19 @@ function defaultLimitForm(
 function bandShape(
   used: AsUsed,
   options: RowOptions,
-  level: number | null,
-  k: number | null,
+  stated: StatedLevel | null,
 ): Form | RowLeftOut {
   const low = numberIn(used.low);
   const high = numberIn(used.high);
   if (low === null || high === null) return leftOut("incomplete", "An end of the band is missing.");
   if (!(high > low)) return leftOut("formDoesNotFit", "A band needs its ends in order.");
-  if (level === null || k === null) return LEVEL_OPEN;
+  if (stated === null) return LEVEL_OPEN;
   const range = rangeOf(used);
   switch (options.form ?? "band") {
     case "band":
-      return band(low, high, level, range);
+      return band(low, high, stated.level, range);
     case "bandWideTails":
-      return bandWideTails(low, high, k, range);
+      return bandWideTails(low, high, stated.k, range);
     default:
       return doesNotFit(options.form!, "a band");
   }
@@ -446,7 +454,7 @@ function drawnRange(shape: Form, range: Range): [number, number] {
   to = Math.min(to, range[1]);
   // An end where L does not fall shows as much again as the other side does.
   if (from === -Infinity) from = to - 2 * Math.abs(to - shape.kinks[0]!);
-  if (to === Infinity) to = from + 3 * Math.abs((shape.kinks[0] ?? shape.peak) - from || 1);
+  if (to === Infinity) to = from + 3 * Math.abs(shape.kinks[0]! - from || 1);
   const shrink = (end: number, towards: number): number => {
     if (shape.minus2LnL(end) <= DRAWN) return end;
     let inside = towards;

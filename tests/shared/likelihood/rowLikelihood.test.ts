@@ -412,21 +412,22 @@ describe("quantiles and curves", () => {
     expect(step.quantiles([0.5])![0]).toBeCloseTo(0.15, 10);
   });
 
-  it.each<[string, RowLikelihood]>([
-    ["a value", row()],
-    ["an upper limit", row(limit("upperLimit", "0.3"))],
+  it.each<[string, () => RowLikelihood]>([
+    ["a value", () => row()],
+    ["an upper limit", () => row(limit("upperLimit", "0.3"))],
     [
       "a hard lower limit on τ",
-      row({ ...tau, ...limit("lowerLimit", "0.04") }, { form: "hardStep" }),
+      () => row({ ...tau, ...limit("lowerLimit", "0.04") }, { form: "hardStep" }),
     ],
     [
       "a smoothed upper limit on τ",
-      row({ ...tau, ...limit("upperLimit", "0.04") }, { form: "smoothedStep", smoothing: 0.01 }),
+      () =>
+        row({ ...tau, ...limit("upperLimit", "0.04") }, { form: "smoothedStep", smoothing: 0.01 }),
     ],
-    ["an optical depth", row({ ...tau, value: "0.054", plus: "0.007", minus: "0.007" })],
-    ["a log10 value", row({ scale: "log10", value: "-2.0" })],
-  ])("draws %s with unit area and ascending places", (_, likelihood) => {
-    const { x, density } = likelihood.curve(201);
+    ["an optical depth", () => row({ ...tau, value: "0.054", plus: "0.007", minus: "0.007" })],
+    ["a log10 value", () => row({ scale: "log10", value: "-2.0" })],
+  ])("draws %s with unit area and ascending places", (_, make) => {
+    const { x, density } = make().curve(201);
     expect(x).toHaveLength(201);
     let area = 0;
     for (let i = 0; i < 200; i++) {
