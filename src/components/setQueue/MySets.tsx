@@ -3,13 +3,12 @@ import { View } from "react-native";
 
 import { Card } from "@/components/Card";
 import { Failed } from "@/components/feedback/Failed";
+import { ListRow } from "@/components/ListRow";
 import { StatusPill } from "@/components/StatusPill";
 import { Block, Caption, Dense, Mono } from "@/components/Text";
 import { dateTime } from "@/components/when";
 import { useColors } from "@/theme/ThemeProvider";
 import { MySetsDocument } from "~graphql/generated/graphql";
-
-import { SetRow } from "./SetRow";
 
 /** A contributor's correlated sets at the desk; nothing where there are none. */
 export function MySets() {
@@ -32,7 +31,7 @@ export function MySets() {
       <Card flush>
         <View role="list" aria-label="Your correlated sets">
           {sets.map((set, index) => (
-            <SetRow
+            <ListRow
               key={set.number}
               first={index === 0}
               href={
@@ -55,7 +54,7 @@ export function MySets() {
               {set.state === "returned" && set.decisionNote ? (
                 <Caption style={{ color: colors.emberText }}>{`“${set.decisionNote}”`}</Caption>
               ) : null}
-            </SetRow>
+            </ListRow>
           ))}
         </View>
       </Card>

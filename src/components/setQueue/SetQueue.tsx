@@ -3,13 +3,12 @@ import { View } from "react-native";
 
 import { Card } from "@/components/Card";
 import { Failed } from "@/components/feedback/Failed";
+import { ListRow } from "@/components/ListRow";
 import { StatusPill } from "@/components/StatusPill";
 import { Block, Caption, Dense, Mono } from "@/components/Text";
 import { dateTime, waitingTime } from "@/components/when";
 import { useColors } from "@/theme/ThemeProvider";
 import { SetQueueDocument, type SetQueueItemPartsFragment } from "~graphql/generated/graphql";
-
-import { SetRow } from "./SetRow";
 
 /** Matrices that wait for an editor, beside the queue of submissions; nothing where none waits. */
 export function SetQueue() {
@@ -47,7 +46,7 @@ function QueuedSet({ set, first }: { set: SetQueueItemPartsFragment; first: bool
   const colors = useColors();
   const where = [set.place, set.page ? `page ${set.page}` : null].filter(Boolean).join(", ");
   return (
-    <SetRow href={`/desk/set-review/${set.number}`} first={first}>
+    <ListRow href={`/desk/set-review/${set.number}`} first={first}>
       <View style={{ flexDirection: "row", flexWrap: "wrap", alignItems: "center", gap: 8 }}>
         <Mono style={{ fontSize: 14 }}>{set.number}</Mono>
         <StatusPill state={set.state} />
@@ -59,7 +58,7 @@ function QueuedSet({ set, first }: { set: SetQueueItemPartsFragment; first: bool
       {set.barredBecause ? (
         <Caption style={{ color: colors.emberText }}>{set.barredBecause}</Caption>
       ) : null}
-    </SetRow>
+    </ListRow>
   );
 }
 
