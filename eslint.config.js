@@ -1,4 +1,5 @@
 const fs = require("node:fs");
+const { builtinModules } = require("node:module");
 const path = require("node:path");
 
 const expo = require("eslint-config-expo/flat");
@@ -54,6 +55,80 @@ const zones = [
   })),
 ];
 
+const AGAIN = "shared gives the same answer for the same arguments, everywhere:";
+
+/** What would let a clock, an environment, chance or the outside into shared, each with the way out. */
+const ONLY_ARGUMENTS = {
+  "no-restricted-globals": [
+    "error",
+    ...[
+      ...["performance", "setTimeout", "setInterval", "setImmediate", "queueMicrotask"],
+      ...["requestAnimationFrame", "requestIdleCallback"],
+    ].map((name) => ({ name, message: `${AGAIN} pass the time or the pause in instead.` })),
+    ...["process", "global", "globalThis", "window", "self", "navigator", "location"].map(
+      (name) => ({ name, message: `${AGAIN} pass the value of the environment in instead.` }),
+    ),
+    ...["document", "localStorage", "sessionStorage", "indexedDB"].map((name) => ({
+      name,
+      message: `${AGAIN} it belongs to src/; pass the value in instead.`,
+    })),
+    ...["crypto", "fetch", "XMLHttpRequest", "WebSocket", "require", "Intl"].map((name) => ({
+      name,
+      message: `${AGAIN} pass the result in instead.`,
+    })),
+  ],
+  "no-restricted-properties": [
+    "error",
+    { object: "Math", property: "random", message: `${AGAIN} take a seeded RandomStream instead.` },
+    { object: "Date", property: "now", message: `${AGAIN} pass the time in instead.` },
+    ...["toLocaleString", "toLocaleDateString", "toLocaleTimeString", "localeCompare"].map(
+      (property) => ({ property, message: `${AGAIN} write it without the reader's locale.` }),
+    ),
+  ],
+  "no-restricted-syntax": [
+    "error",
+    {
+      selector: "NewExpression[callee.name='Date'][arguments.length=0]",
+      message: `${AGAIN} pass the time in instead.`,
+    },
+    {
+      selector: "CallExpression[callee.name='Date']",
+      message: `${AGAIN} pass the time in instead.`,
+    },
+    {
+      selector: "ImportExpression",
+      message: "shared is whole when it is loaded: import at the top.",
+    },
+    { selector: "MetaProperty", message: `${AGAIN} where a file lies is not one of them.` },
+  ],
+  "no-restricted-imports": [
+    "error",
+    {
+      paths: builtinModules.map((name) => ({
+        name,
+        message: "shared runs in browsers too and does no I/O; pass the value in instead.",
+      })),
+      patterns: [
+        {
+          group: ["node:*", "node:*/**"],
+          message: "shared runs in browsers too and does no I/O; pass the value in instead.",
+        },
+        {
+          group: [
+            ...["react", "react-*", "expo", "expo-*", "@expo/*", "@apollo/*", "graphql", "express"],
+            ...["typeorm", "type-graphql", "class-validator", "rxjs", "pino", "mysql2"],
+          ],
+          message: "shared knows no framework; put this into src/ or server/.",
+        },
+        {
+          group: ["@/*", "~server/*", "~graphql/*"],
+          message: "shared stands alone; pass the value in instead.",
+        },
+      ],
+    },
+  ],
+};
+
 function foldersOf(place) {
   const folder = path.join(__dirname, place);
   if (!fs.existsSync(folder)) return [];
@@ -100,6 +175,7 @@ module.exports = defineConfig([
     files: ["server/**", "shared/**", "scripts/**", "tests/server/**", "tests/e2e/**"],
     rules: { "react-hooks/rules-of-hooks": "off" },
   },
+  { files: ["shared/**"], rules: ONLY_ARGUMENTS },
   {
     // Decorators read parameter types at run time, which a type-only import would erase.
     files: ["server/**/*.ts"],
