@@ -145,11 +145,16 @@ async function readBody(response: Response): Promise<string> {
   if (Number(response.headers.get("content-length") ?? 0) > MOST_BYTES) return refuse("unreadable");
   const chunks: Uint8Array[] = [];
   let bytes = 0;
-  for await (const chunk of response.body ?? []) {
-    bytes += chunk.byteLength;
-    // Leaving the loop ends the transfer.
-    if (bytes > MOST_BYTES) throw new LookUpError("unreadable");
-    chunks.push(chunk);
+  const reader = response.body?.getReader();
+  for (;;) {
+    const part = await reader?.read();
+    if (!part || part.done) break;
+    bytes += part.value.byteLength;
+    if (bytes > MOST_BYTES) {
+      await reader?.cancel();
+      throw new LookUpError("unreadable");
+    }
+    chunks.push(part.value);
   }
   return Buffer.concat(chunks).toString("utf8");
 }

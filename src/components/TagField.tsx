@@ -5,7 +5,7 @@ import { Chip } from "./Chip";
 import { Field } from "./Field";
 import { IconButton } from "./Button";
 
-/** Several words, each a chip: Enter or a comma adds what is typed, a press takes one out. */
+/** Several words, each a chip: Enter or the separator adds what is typed, a press takes one out. */
 export function TagField({
   label,
   values,
@@ -13,6 +13,7 @@ export function TagField({
   suggestions = [],
   hint,
   error,
+  separator = ",",
   words,
 }: {
   label: string;
@@ -21,6 +22,8 @@ export function TagField({
   suggestions?: readonly string[];
   hint?: string;
   error?: string | null;
+  /** Character that ends a word; null where a word may hold any, as names do. */
+  separator?: string | null;
   /** How a stored value reads; itself unless said. */
   words?: (value: string) => string;
 }) {
@@ -29,8 +32,7 @@ export function TagField({
   const read = words ?? ((value: string) => value);
 
   function add(text: string) {
-    const parts = text
-      .split(",")
+    const parts = (separator === null ? [text] : text.split(separator))
       .map((part) => part.trim())
       .filter((part) => part !== "" && !values.includes(part));
     if (parts.length > 0) onChange([...values, ...new Set(parts)]);
@@ -49,7 +51,9 @@ export function TagField({
           <Field
             label={label}
             value={typed}
-            onChangeText={(text) => (text.includes(",") ? add(text) : setTyped(text))}
+            onChangeText={(text) =>
+              separator !== null && text.includes(separator) ? add(text) : setTyped(text)
+            }
             onSubmit={() => add(typed)}
             onBlur={() => typed.trim() !== "" && add(typed)}
             hint={hint}

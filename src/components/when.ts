@@ -27,3 +27,8 @@ export function waitingTime(since: string, now: Date = new Date()): string {
   if (hours < 48) return hours === 1 ? "1 hour" : `${hours} hours`;
   return `${Math.floor(hours / 24)} days`;
 }
+
+/** "March 2026" */
+export function monthYear(iso: string): string {
+  return new Date(iso).toLocaleDateString("en-GB", { month: "long", year: "numeric" });
+}

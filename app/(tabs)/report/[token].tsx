@@ -1,0 +1,1 @@
+export { ReporterScreen as default } from "@/features/errorReports/ReporterScreen";

@@ -1,0 +1,1 @@
+export { AddressScreen as default } from "@/features/account/AddressScreen";

@@ -1,0 +1,1 @@
+export { ObjectionScreen as default } from "@/features/account/ObjectionScreen";
