@@ -10,6 +10,7 @@ const zlib = require("node:zlib");
 const { query } = require("./database");
 const { PlainFailure } = require("./failure");
 const { findProgram, requireSpace } = require("./install");
+const { rememberHead, setAsideBeyond } = require("./logHeads");
 const { readJson } = require("./paths");
 const { atEnd, endChild, startChild } = require("./processes");
 const { say, step } = require("./steps");
@@ -34,6 +35,7 @@ async function writeBackup(connection, folder) {
   const forget = atEnd(() => {
     for (const name of [DUMP, MANIFEST]) fs.rmSync(path.join(target, name), { force: true });
   });
+  let manifest;
   await step("database written", async () => {
     const [[version]] = await query(connection.options, connection.database, "SELECT VERSION()");
     const tables = await query(
@@ -45,7 +47,7 @@ async function writeBackup(connection, folder) {
     const counts = Object.fromEntries(tables.map(([name]) => [name, 0]));
     const watch = countRows(counts);
     const { sha256, bytes } = await dump(connection, path.join(target, DUMP), watch.stream);
-    const manifest = {
+    manifest = {
       format: FORMAT,
       made: new Date().toISOString(),
       database: version,
@@ -60,6 +62,7 @@ async function writeBackup(connection, folder) {
     return `${tables.length} tables with ${rows} rows written to ${target}`;
   });
   forget();
+  rememberHead(target, manifest);
   say("Keep the folder private: it holds addresses, password hashes and unpublished drafts.");
 }
 
@@ -176,6 +179,7 @@ async function restoreBackup(connect, folder, { force }) {
   }
   await step("database restored", () => load(connection, file));
   await step("contents compared with the manifest", () => compare(connection, manifest));
+  setAsideBeyond(manifest);
   say(`Restored from ${source}. Everybody has to sign in again.`);
 }
 

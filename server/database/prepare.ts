@@ -20,7 +20,7 @@ const DENIED = new Set(["ER_TABLEACCESS_DENIED_ERROR", "ER_DBACCESS_DENIED_ERROR
  * @throws {DatabaseProblem} when the database is unreachable, no MariaDB, or older than 10.7.
  */
 export async function prepareDatabase(dataSource: DataSource): Promise<void> {
-  await connect(dataSource);
+  await connectDatabase(dataSource);
   await requireVersion(dataSource);
   const runner = dataSource.createQueryRunner();
   try {
@@ -63,7 +63,8 @@ export async function isReady(dataSource: DataSource): Promise<boolean> {
   }
 }
 
-async function connect(dataSource: DataSource): Promise<void> {
+/** @throws {DatabaseProblem} in words for the operator, if it can't be reached. */
+export async function connectDatabase(dataSource: DataSource): Promise<void> {
   if (dataSource.isInitialized) return;
   try {
     await dataSource.initialize();

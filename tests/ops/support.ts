@@ -20,6 +20,9 @@ export interface Outcome {
   output: string;
 }
 
+/** What commands remember in a data folder goes with the test file. */
+const dataFolder = temporaryFolder();
+
 /** Runs one of our commands to its end, as a person would, with `answer` typed into it. */
 export function command(
   script: string,
@@ -30,7 +33,12 @@ export function command(
   const { status, stdout, stderr } = spawnSync(
     process.execPath,
     [path.join(ROOT, "scripts", script), ...args],
-    { cwd: ROOT, env: { ...process.env, ...env }, input: answer, encoding: "utf8" },
+    {
+      cwd: ROOT,
+      env: { ...process.env, FOGLINE_DATA: dataFolder, ...env },
+      input: answer,
+      encoding: "utf8",
+    },
   );
   return { code: status, output: stdout + stderr };
 }
