@@ -25,7 +25,9 @@ import type { ConstraintFields, FieldName } from "~shared/statement/fields";
 import { notationAsPrinted, notationAsUsed } from "~shared/statement/notation";
 import { conditionWord, FIELD_NAMES, fieldText, levelPhrase } from "~shared/statement/words";
 
+import { ReportCount } from "./ReportCount";
 import { ReportSheet } from "./ReportSheet";
+import { RevisionCredits } from "./RevisionCredits";
 
 type RecordData = NonNullable<ConstraintByNumberQuery["constraint"]>;
 
@@ -114,6 +116,7 @@ export function RecordView({ record }: { record: RecordData }) {
             icon="alert-circle-outline"
             onPress={() => setReporting(true)}
           />
+          <ReportCount number={record.number} count={record.errorReports} />
         </View>
       </View>
       <CiteSheet
@@ -322,13 +325,14 @@ function Revisions({ record }: { record: RecordData }) {
       <Block>Revisions</Block>
       {[...record.revisions]
         .sort((a, b) => b.ordinal - a.ordinal)
-        .map(({ ordinal, state, at, changes }) => (
+        .map(({ ordinal, state, at, changes, enteredBy, readBy }) => (
           <View key={ordinal} style={styles.revision}>
             <View style={styles.line}>
               <Label>Revision {ordinal}</Label>
               <Caption muted>{dateTime(at)}</Caption>
               <StatusPill state={state} />
             </View>
+            <RevisionCredits enteredBy={enteredBy} readBy={readBy} />
             {changes.map(({ field, before, after }) => (
               <Dense key={field}>
                 {FIELD_NAMES[field as FieldName] ?? field}: was {before || "open"}, now{" "}

@@ -11,10 +11,11 @@ import { View } from "react-native";
 import { MaintainerDesk } from "./MaintainerDesk";
 import { MySubmissions } from "./MySubmissions";
 import { Queue } from "./Queue";
+import { ReportsEntry } from "./ReportsEntry";
 
 /** The working place of each role: what waits for this person stands first. */
 export function DeskScreen() {
-  const { viewer, loading, hasRole } = useSession();
+  const { viewer, loading, hasRole, may } = useSession();
   const roles = (["contributor", "editor", "maintainer"] as const).filter(hasRole);
   return (
     <Screen
@@ -32,6 +33,7 @@ export function DeskScreen() {
             {hasRole("contributor") ? <MySets /> : null}
             {hasRole("editor") ? <Queue /> : null}
             {hasRole("editor") ? <SetQueue /> : null}
+            {may("readErrorReports") ? <ReportsEntry /> : null}
             {hasRole("maintainer") ? <MaintainerDesk /> : null}
             {hasRole("contributor") ? null : <BecomeContributor alone={roles.length === 0} />}
           </>

@@ -19,6 +19,8 @@ import {
   type PreviewCitationsQuery,
 } from "~graphql/generated/graphql";
 
+import { LookUp } from "./LookUp";
+
 type Entry = PreviewCitationsQuery["previewCitations"][number];
 
 const PARSE_DELAY_MS = 600;
@@ -90,14 +92,14 @@ function BibtexEntry({
     [],
   );
 
-  const typed = (text: string) => {
+  const typed = (text: string, delay = PARSE_DELAY_MS) => {
     setBibtex(text);
     setRefusal(null);
     if (timer.current) clearTimeout(timer.current);
     if (text.trim() === "") return;
-    // A newer text ends the look-up of the one before; that is no failure.
+    // A newer text ends the reading of the one before; that is no failure.
     const read = () => void parse({ variables: { bibtex: text } }).catch(() => undefined);
-    timer.current = setTimeout(read, PARSE_DELAY_MS);
+    timer.current = setTimeout(read, delay);
   };
 
   const choose = async (entry: Entry) => {
@@ -120,6 +122,7 @@ function BibtexEntry({
   const entries = bibtex.trim() === "" ? [] : (data?.previewCitations ?? []);
   return (
     <View style={{ gap: 16 }}>
+      <LookUp onFound={(text) => typed(text, 0)} />
       <Body>
         Paste the paper&apos;s BibTeX, or pick a .bib file. Several entries are fine; you choose one
         of them.
@@ -129,7 +132,7 @@ function BibtexEntry({
         label="BibTeX"
         multiline
         value={bibtex}
-        onChangeText={typed}
+        onChangeText={(text) => typed(text)}
         autoComplete="off"
       />
       <FilePick label="Pick a .bib file" accept=".bib,.txt" onPick={({ text }) => typed(text)} />
