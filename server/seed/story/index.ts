@@ -1,0 +1,19 @@
+import { CMB } from "./cmb";
+import { EMITTERS } from "./emitters";
+import { FOREST } from "./forest";
+import type { StoryRecord } from "./kinds";
+import { OTHER_METHODS } from "./otherMethods";
+import { QUASARS } from "./quasars";
+import { UNDER_WAY } from "./underWay";
+
+export { contentOf, type StoryRecord } from "./kinds";
+
+/** The whole story; records get their numbers in the order of their first days. */
+export const STORY: readonly StoryRecord[] = [
+  ...QUASARS,
+  ...FOREST,
+  ...EMITTERS,
+  ...CMB,
+  ...OTHER_METHODS,
+  ...UNDER_WAY,
+];
