@@ -1,12 +1,11 @@
 import type { Background } from "~shared/cosmology/background";
+import { DomainError } from "~shared/errors/DomainError";
+import { samplePosterior, type SamplerOptions } from "~shared/inference/ensembleSampler";
 import type { FitFamily } from "~shared/inference/families";
-import {
-  type GridOptions,
-  gridPosterior,
-  type GridPosterior,
-} from "~shared/inference/gridPosterior";
+import { type GridOptions, gridPosterior } from "~shared/inference/gridPosterior";
 import type { Summary } from "~shared/inference/marginal";
 import { FitProblem } from "~shared/inference/problem";
+import { sampledEvidence } from "~shared/inference/sampledEvidence";
 import type { Task } from "~shared/inference/task";
 import { CompiledTable, type TableSpec } from "~shared/likelihood/compile";
 
@@ -21,19 +20,30 @@ export interface TermInfluence {
   readonly shift: Readonly<Record<string, number>>;
 }
 
+/** A posterior of the whole table, from the grid or from the sampler. */
+export interface FullPosterior {
+  readonly best: { readonly theta: ArrayLike<number> };
+  readonly parameters: Readonly<Record<string, Summary>>;
+}
+
 /** Accuracy enough for a shift shown to two digits. */
 const COARSE: GridOptions = { tolerance: 5e-3, withoutDerived: true };
 
 /**
- * −2 ln L, pull and leave-one-out shift of every term of a table, one or two parameters.
+ * −2 ln L, pull and leave-one-out shift of every term of a table.
  *
  * @param full - The posterior of all rows.
  * @param spec - The table; a mixture or correlated set is left out as a whole.
+ * @param sampler - How to sample, for three or more parameters: each term costs a run, and its shift has
+ *   the Monte-Carlo error of that run. Not asked for one or two, which go by the grid.
+ * @returns One entry for each term of the table, in its order.
+ * @throws {DomainError} For three or more parameters without a sampler.
  */
 export function* leaveOneOut(
   problem: FitProblem,
-  full: GridPosterior,
+  full: FullPosterior,
   spec: TableSpec,
+  sampler?: SamplerOptions,
 ): Task<TermInfluence[]> {
   const values = problem.termValues(full.best.theta);
   const models = problem.modelValues(full.best.theta);
@@ -48,11 +58,11 @@ export function* leaveOneOut(
       correlated: spec.correlated?.filter(({ id }) => id !== term.id) ?? [],
     };
     const without = new FitProblem(new CompiledTable(reduced), problem.family, problem.background);
-    const posterior = yield* gridPosterior(without, COARSE);
+    const parameters = yield* parametersOf(without, sampler);
     const shift = Object.fromEntries(
       problem.names.map((name) => {
         const { mean, sd } = full.parameters[name]!;
-        return [name, (posterior.parameters[name]!.mean - mean) / sd];
+        return [name, (parameters[name]!.mean - mean) / sd];
       }),
     );
     results.push({
@@ -64,6 +74,22 @@ export function* leaveOneOut(
     yield { stage: "leave one out", fraction: (t + 1) / problem.table.terms.length };
   }
   return results;
+}
+
+function* parametersOf(
+  problem: FitProblem,
+  sampler: SamplerOptions | undefined,
+): Task<Readonly<Record<string, Summary>>> {
+  const posterior =
+    problem.dimension <= 2
+      ? yield* gridPosterior(problem, COARSE)
+      : yield* samplePosterior(problem, samplerFor(problem.dimension, sampler));
+  return posterior.parameters;
+}
+
+function samplerFor(dimension: number, sampler: SamplerOptions | undefined): SamplerOptions {
+  if (sampler) return sampler;
+  throw new DomainError("sampler", "nothing", `given for ${dimension} parameters`);
 }
 
 function pullOf(spec: TableSpec, id: string, model: number, minus2LnL: number): number {
@@ -78,24 +104,41 @@ export interface Tension {
   readonly parameters: Readonly<Record<string, number>>;
   /** ln Z_AB − ln Z_A − ln Z_B: above zero, the parts agree better than separate histories would. */
   readonly logEvidenceRatio: number;
+  /** Its standard error from sampling; 0 where a grid gave the evidences. */
+  readonly logEvidenceError: number;
+}
+
+interface Part {
+  readonly parameters: Readonly<Record<string, Summary>>;
+  readonly logEvidence: number;
+  readonly error: number;
 }
 
 /**
- * Tension of two sets of rows under one family of one or two parameters.
+ * Tension of two sets of rows under one family.
  *
  * @param a - Rows of the one method family.
  * @param b - Rows of the other; no row in both.
+ * @param options - Of the grid, for one or two parameters; of the sampler, for more.
+ * @throws {DomainError} For three or more parameters without a sampler.
  */
 export function* tension(
   a: TableSpec,
   b: TableSpec,
   family: FitFamily,
   background: Background,
-  options: GridOptions = {},
+  options: GridOptions & { readonly sampler?: SamplerOptions } = {},
 ): Task<Tension> {
-  const fit = function* (spec: TableSpec): Task<GridPosterior> {
+  const fit = function* (spec: TableSpec): Task<Part> {
     const problem = new FitProblem(new CompiledTable(spec), family, background);
-    return yield* gridPosterior(problem, { ...options, withoutDerived: true });
+    if (problem.dimension <= 2) {
+      const grid = yield* gridPosterior(problem, { ...options, withoutDerived: true });
+      return { parameters: grid.parameters, logEvidence: grid.logEvidence, error: 0 };
+    }
+    const sampler = samplerFor(problem.dimension, options.sampler);
+    const sampled = yield* samplePosterior(problem, sampler);
+    const evidence = yield* sampledEvidence(problem, sampled, sampler.seed);
+    return { parameters: sampled.parameters, ...evidence };
   };
   const both: TableSpec = {
     rows: [...a.rows, ...b.rows],
@@ -114,5 +157,6 @@ export function* tension(
       ]),
     ),
     logEvidenceRatio: ofBoth.logEvidence - ofA.logEvidence - ofB.logEvidence,
+    logEvidenceError: Math.hypot(ofA.error, ofB.error, ofBoth.error),
   };
 }

@@ -1,4 +1,10 @@
-export { leaveOneOut, tension, type TermInfluence, type Tension } from "./comparison";
+export {
+  type FullPosterior,
+  leaveOneOut,
+  tension,
+  type TermInfluence,
+  type Tension,
+} from "./comparison";
 export type { ChainDiagnostics } from "./diagnostics";
 export {
   sampleEnsemble,

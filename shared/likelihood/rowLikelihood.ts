@@ -1,4 +1,5 @@
 import type { Background } from "~shared/cosmology/background";
+import { DomainError } from "~shared/errors/DomainError";
 import type { History } from "~shared/history/history";
 import { averagedMinus2LnL } from "~shared/likelihood/averaged";
 import { distributionOf, type Range } from "~shared/likelihood/distribution";
@@ -21,6 +22,7 @@ import {
   twoPiece,
   variableWidth,
 } from "~shared/likelihood/forms";
+import { informationLoss } from "~shared/likelihood/informationLoss";
 import { type ModelRequest, modelValue } from "~shared/likelihood/modelRequest";
 import { sigmasOfLevel } from "~shared/numerics/special";
 import type { AsUsed } from "~shared/statement/asUsed";
@@ -39,7 +41,10 @@ export interface RowOptions {
   readonly redshift?: RedshiftTreatment;
   /** Use a mass-weighted value as if it were volume-weighted. */
   readonly acceptMassWeighted?: boolean;
-  /** The nodes of a curve. */
+  /**
+   * The nodes of the record's curve: places in the variable the row is evaluated in and densities there,
+   * [n] each. A record that has one is evaluated as it stands unless another form is chosen.
+   */
   readonly curve?: { readonly x: readonly number[]; readonly p: readonly number[] };
 }
 
@@ -98,6 +103,12 @@ export interface RowLikelihood {
    * @returns Null where the likelihood can't be normalized, as for a lower limit on an optical depth.
    */
   quantiles(probabilities: readonly number[]): number[] | null;
+  /**
+   * What the record's quoted numbers, in their default form, lose of its curve: D_KL(curve‖summary) in
+   * nats over the range of the quantity. +Infinity where they exclude what the curve allows; null for a
+   * row that is not evaluated as a curve, or that quotes no numbers beside it.
+   */
+  informationLost(): number | null;
   /** n ≥ 2 points for drawing: 0 to 1 for a fraction, as far as L reaches otherwise. */
   curve(n: number): LikelihoodCurvePoints;
   evaluate(history: History, background: Background): RowEvaluation;
@@ -138,6 +149,12 @@ export function rowLikelihood(
     shape,
     minus2LnL,
     quantiles: (probabilities) => quantilesOf(shape, range, probabilities),
+    informationLost: () => {
+      if (shape.name !== "tabulated") return null;
+      const { curve: _, form: __, ...others } = options;
+      const summary = shapeOf(used, others);
+      return "leftOut" in summary ? null : informationLoss(shape, summary, range);
+    },
     curve: (n) => curveOf(shape, used, range, n),
     evaluate: (history, background) => {
       const answer = modelValue(request, history, background);
@@ -194,6 +211,8 @@ function obstacleOf(used: AsUsed, options: RowOptions): RowLeftOut | null {
 
 /** The form of a statement: its default, or the one chosen. */
 function shapeOf(used: AsUsed, options: RowOptions): Form | RowLeftOut {
+  const { curve, form } = options;
+  if (curve && (form === undefined || form === "tabulated")) return curveShape(curve);
   const level = used.level ?? options.level ?? null;
   const stated = level === null ? null : { level, k: sigmasOfLevel(level) };
   switch (used.kind) {
@@ -206,11 +225,23 @@ function shapeOf(used: AsUsed, options: RowOptions): Form | RowLeftOut {
     case "band":
       return bandShape(used, options, stated);
     case "curve":
-      return options.curve
-        ? tabulated(options.curve.x, options.curve.p)
+      return curve
+        ? doesNotFit(form!, "a curve")
         : leftOut("curveMissing", "The nodes of the curve are not at hand.");
     case "qualitative":
       return QUALITATIVE;
+  }
+}
+
+function curveShape({ x, p }: NonNullable<RowOptions["curve"]>): Form | RowLeftOut {
+  try {
+    return tabulated(x, p);
+  } catch (error) {
+    // What a record holds is no mistake of the program: it is said, and the row left out.
+    if (error instanceof DomainError) {
+      return leftOut("formDoesNotFit", `The curve can't be used: ${error.message}.`);
+    }
+    throw error;
   }
 }
 

@@ -322,6 +322,63 @@ describe("what one row does, and what two sets do to each other", () => {
     const z = (sigma: number) => Math.log((Math.sqrt(2 * Math.PI) * sigma) / 7);
     const expected = z(width) - (0.5 * 0.36) / 0.13 - z(0.2) - z(0.3);
     expect(result.logEvidenceRatio).toBeCloseTo(expected, 3);
+    expect(result.logEvidenceError).toBe(0);
+  });
+
+  describe("of three parameters, by the sampler", () => {
+    // Two values at one node: x(7) alone feels them, and the others keep their order.
+    const nodes = freeFormFamily([6, 7, 8]);
+    const point = (id: string, m: number, sigma: number): ReadyRow =>
+      row(id, m, sigma, { kind: "point", z: 7 });
+    const low = point("low", 0.45, 0.02);
+    const high = point("high", 0.55, 0.03);
+    const sampler = { seed: 3, steps: 700 };
+
+    it("shifts a mean as two Gaussians do", () => {
+      const spec = { rows: [low, high] };
+      const problem = problemOf([low, high], nodes);
+      const full = runTask(samplePosterior(problem, sampler));
+      const [first, second] = runTask(leaveOneOut(problem, full, spec, sampler));
+      // The prior of the middle of three ordered values, 6x(1 − x), is flat to 1 % here: its slope moves
+      // means by σ² d ln p/dx, 0.1 σ at most.
+      const width = 1 / Math.sqrt(1 / 0.02 ** 2 + 1 / 0.03 ** 2);
+      const mean = (0.45 / 0.02 ** 2 + 0.55 / 0.03 ** 2) * width ** 2;
+      expect(Math.abs(first!.shift["x(7)"]! - (0.55 - mean) / width)).toBeLessThan(0.25);
+      expect(Math.abs(second!.shift["x(7)"]! - (0.45 - mean) / width)).toBeLessThan(0.25);
+      expect(Math.sign(first!.pull!)).toBe(1);
+      expect(Math.sign(second!.pull!)).toBe(-1);
+    });
+
+    it("has their tension and evidence ratio, with its error", () => {
+      const result = runTask(
+        tension({ rows: [low] }, { rows: [high] }, nodes, cosmology, { sampler }),
+      );
+      expect(Math.abs(result.parameters["x(7)"]! + 0.1 / Math.hypot(0.02, 0.03))).toBeLessThan(0.1);
+      // Z of a Gaussian under the prior 6x(1 − x), and of their product at its own mean.
+      const prior = (x: number) => 6 * x * (1 - x);
+      const width = 1 / Math.sqrt(1 / 0.02 ** 2 + 1 / 0.03 ** 2);
+      const mean = (0.45 / 0.02 ** 2 + 0.55 / 0.03 ** 2) * width ** 2;
+      const z = (m: number, sigma: number) => Math.log(Math.sqrt(2 * Math.PI) * sigma * prior(m));
+      const expected =
+        z(mean, width) - (0.5 * 0.01) / (0.02 ** 2 + 0.03 ** 2) - z(0.45, 0.02) - z(0.55, 0.03);
+      expect(result.logEvidenceError).toBeGreaterThan(0);
+      expect(result.logEvidenceError).toBeLessThan(0.1);
+      // 6x(1 − x) bends by 12 σ²/(2 × 1.5) over a width: below 0.01 in each ln Z.
+      expect(Math.abs(result.logEvidenceRatio - expected)).toBeLessThan(
+        4 * result.logEvidenceError + 0.01,
+      );
+    });
+
+    it("is refused without a sampler, by name", () => {
+      const problem = problemOf([low], nodes);
+      const full = { best: { theta: [0.2, 0.45, 0.8] }, parameters: {} };
+      expect(() => runTask(leaveOneOut(problem, full, { rows: [low] }))).toThrow(
+        "sampler must be given for 3 parameters",
+      );
+      expect(() => runTask(tension({ rows: [low] }, { rows: [high] }, nodes, cosmology))).toThrow(
+        "sampler must be given for 3 parameters",
+      );
+    });
   });
 });
 

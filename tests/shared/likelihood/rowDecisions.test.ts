@@ -280,6 +280,80 @@ describe("numbers of a row", () => {
   });
 });
 
+describe("a record with a curve", () => {
+  // A Gaussian curve on a fine grid: 0.40 ± 0.10 at one sigma.
+  const x = Array.from({ length: 2001 }, (_, i) => i / 2000);
+  const normal = (m: number, sigma: number) => ({
+    x,
+    p: x.map((at) => Math.exp(-0.5 * ((at - m) / sigma) ** 2)),
+  });
+  const curve = normal(0.4, 0.1);
+
+  it("is evaluated as it stands, whatever else it quotes, unless a form is chosen", () => {
+    for (const changes of [
+      {},
+      { ...noNumbers, kind: "curve" } as const,
+      limit("upperLimit", "0.6"),
+    ]) {
+      expect(row(changes, { curve }).form).toBe("tabulated");
+      expect(row(changes, { curve }).minus2LnL(0.5)).toBeCloseTo(1, 10);
+    }
+    expect(row({}, { curve, form: "tabulated" }).form).toBe("tabulated");
+    expect(row({}, { curve, form: "twoPiece" }).form).toBe("twoPiece");
+    expect(rowLikelihood(used({ kind: "curve" }), { curve, form: "twoPiece" })).toEqual({
+      code: "formDoesNotFit",
+      leftOut: "The form “two-piece” does not fit a curve.",
+    });
+    expect(rowLikelihood(used(), { form: "tabulated" })).toMatchObject({ code: "formDoesNotFit" });
+  });
+
+  it("needs no level, and stays out where it is qualitative", () => {
+    expect(row({ level: null, k: null }, { curve }).form).toBe("tabulated");
+    expect(rowLikelihood(used({ kind: "qualitative" }), { curve })).toMatchObject({
+      code: "qualitative",
+    });
+  });
+
+  it("has the curve's quantiles", () => {
+    // Φ(−1), ½, Φ(1) of a Gaussian; [0, 1] cuts 3e-5 off at 0, which moves them by 1e-5 of σ.
+    const [low, middle, high] = row({}, { curve }).quantiles([0.15865525, 0.5, 0.84134475])!;
+    expect(low).toBeCloseTo(0.3, 4);
+    expect(middle).toBeCloseTo(0.4, 4);
+    expect(high).toBeCloseTo(0.5, 4);
+  });
+
+  it("says what its quoted numbers lose of it, in nats", () => {
+    const k = K95;
+    // Two Gaussians of one mean: ln(s/σ) + σ²/(2s²) − ½, here σ = 0.05 and s = 0.1/k.
+    const s = 0.1 / k;
+    const lost = row({}, { curve: normal(0.4, 0.05) }).informationLost();
+    expect(lost).toBeCloseTo(Math.log(s / 0.05) + 0.05 ** 2 / (2 * s * s) - 0.5, 6);
+    // The same numbers quoted exactly lose nothing.
+    expect(row({}, { curve: normal(0.4, s) }).informationLost()).toBeCloseTo(0, 6);
+    // A chosen form is the curve's; what is quoted keeps its default.
+    expect(row({}, { curve: normal(0.4, s), form: "tabulated" }).informationLost()).toBeCloseTo(
+      0,
+      6,
+    );
+    // A wall inside the curve excludes what it allows.
+    const hard = { ...redshift, ...limit("upperLimit", "0.5") };
+    expect(row(hard, { curve }).informationLost()).toBeNull();
+  });
+
+  it("says nothing of it without a curve, or without numbers beside it", () => {
+    expect(row().informationLost()).toBeNull();
+    expect(row({ ...noNumbers, kind: "curve" }, { curve }).informationLost()).toBeNull();
+    expect(row({ level: null, k: null }, { curve }).informationLost()).toBeNull();
+  });
+
+  it("is left out, in words, where the curve can't be used", () => {
+    expect(rowLikelihood(used(), { curve: { x: [0, 0.5, 1], p: [1, -1, 1] } })).toMatchObject({
+      code: "formDoesNotFit",
+      leftOut: expect.stringMatching(/^The curve can't be used: p\[1\] must be .*\.$/),
+    });
+  });
+});
+
 describe("formula of a row", () => {
   it.each<[string, Partial<AsUsed>]>([
     [
