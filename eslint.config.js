@@ -9,7 +9,7 @@ const importX = require("eslint-plugin-import-x");
 /** Concepts of shared/ from the ground up: a later one may use an earlier one, never the reverse. */
 const SHARED_ORDER = [
   ...["errors", "numerics", "constants", "identifiers", "methods", "statement", "cosmology"],
-  ...["history", "likelihood", "inference", "review", "correlatedSet", "filter", "formats"],
+  ...["history", "likelihood", "inference", "review", "correlatedSet", "event", "filter", "formats"],
   "chart",
 ];
 

@@ -21,6 +21,7 @@ export const ACTIONS = [
   "approveSubmission",
   "saveTable",
   "deleteTable",
+  "changeTable",
   "readPeople",
   "grantRole",
   "revokeRole",
@@ -36,6 +37,9 @@ export const ACTIONS = [
   "readSet",
   "reviewSet",
   "withdrawSet",
+  "readEventLog",
+  "keepNamedData",
+  "changeRecordLife",
 ] as const;
 export type Action = (typeof ACTIONS)[number];
 
@@ -72,6 +76,7 @@ export const MAY: Record<Action, Permission> = {
   approveSubmission: { roles: EDITOR, own: "never" },
   saveTable: { roles: null, own: "any" },
   deleteTable: { roles: null, own: "only" },
+  changeTable: { roles: null, own: "only" },
   readPeople: { roles: MAINTAINER, own: "any" },
   grantRole: { roles: MAINTAINER, own: "any" },
   revokeRole: { roles: MAINTAINER, own: "any" },
@@ -88,6 +93,9 @@ export const MAY: Record<Action, Permission> = {
   readSet: { roles: null, own: "only" },
   reviewSet: { roles: EDITOR, own: "never" },
   withdrawSet: { roles: MAINTAINER, own: "any" },
+  readEventLog: { roles: MAINTAINER, own: "any" },
+  keepNamedData: { roles: EDITOR_OR_MAINTAINER, own: "any" },
+  changeRecordLife: { roles: MAINTAINER, own: "any" },
 };
 
 /**

@@ -76,6 +76,8 @@ describe("blindness", () => {
         "/api/constraints.bib",
         `/api/constraints.csv?q=${FIRST.value}`,
         "/api/constraints.csv?z=7-8",
+        "/api/log.csv",
+        "/api/log.jsonl",
         ...records.map((id) => `/api/constraints/${formatRecordNumber(id)}.bib`),
         ...slugs.flatMap((slug) =>
           ["csv", "json", "bib"].map((end) => `/api/tables/${slug}.${end}`),
