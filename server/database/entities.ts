@@ -4,17 +4,21 @@ import { User } from "~server/account/user.entity";
 import { Citation, CitationGate } from "~server/citation/citation.entity";
 import { Constraint } from "~server/constraint/constraint.entity";
 import { Revision, RevisionData } from "~server/constraint/revision.entity";
+import { RelationGate, RevisionLink } from "~server/constraint/revisionLink.entity";
 import { CorrelatedSet, SetReading } from "~server/correlatedSet/correlatedSet.entity";
 import { ErrorReport, ErrorReportMessage } from "~server/errorReport/errorReport.entity";
 import { EventHead, EventRecord } from "~server/event/event.entity";
 import { ImportMatch } from "~server/import/importMatch.entity";
 import { CaughtMailRow } from "~server/mail/caughtMail.entity";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
+import { NamedData, NamedDataAlias, NamedDataRelation } from "~server/namedData/namedData.entity";
+import { RecordNotice } from "~server/recordLife/recordNotice.entity";
 import { FieldCommentRecord } from "~server/review/comment.entity";
 import { Reading } from "~server/review/reading.entity";
 import { Release, ReleaseRow } from "~server/release/release.entity";
 import { RateLimitRow } from "~server/security/rateLimit.entity";
 import { SavedTable } from "~server/table/table.entity";
+import { TableVersion, TableVersionRow } from "~server/table/tableVersion.entity";
 import { Upload } from "~server/upload/upload.entity";
 import { SessionRow } from "~server/http/session.entity";
 
@@ -39,9 +43,17 @@ export const entities = [
   Constraint,
   Revision,
   RevisionData,
+  RevisionLink,
+  RelationGate,
+  NamedData,
+  NamedDataAlias,
+  NamedDataRelation,
+  RecordNotice,
   Reading,
   FieldCommentRecord,
   SavedTable,
+  TableVersion,
+  TableVersionRow,
   Release,
   ReleaseRow,
   ErrorReport,

@@ -1,7 +1,3 @@
-import { once } from "node:events";
-import { pipeline } from "node:stream/promises";
-import { Readable } from "node:stream";
-
 import type { Request, Response } from "express";
 import { In, type EntityManager } from "typeorm";
 
@@ -22,6 +18,8 @@ import { demonstrationWords, EXPORT_CAUTIONS } from "~shared/formats/exportRow";
 import { RECORD_COLUMNS, recordCells } from "~shared/formats/recordColumns";
 import { releaseBibtex, releaseCff, releaseCsl } from "~shared/formats/releaseCitation";
 import { formatQuotable, formatRecordNumber } from "~shared/identifiers/recordNumber";
+
+import { streamFile } from "./stream";
 
 interface Writer {
   type: string;
@@ -122,32 +120,11 @@ async function send(parts: RouteParts, req: Request, res: Response): Promise<voi
     const sentence = `This release holds ${blind.join(", ")}, which you are reading. It opens when your second reading is stored.`;
     throw new HttpProblem(403, "READING", sentence);
   }
-  const etag = `"${release.digest}-${kind}"`;
-  res.setHeader("ETag", etag);
-  res.setHeader("Cache-Control", "private, no-cache");
-  res.vary("Cookie");
-  if (req.fresh) {
-    res.status(304).end();
-    return;
-  }
-  res.setHeader("Content-Type", writer.type);
-  res.setHeader(
-    "Content-Disposition",
-    `attachment; filename="fogline-release-${release.number}${writer.ending}"`,
-  );
-  res.setHeader("X-Content-Type-Options", "nosniff");
-  if (req.method === "HEAD") {
-    res.end();
-    return;
-  }
-  await pipeline(
-    Readable.from(writer.write(manager, release, ctx.config.publicUrl), { objectMode: true }),
-    res,
-  ).catch(async (error: unknown) => {
-    // Somebody who went away is nobody's error.
-    if (!res.writableEnded && res.destroyed) return;
-    if (!res.closed) await once(res, "close");
-    throw error;
+  await streamFile(req, res, {
+    type: writer.type,
+    name: `fogline-release-${release.number}${writer.ending}`,
+    etag: `${release.number}-${release.digest}-${kind}`,
+    pieces: () => writer.write(manager, release, ctx.config.publicUrl),
   });
 }
 

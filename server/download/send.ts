@@ -7,6 +7,10 @@ const TYPES = {
 } as const;
 export type FileKind = keyof typeof TYPES;
 
+export function isFileKind(kind: string): kind is FileKind {
+  return Object.hasOwn(TYPES, kind);
+}
+
 /**
  * Sends a file to be saved. Express adds the ETag and answers 304; caches must ask each time,
  * and no shared one keeps it: an editor who reads blind gets another answer from one address.

@@ -23,6 +23,8 @@ export interface SnapshotConstraint {
   number: string;
   ordinal: number;
   state: RecordState;
+  /** Number of the record in its place, if there is one. */
+  supersededBy?: string | null;
   approvedAt: string;
   submittedBy: string;
   readBy: string;

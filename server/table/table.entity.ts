@@ -12,7 +12,11 @@ import { User } from "~server/account/user.entity";
 
 import type { TableSnapshot } from "./snapshot";
 
-/** A saved fitting table. What it hands out was copied when it was saved, so it never changes. */
+/** private: its owner; link: who has the address; public: everybody, and it is listed. */
+export const VISIBILITIES = ["private", "link", "public"] as const;
+export type Visibility = (typeof VISIBILITIES)[number];
+
+/** A saved fitting table. What its versions hand out was copied when they were saved, so it never changes. */
 @Entity("fitting_table")
 export class SavedTable {
   /** Part of the permanent address; short and not to be guessed. */
@@ -49,6 +53,34 @@ export class SavedTable {
   @Column({ type: "datetime", precision: 6 })
   lastEventAt!: Date;
 
-  @Column({ type: "json" })
-  snapshot!: TableSnapshot;
+  /** Content of a table saved before tables had versions; null for every other. */
+  @Column({ type: "json", nullable: true })
+  snapshot!: TableSnapshot | null;
+
+  @Column({ type: "varchar", length: 10, default: "public" })
+  visibility!: Visibility;
+
+  /** The newest version; 0 for a table saved before tables had versions. */
+  @Column({ type: "int", unsigned: true, default: 0 })
+  version!: number;
+
+  /** The table that this one began as a copy of. */
+  @Column({ type: "varchar", length: 24, nullable: true })
+  adaptedFrom!: string | null;
+
+  /** Whether its owner is told by mail when a release would change it. */
+  @Column({ type: "boolean", default: false })
+  notify!: boolean;
+
+  @Column({ type: "int", unsigned: true, default: 0 })
+  rowsIn!: number;
+
+  @Column({ type: "int", unsigned: true, default: 0 })
+  rowsOut!: number;
+
+  @Column({ type: "varchar", length: 2000, default: "" })
+  filterWords!: string;
+
+  @Column({ type: "int", unsigned: true, nullable: true })
+  releaseNumber!: number | null;
 }

@@ -1,5 +1,3 @@
-import { randomBytes } from "node:crypto";
-
 import { In, IsNull, type EntityManager } from "typeorm";
 
 import { User } from "~server/account/user.entity";
@@ -21,6 +19,7 @@ import type { ConstraintFilter } from "~shared/filter/filter";
 import { formatRecordNumber, parseRecordNumber } from "~shared/identifiers/recordNumber";
 import { proposeRows } from "~shared/table/proposeRows";
 
+import { newSlug } from "./slug";
 import {
   snapshotConstraint,
   type SnapshotConstraint,
@@ -28,7 +27,9 @@ import {
   type TableSnapshot,
 } from "./snapshot";
 import { SavedTable } from "./table.entity";
+import { findVersion } from "./table.view";
 import { writeFiles } from "./tableFiles";
+import { TableVersionRow, type TableVersion } from "./tableVersion.entity";
 
 export interface TableInput {
   name: string;
@@ -109,6 +110,9 @@ export async function saveTable(who: Acting, input: TableInput): Promise<SavedTa
       lastEventSequence: last.sequence,
       lastEventDigest: last.digest,
       lastEventAt: last.at,
+      rowsIn: rows.filter((row) => row.included).length,
+      rowsOut: rows.filter((row) => !row.included).length,
+      filterWords: words.slice(0, 2000),
       snapshot,
     } as never);
     await here.event({
@@ -240,24 +244,44 @@ function refuseRows(rows: TableInput["rows"]): Refusal | null {
   return null;
 }
 
-/** Twelve characters, 60 random bits, without those that are mistaken for one another. */
-function newSlug(): string {
-  const alphabet = "abcdefghjkmnpqrstuvwxyz023456789";
-  return [...randomBytes(12)].map((byte) => alphabet[byte % alphabet.length]).join("");
+/** Public tables and this person's own, newest first. */
+export async function findTables(ctx: Asking): Promise<SavedTable[]> {
+  return ctx.database.manager
+    .createQueryBuilder(SavedTable, "saved")
+    .innerJoinAndSelect("saved.owner", "owner")
+    .select([...LISTED.map((column) => `saved.${column}`), "owner.id", "owner.nameOnPapers"])
+    .where("saved.deletedAt IS NULL AND (saved.visibility = 'public' OR saved.ownerId = :own)", {
+      own: ctx.viewer?.id ?? "",
+    })
+    .orderBy("saved.createdAt", "DESC")
+    .addOrderBy("saved.slug", "ASC")
+    .getMany();
 }
 
-/** All saved tables, newest first. Every table is public. */
-export async function findTables(ctx: Asking): Promise<SavedTable[]> {
-  return ctx.database.manager.find(SavedTable, {
-    where: { deletedAt: IsNull() },
-    relations: { owner: true },
-    order: { createdAt: "DESC", slug: "ASC" },
-  });
-}
+/** All columns but the content of old tables. */
+const LISTED = [
+  "slug",
+  "name",
+  "ownerId",
+  "createdAt",
+  "deletedAt",
+  "digest",
+  "lastEventSequence",
+  "lastEventDigest",
+  "lastEventAt",
+  "visibility",
+  "version",
+  "adaptedFrom",
+  "notify",
+  "rowsIn",
+  "rowsOut",
+  "filterWords",
+  "releaseNumber",
+] as const;
 
 export type TableLookup =
-  | { found: "table"; table: SavedTable }
-  /** Never existed. */
+  | { found: "table"; table: SavedTable; version: TableVersion | null }
+  /** Never existed, or somebody else's private one. */
   | { found: "nothing" }
   /** Its owner deleted it: the address is not given again. */
   | { found: "deleted" }
@@ -267,17 +291,46 @@ export type TableLookup =
 /**
  * A saved table for a download. A file is handed out whole or not at all, since its bytes never
  * change: while the viewer reads one of its records blind, not at all.
+ *
+ * @param version - Null for the newest.
  */
-export async function loadTableFile(ctx: Asking, slug: string): Promise<TableLookup> {
+export async function loadTableFile(
+  ctx: Asking,
+  slug: string,
+  version: number | null = null,
+): Promise<TableLookup> {
   const { manager } = ctx.database;
   const table = await manager.findOne(SavedTable, { where: { slug }, relations: { owner: true } });
-  if (!table) return { found: "nothing" };
+  if (!table || (table.visibility === "private" && table.ownerId !== ctx.viewer?.id)) {
+    return { found: "nothing" };
+  }
   if (table.deletedAt) return { found: "deleted" };
+  const shown = await findVersion(manager, table, version);
+  if (version !== null && !shown) return { found: "nothing" };
   const blind = await recordsReadBlind(manager, ctx.viewer, new Date());
-  const numbers = table.snapshot.constraints
-    .filter((constraint) => blind.has(constraint.id))
-    .map((constraint) => constraint.number);
-  return numbers.length > 0 ? { found: "blind", numbers } : { found: "table", table };
+  const numbers = blind.size === 0 ? [] : await heldNumbers(manager, table, shown, blind);
+  return numbers.length > 0
+    ? { found: "blind", numbers }
+    : { found: "table", table, version: shown };
+}
+
+async function heldNumbers(
+  manager: EntityManager,
+  table: SavedTable,
+  shown: TableVersion | null,
+  blind: ReadonlySet<number>,
+): Promise<string[]> {
+  if (!shown) {
+    return (table.snapshot?.constraints ?? [])
+      .filter((constraint) => blind.has(constraint.id))
+      .map((constraint) => constraint.number);
+  }
+  const held = await manager.find(TableVersionRow, {
+    select: { slug: true, version: true, position: true, constraintId: true },
+    where: { slug: shown.slug, version: shown.version, constraintId: In([...blind]) },
+    order: { constraintId: "ASC" },
+  });
+  return held.map((row) => formatRecordNumber(row.constraintId));
 }
 
 /** Takes a table of one's own from the public; its address answers that it is gone. */

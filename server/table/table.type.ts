@@ -8,16 +8,10 @@ import { fieldsType } from "~server/constraint/fields.type";
 import { EventMark, eventMark } from "~server/event/event.type";
 import { formatQuotable } from "~shared/identifiers/recordNumber";
 
+import { VisibilityEnum } from "./recipe.type";
 import type { SnapshotConstraint } from "./snapshot";
-import type { SavedTable } from "./table.entity";
-
-@ObjectType()
-export class TableRow {
-  @Field(() => String) number!: string;
-  @Field(() => Boolean) included!: boolean;
-  @Field(() => String, { nullable: true }) reason!: string | null;
-  @Field(() => Boolean) proposed!: boolean;
-}
+import type { SavedTable, Visibility } from "./table.entity";
+import type { TableVersion } from "./tableVersion.entity";
 
 @ObjectType()
 export class FittingTable {
@@ -25,17 +19,30 @@ export class FittingTable {
   @Field(() => String) name!: string;
   @Field(() => String) owner!: string;
   @Field(() => Boolean) ownedByMe!: boolean;
-  @Field(() => Date) createdAt!: Date;
+  @Field(() => VisibilityEnum) visibility!: Visibility;
+  @Field(() => Boolean, {
+    description: "Whether its owner is told when a release would change it.",
+  })
+  notify!: boolean;
+  @Field(() => Int, { description: "The version shown; 0 for a table older than versions." })
+  version!: number;
+  @Field(() => Int, {
+    nullable: true,
+    description: "Release it pins; null for the latest of its day.",
+  })
+  release!: number | null;
+  @Field(() => ID, { nullable: true, description: "The table that it began as a copy of." })
+  adaptedFrom!: string | null;
+  @Field(() => Date, { description: "When the version shown was saved." }) createdAt!: Date;
   @Field(() => String) filter!: string;
   @Field(() => String) digest!: string;
   @Field(() => Int) rowsIn!: number;
   @Field(() => Int) rowsOut!: number;
   @Field(() => EventMark) lastEvent!: EventMark;
-  @Field(() => [TableRow]) rows!: TableRow[];
-  @Field(() => [ConstraintType], {
-    description: "The saved constraints, as they stood when the table was saved.",
-  })
-  constraints!: ConstraintType[];
+
+  // Not in the API: what its resolvers need.
+  saved!: SavedTable;
+  shown!: TableVersion | null;
 }
 
 @InputType()
@@ -57,7 +64,8 @@ export const FittingTableResult = createUnionType({
   types: () => [FittingTable, Refusal] as const,
 });
 
-function savedConstraint(saved: SnapshotConstraint): ConstraintType {
+/** A record as it stood when it was saved. */
+export function savedConstraint(saved: SnapshotConstraint): ConstraintType {
   return Object.assign(new ConstraintType(), {
     number: saved.number,
     ordinal: saved.ordinal,
@@ -74,38 +82,37 @@ function savedConstraint(saved: SnapshotConstraint): ConstraintType {
 }
 
 /**
- * A saved table for one viewer.
+ * A saved table for one viewer, without its rows.
  *
- * @param readBlind - Records that the viewer is reading blind: their content and the reasons
- *   given for them are left out here until the reading is stored.
+ * @param shown - The version asked for; null for the newest, whose facts stand with the table.
  */
 export function fittingTableType(
   table: SavedTable,
+  shown: TableVersion | null,
   viewerId: string | null,
-  readBlind: ReadonlySet<number>,
 ): FittingTable {
-  const { rows, constraints, filterWords } = table.snapshot;
-  const hidden = new Set(
-    constraints.filter(({ id }) => readBlind.has(id)).map(({ number }) => number),
-  );
+  const facts = shown ?? table;
   return Object.assign(new FittingTable(), {
     slug: table.slug,
     name: table.name,
     owner: table.owner.nameOnPapers,
     ownedByMe: table.ownerId === viewerId,
-    createdAt: table.createdAt,
-    filter: filterWords,
-    digest: table.digest,
-    rowsIn: rows.filter((row) => row.included).length,
-    rowsOut: rows.filter((row) => !row.included).length,
+    visibility: table.visibility,
+    notify: table.ownerId === viewerId && table.notify,
+    version: facts.version,
+    release: facts.releaseNumber,
+    adaptedFrom: table.adaptedFrom,
+    createdAt: facts.createdAt,
+    filter: facts.filterWords,
+    digest: facts.digest,
+    rowsIn: facts.rowsIn,
+    rowsOut: facts.rowsOut,
     lastEvent: eventMark({
-      sequence: table.lastEventSequence,
-      digest: table.lastEventDigest,
-      at: table.lastEventAt,
+      sequence: facts.lastEventSequence,
+      digest: facts.lastEventDigest,
+      at: facts.lastEventAt,
     }),
-    rows: rows.map((row) =>
-      Object.assign(new TableRow(), row, hidden.has(row.number) ? { reason: null } : {}),
-    ),
-    constraints: constraints.filter(({ number }) => !hidden.has(number)).map(savedConstraint),
+    saved: table,
+    shown,
   });
 }

@@ -76,16 +76,17 @@ function errors({ plus, minus, limitSigma, relation }: Notation): string {
 }
 
 /**
- * The rows in, in pieces: a table environment that needs the packages booktabs and natbib. A long table is for
+ * In pieces: a table environment that needs the packages booktabs and natbib. A long table is for
  * the author to break; rows come one by one, so that any number can be written.
  *
  * @param caption - Plain text.
+ * @param rows - As `latexRow` writes them.
  * @param notes - Lines below the table, plain text.
  */
 export async function* latexTable(
   caption: string,
   notes: readonly string[],
-  rows: Iterable<FittingRow> | AsyncIterable<FittingRow>,
+  rows: Iterable<string> | AsyncIterable<string>,
 ): AsyncGenerator<string> {
   yield [
     "% Needs \\usepackage{booktabs} and \\usepackage{natbib}.",
@@ -98,7 +99,7 @@ export async function* latexTable(
     "\\midrule",
     "",
   ].join("\n");
-  for await (const row of rows) if (row.settled.included) yield `${rowOf(row)} \\\\\n`;
+  for await (const row of rows) yield `${row} \\\\\n`;
   yield [
     "\\bottomrule",
     "\\end{tabular}",
@@ -108,7 +109,8 @@ export async function* latexTable(
   ].join("\n");
 }
 
-function rowOf({ record, settled }: FittingRow): string {
+/** A row without its end: source, redshift, constraint, level, likelihood and record. */
+export function latexRow({ record, settled }: FittingRow): string {
   const { used, likelihood, options } = settled;
   const level = used?.level ?? options.level ?? null;
   return [

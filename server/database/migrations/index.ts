@@ -1,14 +1,18 @@
 import type { MigrationInterface } from "typeorm";
 
 import { Schema1796111633401 } from "./1796111633401-Schema";
+import { NamedDataAndLife1796130000004 } from "./1796130000004-NamedDataAndLife";
 import { CorrelatedSets1796130000005 } from "./1796130000005-CorrelatedSets";
 import { PeopleAndReports1796130000008 } from "./1796130000008-PeopleAndReports";
 import { Releases1796130000010 } from "./1796130000010-Releases";
+import { TableVersions1796130000011 } from "./1796130000011-TableVersions";
 
 /** Every migration, oldest first. A list, not a glob: it is the same under swc, Jest and build/. */
 export const migrations: (new () => MigrationInterface)[] = [
   Schema1796111633401,
+  NamedDataAndLife1796130000004,
   CorrelatedSets1796130000005,
   PeopleAndReports1796130000008,
   Releases1796130000010,
+  TableVersions1796130000011,
 ];

@@ -1,0 +1,56 @@
+import type { EntityManager } from "typeorm";
+
+import { refuse, Refusal } from "~server/common/outcomes";
+import type { ViewerIdentity } from "~server/common/context";
+import type { TableChoices } from "~shared/table/decision";
+import { settleTable, type SettledTable } from "~shared/table/settleTable";
+
+import { candidatesOf, MOST_CANDIDATES, type Candidates } from "./candidates";
+import type { TableRecipe } from "./recipe";
+import type { SnapshotConstraint } from "./snapshot";
+import { surroundingsOf } from "./surroundings";
+
+/** A recipe followed: its candidates and what became of them. */
+export interface Followed {
+  candidates: Candidates;
+  settled: SettledTable;
+}
+
+/** Follows a recipe as far as this person may see its records. */
+export async function follow(
+  manager: EntityManager,
+  viewer: ViewerIdentity | null,
+  recipe: TableRecipe,
+): Promise<Followed | Refusal> {
+  const candidates = await candidatesOf(manager, viewer, recipe);
+  if (candidates instanceof Refusal) return candidates;
+  if (candidates.total > candidates.records.length) {
+    return refuse(
+      "tooMany",
+      `${candidates.total} records match; a table is built over ${MOST_CANDIDATES} at most. Narrow the filter.`,
+      "filter",
+    );
+  }
+  return { candidates, settled: await settleRecords(manager, candidates.records, recipe.choices) };
+}
+
+/** Settles records that are at hand with what a person chose. */
+export async function settleRecords(
+  manager: EntityManager,
+  records: readonly SnapshotConstraint[],
+  choices: TableChoices,
+): Promise<SettledTable> {
+  return settleTable(
+    records.map((record) => ({
+      number: record.number,
+      fields: record.fields,
+      citation: record.citation.id,
+      shortName: record.citation.shortName,
+      year: record.citation.year,
+      state: record.state,
+      supersededBy: record.supersededBy ?? null,
+    })),
+    await surroundingsOf(manager, records),
+    choices,
+  );
+}
