@@ -6,5 +6,6 @@ const [shared] = require("../../jest.config").projects;
 module.exports = {
   ...shared,
   rootDir: "../..",
+  setupFiles: ["<rootDir>/tests/shared/support/failAtOnce.js"],
   testMatch: ["<rootDir>/tests/shared/{likelihood,statement}/**/*.test.ts"],
 };
