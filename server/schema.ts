@@ -18,6 +18,8 @@ import {
   ErrorReportResolver,
 } from "~server/errorReport/errorReport.resolver";
 import { ImportResolver } from "~server/import/import.resolver";
+import { NamedDataResolver, UsedDataResolver } from "~server/namedData/namedData.resolver";
+import { RecordLifeResolver } from "~server/recordLife/life.resolver";
 import { CaughtMailResolver } from "~server/mail/caughtMail.resolver";
 import { ReleaseResolver } from "~server/release/release.resolver";
 import { ReviewResolver } from "~server/review/review.resolver";
@@ -40,6 +42,9 @@ export const resolvers = [
   TableResolver,
   ReleaseResolver,
   CorrelatedSetResolver,
+  NamedDataResolver,
+  UsedDataResolver,
+  RecordLifeResolver,
   EventLogResolver,
 ] as const satisfies BuildSchemaOptions["resolvers"];
 

@@ -7,8 +7,16 @@ import {
   type MatrixKind,
   type SetState,
 } from "~shared/correlatedSet/content";
+import {
+  DATA_KINDS,
+  DATA_RELATIONS,
+  type DataKind,
+  type DataRelation,
+} from "~shared/dependence/namedData";
+import { LINK_RELATIONS, type LinkRelation } from "~shared/dependence/relation";
 import { METHOD_FAMILIES, type MethodFamily } from "~shared/methods/vocabulary";
 import { REPORT_OUTCOMES, REPORT_STATES } from "~shared/review/errorReport";
+import { NOTICE_KINDS, type NoticeKind } from "~shared/review/notice";
 import { CREDITS_AFTERWARDS } from "~shared/review/formerMember";
 import {
   RECORD_STATES,
@@ -58,3 +66,7 @@ export const ReportOutcomeEnum = enumOf("ReportOutcome", REPORT_OUTCOMES);
 export const CreditAfterwardsEnum = enumOf("CreditAfterwards", CREDITS_AFTERWARDS);
 export const MatrixKindEnum = enumOf<MatrixKind>("MatrixKind", MATRIX_KINDS);
 export const SetStateEnum = enumOf<SetState>("SetState", SET_STATES);
+export const DataKindEnum = enumOf<DataKind>("DataKind", DATA_KINDS);
+export const DataRelationEnum = enumOf<DataRelation>("DataRelation", DATA_RELATIONS);
+export const LinkRelationEnum = enumOf<LinkRelation>("LinkRelation", LINK_RELATIONS);
+export const NoticeKindEnum = enumOf<NoticeKind>("NoticeKind", NOTICE_KINDS);

@@ -47,7 +47,17 @@ export async function countApproved(ctx: Asking, filter: ConstraintFilter): Prom
   return filtered(ctx, filter).getCount();
 }
 
-/** One approved record by its number, or null: unknown, not approved yet, or being read blind. */
+/**
+ * One approved record by its number, withdrawn ones too, since a record stays readable at its address.
+ * Null: unknown, not approved yet, or being read blind.
+ */
+export async function findRecordByNumber(ctx: Asking, number: number): Promise<ApprovedRow | null> {
+  const query = inUse(ctx.database.manager, ctx.viewer).andWhere("record.id = :number", { number });
+  const [row] = await query.getMany();
+  return row ? approvedRow(row) : null;
+}
+
+/** One approved record by its number, or null: unknown, not approved yet, withdrawn, or being read blind. */
 export async function findApprovedByNumber(
   ctx: Asking,
   number: number,
@@ -65,7 +75,7 @@ export async function findApprovedByNumbers(
   return (await query.getMany()).map(approvedRow);
 }
 
-/** Revisions in use with record and citation, without those that the viewer is reading blind. */
+/** Revisions in use with record and citation, without withdrawn ones and those that the viewer is reading blind. */
 export function approved(ctx: Asking): SelectQueryBuilder<Revision> {
   return approvedFor(ctx.database.manager, ctx.viewer);
 }
@@ -74,11 +84,16 @@ export function approvedFor(
   manager: EntityManager,
   viewer: Asking["viewer"],
 ): SelectQueryBuilder<Revision> {
+  return inUse(manager, viewer).andWhere("record.state <> 'withdrawn'");
+}
+
+/** The same with withdrawn ones. */
+function inUse(manager: EntityManager, viewer: Asking["viewer"]): SelectQueryBuilder<Revision> {
   const query = manager
     .createQueryBuilder(Revision, "revision")
     .innerJoinAndSelect("revision.constraint", "record", "record.approvedRevisionId = revision.id")
     .innerJoinAndSelect("revision.citation", "citation")
-    .where("record.state <> 'withdrawn'");
+    .where("1 = 1");
   return withoutRecordsReadBlind(query, "record", viewer, new Date());
 }
 
@@ -88,7 +103,12 @@ export function approvedRow(revision: Revision): ApprovedRow {
 }
 
 function filtered(ctx: Asking, filter: ConstraintFilter): SelectQueryBuilder<Revision> {
-  const query = approved(ctx);
+  // Withdrawn ones are listed only when they are asked for by name.
+  const { states } = filter;
+  const query =
+    states && states.length > 0
+      ? inUse(ctx.database.manager, ctx.viewer).andWhere("record.state IN (:...states)", { states })
+      : approved(ctx);
   anyWord(query, "revision.families", "family", filter.families);
   anyWord(query, "revision.tags", "tag", filter.tags);
   oneOf(query, "revision.quantity", "quantities", filter.quantities);

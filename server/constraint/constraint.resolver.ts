@@ -8,7 +8,7 @@ import { canonicalFilter } from "~shared/filter/address";
 import type { ConstraintSort } from "~shared/filter/filter";
 import { parseRecordNumber } from "~shared/identifiers/recordNumber";
 
-import { countApproved, findApproved, findApprovedByNumber, MOST_ROWS } from "./constraint.query";
+import { countApproved, findApproved, findRecordByNumber, MOST_ROWS } from "./constraint.query";
 import {
   ConstraintFilterInput,
   ConstraintPage,
@@ -54,7 +54,7 @@ export class ConstraintResolver {
     @Arg("number", () => String) number: string,
   ): Promise<ConstraintType | null> {
     const parsed = parseRecordNumber(number);
-    const row = parsed === null ? null : await findApprovedByNumber(ctx, parsed);
+    const row = parsed === null ? null : await findRecordByNumber(ctx, parsed);
     return row && constraintType(row);
   }
 
@@ -69,7 +69,8 @@ export class ConstraintResolver {
   }
 
   @FieldResolver(() => [RecordLink], {
-    description: "Other approved records that name the same sightline, field or sample.",
+    description:
+      "Other approved records that stand on the same data: by name or alias, as parts of one another, or stated to overlap.",
   })
   async sharesDataWith(
     @Ctx() ctx: RequestContext,

@@ -93,6 +93,11 @@ export class ConstraintFilterInput {
   @Field(() => [enums.StatementKindEnum], { nullable: true }) kinds?: StatementKind[] | null;
   @Field(() => [enums.WeightingEnum], { nullable: true }) weightings?: Weighting[] | null;
   @Field(() => [enums.VersionReadEnum], { nullable: true }) versions?: VersionRead[] | null;
+  @Field(() => [enums.RecordStateEnum], {
+    nullable: true,
+    description: "Current and superseded records unless said.",
+  })
+  states?: RecordState[] | null;
   @Field(() => Float, { nullable: true }) zFrom?: number | null;
   @Field(() => Float, { nullable: true }) zTo?: number | null;
   @Field(() => Int, { nullable: true }) yearFrom?: number | null;

@@ -17,6 +17,7 @@ import { Constraint } from "./constraint.entity";
 import { fieldsFromInput, type ConstraintFieldsInput } from "./fields.type";
 import { allFindings, neighbours } from "./neighbours";
 import { contextOf } from "./paperContext";
+import { refuseLinks, writeLinks } from "./links";
 import { indexColumns, writeDataNames } from "./revision.index";
 import { Revision, type StoredAnswer } from "./revision.entity";
 
@@ -308,6 +309,9 @@ export async function submitDraft(
     }
     const before = await unansweredOrSame(manager, draft);
     if (before) return before;
+    const record = { id: draft.constraintId, fields: draft.fields };
+    const linked = await refuseLinks(manager, who.viewer, record, "submission", who.now);
+    if (linked) return linked;
 
     const codes = new Set(findings.map((finding) => finding.code));
     const won = await updateAt(manager, draft.id, version, ["draft"], {
@@ -321,6 +325,7 @@ export async function submitDraft(
     });
     if (!won) return refuse("stale", STALE);
     await writeDataNames(manager, draft.id, draft.fields);
+    await writeLinks(manager, draft.id, draft.fields);
     await here.event({
       kind: "revision.submitted",
       subject: formatQuotable(draft.constraintId, draft.ordinal),

@@ -2,6 +2,7 @@ import { HttpProblem } from "~server/common/errors";
 import { paramsToFilter } from "~shared/filter/address";
 import { CONSTRAINT_SORTS, type CanonicalFilter, type ConstraintSort } from "~shared/filter/filter";
 import { METHOD_FAMILIES, METHOD_TAGS } from "~shared/methods/vocabulary";
+import { RECORD_STATES } from "~shared/review/states";
 import { QUANTITIES, STATEMENT_KINDS, VERSIONS_READ, WEIGHTINGS } from "~shared/statement/fields";
 
 type Query = Record<string, unknown>;
@@ -13,6 +14,7 @@ const WORDS: Record<string, readonly string[]> = {
   kind: STATEMENT_KINDS,
   weighting: WEIGHTINGS,
   version: VERSIONS_READ,
+  state: RECORD_STATES,
   sort: CONSTRAINT_SORTS,
 };
 const RANGES: Record<string, { example: string; end: RegExp }> = {

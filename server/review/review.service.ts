@@ -11,6 +11,7 @@ import {
 import { Revision } from "~server/constraint/revision.entity";
 import { change, type Acting, type Change } from "~server/event/acting";
 import { appendEvent } from "~server/event/eventLog";
+import { comeIntoUse, refuseIntoUse } from "~server/recordLife/intoUse";
 import { formatQuotable } from "~shared/identifiers/recordNumber";
 import {
   READING_FIELDS,
@@ -373,6 +374,8 @@ export async function approve(
     const reading = await manager.findOneBy(Reading, { revisionId: id, editorId: who.viewer.id });
     const [blocker] = blockersOf(revision, reading, who.viewer, who.now);
     if (blocker !== undefined) return refuse("blocked", blocker);
+    const linked = await refuseIntoUse(here, who, revision);
+    if (linked) return linked;
     const decided = await updateAt(manager, id, version, ["inReview"], {
       state: "approved",
       decidedById: who.viewer.id,
@@ -386,6 +389,7 @@ export async function approve(
       { approvedRevisionId: revision.id },
     );
     await here.event({ kind: "revision.approved", subject: subjectOf(revision) });
+    await comeIntoUse(here, who, revision);
     await tellApproved(here, who, revision);
     return done(`${subjectOf(revision)} is approved.`);
   });

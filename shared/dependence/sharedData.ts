@@ -59,6 +59,11 @@ export class DataRegister {
     this.stated.set(from, (this.stated.get(from) ?? new Set()).add(to));
   }
 
+  /** Every thing, in the order given. */
+  get things(): readonly NamedThing[] {
+    return [...this.byId.values()];
+  }
+
   /** The thing that goes by a name, if the registry keeps it. */
   thing(name: string): NamedThing | null {
     return this.byName.get(comparableDataName(name)) ?? null;

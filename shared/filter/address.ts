@@ -1,5 +1,6 @@
 /** A filter as the parameters of an address, and back: once, for the client's pages and the downloads. */
 import { METHOD_FAMILIES, METHOD_TAGS } from "~shared/methods/vocabulary";
+import { RECORD_STATES } from "~shared/review/states";
 import { QUANTITIES, STATEMENT_KINDS, VERSIONS_READ, WEIGHTINGS } from "~shared/statement/fields";
 
 import { CONSTRAINT_SORTS } from "./filter";
@@ -50,6 +51,7 @@ export function canonicalFilter(filter: ConstraintFilter): CanonicalFilter {
     kinds: canonicalList(STATEMENT_KINDS, filter.kinds),
     weightings: canonicalList(WEIGHTINGS, filter.weightings),
     versions: canonicalList(VERSIONS_READ, filter.versions),
+    states: canonicalList(RECORD_STATES, filter.states),
     zFrom: redshift(filter.zFrom),
     zTo: redshift(filter.zTo),
     yearFrom: year(filter.yearFrom),
@@ -78,8 +80,8 @@ function plain(value: number | undefined): string {
 }
 
 /**
- * A filter as address parameters: `q`, `family`, `tag`, `quantity`, `kind`, `weighting`, `version`
- * (comma lists), `z` and `year` as "6-8" with either end open, `sort`. Empty entries are left out.
+ * A filter as address parameters: `q`, `family`, `tag`, `quantity`, `kind`, `weighting`, `version`,
+ * `state` (comma lists), `z` and `year` as "6-8" with either end open, `sort`. Empty entries are left out.
  */
 export function filterToParams(
   filter: ConstraintFilter,
@@ -94,6 +96,7 @@ export function filterToParams(
     ["kind", kept.kinds?.join(",")],
     ["weighting", kept.weightings?.join(",")],
     ["version", kept.versions?.join(",")],
+    ["state", kept.states?.join(",")],
     ["z", rangeText(kept.zFrom, kept.zTo)],
     ["year", rangeText(kept.yearFrom, kept.yearTo)],
     ["sort", sort ?? undefined],
@@ -144,6 +147,7 @@ export function paramsToFilter(params: AddressParams): {
     kinds: list(params.kind) as never,
     weightings: list(params.weighting) as never,
     versions: list(params.version) as never,
+    states: list(params.state) as never,
     zFrom: z.from,
     zTo: z.to,
     yearFrom: years.from,

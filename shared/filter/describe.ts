@@ -47,6 +47,7 @@ export function filterWords(filter: ConstraintFilter): string {
     kept.versions
       ? `version read: ${either(kept.versions.map((word) => VERSION_WORDS[word]))}`
       : null,
+    kept.states ? `state: ${either(kept.states)}` : null,
     kept.zFrom === undefined && kept.zTo === undefined
       ? null
       : `redshift ${between(kept.zFrom, kept.zTo)}`,

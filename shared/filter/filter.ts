@@ -1,6 +1,7 @@
 /** What a list of constraints is filtered by; mirrors the API's input of the same name. */
 import type { Quantity, StatementKind, VersionRead, Weighting } from "~shared/statement/fields";
 import type { MethodFamily } from "~shared/methods/vocabulary";
+import type { RecordState } from "~shared/review/states";
 
 export interface ConstraintFilter {
   /** Free text over authors, title, key, number, printed text, data used. */
@@ -11,6 +12,8 @@ export interface ConstraintFilter {
   kinds?: readonly StatementKind[] | null;
   weightings?: readonly Weighting[] | null;
   versions?: readonly VersionRead[] | null;
+  /** Current and superseded records unless said. */
+  states?: readonly RecordState[] | null;
   zFrom?: number | null;
   zTo?: number | null;
   yearFrom?: number | null;

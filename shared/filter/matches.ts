@@ -1,6 +1,8 @@
 /** A filter asked of one record at hand; the database asks the same of its index columns. */
 import type { Quantity, StatementKind, VersionRead, Weighting } from "~shared/statement/fields";
 
+import type { RecordState } from "~shared/review/states";
+
 import type { ConstraintFilter } from "./filter";
 
 /** What a record is found by. Word lists have commas on both ends: ",dampingWing,other,". */
@@ -14,6 +16,8 @@ export interface FilteredRecord {
   readonly families: string;
   readonly tags: string;
   readonly searchText: string;
+  /** Current unless said. */
+  readonly state?: RecordState;
 }
 
 /** Without case and accents, as the database compares text. */
@@ -48,6 +52,7 @@ export function matchesFilter(record: FilteredRecord, filter: ConstraintFilter):
     oneOf(record.kind, filter.kinds) &&
     oneOf(record.weighting, filter.weightings) &&
     oneOf(record.versionRead, filter.versions) &&
+    oneOf(record.state ?? "current", filter.states) &&
     within(record.zUsed, filter.zFrom ?? null, filter.zTo ?? null) &&
     within(record.year, filter.yearFrom ?? null, filter.yearTo ?? null) &&
     words.every((word) => text.includes(folded(word)))

@@ -12,6 +12,7 @@ const NAMES = [
   "kind",
   "weighting",
   "version",
+  "state",
   "z",
   "year",
   "sort",

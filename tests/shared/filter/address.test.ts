@@ -11,6 +11,7 @@ import { filterWords } from "~shared/filter/describe";
 import { CONSTRAINT_SORTS } from "~shared/filter/filter";
 import type { ConstraintFilter } from "~shared/filter/filter";
 import { METHOD_FAMILIES, METHOD_TAGS } from "~shared/methods/vocabulary";
+import { RECORD_STATES } from "~shared/review/states";
 import { QUANTITIES, STATEMENT_KINDS, VERSIONS_READ, WEIGHTINGS } from "~shared/statement/fields";
 
 const listOf = <T>(words: readonly T[]) =>
@@ -24,6 +25,7 @@ const arbitraryFilter: fc.Arbitrary<ConstraintFilter> = fc.record({
   kinds: listOf(STATEMENT_KINDS),
   weightings: listOf(WEIGHTINGS),
   versions: listOf(VERSIONS_READ),
+  states: listOf(RECORD_STATES),
   zFrom: fc.option(fc.oneof(fc.double(), fc.double({ min: 0, max: 40 }), fc.constant(1e-7))),
   zTo: fc.option(fc.double({ min: -1, max: 40 })),
   yearFrom: fc.option(fc.oneof(fc.integer({ min: 1900, max: 2100 }), fc.double())),

@@ -1,0 +1,132 @@
+import { Arg, Ctx, FieldResolver, ID, Mutation, Resolver, Root } from "type-graphql";
+
+import type { RequestContext } from "~server/common/context";
+import { Refusal, refuse } from "~server/common/outcomes";
+import { Requires } from "~server/common/requires";
+import { findRecordByNumber } from "~server/constraint/constraint.query";
+import { ConstraintType, constraintType } from "~server/constraint/constraint.type";
+import { acting } from "~server/event/acting";
+import type { ConditionChain } from "~shared/dependence/conditions";
+import { formatRecordNumber } from "~shared/identifiers/recordNumber";
+
+import { chainsOf, happenedTo, noticesOf, noticeType, relationsOf } from "./life.query";
+import { liftNotice, recordNotice } from "./life.service";
+import {
+  ConditionChainType,
+  RecordEventType,
+  RecordLifeResult,
+  RecordNoticeType,
+  RecordRelationType,
+} from "./life.type";
+
+async function afterwards(
+  ctx: RequestContext,
+  outcome: number | Refusal,
+): Promise<typeof RecordLifeResult> {
+  if (outcome instanceof Refusal) return outcome;
+  const row = await findRecordByNumber(ctx, outcome);
+  return row ? constraintType(row) : refuse("notFound", "The record can't be shown now.");
+}
+
+@Resolver(() => ConstraintType)
+export class RecordLifeResolver {
+  @Requires("changeRecordLife")
+  @Mutation(() => RecordLifeResult, {
+    description: "A notice on a record; it stays current until a new revision corrects it.",
+  })
+  async recordErratum(
+    @Ctx() ctx: RequestContext,
+    @Arg("number", () => String) number: string,
+    @Arg("reason", () => String) reason: string,
+  ): Promise<typeof RecordLifeResult> {
+    return afterwards(ctx, await recordNotice(acting(ctx), { number, kind: "erratum", reason }));
+  }
+
+  @Requires("changeRecordLife")
+  @Mutation(() => RecordLifeResult)
+  async supersedeRecord(
+    @Ctx() ctx: RequestContext,
+    @Arg("number", () => String) number: string,
+    @Arg("replacedBy", () => String) replacedBy: string,
+    @Arg("reason", () => String) reason: string,
+  ): Promise<typeof RecordLifeResult> {
+    const given = { number, kind: "superseded" as const, reason, replacedBy };
+    return afterwards(ctx, await recordNotice(acting(ctx), given));
+  }
+
+  @Requires("changeRecordLife")
+  @Mutation(() => RecordLifeResult)
+  async withdrawRecord(
+    @Ctx() ctx: RequestContext,
+    @Arg("number", () => String) number: string,
+    @Arg("reason", () => String) reason: string,
+  ): Promise<typeof RecordLifeResult> {
+    return afterwards(ctx, await recordNotice(acting(ctx), { number, kind: "withdrawn", reason }));
+  }
+
+  @Requires("changeRecordLife")
+  @Mutation(() => RecordLifeResult, {
+    description: "Takes a notice back; the record's state follows from those that hold.",
+  })
+  async liftNotice(
+    @Ctx() ctx: RequestContext,
+    @Arg("notice", () => ID) notice: string,
+    @Arg("reason", () => String) reason: string,
+  ): Promise<typeof RecordLifeResult> {
+    const id = /^\d{1,9}$/.test(notice) ? Number(notice) : 0;
+    return afterwards(ctx, await liftNotice(acting(ctx), id, reason));
+  }
+
+  @FieldResolver(() => [RecordNoticeType], {
+    description: "Newest first; those that were taken back among them.",
+  })
+  async notices(
+    @Ctx() ctx: RequestContext,
+    @Root() root: ConstraintType,
+  ): Promise<RecordNoticeType[]> {
+    const notices = (await noticesOf(ctx)(root.constraintId)) ?? [];
+    return Promise.all(notices.map((notice) => noticeType(ctx, notice)));
+  }
+
+  @FieldResolver(() => String, {
+    nullable: true,
+    description: "FL-0042: the record in the place of a superseded one.",
+  })
+  async supersededBy(
+    @Ctx() ctx: RequestContext,
+    @Root() root: ConstraintType,
+  ): Promise<string | null> {
+    if (root.state === "current") return null;
+    const notices = (await noticesOf(ctx)(root.constraintId)) ?? [];
+    const open = notices.find(({ replacedById, endedAt }) => replacedById && !endedAt);
+    return open?.replacedById ? formatRecordNumber(open.replacedById) : null;
+  }
+
+  @FieldResolver(() => [RecordRelationType], {
+    description: "Approved records that this one names, and that name it.",
+  })
+  relations(
+    @Ctx() ctx: RequestContext,
+    @Root() root: ConstraintType,
+  ): Promise<RecordRelationType[]> {
+    return relationsOf(ctx, root.constraintId);
+  }
+
+  @FieldResolver(() => [ConditionChainType], {
+    description: "What it is conditioned on, followed through records to kinds of data.",
+  })
+  async conditionChains(
+    @Ctx() ctx: RequestContext,
+    @Root() root: ConstraintType,
+  ): Promise<ConditionChain[]> {
+    const chains = await chainsOf(ctx, root.constraintId);
+    return chains.map((chain) => Object.assign(new ConditionChainType(), chain));
+  }
+
+  @FieldResolver(() => [RecordEventType], {
+    description: "What happened to the record since its approval, newest first.",
+  })
+  happened(@Ctx() ctx: RequestContext, @Root() root: ConstraintType): Promise<RecordEventType[]> {
+    return happenedTo(ctx, root.constraintId);
+  }
+}
