@@ -71,11 +71,17 @@ export function ProfileForm({ viewer }: { viewer: Omit<ViewerPartsFragment, "__t
         />
         {outcome.good ? <Notice grade="done">The profile is saved.</Notice> : null}
       </Form>
-      <Dense muted>
-        What you enter and read is credited to you by name, in public: on each record, and on a page
-        of your own that lists it with your ORCID.
-      </Dense>
-      <Button kind="text" label="See your public page" href={`/people/${viewer.id}`} />
+      {viewer.roles.includes("contributor") || viewer.roles.includes("editor") ? (
+        <View>
+          <Dense muted>
+            What you enter and read is credited to you by name, in public: on each record, and on a
+            page of your own that lists it with your ORCID once the first of it is approved.
+          </Dense>
+          <View style={{ marginLeft: -12 }}>
+            <Button kind="text" label="See your public page" href={`/people/${viewer.id}`} />
+          </View>
+        </View>
+      ) : null}
     </View>
   );
 }

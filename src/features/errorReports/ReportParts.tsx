@@ -1,20 +1,20 @@
 import { View } from "react-native";
 
+import { Button } from "@/components/Button";
 import { Card } from "@/components/Card";
-import { Body, Caption, Dense, Label } from "@/components/Text";
+import { StatusPill } from "@/components/StatusPill";
+import { Body, Caption, Dense, Label, Mono } from "@/components/Text";
 import { dateTime } from "@/components/when";
 import type { ErrorReportEntryPartsFragment } from "~graphql/generated/graphql";
 import { outcomeWords, type ReportOutcome, type ReportState } from "~shared/review/errorReport";
 
-/** Where a report stands, in words. */
+/** What became of a closed report; null while it is open or merely answered, as its pill says. */
 export function standing(report: {
   state: ReportState;
   outcome?: ReportOutcome | null;
   correctedBy?: string | null;
-}): string {
-  if (report.state === "open") return "Waits for an answer";
-  if (report.state === "answered" || !report.outcome) return "Answered";
-  return outcomeWords(report.outcome, report.correctedBy ?? null);
+}): string | null {
+  return report.outcome ? outcomeWords(report.outcome, report.correctedBy ?? null) : null;
 }
 
 /** What was written, as it was typed: line ends stay, long words break. */
@@ -61,18 +61,38 @@ function Entry({ by, at, text }: { by: string; at: string; text: string }) {
   );
 }
 
-/** The record a report is about, in a line. */
+/** The record a report is about, where the report stands, and the way to the record. */
 export function About({
-  quotable,
-  citation,
+  report,
 }: {
-  quotable: string;
-  citation?: { shortName: string; title?: string } | null;
+  report: {
+    number: string;
+    quotable: string;
+    citation?: { shortName: string; title: string } | null;
+    state: ReportState;
+    outcome?: ReportOutcome | null;
+    correctedBy?: string | null;
+  };
 }) {
+  const { number, quotable, citation } = report;
   return (
-    <View style={{ gap: 2 }}>
-      <Dense style={{ fontWeight: "600" }}>{`${quotable}, ${citation?.shortName ?? ""}`}</Dense>
-      {citation?.title ? <Dense muted>{citation.title}</Dense> : null}
+    <View style={{ gap: 4 }}>
+      <View style={{ flexDirection: "row", flexWrap: "wrap", alignItems: "center", gap: 12 }}>
+        <Mono style={{ fontSize: 15 }}>{quotable}</Mono>
+        <View>
+          <StatusPill state={report.state} />
+        </View>
+        {standing(report) ? <Dense>{standing(report)}</Dense> : null}
+      </View>
+      {citation ? (
+        <View>
+          <Dense style={{ fontWeight: "600" }}>{citation.shortName}</Dense>
+          <Dense muted>{citation.title}</Dense>
+        </View>
+      ) : null}
+      <View style={{ marginLeft: -12 }}>
+        <Button kind="text" label={`See ${number}`} href={`/constraints/${number}`} />
+      </View>
     </View>
   );
 }

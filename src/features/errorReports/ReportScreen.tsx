@@ -9,18 +9,17 @@ import { Empty } from "@/components/feedback/Empty";
 import { Failed } from "@/components/feedback/Failed";
 import { Loading } from "@/components/feedback/Loading";
 import { Notice } from "@/components/Notice";
-import { StatusPill } from "@/components/StatusPill";
 import { dateTime } from "@/components/when";
 import { Screen } from "@/layout/Screen";
 import { ErrorReportDocument, type ErrorReportWholeFragment } from "~graphql/generated/graphql";
 
 import { AnswerForm } from "./AnswerForm";
-import { About, standing, Trail } from "./ReportParts";
+import { About, Trail } from "./ReportParts";
 
 /** One report at the desk: what was reported, what was answered, and the next answer. */
 export function ReportScreen() {
   const { id } = useLocalSearchParams<{ id: string }>();
-  const { viewer, loading: fetching } = useSession();
+  const { viewer, loading: fetching, hasRole } = useSession();
   const { data, loading, error, refetch } = useQuery(ErrorReportDocument, {
     variables: { id },
     skip: !viewer,
@@ -29,8 +28,9 @@ export function ReportScreen() {
   const report = data?.errorReport;
   return (
     <Screen
-      title={report ? `Error report for ${report.quotable}` : "Error report"}
-      back="/desk/reports"
+      title="Error report"
+      documentTitle={report ? `Error report for ${report.quotable}` : undefined}
+      back={hasRole("editor") || hasRole("maintainer") ? "/desk/reports" : "/desk"}
     >
       <View style={{ gap: 24, maxWidth: 760, width: "100%" }}>
         {fetching || (loading && !data) ? <Loading label="Fetching the report" /> : null}
@@ -67,19 +67,9 @@ function Whole({ report }: { report: ErrorReportWholeFragment }) {
   return (
     <>
       <View style={{ gap: 12 }}>
-        <View style={{ flexDirection: "row", flexWrap: "wrap", alignItems: "center", gap: 12 }}>
-          <StatusPill state={report.state} />
-          <Button
-            kind="text"
-            icon="open-in-new"
-            label={`See ${report.number}`}
-            href={`/constraints/${report.number}`}
-          />
-        </View>
-        <About quotable={report.quotable} citation={report.citation} />
+        <About report={report} />
         <DefinitionList
           items={[
-            { term: "Standing", value: standing(report) },
             ...(report.closedAt ? [{ term: "Closed", value: dateTime(report.closedAt) }] : []),
             {
               term: "Answers go",

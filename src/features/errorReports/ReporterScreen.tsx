@@ -10,7 +10,6 @@ import { Failed } from "@/components/feedback/Failed";
 import { Loading } from "@/components/feedback/Loading";
 import { Field } from "@/components/Field";
 import { Notice } from "@/components/Notice";
-import { StatusPill } from "@/components/StatusPill";
 import { Dense, Section } from "@/components/Text";
 import { Screen } from "@/layout/Screen";
 import {
@@ -20,7 +19,7 @@ import {
 } from "~graphql/generated/graphql";
 import { MESSAGE_LENGTH } from "~shared/review/errorReport";
 
-import { About, standing, Trail } from "./ReportParts";
+import { About, Trail } from "./ReportParts";
 
 /** What became of a report, for whoever has its link; the reporter may add one reply. */
 export function ReporterScreen() {
@@ -46,21 +45,7 @@ export function ReporterScreen() {
         ) : null}
         {report ? (
           <>
-            <View style={{ gap: 12 }}>
-              <View
-                style={{ flexDirection: "row", flexWrap: "wrap", alignItems: "center", gap: 12 }}
-              >
-                <StatusPill state={report.state} />
-                <Button
-                  kind="text"
-                  icon="open-in-new"
-                  label={`See ${report.number}`}
-                  href={`/constraints/${report.number}`}
-                />
-              </View>
-              <About quotable={report.quotable} citation={report.citation} />
-              <Dense>{`${standing(report)}.`}</Dense>
-            </View>
+            <About report={report} />
             <Trail
               text={report.text}
               reportedAt={report.reportedAt}

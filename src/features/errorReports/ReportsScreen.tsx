@@ -127,9 +127,11 @@ function Group({ title, rows }: { title: string; rows: readonly ErrorReportItemF
               >
                 <Mono style={{ fontSize: 14 }}>{row.quotable}</Mono>
                 <StatusPill state={row.state} />
-                <Dense muted>
-                  {row.state === "open" ? `waits ${waitingTime(row.reportedAt)}` : standing(row)}
-                </Dense>
+                {row.state === "open" ? (
+                  <Dense muted>{`waits ${waitingTime(row.reportedAt)}`}</Dense>
+                ) : row.outcome ? (
+                  <Dense muted>{standing(row)}</Dense>
+                ) : null}
               </View>
               <Dense numberOfLines={2}>{row.text}</Dense>
               <Caption>

@@ -77,8 +77,12 @@ function Credited({ person }: { person: Person }) {
             ),
           },
           { term: "Since", value: monthYear(person.since) },
-          { term: "Entered", value: constraints(person.enteredTotal) },
-          { term: "Second readings", value: constraints(person.readTotal) },
+          ...(person.enteredTotal > 0
+            ? [{ term: "Entered", value: constraints(person.enteredTotal) }]
+            : []),
+          ...(person.readTotal > 0
+            ? [{ term: "Second readings", value: constraints(person.readTotal) }]
+            : []),
           ...(person.former ? [{ term: "Account", value: "Has left the registry" }] : []),
         ]}
       />

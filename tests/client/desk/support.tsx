@@ -6,6 +6,8 @@ import type { ReactNode } from "react";
 import { createCache } from "@/apollo/client";
 import { ThemeProvider } from "@/theme/ThemeProvider";
 import {
+  ErrorReportsDocument,
+  LooksUpCitationsDocument,
   MySetsDocument,
   SessionDocument,
   SetQueueDocument,
@@ -73,8 +75,16 @@ export function sessionMock(roles: Role[] | null, demonstration = true): MockedR
   };
 }
 
-/** A desk without correlated sets, for the tests that are about something else. */
-const NO_SETS = [
+/** No correlated sets, reports or look-up, for the tests that are about something else. */
+const NOTHING_ELSE = [
+  {
+    request: { query: ErrorReportsDocument, variables: { state: "open" } },
+    result: { data: { errorReports: [] } },
+  },
+  {
+    request: { query: LooksUpCitationsDocument },
+    result: { data: { session: { __typename: "Session", looksUpCitations: false } } },
+  },
   { request: { query: MySetsDocument }, result: { data: { mySets: [] } } },
   { request: { query: SetQueueDocument }, result: { data: { setQueue: [] } } },
 ].map((mock) => ({ ...mock, maxUsageCount: Number.POSITIVE_INFINITY }) as MockedResponse);
@@ -88,7 +98,7 @@ export function show(
   return render(
     <MockedProvider
       cache={createCache()}
-      mocks={[sessionMock(options.roles), ...(options.mocks ?? []), ...NO_SETS]}
+      mocks={[sessionMock(options.roles), ...(options.mocks ?? []), ...NOTHING_ELSE]}
     >
       <ThemeProvider>{page}</ThemeProvider>
     </MockedProvider>,
