@@ -35,7 +35,7 @@ const row = (
   request,
   ...more,
 });
-const three = [0.45, 0.55, 0.65].map((m, i) => row(`a${i}`, gaussian(m, 0.1)));
+const three = () => [0.45, 0.55, 0.65].map((m, i) => row(`a${i}`, gaussian(m, 0.1)));
 
 describe("equal mixture of alternatives", () => {
   it("has the standard deviation of independent code", () => {
@@ -44,11 +44,11 @@ describe("equal mixture of alternatives", () => {
   });
 
   it("is (1/n) Σ p_i normalized over [0, 1], relative to its peak over a common x", () => {
-    const mixture = mixtureOf(three);
+    const mixture = mixtureOf(three());
     expect(mixture.commonPeak).toBe(true);
-    const at = (x: number) => mixture.minus2LnL(three.map(({ shape }) => shape.minus2LnL(x)));
+    const at = (x: number) => mixture.minus2LnL(three().map(({ shape }) => shape.minus2LnL(x)));
     const density = (x: number) =>
-      three.reduce(
+      three().reduce(
         (sum, { shape }) =>
           sum + Math.exp(-0.5 * shape.minus2LnL(x)) / distributionOf(shape, [0, 1])!.area / 3,
         0,
@@ -64,7 +64,7 @@ describe("equal mixture of alternatives", () => {
   });
 
   it("of one member is the member", () => {
-    const alone = mixtureOf([three[0]!]);
+    const alone = mixtureOf([three()[0]!]);
     expect(alone.minus2LnL([2.5])).toBeCloseTo(2.5, 12);
   });
 
@@ -233,7 +233,7 @@ describe("what a summary loses of a curve", () => {
 });
 
 describe("compiled table", () => {
-  const rows: ReadyRow[] = [
+  const all = (): ReadyRow[] => [
     row("point", twoPiece(0.4, 0.1, 0.2)),
     row("bin", quantileMatched(0.5, 0.1, 0.15), { kind: "binMean", zLow: 6.8, zHigh: 7.4 }),
     row("uncertain", gaussian(0.3, 0.08), { kind: "averaged", zLow: 6.5, zHigh: 7.2, z: 6.9 }),
@@ -268,22 +268,22 @@ describe("compiled table", () => {
     new FitProblem(new CompiledTable(spec), tanhFamily(), background());
 
   it("gives each row what the row gives itself", () => {
-    const problem = problemOf({ rows });
+    const problem = problemOf({ rows: all() });
     const theta = [7.2, 0.7];
     const history = tanhHistory({ zRe: 7.2, deltaZ: 0.7 });
     const cosmology = background();
     const values = problem.termValues(theta);
     const of = (id: string) => values[problem.table.terms.findIndex((term) => term.id === id)]!;
-    expect(of("point")).toBeCloseTo(rows[0]!.shape.minus2LnL(history.x(7)), 9);
-    expect(of("bin")).toBeCloseTo(rows[1]!.shape.minus2LnL(history.binMean(6.8, 7.4)), 9);
-    expect(of("log")).toBeCloseTo(rows[3]!.shape.minus2LnL(Math.log10(history.x(6.2))), 9);
-    expect(of("limit")).toBeCloseTo(rows[4]!.shape.minus2LnL(history.x(6)), 9);
-    expect(of("tau")).toBeCloseTo(rows[5]!.shape.minus2LnL(history.opticalDepth(cosmology)), 5);
-    expect(of("zf")).toBeCloseTo(rows[6]!.shape.minus2LnL(7.2), 9);
-    expect(of("dz")).toBeCloseTo(rows[7]!.shape.minus2LnL(history.duration()!), 9);
-    expect(of("myr")).toBeCloseTo(rows[8]!.shape.minus2LnL(history.durationMyr(cosmology)!), 8);
+    expect(of("point")).toBeCloseTo(all()[0]!.shape.minus2LnL(history.x(7)), 9);
+    expect(of("bin")).toBeCloseTo(all()[1]!.shape.minus2LnL(history.binMean(6.8, 7.4)), 9);
+    expect(of("log")).toBeCloseTo(all()[3]!.shape.minus2LnL(Math.log10(history.x(6.2))), 9);
+    expect(of("limit")).toBeCloseTo(all()[4]!.shape.minus2LnL(history.x(6)), 9);
+    expect(of("tau")).toBeCloseTo(all()[5]!.shape.minus2LnL(history.opticalDepth(cosmology)), 5);
+    expect(of("zf")).toBeCloseTo(all()[6]!.shape.minus2LnL(7.2), 9);
+    expect(of("dz")).toBeCloseTo(all()[7]!.shape.minus2LnL(history.duration()!), 9);
+    expect(of("myr")).toBeCloseTo(all()[8]!.shape.minus2LnL(history.durationMyr(cosmology)!), 8);
     const fine = integratePanels(
-      (z) => Math.exp(-0.5 * rows[2]!.shape.minus2LnL(history.x(z))) / 0.7,
+      (z) => Math.exp(-0.5 * all()[2]!.shape.minus2LnL(history.x(z))) / 0.7,
       6.5,
       7.2,
       40,
@@ -303,8 +303,8 @@ describe("compiled table", () => {
       rows: [
         row("a", gaussian(0.4, 0.1)),
         row("b", gaussian(0.5, 0.1)),
-        rows[5]!,
-        { ...rows[5]!, id: "tau2" },
+        all()[5]!,
+        { ...all()[5]!, id: "tau2" },
       ],
     });
     expect(table.requests.size).toBe(2);
@@ -317,15 +317,15 @@ describe("compiled table", () => {
     ];
     const pair = [row("c0", twoPiece(0.4, 0.1, 0.1)), row("c1", twoPiece(0.6, 0.1, 0.1))];
     const problem = problemOf({
-      rows: [rows[0]!, ...three, ...pair],
+      rows: [all()[0]!, ...three(), ...pair],
       mixtures: [{ id: "alternatives", members: ["a0", "a1", "a2"] }],
       correlated: [{ id: "pair", members: ["c0", "c1"], rho }],
     });
     expect(problem.table.terms.map(({ kind }) => kind)).toEqual(["row", "mixture", "correlated"]);
     const x = 0.5;
     const values = problem.termValues([7, 0.5]);
-    const members = three.map(({ shape }) => shape.minus2LnL(x));
-    expect(values[1]).toBeCloseTo(mixtureOf(three).minus2LnL(members), 10);
+    const members = three().map(({ shape }) => shape.minus2LnL(x));
+    expect(values[1]).toBeCloseTo(mixtureOf(three()).minus2LnL(members), 10);
     // x = 0.5 is one sigma above the one and one below the other: χ² = 5 at ρ 0.6 (pub-x12).
     expect(values[2]).toBeCloseTo(5, 9);
     expect(problem.minus2LnL([7, 0.5])).toBeCloseTo(values[0]! + values[1]! + values[2]!, 10);
@@ -344,35 +344,35 @@ describe("compiled table", () => {
     expect(wide.termValues([5, 3])[0]).toBe(Infinity);
   });
 
-  it.each<[string, ConstructorParameters<typeof CompiledTable>[0]]>([
-    ["rows must be named once", { rows: [rows[0]!, rows[0]!] }],
-    ["made of rows of the table", { rows: [], mixtures: [{ id: "m", members: ["x"] }] }],
+  it.each<[string, () => ConstructorParameters<typeof CompiledTable>[0]]>([
+    ["rows must be named once", () => ({ rows: [all()[0]!, all()[0]!] })],
+    ["made of rows of the table", () => ({ rows: [], mixtures: [{ id: "m", members: ["x"] }] })],
     [
       "of rows in no other group",
-      {
-        rows: three,
+      () => ({
+        rows: three(),
         mixtures: [
           { id: "m", members: ["a0"] },
           { id: "n", members: ["a0"] },
         ],
-      },
+      }),
     ],
     [
       "made of two-sided values",
-      { rows: [rows[4]!], correlated: [{ id: "s", members: ["limit"], rho: [[1]] }] },
+      () => ({ rows: [all()[4]!], correlated: [{ id: "s", members: ["limit"], rho: [[1]] }] }),
     ],
     [
       "made of two-sided values",
-      {
+      () => ({
         rows: [row("curve", tabulated([0, 1], [1, 2]))],
         correlated: [{ id: "s", members: ["curve"], rho: [[1]] }],
-      },
+      }),
     ],
     [
       "as large as its matrix",
-      { rows: three, correlated: [{ id: "s", members: ["a0", "a1"], rho: [[1]] }] },
+      () => ({ rows: three(), correlated: [{ id: "s", members: ["a0", "a1"], rho: [[1]] }] }),
     ],
   ])("refuses a table: %s", (message, spec) => {
-    expect(() => new CompiledTable(spec)).toThrow(message);
+    expect(() => new CompiledTable(spec())).toThrow(message);
   });
 });
