@@ -3,6 +3,7 @@ import { type StoryRecord } from "./kinds";
 /** Polarization and small scales of the microwave background. */
 export const CMB: readonly StoryRecord[] = [
   {
+    name: "ravelDepth",
     paper: "ravel",
     by: "contributor",
     reader: "editor",

@@ -43,6 +43,7 @@ export const EMITTERS: readonly StoryRecord[] = [
     }),
   },
   {
+    name: "unstatedLimit",
     paper: "emitterCounts",
     by: "contributor",
     reader: "secondEditor",
@@ -117,6 +118,7 @@ export const EMITTERS: readonly StoryRecord[] = [
     },
   },
   {
+    name: "profileLimit",
     paper: "lineProfile",
     by: "contributor",
     reader: "editor",

@@ -1,9 +1,13 @@
 import { CMB } from "./cmb";
 import { EMITTERS } from "./emitters";
 import { FOREST } from "./forest";
+import { GROUPS } from "./groups";
 import type { StoryRecord } from "./kinds";
+import { LIFE } from "./life";
 import { OTHER_METHODS } from "./otherMethods";
 import { QUASARS } from "./quasars";
+import { REST } from "./rest";
+import { TRAPS } from "./traps";
 import { UNDER_WAY } from "./underWay";
 
 export { contentOf, type StoryRecord } from "./kinds";
@@ -15,5 +19,9 @@ export const STORY: readonly StoryRecord[] = [
   ...EMITTERS,
   ...CMB,
   ...OTHER_METHODS,
+  ...GROUPS,
+  ...LIFE,
+  ...TRAPS,
+  ...REST,
   ...UNDER_WAY,
 ];

@@ -17,9 +17,15 @@ export type Fate =
   /** Approved and changed later: the second revision is approved, too. */
   | "approvedTwice"
   /** Approved; a change of it waits for its reading. */
-  | "approvedAndChanging";
+  | "approvedAndChanging"
+  /** A draft that was given up. */
+  | "discarded"
+  /** Submitted, and taken back before an editor claimed it. */
+  | "takenBack";
 
 export interface StoryRecord {
+  /** By which other records name it, as "@name" in their lists of records. */
+  name?: string;
   paper: PaperName;
   by: PersonName;
   reader: PersonName;
@@ -33,6 +39,14 @@ export interface StoryRecord {
   comment?: { field: string; text: string };
   /** Answers to what must be answered, by the beginning of the finding's code. */
   answers?: Record<string, string>;
+  /** What a maintainer records of it later. */
+  notice?: {
+    kind: "erratum" | "superseded" | "withdrawn";
+    /** Name of the record that takes its place. */
+    replacedBy?: string;
+    from: string;
+    reason: string;
+  };
 }
 
 export type Statement = Partial<ConstraintFields>;

@@ -25,6 +25,7 @@ export const OTHER_METHODS: readonly StoryRecord[] = [
     },
   },
   {
+    name: "marlpitLimit",
     paper: "marlpit",
     by: "second",
     reader: "secondEditor",

@@ -3,6 +3,7 @@ import { quasar, type StoryRecord } from "./kinds";
 /** Damping wings of quasars: single ones, seen again, and stacked. */
 export const QUASARS: readonly StoryRecord[] = [
   {
+    name: "firstWing",
     paper: "threeQuasars",
     by: "contributor",
     reader: "editor",
@@ -20,6 +21,7 @@ export const QUASARS: readonly StoryRecord[] = [
     }),
   },
   {
+    name: "secondWing",
     paper: "threeQuasars",
     by: "contributor",
     reader: "editor",
@@ -39,6 +41,7 @@ export const QUASARS: readonly StoryRecord[] = [
     comment: { field: "plus", text: "I read 0.21 here, in the table and in the abstract." },
   },
   {
+    name: "farWing",
     paper: "threeQuasars",
     by: "contributor",
     reader: "editor",
@@ -77,6 +80,7 @@ export const QUASARS: readonly StoryRecord[] = [
     answers: { nearDuplicate: "A new spectrum of the same quasar by other authors." },
   },
   {
+    name: "quasarMean",
     paper: "quasarStack",
     by: "second",
     reader: "editor",

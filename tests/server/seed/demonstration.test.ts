@@ -1,18 +1,26 @@
 import { Citation } from "~server/citation/citation.entity";
+import { Constraint } from "~server/constraint/constraint.entity";
 import { findApproved } from "~server/constraint/constraint.query";
 import { Revision } from "~server/constraint/revision.entity";
+import { CorrelatedSet } from "~server/correlatedSet/correlatedSet.entity";
+import { setsInUse } from "~server/correlatedSet/tableSets";
 import { isDemonstration } from "~server/database/settings";
+import { ErrorReport } from "~server/errorReport/errorReport.entity";
 import { EventRecord } from "~server/event/event.entity";
 import { verifyChain } from "~server/event/eventLog";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
+import { RecordNotice } from "~server/recordLife/recordNotice.entity";
 import { Reading } from "~server/review/reading.entity";
 import { seedDemonstration } from "~server/seed";
 import { DEMONSTRATION_PASSWORD, PEOPLE } from "~server/seed/people";
 import { SavedTable } from "~server/table/table.entity";
+import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 import { METHOD_FAMILIES } from "~shared/methods/vocabulary";
+import { NOTICE_KINDS } from "~shared/review/notice";
+import { RECORD_STATES, REVISION_STATES } from "~shared/review/states";
 import { asUsed } from "~shared/statement/asUsed";
 import { hasErrors } from "~shared/statement/rules";
-import { QUANTITIES } from "~shared/statement/fields";
+import { QUANTITIES, VERSIONS_READ } from "~shared/statement/fields";
 
 import { TEST_PASSWORD_COST } from "../../factories/user";
 import { startTestServer, type TestServer } from "../support/harness";
@@ -37,11 +45,17 @@ describe("the demonstration", () => {
     expect(await isDemonstration(server.dataSource.manager)).toBe(true);
   });
 
-  it("shows revisions in every state of life but discarded", async () => {
-    const revisions = await server.dataSource.manager.find(Revision);
+  it("shows about sixty records, and revisions and records in every state of life", async () => {
+    const { manager } = server.dataSource;
+    const revisions = await manager.find(Revision);
     const states = new Set(revisions.map((revision) => revision.state));
-    expect([...states].sort()).toEqual(["approved", "draft", "inReview", "returned", "submitted"]);
-    expect((await approved()).length).toBeGreaterThanOrEqual(18);
+    expect([...states].sort()).toEqual([...REVISION_STATES].sort());
+    const records = await manager.find(Constraint);
+    expect(records.length).toBeGreaterThanOrEqual(60);
+    expect(new Set(records.map(({ state }) => state))).toEqual(new Set(RECORD_STATES));
+    expect((await approved()).length).toBeGreaterThanOrEqual(50);
+    const notices = await manager.find(RecordNotice);
+    expect(new Set(notices.map(({ kind }) => kind))).toEqual(new Set(NOTICE_KINDS));
     // Dates are the story's, in 2026.
     for (const revision of revisions) expect(revision.createdAt.getUTCFullYear()).toBe(2026);
   });
@@ -66,8 +80,68 @@ describe("the demonstration", () => {
     expect(fields.some((one) => one.species === "ionized")).toBe(true);
     expect(fields.some((one) => one.species === "electron")).toBe(true);
     expect(fields.some((one) => one.limitSigma !== null)).toBe(true);
-    expect(fields.filter((one) => one.alternativesGroup !== null)).toHaveLength(2);
+    expect(fields.some((one) => one.scale === "log10")).toBe(true);
+    expect(new Set(fields.map((one) => one.versionRead))).toEqual(new Set(VERSIONS_READ));
+    const relations = ["supersedes", "erratumOf", "reanalysisOf", "subsetOf"] as const;
+    for (const relation of relations) {
+      expect(fields.some((one) => one[relation].length > 0)).toBe(true);
+    }
+    const groups = fields.map((one) => one.alternativesGroup).filter((label) => label !== null);
+    expect(groups.filter((label) => label === "dust law")).toHaveLength(3);
+    expect(groups.filter((label) => label === "intrinsic evolution")).toHaveLength(2);
     expect(fields.filter((one) => one.dataUsed.includes("QV 0719+31")).length).toBeGreaterThan(2);
+  });
+
+  it("shows the traps of this literature, each with an answer that an editor accepted", async () => {
+    const rows = await approved();
+    const answered = rows.flatMap(({ revision }) =>
+      revision.findings.filter(({ grade }) => grade === "mustAnswer").map(({ code }) => code),
+    );
+    for (const trap of [
+      "widthRatio",
+      "endBeyondRange",
+      "levelUnlikePrinted",
+      "printedWithoutNumbers",
+      "flatLimit",
+      "nearDuplicate",
+      "oneSightline",
+    ]) {
+      expect(answered.filter((code) => code.startsWith(trap))).not.toEqual([]);
+    }
+  });
+
+  it("follows a chain of conditions over three records", async () => {
+    const rows = await approved();
+    const byNumber = new Map(
+      rows.map(({ constraint, revision }) => [formatRecordNumber(constraint.id), revision.fields]),
+    );
+    const ways = [...byNumber].flatMap(([number, { conditionedOn }]) =>
+      conditionedOn
+        .filter((one) => byNumber.has(one))
+        .flatMap((one) =>
+          (byNumber.get(one)?.conditionedOn ?? [])
+            .filter((last) => byNumber.has(last))
+            .map((last) => [number, one, last]),
+        ),
+    );
+    expect(ways).not.toEqual([]);
+  });
+
+  it("has a correlated pair in use at ρ 0.6, one returned, and three records that wait", async () => {
+    const [used, ...others] = await setsInUse({ database: server.dataSource, viewer: null });
+    expect(others).toEqual([]);
+    expect(used?.rho).toEqual([
+      [1, 0.6],
+      [0.6, 1],
+    ]);
+    const sets = await server.dataSource.manager.find(CorrelatedSet);
+    expect(sets.map(({ state }) => state).sort()).toEqual(["approved", "returned", "submitted"]);
+    expect(sets.find(({ state }) => state === "submitted")?.members).toHaveLength(3);
+  });
+
+  it("has an error report with its answer, and one that waits", async () => {
+    const reports = await server.dataSource.manager.find(ErrorReport);
+    expect(reports.map(({ state }) => state).sort()).toEqual(["closed", "open"]);
   });
 
   it("approves nothing with an error, and everything but the qualitative can be used", async () => {
@@ -112,8 +186,9 @@ describe("the demonstration", () => {
   });
 
   it("saves a table in which alternatives, shared sightlines and unstated levels are settled", async () => {
-    const [table] = await server.dataSource.manager.find(SavedTable);
-    expect(table?.name).toBe("Damping wings, 6 to 8");
+    const tables = await server.dataSource.manager.find(SavedTable);
+    expect(tables).toHaveLength(3);
+    const table = tables.find(({ name }) => name === "Damping wings, 6 to 8");
     expect(table?.snapshot?.rows.some((row) => row.included)).toBe(true);
     expect(table?.snapshot?.rows.filter((row) => !row.included).map((row) => row.reason)).toEqual(
       expect.arrayContaining([expect.stringMatching(/^Shares QV /)]),
