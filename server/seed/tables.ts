@@ -1,5 +1,6 @@
 import { findApproved } from "~server/constraint/constraint.query";
 import { Refusal } from "~server/common/outcomes";
+import type { ConstraintFilterInput } from "~server/constraint/constraint.type";
 import { follow } from "~server/table/settle.service";
 import { saveTable } from "~server/table/table.service";
 import { saveRecipe } from "~server/table/version.service";
@@ -71,7 +72,7 @@ async function recipeTable(
   at: Date,
   owner: PersonName,
   name: string,
-  filter: ConstraintFilter,
+  filter: ConstraintFilterInput,
 ): Promise<void> {
   const who = stage.as(owner, at);
   let decisions: TakenDecision[] = [];
