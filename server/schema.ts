@@ -19,7 +19,8 @@ import {
 } from "~server/errorReport/errorReport.resolver";
 import { ImportResolver } from "~server/import/import.resolver";
 import { NamedDataResolver, UsedDataResolver } from "~server/namedData/namedData.resolver";
-import { RecordLifeResolver } from "~server/recordLife/life.resolver";
+import { RecordLifeResolver, SupersededByResolver } from "~server/recordLife/life.resolver";
+import { RowsSinceResolver } from "~server/recordLife/rowsSince.resolver";
 import { CaughtMailResolver } from "~server/mail/caughtMail.resolver";
 import { ReleaseResolver } from "~server/release/release.resolver";
 import { ReviewResolver } from "~server/review/review.resolver";
@@ -45,6 +46,8 @@ export const resolvers = [
   NamedDataResolver,
   UsedDataResolver,
   RecordLifeResolver,
+  SupersededByResolver,
+  RowsSinceResolver,
   EventLogResolver,
 ] as const satisfies BuildSchemaOptions["resolvers"];
 

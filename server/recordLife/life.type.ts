@@ -60,7 +60,15 @@ export class RowSinceType {
   newerRevision!: string | null;
 }
 
+@ObjectType("RecordLife", {
+  description:
+    "A record with what it is to others and what became of it; for one record at a time.",
+})
+export class RecordLifeType {
+  @Field(() => ConstraintType) constraint!: ConstraintType;
+}
+
 export const RecordLifeResult = createUnionType({
   name: "RecordLifeResult",
-  types: () => [ConstraintType, Refusal] as const,
+  types: () => [RecordLifeType, Refusal] as const,
 });

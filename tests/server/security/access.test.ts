@@ -42,6 +42,7 @@ const RULES: Record<"Query" | "Mutation", Record<string, Rule>> = {
     personCredit: "public",
     previewCitations: "contributor",
     queue: "editor",
+    recordLife: "public",
     release: "public",
     releaseDifference: "public",
     reportedError: "public",
