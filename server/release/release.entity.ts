@@ -9,6 +9,7 @@ import {
 } from "typeorm";
 
 import { User } from "~server/account/user.entity";
+import type { KeptSurroundings } from "~server/table/surroundings";
 import type { SnapshotConstraint } from "~server/table/snapshot";
 
 /** A numbered snapshot of all approved records. Neither it nor its rows are ever written again. */
@@ -44,6 +45,10 @@ export class Release {
 
   @Column({ type: "boolean" })
   demonstration!: boolean;
+
+  /** Named data, correlated sets and conditions as they stood, JSON as text in RFC 8785 form. */
+  @Column({ type: "mediumtext" })
+  surroundings!: string;
 
   /** The last event before it was cut: what the snapshot holds. */
   @Column({ type: "int", unsigned: true })
@@ -81,6 +86,11 @@ export class ReleaseRow {
   /** JSON as text: handed out as it was written. */
   @Column({ type: "mediumtext" })
   content!: string;
+}
+
+/** What the registry knew beside its records when a release was cut, read back. */
+export function releaseSurroundings(release: Pick<Release, "surroundings">): KeptSurroundings {
+  return JSON.parse(release.surroundings) as KeptSurroundings;
 }
 
 /** A row's content, read back. */

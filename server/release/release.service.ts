@@ -7,6 +7,7 @@ import { isDemonstration } from "~server/database/settings";
 import { change, undo, type Acting } from "~server/event/acting";
 import { EventHead } from "~server/event/event.entity";
 import { lastEvent } from "~server/event/eventLog";
+import { presentSurroundings } from "~server/table/surroundings";
 import { snapshotConstraint } from "~server/table/snapshot";
 import { formatQuotable, formatRecordNumber } from "~shared/identifiers/recordNumber";
 import { diffFields } from "~shared/review/reading";
@@ -105,6 +106,7 @@ export async function cutRelease(who: Acting, notes: string): Promise<Release | 
       notes: words,
       licence: who.licence,
       demonstration: await isDemonstration(manager),
+      surroundings: canonicalText(await presentSurroundings(manager)),
       lastEventSequence: last.sequence,
       lastEventDigest: last.digest,
       lastEventAt: last.at,

@@ -44,17 +44,17 @@ export function canonicalText(value: unknown): string {
  * @param contents - Canonical texts of the rows, by record number.
  */
 export async function* canonicalContent(
-  release: Pick<Release, "demonstration" | "licence">,
+  release: Pick<Release, "demonstration" | "licence" | "surroundings">,
   contents: AsyncIterable<string> | Iterable<string>,
 ): AsyncGenerator<string> {
-  const { demonstration, licence } = release;
+  const { demonstration, licence, surroundings } = release;
   yield `{"demonstration":${String(demonstration)},"licence":${JSON.stringify(licence)},"records":[`;
   let first = true;
   for await (const content of contents) {
     yield first ? content : `,${content}`;
     first = false;
   }
-  yield `],"registry":${JSON.stringify(REGISTRY)}}`;
+  yield `],"registry":${JSON.stringify(REGISTRY)},"surroundings":${surroundings}}`;
 }
 
 /** Hexadecimal SHA-256 over pieces of a text. */

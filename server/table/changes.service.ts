@@ -18,7 +18,7 @@ import { rowChanges, type ComparedRow } from "~shared/table/rowChanges";
 import { tableSpecOf, type SettledTable } from "~shared/table/settleTable";
 
 import { TableChanges, TableRowChange } from "./recipe.type";
-import { follow, settleRecords } from "./settle.service";
+import { follow, settleRecords, surroundingsFor } from "./settle.service";
 import type { SnapshotConstraint } from "./snapshot";
 import type { SavedTable } from "./table.entity";
 import { findVersion } from "./table.view";
@@ -43,7 +43,7 @@ export async function tableChanges(
   const now = await follow(manager, viewer, { ...recipe, release });
   if (now instanceof Refusal) return null;
   const saved = await savedRecords(manager, version);
-  const then = await settleRecords(manager, saved, recipe.choices);
+  const then = settleRecords(await surroundingsFor(manager, recipe.release), saved, recipe.choices);
   const [best, bestThen] = [bestTanh(now.settled), bestTanh(then)];
   return Object.assign(new TableChanges(), {
     release,

@@ -155,7 +155,6 @@ async function* tex(filed: FiledVersion): AsyncGenerator<string> {
   );
 }
 
- 
 async function* whole(text: string): AsyncGenerator<string> {
   yield text;
 }

@@ -2,13 +2,14 @@ import type { EntityManager } from "typeorm";
 
 import { refuse, Refusal } from "~server/common/outcomes";
 import type { ViewerIdentity } from "~server/common/context";
+import { Release, releaseSurroundings } from "~server/release/release.entity";
 import type { TableChoices } from "~shared/table/decision";
 import { settleTable, type SettledTable } from "~shared/table/settleTable";
 
 import { candidatesOf, MOST_CANDIDATES, type Candidates } from "./candidates";
 import type { TableRecipe } from "./recipe";
 import type { SnapshotConstraint } from "./snapshot";
-import { surroundingsOf } from "./surroundings";
+import { presentSurroundings, surroundingsOf, type KeptSurroundings } from "./surroundings";
 
 /** A recipe followed: its candidates and what became of them. */
 export interface Followed {
@@ -31,15 +32,25 @@ export async function follow(
       "filter",
     );
   }
-  return { candidates, settled: await settleRecords(manager, candidates.records, recipe.choices) };
+  const kept = await surroundingsFor(manager, recipe.release);
+  return { candidates, settled: settleRecords(kept, candidates.records, recipe.choices) };
+}
+
+/** Surroundings as a release froze them, or as they stand now. */
+export async function surroundingsFor(
+  manager: EntityManager,
+  release: number | null,
+): Promise<KeptSurroundings> {
+  if (release === null) return presentSurroundings(manager);
+  return releaseSurroundings(await manager.findOneByOrFail(Release, { number: release }));
 }
 
 /** Settles records that are at hand with what a person chose. */
-export async function settleRecords(
-  manager: EntityManager,
+export function settleRecords(
+  kept: KeptSurroundings,
   records: readonly SnapshotConstraint[],
   choices: TableChoices,
-): Promise<SettledTable> {
+): SettledTable {
   return settleTable(
     records.map((record) => ({
       number: record.number,
@@ -50,7 +61,7 @@ export async function settleRecords(
       state: record.state,
       supersededBy: record.supersededBy ?? null,
     })),
-    await surroundingsOf(manager, records),
+    surroundingsOf(kept, records),
     choices,
   );
 }

@@ -2,49 +2,112 @@ import type { EntityManager } from "typeorm";
 
 import { CorrelatedSet } from "~server/correlatedSet/correlatedSet.entity";
 import { contentOfSet } from "~server/correlatedSet/store";
+import { keptData } from "~server/namedData/register";
 import { correlations, usedCorrelations } from "~shared/correlatedSet/matrix";
-import type { TableSet, TableSurroundings } from "~shared/table/decision";
-import { emptyFields } from "~shared/statement/fields";
+import { conditionChains, conditionsIn } from "~shared/dependence/conditions";
+import { DataRegister, overlapsAmong, type NamedThing } from "~shared/dependence/sharedData";
+import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 import { formatSetNumber } from "~shared/identifiers/setNumber";
+import { asUsed } from "~shared/statement/asUsed";
+import { emptyFields } from "~shared/statement/fields";
+import type { ConditionPath, TableSet, TableSurroundings } from "~shared/table/decision";
+import { atSeparateRedshifts } from "~shared/table/separateRedshifts";
 
 import type { SnapshotConstraint } from "./snapshot";
 
-/** What the registry knows about these records beside their own content. */
-export async function surroundingsOf(
-  manager: EntityManager,
-  records: readonly SnapshotConstraint[],
-): Promise<TableSurroundings> {
-  return {
-    overlaps: [],
-    conditions: new Map(),
-    sets: await setsAmong(manager, records),
-  };
+/** What a registry knows of its records beside their own content, as plain data. */
+export interface KeptSurroundings {
+  readonly things: readonly NamedThing[];
+  readonly sets: readonly KeptSet[];
+  /** Conditions of every record, by number: kinds of data and record numbers. */
+  readonly conditions: Readonly<Record<string, readonly string[]>>;
 }
 
-/** Approved sets of which at least one record is among these. */
-async function setsAmong(
-  manager: EntityManager,
-  records: readonly SnapshotConstraint[],
-): Promise<TableSet[]> {
-  const byNumber = new Map(records.map((record) => [record.number, record]));
+/** An approved set as printed. */
+export interface KeptSet {
+  readonly id: string;
+  readonly label: string;
+  readonly members: readonly string[];
+  /** Correlations as printed, [n, n]. */
+  readonly rho: readonly (readonly number[])[];
+}
+
+/** Surroundings as they stand in this transaction. */
+export async function presentSurroundings(manager: EntityManager): Promise<KeptSurroundings> {
+  const [{ register }, sets, conditions] = [
+    await keptData(manager),
+    await presentSets(manager),
+    await presentConditions(manager),
+  ];
+  return { things: register.things, sets, conditions };
+}
+
+async function presentSets(manager: EntityManager): Promise<KeptSet[]> {
   const sets = await manager.find(CorrelatedSet, {
     where: { state: "approved" },
     order: { id: "ASC" },
   });
-  return sets.flatMap((set): TableSet[] => {
-    if (!set.members.some((number) => byNumber.has(number))) return [];
+  return sets.flatMap((set): KeptSet[] => {
     const rho = correlations(contentOfSet(set), set.members.length);
-    if (!rho) return [];
-    // How an absent member is turned does not matter: its row and column are dropped.
-    const members = set.members.map((number) => byNumber.get(number) ?? { fields: emptyFields() });
-    const number = formatSetNumber(set.id);
-    return [
-      {
-        id: number,
-        label: set.label ?? number,
-        members: set.members,
-        rho: usedCorrelations(rho, members),
-      },
-    ];
+    const id = formatSetNumber(set.id);
+    return rho === null ? [] : [{ id, label: set.label ?? id, members: set.members, rho }];
   });
+}
+
+async function presentConditions(manager: EntityManager): Promise<Record<string, string[]>> {
+  const rows: { id: number; words: string }[] = await manager.query(
+    `SELECT record.id AS id, JSON_EXTRACT(revision.fields, '$.conditionedOn') AS words
+       FROM constraint_record record
+       JOIN revision ON revision.id = record.approvedRevisionId
+      WHERE record.state <> 'withdrawn' AND JSON_LENGTH(revision.fields, '$.conditionedOn') > 0
+      ORDER BY record.id`,
+  );
+  return Object.fromEntries(
+    rows.map(({ id, words }) => [
+      formatRecordNumber(Number(id)),
+      conditionsIn(JSON.parse(words) as string[]),
+    ]),
+  );
+}
+
+/** What surroundings say about these records. */
+export function surroundingsOf(
+  kept: KeptSurroundings,
+  records: readonly SnapshotConstraint[],
+): TableSurroundings {
+  const byNumber = new Map(records.map((record) => [record.number, record]));
+  return {
+    overlaps: overlapsAmong(records, new DataRegister(kept.things)).filter(
+      ({ a, b }) => !areBinsOfOnePaper(byNumber.get(a), byNumber.get(b)),
+    ),
+    conditions: new Map(
+      records.map(({ number }): [string, ConditionPath[]] => [
+        number,
+        conditionChains(number, (other) => kept.conditions[other]),
+      ]),
+    ),
+    sets: kept.sets.flatMap((set) => setAmong(set, byNumber)),
+  };
+}
+
+function areBinsOfOnePaper(
+  a: SnapshotConstraint | undefined,
+  b: SnapshotConstraint | undefined,
+): boolean {
+  return (
+    a !== undefined &&
+    b !== undefined &&
+    a.citation.id === b.citation.id &&
+    atSeparateRedshifts(asUsed(a.fields), asUsed(b.fields))
+  );
+}
+
+function setAmong(
+  { id, label, members, rho }: KeptSet,
+  byNumber: ReadonlyMap<string, SnapshotConstraint>,
+): TableSet[] {
+  if (!members.some((number) => byNumber.has(number))) return [];
+  // How an absent member is turned does not matter: its row and column are dropped.
+  const turned = members.map((number) => byNumber.get(number) ?? { fields: emptyFields() });
+  return [{ id, label, members, rho: usedCorrelations(rho, turned) }];
 }

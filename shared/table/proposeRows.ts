@@ -7,6 +7,8 @@ import type { RecordState } from "~shared/review/states";
 import { asUsed, type AsUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields } from "~shared/statement/fields";
 
+import { atSeparateRedshifts } from "./separateRedshifts";
+
 /** An approved record as the proposal needs it. */
 export interface CandidateRow {
   /** FL-0042 */
@@ -164,24 +166,6 @@ function overlaps(a: Weighed, b: Weighed): boolean {
   if (![...a.data.keys()].some((name) => b.data.has(name))) return false;
   // One paper cuts one sample into bins: parts at separate redshifts are different data.
   return !(a.citation === b.citation && atSeparateRedshifts(a.used, b.used));
-}
-
-function atSeparateRedshifts(a: AsUsed | null, b: AsUsed | null): boolean {
-  const [first, second] = [redshiftSpan(a), redshiftSpan(b)];
-  if (!first || !second) return false;
-  if (first.low === first.high || second.low === second.high) {
-    return first.high < second.low || second.high < first.low;
-  }
-  // Neighbouring bins may touch.
-  return first.high <= second.low || second.high <= first.low;
-}
-
-function redshiftSpan(used: AsUsed | null): { low: number; high: number } | null {
-  const low = used?.zLow ?? used?.z;
-  const high = used?.zHigh ?? used?.z;
-  return low === null || low === undefined || high === null || high === undefined
-    ? null
-    : { low, high };
 }
 
 const FAMILY_OF = new Map(METHOD_TAGS.map((tag) => [tag.tag, tag.family]));

@@ -5,7 +5,7 @@ export class Releases1796130000010 implements MigrationInterface {
 
   public async up(queryRunner: QueryRunner): Promise<void> {
     await queryRunner.query(
-      `CREATE TABLE \`registry_release\` (\`number\` int UNSIGNED NOT NULL, \`cutAt\` datetime(6) NOT NULL, \`cutById\` uuid NOT NULL, \`notes\` text NOT NULL, \`digest\` char(64) NOT NULL, \`records\` int UNSIGNED NOT NULL, \`licence\` varchar(120) NOT NULL, \`demonstration\` tinyint NOT NULL, \`lastEventSequence\` int UNSIGNED NOT NULL, \`lastEventDigest\` char(64) NOT NULL, \`lastEventAt\` datetime(6) NOT NULL, PRIMARY KEY (\`number\`)) ENGINE=InnoDB`,
+      `CREATE TABLE \`registry_release\` (\`number\` int UNSIGNED NOT NULL, \`cutAt\` datetime(6) NOT NULL, \`cutById\` uuid NOT NULL, \`notes\` text NOT NULL, \`digest\` char(64) NOT NULL, \`records\` int UNSIGNED NOT NULL, \`licence\` varchar(120) NOT NULL, \`demonstration\` tinyint NOT NULL, \`surroundings\` mediumtext NOT NULL, \`lastEventSequence\` int UNSIGNED NOT NULL, \`lastEventDigest\` char(64) NOT NULL, \`lastEventAt\` datetime(6) NOT NULL, PRIMARY KEY (\`number\`)) ENGINE=InnoDB`,
     );
     await queryRunner.query(
       `CREATE TABLE \`registry_release_row\` (\`releaseNumber\` int UNSIGNED NOT NULL, \`constraintId\` int UNSIGNED NOT NULL, \`ordinal\` int UNSIGNED NOT NULL, \`digest\` char(64) NOT NULL, \`content\` mediumtext NOT NULL, INDEX \`IDX_434e66bc607412e56aa48d7be9\` (\`constraintId\`), PRIMARY KEY (\`releaseNumber\`, \`constraintId\`)) ENGINE=InnoDB`,

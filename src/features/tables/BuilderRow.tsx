@@ -1,58 +1,59 @@
-import { useEffect, useRef, type ReactNode } from "react";
 import { StyleSheet, View } from "react-native";
 
-import { Button } from "@/components/Button";
-import { Field } from "@/components/Field";
 import { Marker } from "@/components/Marker";
+import Icon from "@/components/Icon";
 import { NotationText } from "@/components/NotationText";
+import { Press } from "@/components/Press";
 import { RecordTitle } from "@/components/RecordTitle";
 import { Caption, Dense, Label, Mono } from "@/components/Text";
 import { useLayoutClass } from "@/layout/useLayoutClass";
 import { useColors } from "@/theme/ThemeProvider";
 import { space, target } from "@/theme/tokens";
+import type { RowPartsFragment } from "~graphql/generated/graphql";
+import { FORM_WORDS } from "~shared/likelihood";
 import { familyOf } from "~shared/methods/vocabulary";
-import { notationAsPrinted, recordTitle } from "~shared/statement/notation";
-import { levelPhrase } from "~shared/statement/words";
+import { asUsed } from "~shared/statement/asUsed";
+import { notationAsUsed, percentText, recordTitle } from "~shared/statement/notation";
 
-import { formText, type TableConstraint, Where } from "./RowParts";
-import type { RowChoice } from "./useTableDraft";
+import { DecisionNumber } from "./DecisionNumber";
+import { type TableConstraint, Where } from "./RowParts";
 
 export interface BuiltRow {
+  row: RowPartsFragment;
   constraint: TableConstraint;
-  included: boolean;
-  reason: string;
-  proposedIn: boolean;
-  proposedReason: string | null;
-  cautions: readonly string[];
+  /** Numbers of the decisions that concern it, from 1, the open ones first. */
+  decisions: readonly { number: number; open: boolean }[];
 }
 
 interface Props {
-  row: BuiltRow;
+  built: BuiltRow;
   /** The record that the page was opened for. */
   wanted: boolean;
-  onChoose: (choice: RowChoice | null) => void;
+  onOpen: () => void;
 }
 
-/** One candidate: in or out, why, and what to know about it. */
-export function BuilderRow({ row, wanted, onChoose }: Props) {
+/** One candidate: in or out, why, and what is still open about it. Touching it opens its sheet. */
+export function BuilderRow({ built, wanted, onOpen }: Props) {
   const colors = useColors();
   const wide = useLayoutClass() === "wide";
-  const place = useRef<View>(null);
-  useEffect(() => {
-    // On the web a View is an element; nothing else knows where the page is scrolled.
-    if (wanted)
-      (place.current as unknown as HTMLElement | null)?.scrollIntoView?.({ block: "center" });
-  }, [wanted]);
-  const back = wanted ? colors.petrolTint : undefined;
+  const { constraint, row } = built;
+  const waits = row.open.length > 0;
+  const back = waits ? colors.emberTint : wanted ? colors.petrolTint : undefined;
+  const words = `${constraint.citation.shortName}: ${recordTitle(constraint.fields)}, ${row.included ? "in" : "out"}`;
   return (
-    <View ref={place} style={[styles.row, { backgroundColor: back }]}>
-      {wide ? (
-        <WideFacts row={row} onChoose={onChoose} />
-      ) : (
-        <NarrowFacts row={row} onChoose={onChoose} />
+    <Press onPress={onOpen} label={words} style={[styles.row, { backgroundColor: back }]}>
+      {wide ? <WideFacts built={built} /> : <NarrowFacts built={built} />}
+      {row.included ? null : (
+        <Caption muted style={styles.indent}>
+          {`Out: ${row.reason ?? "hidden until your second reading is stored"}`}
+        </Caption>
       )}
-      <Why row={row} onChoose={onChoose} />
-    </View>
+      {row.cautions.map((caution) => (
+        <Caption key={caution} style={[styles.indent, { color: colors.emberText }]}>
+          {caution.replace(/\.$/, "")}.
+        </Caption>
+      ))}
+    </Press>
   );
 }
 
@@ -69,7 +70,7 @@ export function BuilderHead() {
         Redshift
       </Caption>
       <Caption muted style={styles.value}>
-        As printed
+        As used
       </Caption>
       <Caption muted style={styles.level}>
         Level
@@ -77,37 +78,12 @@ export function BuilderHead() {
       <Caption muted style={styles.form}>
         Form
       </Caption>
-      <Caption muted style={styles.number}>
-        Record
-      </Caption>
+      <View style={styles.status} />
     </View>
   );
 }
 
-function Take({
-  row: { constraint, included, proposedIn },
-  onChoose,
-  children,
-}: Pick<Props, "row" | "onChoose"> & { children: ReactNode }) {
-  const colors = useColors();
-  const { citation, fields } = constraint;
-  return (
-    <label style={{ ...labelStyle, minHeight: target }}>
-      <input
-        type="checkbox"
-        aria-label={`${citation.shortName}: ${recordTitle(fields)}`}
-        checked={included}
-        onChange={({ target: { checked } }) =>
-          onChoose(checked === proposedIn ? null : { included: checked, reason: "" })
-        }
-        style={{ width: 20, height: 20, margin: 2, flexShrink: 0, accentColor: colors.primary }}
-      />
-      {children}
-    </label>
-  );
-}
-
-function FamilyOf({ constraint: { fields } }: { constraint: TableConstraint }) {
+function FamilyOf({ fields }: { fields: TableConstraint["fields"] }) {
   const family = familyOf(fields.methodTags);
   return (
     <View style={styles.marker}>
@@ -116,132 +92,121 @@ function FamilyOf({ constraint: { fields } }: { constraint: TableConstraint }) {
   );
 }
 
-function WideFacts({ row, onChoose }: Pick<Props, "row" | "onChoose">) {
-  const { constraint, included } = row;
-  const { fields, citation, number } = constraint;
+function Stated({ fields }: { fields: TableConstraint["fields"] }) {
+  const used = asUsed(fields);
+  return used && fields.kind !== "qualitative" ? (
+    <NotationText
+      notation={notationAsUsed(used)}
+      symbol={fields.quantity !== "neutralFraction"}
+      tail={false}
+    />
+  ) : (
+    <Dense muted>{fields.kind === "qualitative" ? "qualitative" : "not usable"}</Dense>
+  );
+}
+
+function levelText(row: RowPartsFragment): string {
+  return row.level === null || row.level === undefined ? "not stated" : percentText(row.level);
+}
+
+function formWords(row: RowPartsFragment): string {
+  if (!row.form) return row.open.length > 0 ? "open" : "none";
+  const words = FORM_WORDS[row.form];
+  return row.mixture ? `${words}, in a mixture` : row.set ? `${words}, correlated` : words;
+}
+
+function Status({ built: { row, decisions } }: { built: BuiltRow }) {
+  const colors = useColors();
+  const [first] = decisions.filter(({ open }) => open);
+  if (first) return <DecisionNumber number={first.number} open />;
+  return (
+    <Icon
+      name={row.included ? "check" : "minus"}
+      size={20}
+      color={row.included ? colors.primary : colors.muted}
+    />
+  );
+}
+
+function WideFacts({ built }: { built: BuiltRow }) {
+  const { constraint, row } = built;
+  const { fields, citation } = constraint;
   return (
     <View style={styles.line}>
-      <View style={styles.source}>
-        <Take row={row} onChoose={onChoose}>
-          <FamilyOf constraint={constraint} />
-          <Dense muted={!included} style={styles.name}>
-            {citation.shortName}
-          </Dense>
-        </Take>
+      <View style={[styles.source, styles.sourceLine]}>
+        <FamilyOf fields={fields} />
+        <Dense muted={!row.included} style={styles.name}>
+          {citation.shortName}
+        </Dense>
       </View>
       <View style={styles.where}>
         <Where fields={fields} />
       </View>
       <View style={styles.value}>
-        <Stated constraint={constraint} />
+        <Stated fields={fields} />
       </View>
-      <Dense style={styles.level}>{levelPhrase(fields.level, fields.levelPercent)}</Dense>
-      <Dense muted style={styles.form}>
-        {formText(fields)}
+      <Dense muted={!row.included} style={styles.level}>
+        {levelText(row)}
       </Dense>
-      <Mono style={styles.number}>{number}</Mono>
+      <Dense muted style={styles.form}>
+        {formWords(row)}
+      </Dense>
+      <View style={styles.status}>
+        <Status built={built} />
+      </View>
     </View>
   );
 }
 
-function Stated({ constraint: { fields } }: { constraint: TableConstraint }) {
-  return fields.kind === "qualitative" ? (
-    <Dense muted>qualitative</Dense>
-  ) : (
-    <NotationText notation={notationAsPrinted(fields)} symbol tail={false} />
-  );
-}
-
-function NarrowFacts({ row, onChoose }: Pick<Props, "row" | "onChoose">) {
-  const { constraint, included } = row;
-  const { fields, citation, number } = constraint;
+function NarrowFacts({ built }: { built: BuiltRow }) {
+  const { constraint, row } = built;
+  const { fields, citation } = constraint;
   return (
     <View style={styles.narrow}>
-      <Take row={row} onChoose={onChoose}>
-        <FamilyOf constraint={constraint} />
-        <View style={styles.words}>
-          <Label style={styles.name}>{citation.shortName}</Label>
-          <Dense muted={!included}>
-            <RecordTitle fields={fields} />
-          </Dense>
+      <FamilyOf fields={fields} />
+      <View style={styles.words}>
+        <Label style={styles.name}>{citation.shortName}</Label>
+        <Dense muted={!row.included}>
+          <RecordTitle fields={fields} />
+        </Dense>
+        <View style={styles.facts}>
+          <Stated fields={fields} />
+          <Caption muted>
+            {levelText(row)} · {formWords(row)} · <Mono>{constraint.number}</Mono>
+          </Caption>
         </View>
-      </Take>
-      <View style={[styles.indent, styles.facts]}>
-        <Stated constraint={constraint} />
-        <Caption muted>
-          {levelPhrase(fields.level, fields.levelPercent)}
-          {fields.level ? " · " : ""}
-          <Mono>{number}</Mono>
-        </Caption>
+      </View>
+      <View style={styles.status}>
+        <Status built={built} />
       </View>
     </View>
   );
 }
 
-/** Why a row is out, or in against the proposal: the proposal's words or a person's. */
-function Why({ row, onChoose }: Pick<Props, "row" | "onChoose">) {
-  const colors = useColors();
-  const { included, reason, proposedIn, proposedReason, cautions } = row;
-  const against = included !== proposedIn;
-  return (
-    <>
-      {against ? (
-        <View style={styles.indent}>
-          {proposedReason ? <Caption muted>Proposed out: {proposedReason}.</Caption> : null}
-          <View style={styles.reason}>
-            <View style={styles.reasonField}>
-              <Field
-                label={included ? "Why it is in all the same" : "Why it is left out"}
-                value={reason}
-                onChangeText={(text) => onChoose({ included, reason: text })}
-                maxLength={300}
-              />
-            </View>
-            <Button label="As proposed" kind="text" icon="undo" onPress={() => onChoose(null)} />
-          </View>
-        </View>
-      ) : included ? null : (
-        <Caption muted style={styles.indent}>
-          Out, as proposed: {reason}.
-        </Caption>
-      )}
-      {cautions.map((caution) => (
-        <Caption key={caution} style={[styles.indent, { color: colors.emberText }]}>
-          {caution}.
-        </Caption>
-      ))}
-    </>
-  );
-}
-
-/** Where the words of a row begin: behind its box and its marker. */
-const INDENT = 66;
-
-const labelStyle = {
-  display: "flex",
-  alignItems: "center",
-  gap: space.s,
-  cursor: "pointer",
-  minWidth: 0,
-} as const;
+/** Where the words of a row begin: behind its marker. */
+const INDENT = 30;
 
 const styles = StyleSheet.create({
   row: { paddingHorizontal: space.m, paddingVertical: 1 },
   line: { flexDirection: "row", alignItems: "center", gap: space.s, minHeight: target },
   head: { paddingHorizontal: space.m, minHeight: 36 },
-  source: { flex: 1.8, minWidth: 0 },
+  source: { flex: 1.55, minWidth: 0 },
+  sourceLine: { flexDirection: "row", alignItems: "center", gap: space.s },
   sourceHead: { paddingLeft: INDENT },
   name: { flexShrink: 1 },
   marker: { width: 18, flexShrink: 0 },
-  where: { flex: 0.95, minWidth: 0 },
+  where: { flex: 1.12, minWidth: 0 },
   value: { flex: 1.2, minWidth: 0 },
-  level: { flex: 0.7, minWidth: 0 },
-  form: { flex: 1.15, minWidth: 0 },
-  number: { width: 72, textAlign: "right", fontSize: 14 },
-  narrow: { paddingVertical: space.xxs },
-  words: { flexShrink: 1, minWidth: 0 },
-  facts: { flexDirection: "row", flexWrap: "wrap", alignItems: "center", gap: space.s },
+  level: { flex: 0.72, minWidth: 0 },
+  form: { flex: 1.1, minWidth: 0 },
+  status: { width: 28, alignItems: "center", flexShrink: 0 },
+  narrow: {
+    flexDirection: "row",
+    alignItems: "center",
+    gap: space.s,
+    paddingVertical: space.xs,
+  },
+  words: { flex: 1, minWidth: 0, gap: 2 },
+  facts: { flexDirection: "row", flexWrap: "wrap", alignItems: "center", columnGap: space.s },
   indent: { paddingLeft: INDENT, paddingBottom: space.xs },
-  reason: { flexDirection: "row", flexWrap: "wrap", alignItems: "center", columnGap: space.s },
-  reasonField: { flexGrow: 1, flexShrink: 1, flexBasis: 240, minWidth: 0 },
 });

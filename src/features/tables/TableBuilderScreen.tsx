@@ -1,283 +1,318 @@
-import { useMutation, useQuery } from "@apollo/client/react";
+import { useQuery } from "@apollo/client/react";
 import { useLocalSearchParams, useRouter } from "expo-router";
-import { useMemo, useState } from "react";
+import { useEffect, useMemo, useState } from "react";
 import { StyleSheet, View } from "react-native";
 
-import { userMessage } from "@/apollo/userMessage";
-import { useSession } from "@/apollo/useSession";
 import { filterInput } from "@/apollo/filterInput";
-import { useLatest } from "@/apollo/useLatest";
 import { Button } from "@/components/Button";
 import { Card, Divider } from "@/components/Card";
+import { Choice } from "@/components/Choice";
 import { Empty } from "@/components/feedback/Empty";
 import { Failed } from "@/components/feedback/Failed";
 import { Loading } from "@/components/feedback/Loading";
-import { Field } from "@/components/Field";
 import { FilterPanel } from "@/components/filter/FilterPanel";
 import { useAddressFilter } from "@/components/filter/useAddressFilter";
 import { Notice } from "@/components/Notice";
-import { Sheet } from "@/components/Sheet";
+import { StepBar } from "@/components/StepBar";
 import { Caption, Dense, Section } from "@/components/Text";
 import { Screen } from "@/layout/Screen";
 import { useLayoutClass } from "@/layout/useLayoutClass";
 import { space } from "@/theme/tokens";
-import { SaveTableDocument, TableCandidatesDocument } from "~graphql/generated/graphql";
-import { isEmptyFilter } from "~shared/filter/address";
-import { filterWords } from "~shared/filter/describe";
-import { proposeRows } from "~shared/table/proposeRows";
+import { ReleaseListDocument, TableRecipeDocument } from "~graphql/generated/graphql";
+import { isEmptyFilter, paramsToFilter } from "~shared/filter/address";
 
 import { BuilderHead, BuilderRow, type BuiltRow } from "./BuilderRow";
-import { TableRows } from "./TableRows";
-import { useTableDraft } from "./useTableDraft";
+import { Decisions } from "./Decisions";
+import { Groups } from "./Groups";
+import { RowSheet } from "./RowSheet";
+import { SaveTable } from "./SaveTable";
+import { EMPTY_DRAFT, recipeOf, useTableDraft } from "./useTableDraft";
+import { useProposal } from "./useProposal";
 
-/** Filter, rows with their reasons, preview, save. The filter stands in the address. */
+const STEPS = ["filter", "rows", "decisions", "save"] as const;
+type StepKey = (typeof STEPS)[number];
+
+/** Filter, rows, decisions, save. The filter stands in the address; the rest keeps itself. */
 export function TableBuilderScreen() {
   const address = useAddressFilter();
-  const { with: wanted } = useLocalSearchParams<{ with?: string }>();
-  const { draft, setName, choose, clear } = useTableDraft();
+  const router = useRouter();
+  const params = useLocalSearchParams<{
+    with?: string;
+    step?: string;
+    from?: string;
+    as?: string;
+  }>();
+  const { with: wanted, from } = params;
+  const table = useTableDraft();
+  const { draft } = table;
   const wide = useLayoutClass() === "wide";
-  const [filtering, setFiltering] = useState(false);
-  const { data, error, loading, refetch } = useQuery(TableCandidatesDocument, {
-    variables: { filter: filterInput(address.filter) },
-    fetchPolicy: "cache-and-network",
-  });
-  const page = useLatest(data)?.constraints;
+  const [openRow, setOpenRow] = useState<string | null>(null);
+  useAdapted(from ?? null, params.as === "version", table.replace);
+  const recipe = recipeOf(draft, filterInput(address.filter));
+  const { proposal, refusal, error, refetch } = useProposal(recipe);
+  const step: StepKey = STEPS.find((key) => key === params.step) ?? (wide ? "rows" : "filter");
+  const go = (key: string) => router.setParams({ step: key });
+
   const rows = useMemo((): BuiltRow[] => {
-    const candidates = page?.constraints ?? [];
-    const proposals = proposeRows(
-      candidates.map(({ number, fields, citation }) => ({
-        number,
-        fields,
-        citation: citation.id,
-        year: citation.year ?? null,
-      })),
-    );
-    return candidates.map((constraint, index) => {
-      const proposal = proposals[index];
-      const choice = draft.choices[constraint.number];
-      const included = choice?.included ?? proposal?.included ?? true;
-      return {
-        constraint,
-        included,
-        reason: choice?.reason ?? proposal?.reason ?? "",
-        proposedIn: proposal?.included ?? true,
-        proposedReason: proposal?.reason ?? null,
-        cautions: included ? (proposal?.cautions ?? []) : [],
-      };
+    const places = new Map(proposal?.decisions.map(({ id }, index) => [id, index + 1]));
+    const constraints = new Map(proposal?.constraints.map((one) => [one.number, one]));
+    return (proposal?.rows ?? []).flatMap((row): BuiltRow[] => {
+      const constraint = constraints.get(row.number);
+      if (!constraint) return [];
+      const decisions = (proposal?.decisions ?? [])
+        .filter((decision) => decision.rows.includes(row.number))
+        .map(({ id, taken }) => ({ number: places.get(id) ?? 0, open: taken === null }));
+      return [{ row, constraint, decisions }];
     });
-  }, [page, draft.choices]);
-  const taken = rows.filter(({ included }) => included);
-  const unreasoned = rows.filter(
-    ({ included, proposedIn, reason }) => included !== proposedIn && reason.trim() === "",
+  }, [proposal]);
+  const rowsIn = rows.filter(({ row }) => row.included).length;
+  const opened = rows.find(({ row }) => row.number === openRow) ?? null;
+
+  const filter = (
+    <View style={styles.part}>
+      <Source release={draft.release} onChange={(release) => table.change({ release })} />
+      <FilterPanel filter={address.filter} onChange={address.setFilter} />
+    </View>
   );
-  const filter = <FilterPanel filter={address.filter} onChange={address.setFilter} />;
+  const decisions = proposal ? (
+    <Decisions
+      decisions={proposal.decisions}
+      choices={draft.decisions}
+      onDecide={table.decide}
+      onTakeProposals={() =>
+        table.takeProposals(proposal.decisions.filter(({ taken }) => taken === null))
+      }
+    />
+  ) : null;
+  const list = proposal ? (
+    <View style={styles.part}>
+      <View style={styles.rowsHead}>
+        <Section>Rows</Section>
+        <Caption muted>{`${rowsIn} in, ${rows.length - rowsIn} out with a reason`}</Caption>
+      </View>
+      <Card flush>
+        {rows.length === 0 ? (
+          <Empty
+            title="No row matches"
+            text="Widen the redshift or clear the families."
+            action={
+              isEmptyFilter(address.filter) ? undefined : (
+                <Button
+                  label="Clear the filter"
+                  kind="tonal"
+                  onPress={() => address.setFilter({})}
+                />
+              )
+            }
+          />
+        ) : (
+          <>
+            {wide ? <BuilderHead /> : null}
+            <View role="list" aria-label="Candidates">
+              {rows.map((built, index) => (
+                <View key={built.row.number} role="listitem">
+                  {index > 0 || wide ? <Divider /> : null}
+                  <BuilderRow
+                    built={built}
+                    wanted={built.row.number === wanted}
+                    onOpen={() => setOpenRow(built.row.number)}
+                  />
+                </View>
+              ))}
+            </View>
+          </>
+        )}
+      </Card>
+      <Groups mixtures={proposal.mixtures} sets={proposal.sets} />
+      <Caption muted>
+        Touch a row for its likelihood, another form, or to take it out. Rows are multiplied as
+        independent of one another, which is an assumption.
+      </Caption>
+    </View>
+  ) : null;
+  const save = (
+    <SaveTable
+      draft={draft}
+      recipe={recipe}
+      rowsIn={rowsIn}
+      open={proposal?.open ?? 0}
+      onChange={table.change}
+      onSaved={table.clear}
+    />
+  );
+  const next = STEPS[STEPS.indexOf(step) + 1];
+  const body = refusal ? (
+    <Notice grade="error">{refusal}</Notice>
+  ) : error && !proposal ? (
+    <Failed error={error} onRetry={() => void refetch()} />
+  ) : !proposal ? (
+    <Loading label="Fetching the rows" rows={6} />
+  ) : (
+    <>
+      {wanted && !rows.some(({ row }) => row.number === wanted) ? (
+        <Notice
+          grade="note"
+          action={
+            isEmptyFilter(address.filter) ? undefined : (
+              <Button label="Clear the filter" kind="tonal" onPress={() => address.setFilter({})} />
+            )
+          }
+        >
+          {`${wanted} does not match this filter.`}
+        </Notice>
+      ) : null}
+      {wide || step === "rows" ? list : null}
+      {!wide && step === "decisions" ? decisions : null}
+      {wide || step === "save" ? save : null}
+    </>
+  );
   return (
     <Screen
-      title="New table"
-      subtitle={
-        page
-          ? `${page.total} of ${page.registryTotal} match · ${filterWords(address.filter)}`
-          : undefined
-      }
-      back="/tables"
+      title={draft.slug ? "New version" : "New table"}
+      subtitle={proposal ? `${proposal.filter} · ${sourceWords(draft.release)}` : undefined}
+      back={draft.slug ? `/tables/${draft.slug}` : "/tables"}
+      list={wide ? <View style={styles.side}>{filter}</View> : undefined}
       aside={
         wide ? (
-          <View style={styles.aside}>
-            <Section>Filter</Section>
-            {filter}
+          <View style={styles.side}>
+            {decisions ?? <Dense muted>Decisions follow the rows.</Dense>}
           </View>
         ) : undefined
+      }
+      footer={
+        wide || !next ? undefined : (
+          <Button label={NEXT_WORDS[step]} kind="filled" onPress={() => go(next)} />
+        )
       }
     >
       <View style={styles.all}>
         {wide ? null : (
-          <View style={styles.buttons}>
-            <Button label="Filter" icon="tune-variant" onPress={() => setFiltering(true)} />
-          </View>
-        )}
-        {error && !page ? (
-          <Failed error={error} onRetry={() => void refetch()} />
-        ) : !page ? (
-          loading ? (
-            <Loading label="Fetching the rows" rows={6} />
-          ) : null
-        ) : (
-          <>
-            {wanted && !rows.some(({ constraint }) => constraint.number === wanted) ? (
-              <Notice
-                grade="note"
-                action={
-                  isEmptyFilter(address.filter) ? undefined : (
-                    <Button
-                      label="Clear the filter"
-                      kind="tonal"
-                      onPress={() => address.setFilter({})}
-                    />
-                  )
-                }
-              >
-                {`${wanted} does not match this filter.`}
-              </Notice>
-            ) : null}
-            <View style={styles.part}>
-              <Section>Rows</Section>
-              <Caption muted>
-                {taken.length} in, {rows.length - taken.length} out. A row against the proposal asks
-                for a reason, which every download carries.
-              </Caption>
-              <Card flush>
-                {rows.length === 0 ? (
-                  <Empty
-                    title="No row matches"
-                    text="Widen the redshift or clear the families."
-                    action={
-                      <Button
-                        label="Clear the filter"
-                        kind="tonal"
-                        onPress={() => address.setFilter({})}
-                      />
-                    }
-                  />
-                ) : (
-                  <>
-                    {wide ? <BuilderHead /> : null}
-                    <View role="list" aria-label="Candidates">
-                      {rows.map((row, index) => (
-                        <View key={row.constraint.number} role="listitem">
-                          {index > 0 || wide ? <Divider /> : null}
-                          <BuilderRow
-                            row={row}
-                            wanted={row.constraint.number === wanted}
-                            onChoose={(choice) => choose(row.constraint.number, choice)}
-                          />
-                        </View>
-                      ))}
-                    </View>
-                  </>
-                )}
-              </Card>
-            </View>
-            {taken.length > 0 ? (
-              <View style={styles.part}>
-                <Section>Preview</Section>
-                <TableRows constraints={taken.map(({ constraint }) => constraint)} />
-              </View>
-            ) : null}
-            <Save
-              name={draft.name}
-              onName={setName}
-              rows={rows}
-              unreasoned={unreasoned.map(({ constraint }) => constraint.number)}
-              filter={address.filter}
-              onSaved={clear}
-            />
-          </>
-        )}
-      </View>
-      <Sheet
-        visible={filtering}
-        title="Filter"
-        onClose={() => setFiltering(false)}
-        footer={
-          <Button
-            label={`Show ${page?.total ?? ""} rows`}
-            kind="filled"
-            onPress={() => setFiltering(false)}
+          <StepBar
+            label="Steps to a table"
+            current={step}
+            onGo={go}
+            steps={[
+              { key: "filter", label: "Filter" },
+              { key: "rows", label: "Rows" },
+              { key: "decisions", label: "Decide" },
+              { key: "save", label: "Save" },
+            ]}
           />
-        }
-      >
-        {filter}
-      </Sheet>
+        )}
+        {!wide && step === "filter" ? filter : body}
+        {isBegun(draft) ? (
+          <View style={styles.buttons}>
+            <Button label="Begin again" kind="text" icon="restore" onPress={table.clear} />
+          </View>
+        ) : null}
+      </View>
+      {opened ? (
+        <RowSheet
+          built={opened}
+          choice={draft.forms[opened.row.number] ?? null}
+          out={draft.out[opened.row.number] ?? null}
+          onForm={(choice) => table.setForm(opened.row.number, choice)}
+          onOut={(reason) => table.takeOut(opened.row.number, reason)}
+          onClose={() => setOpenRow(null)}
+        />
+      ) : null}
     </Screen>
   );
 }
 
-function Save({
-  name,
-  onName,
-  rows,
-  unreasoned,
-  filter,
-  onSaved,
+const NEXT_WORDS: Record<StepKey, string> = {
+  filter: "See the rows",
+  rows: "To the decisions",
+  decisions: "To save it",
+  save: "",
+};
+
+function sourceWords(release: number | null): string {
+  return release === null ? "latest approved records" : `release ${release}`;
+}
+
+function isBegun(draft: typeof EMPTY_DRAFT): boolean {
+  return JSON.stringify(draft) !== JSON.stringify(EMPTY_DRAFT);
+}
+
+/** Which records the table draws from: a release that never changes, or those of now. */
+function Source({
+  release,
+  onChange,
 }: {
-  name: string;
-  onName: (name: string) => void;
-  rows: readonly BuiltRow[];
-  unreasoned: readonly string[];
-  filter: ReturnType<typeof useAddressFilter>["filter"];
-  onSaved: () => void;
+  release: number | null;
+  onChange: (release: number | null) => void;
 }) {
-  const router = useRouter();
-  const { viewer } = useSession();
-  const [failure, setFailure] = useState<string | null>(null);
-  const [save, { loading }] = useMutation(SaveTableDocument, {
-    // The list of tables is asked anew when it is next shown.
-    update: (cache) => void cache.evict({ id: "ROOT_QUERY", fieldName: "fittingTables" }),
-  });
-  const because = !viewer
-    ? undefined
-    : !rows.some(({ included }) => included)
-      ? "No row is in."
-      : unreasoned.length > 0
-        ? `A reason is missing: ${unreasoned.join(", ")}.`
-        : name.trim() === ""
-          ? "Give the table a name."
-          : undefined;
-  async function press() {
-    setFailure(null);
-    try {
-      const { data } = await save({
-        variables: {
-          input: {
-            name: name.trim(),
-            filter: filterInput(filter),
-            rows: rows.map(({ constraint, included, reason }) => ({
-              number: constraint.number,
-              included,
-              reason: reason.trim() === "" ? null : reason.trim(),
-            })),
-          },
-        },
-      });
-      const result = data?.saveTable;
-      if (result?.__typename === "FittingTable") {
-        onSaved();
-        router.replace(`/tables/${result.slug}` as never);
-      } else setFailure(result?.message ?? "The table was not saved. Try again.");
-    } catch (error) {
-      setFailure(userMessage(error));
-    }
-  }
+  const { data } = useQuery(ReleaseListDocument);
+  const releases = data?.releases ?? [];
+  if (releases.length === 0 && release === null) return null;
   return (
-    <View style={styles.part}>
-      <Section>Save</Section>
-      <Dense muted>
-        Saving gives the table a permanent address. Its rows are copied as they stand now, so its
-        bytes never change; the choices go along.
-      </Dense>
-      <Field label="Name of the table" value={name} onChangeText={onName} maxLength={120} />
-      {failure ? <Notice grade="error">{failure}</Notice> : null}
-      <View style={styles.buttons}>
-        {viewer ? (
-          <Button
-            label="Save the table"
-            kind="filled"
-            icon="content-save-outline"
-            busy={loading}
-            disabledBecause={because}
-            onPress={() => void press()}
-          />
-        ) : (
-          <Button label="Sign in to save" kind="filled" icon="login" href="/account/sign-in" />
-        )}
-      </View>
-    </View>
+    <Choice
+      label="Records from"
+      value={release === null ? "latest" : String(release)}
+      options={[
+        { value: "latest", label: "Latest approved" },
+        ...releases.map(({ number }) => ({ value: String(number), label: `Release ${number}` })),
+      ]}
+      onChange={(value) => onChange(value === null || value === "latest" ? null : Number(value))}
+      hint={
+        release === null ? "Follows the registry as it stands now." : "A release never changes."
+      }
+    />
   );
+}
+
+/** Takes over the recipe of another table, once, and puts its filter in the address. */
+function useAdapted(
+  from: string | null,
+  asVersion: boolean,
+  replace: (draft: typeof EMPTY_DRAFT) => void,
+): void {
+  const router = useRouter();
+  const address = useAddressFilter();
+  const { data } = useQuery(TableRecipeDocument, {
+    variables: { slug: from ?? "" },
+    skip: from === null,
+  });
+  const found = data?.fittingTable;
+  useEffect(() => {
+    if (from === null || found?.slug !== from || !found.recipe) return;
+    const { recipe } = found;
+    const own = asVersion && found.ownedByMe;
+    replace({
+      ...EMPTY_DRAFT,
+      name: own ? found.name : "",
+      visibility: own ? found.visibility : "public",
+      notify: own && found.notify,
+      slug: own ? found.slug : null,
+      adaptedFrom: own ? null : found.slug,
+      release: recipe.release ?? null,
+      decisions: Object.fromEntries(
+        recipe.decisions.map(({ id, option, byDefault, reason }) => [
+          id,
+          { option, byDefault, reason: reason ?? "" },
+        ]),
+      ),
+      out: Object.fromEntries(recipe.out.map(({ number, reason }) => [number, reason])),
+      forms: Object.fromEntries(
+        recipe.forms.flatMap(({ number, form, reason }) =>
+          form ? [[number, { form, reason }]] : [],
+        ),
+      ),
+    });
+    router.setParams({ from: undefined, as: undefined });
+    address.setFilter(
+      paramsToFilter(Object.fromEntries(new URLSearchParams(recipe.filter))).filter,
+    );
+    // Once for the table that was asked for: its parameter leaves the address.
+    // eslint-disable-next-line react-hooks/exhaustive-deps
+  }, [from, found]);
 }
 
 const styles = StyleSheet.create({
   all: { gap: space.l },
   part: { gap: space.s },
-  aside: { gap: space.m, padding: space.l },
+  side: { gap: space.m, padding: space.l },
+  rowsHead: { flexDirection: "row", alignItems: "baseline", flexWrap: "wrap", columnGap: space.s },
   buttons: { flexDirection: "row", flexWrap: "wrap", gap: space.s },
 });
