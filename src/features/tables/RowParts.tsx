@@ -4,9 +4,7 @@ import { Marker } from "@/components/Marker";
 import { Caption, Dense, Mono } from "@/components/Text";
 import { space } from "@/theme/tokens";
 import type { ListedPartsFragment } from "~graphql/generated/graphql";
-import { FORM_WORDS, rowLikelihood } from "~shared/likelihood";
 import { familyOf } from "~shared/methods/vocabulary";
-import { asUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields } from "~shared/statement/fields";
 import { QUANTITY_WORDS } from "~shared/statement/words";
 
@@ -46,15 +44,6 @@ export function Where({ fields }: { fields: ConstraintFields }) {
       {role ? <Caption muted>{` ${role}`}</Caption> : null}
     </Dense>
   );
-}
-
-/** The form a likelihood takes for a row, in words; why there is none otherwise. */
-export function formText(fields: ConstraintFields): string {
-  const used = asUsed(fields);
-  if (used === null) return "none";
-  const row = rowLikelihood(used);
-  if (!("leftOut" in row)) return FORM_WORDS[row.form];
-  return row.code === "qualitative" ? "none" : "none yet";
 }
 
 const styles = StyleSheet.create({

@@ -7,23 +7,56 @@ import { Caption, Dense, Mono, SymbolText } from "@/components/Text";
 import { web } from "@/components/web";
 import { useLayoutClass } from "@/layout/useLayoutClass";
 import { space } from "@/theme/tokens";
+import type { RowPartsFragment } from "~graphql/generated/graphql";
+import { FORM_WORDS } from "~shared/likelihood";
 import { asUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields } from "~shared/statement/fields";
-import { notationAsPrinted, notationAsUsed } from "~shared/statement/notation";
+import { notationAsPrinted, notationAsUsed, percentText } from "~shared/statement/notation";
 import { levelPhrase } from "~shared/statement/words";
 
-import { formText, Source, type TableConstraint, Where } from "./RowParts";
+import { Source, type TableConstraint, Where } from "./RowParts";
 
 /** The rows a table hands out, as printed beside as used. */
-export function TableRows({ constraints }: { constraints: readonly TableConstraint[] }) {
+export function TableRows({
+  constraints,
+  rows,
+}: {
+  constraints: readonly TableConstraint[];
+  rows: readonly RowPartsFragment[];
+}) {
+  const byNumber = new Map(rows.map((row) => [row.number, row]));
+  const decided: Decided = ({ number }) => byNumber.get(number) ?? null;
   return useLayoutClass() === "compact" ? (
-    <Listed constraints={constraints} />
+    <Listed constraints={constraints} decided={decided} />
   ) : (
-    <Tabled constraints={constraints} />
+    <Tabled constraints={constraints} decided={decided} />
   );
 }
 
-function Tabled({ constraints }: { constraints: readonly TableConstraint[] }) {
+/** What the table decided about a record. */
+type Decided = (constraint: TableConstraint) => RowPartsFragment | null;
+
+interface Props {
+  constraints: readonly TableConstraint[];
+  decided: Decided;
+}
+
+/** Level as printed, or as the table decided where the paper states none. */
+function levelOf(constraint: TableConstraint, row: RowPartsFragment | null): string {
+  const { level, levelPercent } = constraint.fields;
+  return level === "notStated" && typeof row?.level === "number"
+    ? `read as ${percentText(row.level)}`
+    : levelPhrase(level, levelPercent);
+}
+
+function formOf(row: RowPartsFragment | null): string {
+  if (!row?.form) return "none";
+  const words = FORM_WORDS[row.form];
+  if (row.mixture) return `${words}, weight ${Number(row.weight.toPrecision(3))}`;
+  return row.set ? `${words}, correlated` : words;
+}
+
+function Tabled({ constraints, decided }: Props) {
   return (
     <Card flush>
       <DataTable
@@ -45,10 +78,8 @@ function Tabled({ constraints }: { constraints: readonly TableConstraint[] }) {
             <NotationText notation={notationAsPrinted(constraint.fields)} tail={false} symbol />
           ),
           used: <Used fields={constraint.fields} />,
-          level: (
-            <Dense>{levelPhrase(constraint.fields.level, constraint.fields.levelPercent)}</Dense>
-          ),
-          form: <Dense muted>{formText(constraint.fields)}</Dense>,
+          level: <Dense>{levelOf(constraint, decided(constraint))}</Dense>,
+          form: <Dense muted>{formOf(decided(constraint))}</Dense>,
           number: <Mono style={oneLine}>{constraint.quotable}</Mono>,
         }))}
         rowKey={({ id }) => id}
@@ -67,7 +98,7 @@ function Used({ fields }: { fields: ConstraintFields }) {
 }
 
 /** The same on a phone, where seven columns have no room. */
-function Listed({ constraints }: { constraints: readonly TableConstraint[] }) {
+function Listed({ constraints, decided }: Props) {
   return (
     <Card flush>
       <View role="list" aria-label="Rows of the table">
@@ -99,7 +130,7 @@ function Listed({ constraints }: { constraints: readonly TableConstraint[] }) {
                     </>
                   ) : null}
                   <Where fields={fields} />
-                  {` · ${[levelPhrase(fields.level, fields.levelPercent), formText(fields)].filter(Boolean).join(" · ")}`}
+                  {` · ${[levelOf(constraint, decided(constraint)), formOf(decided(constraint))].filter(Boolean).join(" · ")}`}
                 </Caption>
               </View>
             </View>

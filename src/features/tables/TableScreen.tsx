@@ -24,19 +24,31 @@ import {
   type TableBySlugQuery,
 } from "~graphql/generated/graphql";
 
+import { VISIBILITY_WORDS } from "./SaveTable";
+import { TableChoices } from "./TableChoices";
+import { TableFiles } from "./TableFiles";
+import { TableVersions, TableWouldChange } from "./TableHistory";
 import { TableRows } from "./TableRows";
+import { TableSettings } from "./TableSettings";
 
 type Table = NonNullable<TableBySlugQuery["fittingTable"]>;
 
 /** A saved fitting table: rows in, rows out with the reason, digest, files. */
 export function TableScreen() {
-  const { slug } = useLocalSearchParams<{ slug: string }>();
-  const { data, error, loading, refetch } = useQuery(TableBySlugDocument, { variables: { slug } });
+  const { slug, version } = useLocalSearchParams<{ slug: string; version?: string }>();
+  const wanted = /^\d{1,6}$/.test(version ?? "") ? Number(version) : null;
+  const { data, error, loading, refetch } = useQuery(TableBySlugDocument, {
+    variables: { slug, version: wanted },
+  });
   const table = data?.fittingTable;
   return (
     <Screen
       title={table?.name ?? "Fitting table"}
-      subtitle={table ? `${table.rowsIn} rows in, ${table.rowsOut} out` : undefined}
+      subtitle={
+        table
+          ? `${table.rowsIn} rows in, ${table.rowsOut} out${table.version > 1 ? ` · version ${table.version}` : ""}`
+          : undefined
+      }
       back="/tables"
     >
       {table ? (
@@ -63,8 +75,6 @@ function TableView({ table }: { table: Table }) {
   const rowsIn = new Set(table.rows.filter(({ included }) => included).map(({ number }) => number));
   const out = table.rows.filter(({ included }) => !included);
   const against = table.rows.filter(({ included, reason }) => included && reason);
-  const address = `/api/tables/${table.slug}`;
-  const origin = typeof window === "undefined" ? "" : window.location.origin;
   return (
     <View style={styles.all}>
       <View style={wide ? styles.columns : styles.stack}>
@@ -75,6 +85,14 @@ function TableView({ table }: { table: Table }) {
                 { term: "Filter", value: table.filter },
                 { term: "Saved", value: `${dateTime(table.createdAt)} by ${table.owner}` },
                 {
+                  term: "Source",
+                  value:
+                    typeof table.release === "number"
+                      ? `release ${table.release}`
+                      : "latest approved records",
+                },
+                { term: "Seen by", value: VISIBILITY_WORDS[table.visibility].toLowerCase() },
+                {
                   term: "Registry as of",
                   value: `event ${table.lastEvent.sequence}, ${dateTime(table.lastEvent.at)}`,
                 },
@@ -84,14 +102,7 @@ function TableView({ table }: { table: Table }) {
           </Card>
         </View>
         <View style={[wide ? styles.side : undefined, styles.stackSmall]}>
-          <Section>Download</Section>
-          <View style={styles.buttons}>
-            <Button label="CSV" kind="filled" icon="tray-arrow-down" href={`${address}.csv`} />
-            <Button label="JSON" icon="tray-arrow-down" href={`${address}.json`} />
-            <Button label=".bib" icon="tray-arrow-down" href={`${address}.bib`} />
-          </View>
-          <Dense muted>Anyone can fetch it, without an account:</Dense>
-          <Mono style={styles.curl}>{`curl -O ${origin}${address}.csv`}</Mono>
+          <TableFiles table={table} />
         </View>
       </View>
       <Notice grade="caution">
@@ -102,8 +113,12 @@ function TableView({ table }: { table: Table }) {
       </Notice>
       <View style={styles.stackSmall}>
         <Section>Rows</Section>
-        <TableRows constraints={table.constraints.filter(({ number }) => rowsIn.has(number))} />
+        <TableRows
+          constraints={table.constraints.filter(({ number }) => rowsIn.has(number))}
+          rows={table.rows}
+        />
       </View>
+      <TableChoices table={table} />
       {against.length > 0 ? (
         <View style={styles.stackSmall}>
           <Block level={2}>In against the proposal</Block>
@@ -118,8 +133,25 @@ function TableView({ table }: { table: Table }) {
           <Reasons rows={out} />
         )}
       </View>
+      {table.methods ? (
+        <View style={styles.stackSmall}>
+          <Section>For a paper&apos;s section on methods</Section>
+          <Mono style={styles.methods}>{table.methods}</Mono>
+        </View>
+      ) : null}
+      {table.version > 0 ? <TableWouldChange table={table} /> : null}
+      <TableVersions table={table} />
       <View style={styles.buttons}>
-        <Button label="Build another table" icon="table-large-plus" href="/tables/new" />
+        {table.version > 0 ? (
+          <Button
+            label="Copy and adapt"
+            icon="content-copy"
+            href={`/tables/new?from=${table.slug}`}
+          />
+        ) : (
+          <Button label="Build another table" icon="table-large-plus" href="/tables/new" />
+        )}
+        {may("changeTable", table.ownedByMe) ? <TableSettings table={table} /> : null}
         {may("deleteTable", table.ownedByMe) ? <Delete table={table} /> : null}
       </View>
     </View>
@@ -193,5 +225,5 @@ const styles = StyleSheet.create({
   side: { width: 400 },
   buttons: { flexDirection: "row", flexWrap: "wrap", gap: space.s },
   digest: { fontSize: 13, lineHeight: 20 },
-  curl: { fontSize: 13, lineHeight: 20 },
+  methods: { fontSize: 13, lineHeight: 20 },
 });
