@@ -1,0 +1,1 @@
+export { EventLogScreen as default } from "@/features/desk/EventLogScreen";
