@@ -1,15 +1,19 @@
-import { Arg, Ctx, Int, Mutation, Query, Resolver } from "type-graphql";
+import { Arg, Ctx, FieldResolver, Int, Mutation, Query, Resolver, Root } from "type-graphql";
 
 import type { RequestContext } from "~server/common/context";
 import { Refusal } from "~server/common/outcomes";
 import { Requires } from "~server/common/requires";
 import { acting } from "~server/event/acting";
+import { noticeType } from "~server/recordLife/life.query";
 import { recordsReadBlind } from "~server/review/blindness";
+
+import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 
 import * as releases from "./release.service";
 import {
   Release,
   ReleaseDifference,
+  ReleaseNotice,
   ReleaseReadiness,
   ReleaseResult,
   releaseType,
@@ -45,6 +49,22 @@ export class ReleaseResolver {
     return Object.assign(
       new ReleaseDifference(),
       await releases.releaseDifference(manager, from, to, blind),
+    );
+  }
+
+  @FieldResolver(() => [ReleaseNotice], {
+    description:
+      "Errata, supersessions and withdrawals recorded since it was cut. Its bytes never change by them.",
+  })
+  async notices(@Ctx() ctx: RequestContext, @Root() root: Release): Promise<ReleaseNotice[]> {
+    const found = await releases.noticesSince(ctx.database.manager, root.number, root.cutAt);
+    return Promise.all(
+      found.map(async (notice) =>
+        Object.assign(new ReleaseNotice(), {
+          number: formatRecordNumber(notice.constraintId),
+          notice: await noticeType(ctx, notice),
+        }),
+      ),
     );
   }
 

@@ -1,17 +1,16 @@
-import { In, type EntityManager } from "typeorm";
+import type { EntityManager } from "typeorm";
 
-import { User } from "~server/account/user.entity";
 import { refuse, type Refusal } from "~server/common/outcomes";
 import { approvedFor, approvedRow, type ApprovedRow } from "~server/constraint/constraint.query";
 import { isDemonstration } from "~server/database/settings";
 import { change, undo, type Acting } from "~server/event/acting";
 import { EventHead } from "~server/event/event.entity";
 import { lastEvent } from "~server/event/eventLog";
+import { RecordNotice } from "~server/recordLife/recordNotice.entity";
+import { copyRecords } from "~server/table/copyRecords";
 import { presentSurroundings } from "~server/table/surroundings";
-import { snapshotConstraint } from "~server/table/snapshot";
 import { formatQuotable, formatRecordNumber } from "~shared/identifiers/recordNumber";
 import { diffFields } from "~shared/review/reading";
-import { FORMER_MEMBER } from "~shared/review/formerMember";
 import { fieldFindings } from "~shared/statement/rules";
 import { fieldText } from "~shared/statement/words";
 
@@ -142,16 +141,11 @@ async function* copied(
   count: () => void,
 ): AsyncGenerator<string> {
   for await (const page of pages(approvedByNumber(manager))) {
-    const names = await namesOf(manager, page);
-    const rows = page.map((row) => {
-      const content = canonicalText(
-        snapshotConstraint(row, {
-          submittedBy: names.get(row.constraint.ownerId) ?? FORMER_MEMBER,
-          readBy: names.get(row.revision.decidedById ?? "") ?? FORMER_MEMBER,
-        }),
-      );
-      return { constraintId: row.constraint.id, ordinal: row.revision.ordinal, content };
-    });
+    const rows = (await copyRecords(manager, page)).map((record) => ({
+      constraintId: record.id,
+      ordinal: record.ordinal,
+      content: canonicalText(record),
+    }));
     for (const row of rows) {
       await manager.insert(ReleaseRow, {
         releaseNumber: number,
@@ -176,27 +170,32 @@ async function* pages<T>(items: AsyncIterable<T>): AsyncGenerator<T[]> {
   if (page.length > 0) yield page;
 }
 
-async function namesOf(
-  manager: EntityManager,
-  rows: readonly ApprovedRow[],
-): Promise<Map<string, string>> {
-  const ids = rows.flatMap(({ constraint, revision }) => [
-    constraint.ownerId,
-    ...(revision.decidedById === null ? [] : [revision.decidedById]),
-  ]);
-  const people = await manager.find(User, {
-    select: { id: true, nameOnPapers: true },
-    where: { id: In([...new Set(ids)]) },
-  });
-  return new Map(people.map((person) => [person.id, person.nameOnPapers]));
-}
-
 export async function findReleases(manager: EntityManager): Promise<Release[]> {
   return manager.find(Release, { relations: { cutBy: true }, order: { number: "DESC" } });
 }
 
 export async function findRelease(manager: EntityManager, number: number): Promise<Release | null> {
   return manager.findOne(Release, { where: { number }, relations: { cutBy: true } });
+}
+
+/** Notices that hold about a release's records, recorded since it was cut; oldest first. */
+export async function noticesSince(
+  manager: EntityManager,
+  number: number,
+  cutAt: Date,
+): Promise<RecordNotice[]> {
+  return manager
+    .createQueryBuilder(RecordNotice, "notice")
+    .innerJoin(
+      ReleaseRow,
+      "row",
+      "row.constraintId = notice.constraintId AND row.releaseNumber = :number",
+      { number },
+    )
+    .where("notice.endedAt IS NULL AND notice.at > :cutAt", { cutAt })
+    .orderBy("notice.at")
+    .addOrderBy("notice.id")
+    .getMany();
 }
 
 /** How one release differs from another, by record. */

@@ -4,6 +4,7 @@ import { Refusal } from "~server/common/outcomes";
 import { FieldChange } from "~server/constraint/constraint.type";
 import { REGISTRY } from "~server/download/header";
 import { EventMark, eventMark } from "~server/event/event.type";
+import { RecordNoticeType } from "~server/recordLife/life.type";
 import {
   releaseBibtex,
   releaseCff,
@@ -34,6 +35,12 @@ export class Release {
   @Field(() => String) licence!: string;
   @Field(() => EventMark) lastEvent!: EventMark;
   @Field(() => ReleaseCitation) citation!: ReleaseCitation;
+}
+
+@ObjectType({ description: "What was recorded about a record of a release since it was cut." })
+export class ReleaseNotice {
+  @Field(() => String, { description: "FL-0042" }) number!: string;
+  @Field(() => RecordNoticeType) notice!: RecordNoticeType;
 }
 
 @ObjectType()

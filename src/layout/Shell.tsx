@@ -25,6 +25,8 @@ const PLACES: readonly Place[] = [
 const ACCOUNT: Place = { name: "Account", href: "/account", icon: "account-circle-outline" };
 
 function isAt(path: string, place: Place): boolean {
+  // A release is one of the tables in all but its address.
+  if (place.href === "/tables" && path.startsWith("/releases")) return true;
   return place.href === "/" ? path === "/" : path.startsWith(place.href);
 }
 

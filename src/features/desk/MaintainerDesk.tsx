@@ -17,6 +17,10 @@ export function MaintainerDesk() {
             <Dense style={{ fontWeight: "600" }}>People</Dense>
             <Dense muted>Find a person, grant and revoke roles</Dense>
           </ListRow>
+          <ListRow href="/desk/releases" first={false}>
+            <Dense style={{ fontWeight: "600" }}>Releases</Dense>
+            <Dense muted>Cut a numbered snapshot of all approved records</Dense>
+          </ListRow>
           <ListRow href="/desk/log" first={false}>
             <Dense style={{ fontWeight: "600" }}>Event log</Dense>
             <Dense muted>Who did what, and when; each event chained to the one before</Dense>

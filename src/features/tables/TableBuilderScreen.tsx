@@ -41,12 +41,14 @@ export function TableBuilderScreen() {
     step?: string;
     from?: string;
     as?: string;
+    release?: string;
   }>();
   const { with: wanted, from } = params;
   const table = useTableDraft();
   const { draft } = table;
   const wide = useLayoutClass() === "wide";
   const [openRow, setOpenRow] = useState<string | null>(null);
+  useAskedRelease(params.release ?? null, table.change);
   useAdapted(from ?? null, params.as === "version", table.replace);
   const recipe = recipeOf(draft, filterInput(address.filter));
   const { proposal, refusal, error, refetch } = useProposal(recipe);
@@ -260,6 +262,18 @@ function Source({
       }
     />
   );
+}
+
+/** Takes a release that the address names, once. */
+function useAskedRelease(asked: string | null, change: (part: { release: number }) => void): void {
+  const router = useRouter();
+  useEffect(() => {
+    if (asked === null || !/^\d{1,6}$/.test(asked)) return;
+    change({ release: Number(asked) });
+    router.setParams({ release: undefined });
+    // Once: the parameter leaves the address.
+    // eslint-disable-next-line react-hooks/exhaustive-deps
+  }, [asked]);
 }
 
 /** Takes over the recipe of another table, once, and puts its filter in the address. */

@@ -12,7 +12,10 @@ import { Caption, Dense, Label, Mono, Section } from "@/components/Text";
 import { dateTime } from "@/components/when";
 import { Screen } from "@/layout/Screen";
 import { space } from "@/theme/tokens";
+import { ReleaseList } from "@/components/releases/ReleaseList";
 import { TableListDocument, type TableListQuery } from "~graphql/generated/graphql";
+
+import { VISIBILITY_WORDS } from "./SaveTable";
 
 type Listed = TableListQuery["fittingTables"][number];
 
@@ -28,9 +31,13 @@ export function TablesScreen() {
   return (
     <Screen
       title="Tables"
-      subtitle="Fitting tables: chosen rows, each choice with its reason, under a permanent address"
+      subtitle="Releases of the registry, and fitting tables: chosen rows, each choice with its reason"
       actions={<Button label="New table" kind="filled" icon="plus" href="/tables/new" />}
     >
+      <View style={styles.group}>
+        <Section>Releases</Section>
+        <ReleaseList />
+      </View>
       {error && !tables ? (
         <Failed error={error} onRetry={() => void refetch()} />
       ) : !tables ? (
@@ -72,8 +79,14 @@ function Group({ title, tables }: { title: string; tables: readonly Listed[] }) 
                   <Label>{table.name}</Label>
                   <Dense muted>{table.filter}</Dense>
                   <Caption muted>
-                    {table.rowsIn} rows in, {table.rowsOut} out · {table.owner},{" "}
-                    {dateTime(table.createdAt)} · digest <Mono>{table.digest.slice(0, 12)}</Mono>
+                    {table.rowsIn} rows in, {table.rowsOut} out
+                    {typeof table.release === "number" ? ` · over release ${table.release}` : ""}
+                    {table.version > 1 ? ` · version ${table.version}` : ""}
+                    {table.visibility === "public"
+                      ? ""
+                      : ` · ${VISIBILITY_WORDS[table.visibility].toLowerCase()}`}{" "}
+                    · {table.owner}, {dateTime(table.createdAt)} · digest{" "}
+                    <Mono>{table.digest.slice(0, 12)}</Mono>
                   </Caption>
                 </View>
               </Press>

@@ -1,0 +1,1 @@
+export { CutReleaseScreen as default } from "@/features/releases/CutReleaseScreen";

@@ -1,0 +1,1 @@
+export { ReleaseScreen as default } from "@/features/releases/ReleaseScreen";
