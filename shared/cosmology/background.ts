@@ -179,7 +179,12 @@ export class Background {
   }
 }
 
-/** A background of these parameters; the default is Planck 2018. Equal parameters share one object. */
+/**
+ * A background of these parameters. Equal parameters share one object, so that its tables are built once.
+ *
+ * @param parameters - Those that differ from the default, Planck 2018 VI, table 2; dimensionless.
+ * @throws {DomainError} If h or a density is not positive or Y not in [0, 1).
+ */
 export function background(parameters: Partial<BackgroundParameters> = {}): Background {
   const full = { ...DEFAULT_BACKGROUND, ...parameters };
   const key = `${full.h} ${full.omegaBh2} ${full.omegaCh2} ${full.heliumFraction}`;
@@ -194,7 +199,12 @@ export function background(parameters: Partial<BackgroundParameters> = {}): Back
 }
 const known = new Map<string, Background>();
 
-/** Fraction of helium ionized twice, ½[1 + tanh((3.5 − z)/0.5)]: common practice, not a measurement. */
+/**
+ * Fraction of helium ionized twice, ½[1 + tanh((3.5 − z)/0.5)]: common practice, not a measurement.
+ *
+ * @param z - Redshift, any number.
+ * @returns In [0, 1].
+ */
 export function secondHelium(z: number): number {
   return logistic((2 * (SECOND_HELIUM_REDSHIFT - z)) / SECOND_HELIUM_WIDTH);
 }

@@ -6,6 +6,7 @@ import { requirePositive, requireWithin } from "~shared/numerics/require";
  * Redshift at which the 21-cm line is observed at a frequency.
  *
  * @param frequencyMHz - Observed frequency, MHz, above 0 and at most 1420.405751768.
+ * @returns Redshift, zero or positive.
  * @throws {DomainError} If the frequency lies outside that range.
  */
 export function redshiftOf21cm(frequencyMHz: number): number {
@@ -17,8 +18,10 @@ export function redshiftOf21cm(frequencyMHz: number): number {
 }
 
 /**
- * Observed frequency of the 21-cm line from a redshift, MHz.
+ * Observed frequency of the 21-cm line from a redshift.
  *
+ * @param z - Redshift, zero or positive.
+ * @returns MHz, at most 1420.405751768.
  * @throws {DomainError} If z is negative.
  */
 export function frequencyOf21cmMHz(z: number): number {

@@ -2,6 +2,7 @@ import { type Background, HIGHEST_REDSHIFT, secondHelium } from "~shared/cosmolo
 import { DomainError } from "~shared/errors/DomainError";
 import { requireWithin } from "~shared/numerics/require";
 
+/** The families of histories there are. */
 export type HistoryKind = "tanh" | "powerLaw" | "tabulated";
 
 /** Something a reader should know about a history, for display. */
@@ -64,7 +65,14 @@ export interface HistoryCore {
   integral(zLow: number, zHigh: number): number;
 }
 
-/** The full interface over a family's core. */
+/**
+ * The full interface over a family's core.
+ *
+ * @param core - What the family knows.
+ * @returns A history whose methods throw a DomainError for redshifts, fractions and bins out of range, as
+ *   History says of each.
+ * @throws Nothing itself; a family checks its own parameters.
+ */
 export function historyOf(core: HistoryCore): History {
   const { covered } = core;
   const redshiftAtFraction = (f: number): number | null => {

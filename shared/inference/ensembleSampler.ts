@@ -9,6 +9,7 @@ import { RandomStream } from "~shared/numerics/random";
 // Taken once: in a sandboxed realm every look-up of a global costs more than the arithmetic.
 const { ceil, exp, floor, log, min, sqrt } = Math;
 
+/** How to sample; a seed is all that must be given. */
 export interface SamplerOptions {
   /** Whole number; equal seeds give equal chains. */
   readonly seed: number;
@@ -33,6 +34,7 @@ export interface EnsembleChain {
   readonly acceptance: number;
 }
 
+/** A posterior from independent ensembles, with how far to trust it. */
 export interface SampledPosterior {
   readonly best: MaximumLikelihood;
   readonly seed: number;
@@ -131,6 +133,9 @@ export function* sampleEnsemble(
 /**
  * Posterior of any number of parameters from independent seeded ensembles, with diagnostics.
  *
+ * @param problem - A compiled table under one family.
+ * @param options - Equal ones give equal chains, number for number, on one version of Node.
+ * @returns Draws, summaries and diagnostics; `sound` says whether they carry a verdict.
  * @throws {DomainError} For fewer than four ensembles or options out of range.
  */
 export function* samplePosterior(

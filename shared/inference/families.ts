@@ -63,6 +63,7 @@ function boxWords(parameters: readonly FitParameter[]): string {
 /**
  * The tanh family over z_re and Δz, or over z_re alone with Δz fixed.
  *
+ * @param options - Ends of the flat priors in redshift; a number for Δz fixes it. PHYSICS.md's unless given.
  * @throws {DomainError} If a prior's ends are out of order.
  */
 export function tanhFamily({
@@ -92,6 +93,7 @@ export function tanhFamily({
  * The power-law family over z_end and α with z_early fixed, or free over [z_end + 1, highest], flat
  * there for each z_end.
  *
+ * @param options - Ends of the flat priors; a number for z_early fixes it.
  * @throws {DomainError} If a prior's ends are out of order, or leave no room for z_early.
  */
 export function powerLawFamily({

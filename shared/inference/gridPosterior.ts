@@ -36,6 +36,7 @@ export interface GridPosterior {
   readonly logLikelihood: Float64Array;
 }
 
+/** How far a grid is refined, and what of it is kept. */
 export interface GridOptions {
   /** Accepted change of means and interval ends in posterior widths, and of ln Z; default 5e-4. */
   readonly tolerance?: number;

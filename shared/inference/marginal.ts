@@ -18,7 +18,13 @@ export interface Summary {
 /** Levels of the two intervals. */
 export const INTERVAL_LEVELS = [0.6827, 0.9545] as const;
 
-/** The ends of an equal-tailed interval, given quantiles. */
+/**
+ * The ends of an equal-tailed interval.
+ *
+ * @param quantile - Of the distribution, for 0 < p < 1.
+ * @param level - Probability inside, strictly between 0 and 1.
+ * @returns Its ends, unit of the quantiles.
+ */
 export function equalTailed(
   quantile: (p: number) => number,
   level: number,
@@ -95,13 +101,24 @@ function cellIntegral(
   return h * t * (y0 + t * (s0 / 2 + t * (c2 / 3 + t * (c3 / 4))));
 }
 
-/** Composite Simpson weights for an odd number of even places. */
+/**
+ * Composite Simpson weights for an odd number of even places.
+ *
+ * @param n - How many places, odd, 3 or more.
+ * @param h - Distance between them.
+ * @returns [n]; their sum is (n − 1) h.
+ */
 export function simpsonWeights(n: number, h: number): Float64Array {
   return Float64Array.from({ length: n }, (_, i) =>
     i === 0 || i === n - 1 ? h / 3 : i % 2 === 1 ? (4 * h) / 3 : (2 * h) / 3,
   );
 }
 
+/**
+ * Mean, width, median and both intervals of a distribution.
+ *
+ * @param quantile - For 0 < p < 1.
+ */
 export function summaryOf(mean: number, sd: number, quantile: (p: number) => number): Summary {
   return {
     mean,

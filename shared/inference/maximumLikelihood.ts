@@ -26,6 +26,8 @@ const CANDIDATES = 256;
  *
  * Our own because the small libraries at hand have no bounds and no word about edges or degeneracy.
  *
+ * @param problem - A compiled table under one family.
+ * @returns The best point, whether it lies at an edge of the prior, and whether it is the only one.
  * @throws {DomainError} If no place was found where the likelihood is above zero.
  *
  * Source: Nelder & Mead (1965), Computer Journal 7, 308; scan after Halton (1960).

@@ -10,6 +10,9 @@ const { exp, expm1, log1p, max } = Math;
 /**
  * The power-law family at a fixed z_early without objects: points and bins in closed form, optical
  * depths from a surface over the prior's box.
+ *
+ * @param parameters - z_end and α with the ends of their priors.
+ * @param zEarly - Above the highest z_end.
  */
 export function powerLawPredictor(
   requests: ModelRequests,

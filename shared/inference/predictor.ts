@@ -29,7 +29,11 @@ export interface Predictor {
  */
 export type LinePredictor = (first: number, out: Float64Array) => void;
 
-/** Any family's predictor, through the one interface of histories. A new family starts with this. */
+/**
+ * Any family's predictor, through the one interface of histories. A new family starts with this.
+ *
+ * @param history - The history at a point of the family's box.
+ */
 export function historyPredictor(
   requests: ModelRequests,
   background: Background,
@@ -94,6 +98,10 @@ const DEPTH_TOLERANCE = 1e-8;
 /**
  * Optical depths of a two-parameter family by interpolation over the prior's box, each checked against
  * the integral between its nodes; by the integral itself where a surface does not hold the digits.
+ *
+ * @param parameters - The two, with the ends of their priors.
+ * @param history - The history at (first, second).
+ * @returns One for each of the table's optical depths, in their order, good to 1e-8 of its largest value.
  */
 export function depthSurfaces(
   requests: ModelRequests,

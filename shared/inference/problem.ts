@@ -5,6 +5,7 @@ import type { CompiledTable, ModelRequests } from "~shared/likelihood/compile";
 
 /** Derived quantities of every fit, in this order. */
 export const DERIVED_NAMES = ["tau", "tauEarly", "midpoint", "duration"] as const;
+/** One of DERIVED_NAMES. */
 export type DerivedName = (typeof DERIVED_NAMES)[number];
 
 /** τ(0, 50), τ(15, 30), z(x = 0.5), z(x = 0.75) − z(x = 0.25), laid out as DERIVED_NAMES. */
@@ -29,6 +30,7 @@ export class FitProblem {
   private readonly predict: Predictor;
   private derive: Predictor | null = null;
 
+  /** Builds what the family needs to answer the table's requests quickly; milliseconds. */
   constructor(
     readonly table: CompiledTable,
     readonly family: FitFamily,

@@ -58,8 +58,10 @@ function farLogistic(t: number): number {
 }
 
 /**
- * The tanh family without objects: one exponential a point, optical depths from a surface over the
+ * The tanh family without objects: x from a table, optical depths from a surface over the
  * prior's box. Agrees with tanhHistory to 1e-10 in x and 1e-8 of the largest optical depth.
+ *
+ * @param parameters - z_re and Δz with the ends of their priors.
  */
 export function tanhPredictor(
   requests: ModelRequests,

@@ -14,11 +14,13 @@ export type Task<T> = Generator<Progress, T, void>;
 /** Thrown by a runner when it is told to stop. */
 export class CancelledError extends Error {
   override readonly name = "CancelledError";
+  /** Says so in a sentence; nothing else is known. */
   constructor() {
     super("The computation was stopped.");
   }
 }
 
+/** What a runner does between slices. */
 export interface TaskControl {
   /** Called between slices. */
   readonly onProgress?: (progress: Progress) => void;
@@ -29,6 +31,7 @@ export interface TaskControl {
 /**
  * Runs a task to its end in one go.
  *
+ * @returns What the task computes.
  * @throws {CancelledError} When told to stop.
  */
 export function runTask<T>(task: Task<T>, control: TaskControl = {}): T {

@@ -45,6 +45,7 @@ export function correlatedSet(rho: readonly (readonly number[])[]): CorrelatedSe
  * @param rho - The full matrix, [n, n].
  * @param keep - Indices of the members kept, in order, [m].
  * @returns The correlation matrix of those members, [m, m].
+ * @throws {DomainError} If an index lies outside the matrix.
  */
 export function marginalCorrelation(
   rho: readonly (readonly number[])[],
@@ -59,7 +60,13 @@ export function marginalCorrelation(
   );
 }
 
-/** tᵀ A t over packed numbers; A starts at `at`, row-major [n, n]. Never NaN for infinite t. */
+/**
+ * tᵀ A t over packed numbers, without allocation.
+ *
+ * @param a - Symmetric matrix, row-major [n, n], its first number at `at`.
+ * @param t - Residuals in sigma, [n].
+ * @returns +Infinity where a residual is infinite; never NaN.
+ */
 export function quadraticForm(
   a: ArrayLike<number>,
   at: number,

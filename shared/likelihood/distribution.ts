@@ -21,6 +21,8 @@ export interface Distribution {
 /**
  * The form as a density over a range, by quadrature between its kinks.
  *
+ * @param form - The likelihood; its kinks split the integral.
+ * @param range - Lowest and highest value of the variable; an end may be infinite.
  * @returns Null when L does not fall towards an infinite end, or is zero all over the range.
  */
 export function distributionOf(form: Form, [low, high]: Range): Distribution | null {

@@ -26,6 +26,7 @@ export const FORM_NAMES = [
   "bandWideTails",
   "tabulated",
 ] as const;
+/** A form by its name in the code; FORM_WORDS has it in words. */
 export type FormName = (typeof FORM_NAMES)[number];
 
 /** Each form's name in words. */
@@ -70,6 +71,7 @@ export interface Form {
   readonly quantile: ((p: number) => number) | null;
 }
 
+/** Which side a limit bounds: an upper limit allows what lies below it. */
 export type LimitSide = "upper" | "lower";
 
 /** −2 ln L = 80 is e⁻⁴⁰: nothing is lost by ending an integral there. */
@@ -124,6 +126,8 @@ export function twoPiece(m: number, sigmaMinus: number, sigmaPlus: number): Form
 /**
  * Gaussian: ((q−m)/σ)².
  *
+ * @param m - Quoted value, any unit.
+ * @param sigma - One-sigma width, positive, unit of m.
  * @throws {DomainError} If m is not finite or sigma not positive.
  */
 export function gaussian(m: number, sigma: number): Form {
@@ -198,13 +202,25 @@ export function quantileMatched(
   });
 }
 
-/** Density of a quantile-matched form, normalized on the real line; 1 / unit of x. */
+/**
+ * Density of a quantile-matched form, normalized on the real line.
+ *
+ * @param matched - A form made by quantileMatched.
+ * @param x - Where, unit of the median.
+ * @returns 1 / unit of x, not negative.
+ */
 export function quantileMatchedDensity(matched: Form, x: number): number {
   const slope = quantileMatchedSlope(matched.packed, 0, x);
   return slope > 0 ? slope * normalPdf(quantileMatchedScore(matched.packed, 0, x)) : 0;
 }
 
-/** Cumulative distribution of a quantile-matched form on the real line. */
+/**
+ * Cumulative distribution of a quantile-matched form on the real line.
+ *
+ * @param matched - A form made by quantileMatched.
+ * @param x - Where, unit of the median.
+ * @returns In [0, 1].
+ */
 export function quantileMatchedCdf(matched: Form, x: number): number {
   return normalCdf(quantileMatchedScore(matched.packed, 0, x));
 }
@@ -480,6 +496,8 @@ export function smoothedStep(side: LimitSide, place: number, s: number): Form {
 /**
  * Hard step: 0 on the allowed side, the limit included, +∞ beyond.
  *
+ * @param side - Upper or lower limit.
+ * @param limit - The limit, any unit.
  * @throws {DomainError} If the limit is not finite.
  */
 export function hardStep(side: LimitSide, limit: number): Form {
@@ -498,7 +516,15 @@ export function hardStep(side: LimitSide, limit: number): Form {
   });
 }
 
-/** Tail width of a band such that a flat prior on the real line puts exactly C inside: W(1−C)/(C√(2π)). */
+/**
+ * Tail width of a band such that a flat prior on the real line puts exactly C inside: W(1−C)/(C√(2π)).
+ *
+ * @param low - Lower end.
+ * @param high - Upper end, above low.
+ * @param level - C, strictly between 0 and 1.
+ * @returns One-sigma width of the tails, unit of the ends.
+ * @throws {DomainError} If the ends are out of order or the level is outside its range.
+ */
 export function bandTailSigma(low: number, high: number, level: number): number {
   requireProbability("level", level);
   requirePositive("width", high - low);
@@ -529,6 +555,10 @@ export function band(
 /**
  * Band with wide tails: 0 inside, (distance/w)² outside with w = half-width/k.
  *
+ * @param low - Lower end.
+ * @param high - Upper end, above low.
+ * @param k - Sigmas that the quoted level spans, positive.
+ * @param range - Range of the variable; a band that touches its end is warned of.
  * @throws {DomainError} As `band`, with k positive in place of the level.
  */
 export function bandWideTails(

@@ -27,6 +27,7 @@ export const KERNEL = {
   /** n, 1/step of a uniform grid or 0, n places, n values of ln p over its peak */
   tabulated: 7,
 } as const;
+/** One of KERNEL. */
 export type Kernel = (typeof KERNEL)[keyof typeof KERNEL];
 
 /**
@@ -126,7 +127,12 @@ function smoothedStepOf(t: number): number {
 /** −2 ln ½ erfc(t) to 1e-10 from a table where t is not far out; made when a fit first needs it. */
 let stepTable: PolynomialTable | null = null;
 
-/** The smoothed step inside fits; t as in the kernel. */
+/**
+ * The smoothed step inside fits, good to 1e-10.
+ *
+ * @param t - Distance beyond the place over √2 s; any number.
+ * @returns −2 ln ½ erfc(t).
+ */
 export function tabulatedStep(t: number): number {
   stepTable ??= new PolynomialTable(smoothedStepOf, -6, 8, 128);
   return t >= stepTable.low && t <= stepTable.high ? stepTable.at(t) : smoothedStepOf(t);
@@ -141,7 +147,13 @@ export function tabulatedStep(t: number): number {
 const LEFT = 8;
 const RIGHT = 14;
 
-/** Normal score u(x) of a quantile-matched row. */
+/**
+ * Normal score u(x) of a quantile-matched row.
+ *
+ * @param p - Packed numbers; those of the row start at `at`.
+ * @param x - Model value, any number.
+ * @returns In standard deviations.
+ */
 export function quantileMatchedScore(p: Float64Array, at: number, x: number): number {
   const low = p[at]!;
   const median = p[at + 1]!;
@@ -155,7 +167,11 @@ export function quantileMatchedScore(p: Float64Array, at: number, x: number): nu
   );
 }
 
-/** du/dx of a quantile-matched row, 1 / unit of x. */
+/**
+ * du/dx of a quantile-matched row; arguments as for the score.
+ *
+ * @returns 1 / unit of x; not positive where very lopsided widths turn the score around.
+ */
 export function quantileMatchedSlope(p: Float64Array, at: number, x: number): number {
   const low = p[at]!;
   const median = p[at + 1]!;
@@ -172,7 +188,11 @@ export function quantileMatchedSlope(p: Float64Array, at: number, x: number): nu
   );
 }
 
-/** d²u/dx² of a quantile-matched row. */
+/**
+ * d²u/dx² of a quantile-matched row; arguments as for the score.
+ *
+ * @returns 1 / unit of x squared; 0 beyond the nodes.
+ */
 export function quantileMatchedCurvature(p: Float64Array, at: number, x: number): number {
   const low = p[at]!;
   const median = p[at + 1]!;

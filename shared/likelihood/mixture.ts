@@ -82,7 +82,13 @@ export function mixtureMinus2LnL(
   return -2 * (top + log(sum) - logPeak);
 }
 
-/** Standard deviation of an equal mixture of Gaussians on the real line. */
+/**
+ * Standard deviation of an equal mixture of Gaussians on the real line.
+ *
+ * @param means - Of the members, any unit, [n], n ≥ 1.
+ * @param sigmas - Of the members, same unit, [n].
+ * @returns In that unit.
+ */
 export function equalMixtureSd(means: readonly number[], sigmas: readonly number[]): number {
   const n = means.length;
   const mean = means.reduce((sum, m) => sum + m, 0) / n;

@@ -21,6 +21,7 @@ export type ModelRequest =
       readonly unit: "redshift" | "myr";
     };
 
+/** Why a history has no value for a request. */
 export type NoModelCode = "outsideTable" | "noSuchRedshift";
 
 /** A model value, or why a history has none. */
@@ -31,6 +32,10 @@ export type ModelAnswer =
 /**
  * What a history says about a request. A tabulated history is not extrapolated for a row at a
  * redshift; optical depths take its end values outside.
+ *
+ * @param background - Cosmology for optical depths and times.
+ * @returns The model value: a fraction, an optical depth, a redshift or a duration in Δz or Myr; or null
+ *   with the reason.
  */
 export function modelValue(
   request: ModelRequest,
@@ -78,7 +83,7 @@ function orMissing(model: number | null, what: string): ModelAnswer {
   };
 }
 
-/** Whether two requests ask for the same number in the same way. */
+/** Whether two requests ask for the same number in the same way; true also for two objects. */
 export function sameRequest(a: ModelRequest, b: ModelRequest): boolean {
   return JSON.stringify(a) === JSON.stringify(b);
 }

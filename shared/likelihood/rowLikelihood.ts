@@ -48,6 +48,7 @@ export interface RowOptions {
   readonly curve?: { readonly x: readonly number[]; readonly p: readonly number[] };
 }
 
+/** Why a row is left out, as a stable word. */
 export type LeftOutCode =
   | "incomplete"
   | "qualitative"

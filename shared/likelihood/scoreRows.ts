@@ -21,6 +21,7 @@ export interface RowToScore {
   readonly alternativesPreferred?: boolean | null;
 }
 
+/** One row against a history. */
 export interface RowScore {
   readonly id: string;
   /** The model's value of the row's quantity; null where it has none. */
@@ -34,6 +35,7 @@ export interface RowScore {
   readonly code: LeftOutCode | null;
 }
 
+/** A table of rows against a history. */
 export interface Score {
   readonly rows: readonly RowScore[];
   /** −2 ln L of the equal mixtures that stand for alternatives without a preferred one. */

@@ -58,6 +58,13 @@ export function gaussLegendre(n: number): QuadratureRule {
 /**
  * ∫ f over [a, b] by `panels` equal Gauss–Legendre panels of `order` nodes each.
  * For integrands known to be smooth on that scale; no error estimate.
+ *
+ * @param a - Lower end, finite.
+ * @param b - Upper end, finite; below a the integral changes its sign.
+ * @param panels - Whole number of panels, 1 or more.
+ * @param order - Nodes a panel, 1 to 200.
+ * @returns Unit of f times unit of t.
+ * @throws {DomainError} If there is no rule of that order.
  */
 export function integratePanels(
   f: (t: number) => number,

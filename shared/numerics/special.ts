@@ -8,19 +8,32 @@ import { requireProbability } from "~shared/numerics/require";
 // Taken once: in a sandboxed realm every look-up of a global costs more than the arithmetic.
 const { exp, log } = Math;
 
-/** Error function; any real x, result in [−1, 1]. */
+/**
+ * Error function, from stdlib.
+ *
+ * @param x - Any real number.
+ * @returns In [−1, 1].
+ */
 export function erf(x: number): number {
   return erfLibrary(x);
 }
 
-/** Complementary error function 1 − erf(x), exact in relative terms until it underflows at x ≈ 26.5. */
+/**
+ * Complementary error function 1 − erf(x), from stdlib; exact in relative terms until it underflows.
+ *
+ * @param x - Any real number.
+ * @returns In [0, 2]; 0 above x ≈ 26.5.
+ */
 export function erfc(x: number): number {
   return erfcLibrary(x);
 }
 
 /**
  * Natural log of erfc(x), with full relative precision for any x, also where erfc underflows.
- * Uses erfc(x) = erfcx(x) exp(−x²) above zero. −Infinity at +Infinity.
+ * Uses erfc(x) = erfcx(x) exp(−x²) above zero.
+ *
+ * @param x - Any number, infinite ones included.
+ * @returns At most ln 2; −Infinity at +Infinity.
  */
 export function logErfc(x: number): number {
   if (x <= 0) return log(erfcLibrary(x));
@@ -28,12 +41,22 @@ export function logErfc(x: number): number {
   return x === Infinity ? -Infinity : log(erfcScaled(x)) - x * x;
 }
 
-/** Standard normal cumulative distribution Φ(x); result in [0, 1]. */
+/**
+ * Standard normal cumulative distribution Φ(x).
+ *
+ * @param x - In standard deviations; any number.
+ * @returns In [0, 1].
+ */
 export function normalCdf(x: number): number {
   return 0.5 * erfcLibrary(-x * Math.SQRT1_2);
 }
 
-/** Standard normal density φ(x). */
+/**
+ * Standard normal density φ(x).
+ *
+ * @param x - In standard deviations; any number.
+ * @returns From 0 to 0.3989.
+ */
 export function normalPdf(x: number): number {
   return exp(-0.5 * x * x) * 0.3989422804014327;
 }
@@ -61,7 +84,12 @@ export function sigmasOfLevel(level: number): number {
   return Math.SQRT2 * erfInverse(level);
 }
 
-/** Logistic function 1/(1 + e^−t): ½(1 + tanh(t/2)) without losing digits in the tails. */
+/**
+ * Logistic function 1/(1 + e^−t): ½(1 + tanh(t/2)) without losing digits in the tails.
+ *
+ * @param t - Any number.
+ * @returns In [0, 1].
+ */
 export function logistic(t: number): number {
   if (t >= 0) return 1 / (1 + exp(-t));
   const e = exp(t);
