@@ -4,6 +4,7 @@ import type { DataSource } from "typeorm";
 import type { RequestContext } from "~server/common/context";
 import type { Config } from "~server/config/config";
 import { constraintDownloads } from "~server/download/constraint.routes";
+import { evidenceRoutes } from "~server/evidence/evidence.routes";
 import { logDownloads } from "~server/download/log.routes";
 import { releaseDownloads } from "~server/download/release.routes";
 import { tableDownloads } from "~server/download/table.routes";
@@ -32,4 +33,5 @@ export const routes: RouteInstaller[] = [
   tableDownloads,
   releaseDownloads,
   logDownloads,
+  evidenceRoutes,
 ];

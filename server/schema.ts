@@ -10,6 +10,7 @@ import { CitationResolver } from "~server/citation/citation.resolver";
 import { RoleChecker } from "~server/common/authChecker";
 import { ConstraintResolver } from "~server/constraint/constraint.resolver";
 import { CorrelatedSetResolver } from "~server/correlatedSet/correlatedSet.resolver";
+import { EvidenceResolver } from "~server/evidence/evidence.resolver";
 import { EventLogResolver } from "~server/event/log.resolver";
 import { SubmissionResolver } from "~server/constraint/submission.resolver";
 import { CreditResolver } from "~server/credit/credit.resolver";
@@ -49,6 +50,7 @@ export const resolvers = [
   SupersededByResolver,
   RowsSinceResolver,
   EventLogResolver,
+  EvidenceResolver,
 ] as const satisfies BuildSchemaOptions["resolvers"];
 
 /** Builds the schema; needs no database. With a path it also writes the SDL there, sorted. */

@@ -14,6 +14,7 @@ import {
   type DataRelation,
 } from "~shared/dependence/namedData";
 import { LINK_RELATIONS, type LinkRelation } from "~shared/dependence/relation";
+import { EVIDENCE_KINDS, type EvidenceKind } from "~shared/evidence/evidence";
 import { METHOD_FAMILIES, type MethodFamily } from "~shared/methods/vocabulary";
 import { REPORT_OUTCOMES, REPORT_STATES } from "~shared/review/errorReport";
 import { NOTICE_KINDS, type NoticeKind } from "~shared/review/notice";
@@ -70,3 +71,4 @@ export const DataKindEnum = enumOf<DataKind>("DataKind", DATA_KINDS);
 export const DataRelationEnum = enumOf<DataRelation>("DataRelation", DATA_RELATIONS);
 export const LinkRelationEnum = enumOf<LinkRelation>("LinkRelation", LINK_RELATIONS);
 export const NoticeKindEnum = enumOf<NoticeKind>("NoticeKind", NOTICE_KINDS);
+export const EvidenceKindEnum = enumOf<EvidenceKind>("EvidenceKind", EVIDENCE_KINDS);

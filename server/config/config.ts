@@ -19,6 +19,8 @@ export interface Limits {
   graphqlPerMinute: number;
   /** Other state-changing requests (uploads) per caller and minute. */
   uploadsPerMinute: number;
+  /** Files of evidence per person and hour. */
+  evidencePerHour: number;
   /** Requests for downloads per caller and minute. */
   downloadsPerMinute: number;
 }
@@ -70,6 +72,7 @@ export const DEFAULT_LIMITS: Limits = {
   lookUpsPerPerson: 100,
   graphqlPerMinute: 600,
   uploadsPerMinute: 60,
+  evidencePerHour: 60,
   downloadsPerMinute: 240,
 };
 

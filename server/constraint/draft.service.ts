@@ -6,6 +6,12 @@ import { Citation } from "~server/citation/citation.entity";
 import { done, refuse, type Done, type Refusal } from "~server/common/outcomes";
 import { change, type Acting } from "~server/event/acting";
 import { appendEvent, digestOf } from "~server/event/eventLog";
+import {
+  carryEvidenceOver,
+  dropEvidence,
+  evidenceOf,
+  hasSameEvidence,
+} from "~server/evidence/ofRevision";
 import { FieldCommentRecord } from "~server/review/comment.entity";
 import { tellEditors } from "~server/review/mails";
 import { formatQuotable } from "~shared/identifiers/recordNumber";
@@ -326,10 +332,16 @@ export async function submitDraft(
     if (!won) return refuse("stale", STALE);
     await writeDataNames(manager, draft.id, draft.fields);
     await writeLinks(manager, draft.id, draft.fields);
+    const evidence = await evidenceOf(manager, draft.id);
     await here.event({
       kind: "revision.submitted",
       subject: formatQuotable(draft.constraintId, draft.ordinal),
-      detail: { citation: citation.key, licence: who.licence },
+      detail: {
+        citation: citation.key,
+        licence: who.licence,
+        // So that the log vouches for the files too.
+        ...(evidence.length > 0 ? { evidence: evidence.map(({ digest }) => digest) } : {}),
+      },
     });
     const submitted = await reload(manager, draft.id);
     await tellEditors(here, who, submitted);
@@ -344,7 +356,8 @@ async function unansweredOrSame(manager: EntityManager, draft: Revision): Promis
   if (followed.state === "approved") {
     const same =
       diffFields(followed.fields, draft.fields).length === 0 &&
-      followed.citationId === draft.citationId;
+      followed.citationId === draft.citationId &&
+      (await hasSameEvidence(manager, followed.id, draft.id));
     return same ? refuse("unchanged", "Nothing differs from the approved revision yet.") : null;
   }
   const comments = await manager.findBy(FieldCommentRecord, { revisionId: followed.id });
@@ -369,6 +382,7 @@ export async function discardDraft(
       updatedAt: who.now,
     });
     if (!won) return refuse("stale", STALE);
+    if (draft.state === "draft") await dropEvidence(here.manager, id);
     await here.event({
       kind: "revision.discarded",
       subject: formatQuotable(draft.constraintId, draft.ordinal),
@@ -413,6 +427,7 @@ export async function reviseSubmission(who: Acting, id: string): Promise<Revisio
       answers: followed.answers.map((answer) => ({ ...answer, accepted: false })),
       at: who.now,
     });
+    await carryEvidenceOver(manager, followed.id, draft.id);
     await here.event({
       kind: "revision.drafted",
       subject: formatQuotable(draft.constraintId, draft.ordinal),

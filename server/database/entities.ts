@@ -1,6 +1,7 @@
 import { MailToken } from "~server/account/mailToken.entity";
 import { RoleGrant } from "~server/account/roleGrant.entity";
 import { User } from "~server/account/user.entity";
+import { AuthorCheck, AuthorCheckEntry } from "~server/authorCheck/authorCheck.entity";
 import { Citation, CitationGate } from "~server/citation/citation.entity";
 import { Constraint } from "~server/constraint/constraint.entity";
 import { Revision, RevisionData } from "~server/constraint/revision.entity";
@@ -8,12 +9,15 @@ import { RelationGate, RevisionLink } from "~server/constraint/revisionLink.enti
 import { CorrelatedSet, SetReading } from "~server/correlatedSet/correlatedSet.entity";
 import { ErrorReport, ErrorReportMessage } from "~server/errorReport/errorReport.entity";
 import { EventHead, EventRecord } from "~server/event/event.entity";
+import { Evidence, EvidenceChunk, EvidenceFile } from "~server/evidence/evidence.entity";
 import { ImportMatch } from "~server/import/importMatch.entity";
 import { CaughtMailRow } from "~server/mail/caughtMail.entity";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
 import { NamedData, NamedDataAlias, NamedDataRelation } from "~server/namedData/namedData.entity";
 import { RecordNotice } from "~server/recordLife/recordNotice.entity";
 import { FieldCommentRecord } from "~server/review/comment.entity";
+import { CommentMessage } from "~server/review/commentMessage.entity";
+import { Recusal } from "~server/review/recusal.entity";
 import { Reading } from "~server/review/reading.entity";
 import { Release, ReleaseRow } from "~server/release/release.entity";
 import { RateLimitRow } from "~server/security/rateLimit.entity";
@@ -51,6 +55,10 @@ export const entities = [
   RecordNotice,
   Reading,
   FieldCommentRecord,
+  CommentMessage,
+  Recusal,
+  AuthorCheck,
+  AuthorCheckEntry,
   SavedTable,
   TableVersion,
   TableVersionRow,
@@ -60,4 +68,7 @@ export const entities = [
   ErrorReportMessage,
   CorrelatedSet,
   SetReading,
+  EvidenceFile,
+  EvidenceChunk,
+  Evidence,
 ];

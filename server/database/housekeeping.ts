@@ -3,6 +3,7 @@ import { IsNull, LessThan, Not, type EntityManager } from "typeorm";
 import { MailToken } from "~server/account/mailToken.entity";
 import { User } from "~server/account/user.entity";
 import { ErrorReport } from "~server/errorReport/errorReport.entity";
+import { sweepUnused } from "~server/evidence/store";
 import { CaughtMailRow } from "~server/mail/caughtMail.entity";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
 import { ADDRESS_KEPT_DAYS } from "~shared/review/errorReport";
@@ -32,4 +33,5 @@ export async function sweep(manager: EntityManager, now = new Date()): Promise<v
     confirmedAt: IsNull(),
     createdAt: LessThan(before(UNCONFIRMED_DAYS)),
   });
+  await sweepUnused(manager);
 }

@@ -2,6 +2,8 @@ import { Column, Entity, Index, PrimaryColumn } from "typeorm";
 
 /** One change of state. Rows are only ever added; see eventLog.ts for the digest chain. */
 @Entity("event")
+@Index("event_by_kind", ["kind"])
+@Index("event_by_actor", ["actorId"])
 export class EventRecord {
   /** Counts from 1 without a gap; given by the head row, not by the database. */
   @PrimaryColumn({ type: "int", unsigned: true })

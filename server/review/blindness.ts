@@ -55,6 +55,31 @@ export async function hasRead(
   return manager.existsBy(Reading, { editorId, revisionId });
 }
 
+/**
+ * Whether a person sees the files kept with a revision: pages of the paper, tables, figures. They
+ * are under the copyright of others, so the public never does; and they hold the numbers, those of
+ * a newer revision too, so an editor does only when nothing of the record waits for their reading.
+ *
+ * @param revision - With its record loaded (`constraint.ownerId`).
+ */
+export async function seesEvidence(
+  manager: EntityManager,
+  viewer: ViewerIdentity | null,
+  revision: Revision,
+  now: Date,
+): Promise<boolean> {
+  if (!viewer) return false;
+  if (viewer.id === revision.constraint.ownerId) return true;
+  if (!(await seesRevision(manager, viewer, revision, now))) return false;
+  // Nobody but a reader of it sees an unapproved one; `seesRevision` has asked for the reading.
+  if (revision.state !== "approved") return true;
+  const editor = hasRole(viewer, "editor");
+  if (editor && (await hasUnread(manager, viewer.id, revision.constraintId))) return false;
+  return (
+    hasRole(viewer, "maintainer") || (editor && (await hasRead(manager, viewer.id, revision.id)))
+  );
+}
+
 async function hasUnread(
   manager: EntityManager,
   editorId: string,

@@ -27,6 +27,7 @@ export type LimitName =
   | "reportInAll"
   | "lookUp"
   | "upload"
+  | "evidence"
   | "download"
   | "graphql";
 
@@ -69,6 +70,7 @@ export function createRateLimits(config: Config): RateLimits {
     reportPerCaller: shared("reportPerCaller", limits.reportPerCaller, HOUR_S),
     reportInAll: shared("reportInAll", limits.reportInAll, HOUR_S),
     lookUp: shared("lookUp", limits.lookUpsPerPerson, HOUR_S),
+    evidence: shared("evidence", limits.evidencePerHour, HOUR_S),
     upload: shared("upload", limits.uploadsPerMinute, MINUTE_S),
     download: own("download", limits.downloadsPerMinute),
     graphql: own("graphql", limits.graphqlPerMinute),

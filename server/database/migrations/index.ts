@@ -3,6 +3,8 @@ import type { MigrationInterface } from "typeorm";
 import { Schema1796111633401 } from "./1796111633401-Schema";
 import { NamedDataAndLife1796130000004 } from "./1796130000004-NamedDataAndLife";
 import { CorrelatedSets1796130000005 } from "./1796130000005-CorrelatedSets";
+import { DeskAndAuthorCheck1796130000006 } from "./1796130000006-DeskAndAuthorCheck";
+import { Evidence1796130000007 } from "./1796130000007-Evidence";
 import { PeopleAndReports1796130000008 } from "./1796130000008-PeopleAndReports";
 import { Releases1796130000010 } from "./1796130000010-Releases";
 import { TableVersions1796130000011 } from "./1796130000011-TableVersions";
@@ -12,6 +14,8 @@ export const migrations: (new () => MigrationInterface)[] = [
   Schema1796111633401,
   NamedDataAndLife1796130000004,
   CorrelatedSets1796130000005,
+  DeskAndAuthorCheck1796130000006,
+  Evidence1796130000007,
   PeopleAndReports1796130000008,
   Releases1796130000010,
   TableVersions1796130000011,
