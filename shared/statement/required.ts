@@ -65,5 +65,8 @@ export function openFields(fields: ConstraintFields): FieldName[] {
   const origin: FieldName[] = ["printedText", "methodTags", "dataKnown", "versionRead", "place"];
   const open = origin.filter((name) => isOpen(fields, name));
   if (fields.dataKnown === true && isOpen(fields, "dataUsed")) open.push("dataUsed");
+  if (fields.readOffFigure === true && isOpen(fields, "digitizingError")) {
+    open.push("digitizingError");
+  }
   return [...openStatementFields(fields), ...open];
 }

@@ -56,6 +56,7 @@ export function fieldFindings(fields: ConstraintFields, options: FindingOptions)
     ...levels(fields),
     ...texts(fields),
     ...origin(fields),
+    ...digitizingErrorSaysNothing(fields),
     ...notes(fields),
   ];
   return sortFindings(findings);
@@ -96,6 +97,8 @@ const MISSING_WORDS: Partial<Record<FieldName, string>> = {
   dataUsed: "Name at least one sightline, field or sample, or say that the data are unknown.",
   versionRead: "Say which version you read: published, preprint or erratum.",
   place: "Say where in the paper it stands: table and row, figure, section.",
+  digitizingError:
+    "Read off a figure: give the digitizing error, how far off the number can be for having been read.",
 };
 
 function missing(fields: ConstraintFields, citation: boolean): Finding[] {
@@ -105,6 +108,20 @@ function missing(fields: ConstraintFields, citation: boolean): Finding[] {
   return citation
     ? found
     : [error("missing.citation", [], "Choose the citation: a record needs a paper."), ...found];
+}
+
+/** A digitizing error is text ("0.1 dex"), but one that says how large it is. */
+function digitizingErrorSaysNothing(fields: ConstraintFields): Finding[] {
+  if (fields.readOffFigure !== true || isOpen(fields, "digitizingError")) return [];
+  return /[1-9]/.test(fields.digitizingError ?? "")
+    ? []
+    : [
+        error(
+          "digitizingErrorWithoutNumber",
+          ["digitizingError"],
+          "Give the digitizing error as a number above zero, with its unit if it has one.",
+        ),
+      ];
 }
 
 // ---- Numbers
@@ -702,15 +719,6 @@ function notes(fields: ConstraintFields): Finding[] {
         isOpen(fields, "preprintVersion")
           ? "Read in a preprint: say which version. Each fitting table decides whether it takes preprints."
           : "Read in a preprint: each fitting table decides whether it takes preprints.",
-      ),
-    );
-  }
-  if (fields.readOffFigure === true && isOpen(fields, "digitizingError")) {
-    found.push(
-      note(
-        "digitizingErrorOpen",
-        ["digitizingError"],
-        "Read off a figure: give the digitizing error if you can.",
       ),
     );
   }

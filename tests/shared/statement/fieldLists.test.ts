@@ -126,6 +126,11 @@ describe("fields a submission still needs", () => {
     expect(origin({ dataKnown: true })).toContain("dataUsed");
     expect(origin({ dataKnown: false })).not.toContain("dataUsed");
     expect(origin({ dataKnown: true, dataUsed: ["A"] })).not.toContain("dataUsed");
+    expect(origin({ readOffFigure: true })).toContain("digitizingError");
+    expect(origin({ readOffFigure: false })).not.toContain("digitizingError");
+    expect(origin({ readOffFigure: true, digitizingError: "0.01" })).not.toContain(
+      "digitizingError",
+    );
   });
 });
 

@@ -94,6 +94,11 @@ describe("a missing answer is asked for in a sentence of its own:", () => {
       "Say which version you read: published, preprint or erratum.",
     ],
     [{ place: null }, "place", "Say where in the paper it stands: table and row, figure, section."],
+    [
+      { readOffFigure: true, digitizingError: null },
+      "digitizingError",
+      "Read off a figure: give the digitizing error, how far off the number can be for having been read.",
+    ],
   ];
   it.each(MISSING)("%j: %s", (changes, name, message) => {
     expect(finding(changes, `missing.${name}`)).toEqual({
@@ -103,6 +108,26 @@ describe("a missing answer is asked for in a sentence of its own:", () => {
       message,
     });
     expect(of(changes, false).some(({ code }) => code === `missing.${name}`)).toBe(false);
+  });
+
+  it("a digitizing error that says no size is none", () => {
+    for (const digitizingError of ["none", "0", "small", "0.00 dex"]) {
+      expect(
+        finding({ readOffFigure: true, digitizingError }, "digitizingErrorWithoutNumber"),
+      ).toEqual({
+        grade: "error",
+        code: "digitizingErrorWithoutNumber",
+        fields: ["digitizingError"],
+        message: "Give the digitizing error as a number above zero, with its unit if it has one.",
+      });
+    }
+    for (const changes of [
+      { readOffFigure: true, digitizingError: "0.1 dex" },
+      { readOffFigure: false, digitizingError: "none" },
+      { readOffFigure: true, digitizingError: null },
+    ]) {
+      expect(has(changes, "digitizingErrorWithoutNumber")).toBe(false);
+    }
   });
 
   it("by the field's name where there is none", () => {
@@ -743,12 +768,6 @@ describe("notes", () => {
       "Read in a preprint: each fitting table decides whether it takes preprints.",
     ],
     [
-      { readOffFigure: true },
-      "digitizingErrorOpen",
-      ["digitizingError"],
-      "Read off a figure: give the digitizing error if you can.",
-    ],
-    [
       { conditionedOn: ["cmb", "FL-0012", "the moon"] },
       "unknownCondition.the moon",
       ["conditionedOn"],
@@ -769,10 +788,6 @@ describe("notes", () => {
     expect(has({ z: "31", quantity: "opticalDepth" }, "highRedshift")).toBe(false);
     expect(has({ weighting: "unknown" }, "weightingOpen")).toBe(false);
     expect(has({ weighting: "mass", quantity: "opticalDepth" }, "massWeighted")).toBe(false);
-    expect(has({ readOffFigure: true, digitizingError: "0.01" }, "digitizingErrorOpen")).toBe(
-      false,
-    );
-    expect(has({ readOffFigure: false }, "digitizingErrorOpen")).toBe(false);
     expect(has({ species: "electron", helium: "included" }, "heliumUnknown")).toBe(false);
     expect(
       has({ species: "electron", helium: "unknown", quantity: "opticalDepth" }, "heliumUnknown"),
