@@ -4,9 +4,15 @@ import { In, type EntityManager } from "typeorm";
 import { compilableBibtex } from "~server/citation/export";
 import { HttpProblem } from "~server/common/errors";
 import { releaseJson, releaseRows } from "~server/release/releaseContent";
-import { ReleaseRow, rowContent, type Release } from "~server/release/release.entity";
+import {
+  ReleaseRow,
+  rowContent,
+  type Release,
+  releaseSurroundings,
+} from "~server/release/release.entity";
 import { findRelease } from "~server/release/release.service";
 import { citedRelease, releaseAddress } from "~server/release/release.type";
+import { setNumbersReadBlind } from "~server/correlatedSet/tableSets";
 import { recordsReadBlind } from "~server/review/blindness";
 import type { RouteInstaller, RouteParts } from "~server/routes";
 import { byteByByte, fieldWidths } from "~shared/formats/columnFile/byteByByte";
@@ -111,11 +117,13 @@ async function send(parts: RouteParts, req: Request, res: Response): Promise<voi
   if (!writer || !release) {
     throw new HttpProblem(404, "NOT_FOUND", "There is no such file of a release.");
   }
-  const blind = await heldBlind(
-    manager,
-    release,
-    await recordsReadBlind(manager, ctx.viewer, new Date()),
-  );
+  const sets = await setNumbersReadBlind(manager, ctx.viewer, new Date());
+  const blind = [
+    ...(await heldBlind(manager, release, await recordsReadBlind(manager, ctx.viewer, new Date()))),
+    ...(sets.size === 0 ? [] : releaseSurroundings(release).sets)
+      .map(({ id }) => id)
+      .filter((id) => sets.has(id)),
+  ];
   if (blind.length > 0) {
     const sentence = `This release holds ${blind.join(", ")}, which you are reading. It opens when your second reading is stored.`;
     throw new HttpProblem(403, "READING", sentence);

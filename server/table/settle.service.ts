@@ -2,6 +2,7 @@ import type { EntityManager } from "typeorm";
 
 import { refuse, Refusal } from "~server/common/outcomes";
 import type { ViewerIdentity } from "~server/common/context";
+import { setNumbersReadBlind } from "~server/correlatedSet/tableSets";
 import { Release, releaseSurroundings } from "~server/release/release.entity";
 import type { TableChoices } from "~shared/table/decision";
 import { settleTable, type SettledTable } from "~shared/table/settleTable";
@@ -32,7 +33,9 @@ export async function follow(
       "filter",
     );
   }
-  const kept = await surroundingsFor(manager, recipe.release);
+  const surroundings = await surroundingsFor(manager, recipe.release);
+  const blind = await setNumbersReadBlind(manager, viewer, new Date());
+  const kept = { ...surroundings, sets: surroundings.sets.filter(({ id }) => !blind.has(id)) };
   return { candidates, settled: settleRecords(kept, candidates.records, recipe.choices) };
 }
 

@@ -12,6 +12,7 @@ import { isDemonstration } from "~server/database/settings";
 import { REGISTRY } from "~server/download/header";
 import { change, type Acting } from "~server/event/acting";
 import { lastEvent } from "~server/event/eventLog";
+import { setNumbersReadBlind } from "~server/correlatedSet/tableSets";
 import { recordsReadBlind } from "~server/review/blindness";
 import { canonicalFilter } from "~shared/filter/address";
 import { filterWords } from "~shared/filter/describe";
@@ -308,7 +309,11 @@ export async function loadTableFile(
   const shown = await findVersion(manager, table, version);
   if (version !== null && !shown) return { found: "nothing" };
   const blind = await recordsReadBlind(manager, ctx.viewer, new Date());
-  const numbers = blind.size === 0 ? [] : await heldNumbers(manager, table, shown, blind);
+  const sets = await setNumbersReadBlind(manager, ctx.viewer, new Date());
+  const numbers = [
+    ...(blind.size === 0 ? [] : await heldNumbers(manager, table, shown, blind)),
+    ...(shown?.sets ?? []).map(({ id }) => id).filter((id) => sets.has(id)),
+  ];
   return numbers.length > 0
     ? { found: "blind", numbers }
     : { found: "table", table, version: shown };

@@ -2,6 +2,7 @@
 import { In, IsNull, type EntityManager } from "typeorm";
 
 import type { RequestContext } from "~server/common/context";
+import { setNumbersReadBlind } from "~server/correlatedSet/tableSets";
 import { recordsReadBlind } from "~server/review/blindness";
 import { choosableForms } from "~shared/table/choosableForms";
 import { rowLikelihood } from "~shared/likelihood";
@@ -234,7 +235,11 @@ export async function shownGroups(ctx: RequestContext, root: FittingTable) {
   const version = await versionOf(ctx, root);
   const { manager } = ctx.database;
   const blind = await recordsReadBlind(manager, ctx.viewer, new Date());
-  const hidden = blind.size > 0 && version !== null && (await holdsAny(manager, version, blind));
+  const sets = await setNumbersReadBlind(manager, ctx.viewer, new Date());
+  const hidden =
+    version !== null &&
+    (version.sets.some(({ id }) => sets.has(id)) ||
+      (blind.size > 0 && (await holdsAny(manager, version, blind))));
   return {
     version,
     hidden,
