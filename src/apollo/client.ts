@@ -15,6 +15,8 @@ export function createCache(): InMemoryCache {
       ConstraintFields: { keyFields: false },
       Constraint: { keyFields: ["number"], fields: { fields: { merge: false } } },
       FittingTable: { keyFields: ["slug"], fields: { constraints: { merge: false } } },
+      NamedData: { keyFields: ["slug"] },
+      DataLink: { keyFields: false },
       EventMark: { keyFields: false },
       Finding: { keyFields: false },
       TableRow: { keyFields: false },

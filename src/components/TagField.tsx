@@ -11,6 +11,8 @@ export function TagField({
   values,
   onChange,
   suggestions = [],
+  suggestionWords,
+  comparable,
   hint,
   error,
   separator = ",",
@@ -20,6 +22,13 @@ export function TagField({
   values: readonly string[];
   onChange: (values: string[]) => void;
   suggestions?: readonly string[];
+  /** How a suggestion reads; as a stored value unless said. */
+  suggestionWords?: (value: string) => string;
+  /**
+   * Form in which names are compared. With it suggestions wait for something typed, and a name that is
+   * known in another spelling is not taken twice.
+   */
+  comparable?: (name: string) => string;
   hint?: string;
   error?: string | null;
   /** Character that ends a word; null where a word may hold any, as names do. */
@@ -31,18 +40,27 @@ export function TagField({
   const groupId = useId();
   const read = words ?? ((value: string) => value);
 
+  const same = (one: string, other: string) =>
+    comparable ? comparable(one) === comparable(other) : one === other;
+
   function add(text: string) {
-    const parts = (separator === null ? [text] : text.split(separator))
-      .map((part) => part.trim())
-      .filter((part) => part !== "" && !values.includes(part));
-    if (parts.length > 0) onChange([...values, ...new Set(parts)]);
+    const next = [...values];
+    for (const part of text.split(",").map((one) => one.trim())) {
+      if (part !== "" && !next.some((value) => same(value, part))) next.push(part);
+    }
+    if (next.length > values.length) onChange(next);
     setTyped("");
   }
 
+  const reads = suggestionWords ?? read;
   const lower = typed.trim().toLowerCase();
   const offered = suggestions
-    .filter((value) => !values.includes(value))
-    .filter((value) => lower === "" || read(value).toLowerCase().includes(lower))
+    .filter((value) => !values.some((other) => same(value, other)))
+    .filter((value) =>
+      comparable
+        ? comparable(typed) !== "" && comparable(value).includes(comparable(typed))
+        : lower === "" || read(value).toLowerCase().includes(lower),
+    )
     .slice(0, 8);
   return (
     <View role="group" aria-labelledby={groupId} style={styles.all}>
@@ -78,7 +96,7 @@ export function TagField({
       {offered.length > 0 ? (
         <View style={styles.chips} aria-label={`Suggestions for ${label}`} role="group">
           {offered.map((value) => (
-            <Chip key={value} label={read(value)} icon="plus" onPress={() => add(value)} />
+            <Chip key={value} label={reads(value)} icon="plus" onPress={() => add(value)} />
           ))}
         </View>
       ) : null}

@@ -77,7 +77,7 @@ export function Shell({ children }: { children: ReactNode }) {
         >
           {PLACES.map((place) => (
             <View key={place.href} style={styles.barItem}>
-              <RailItem place={place} here={isAt(path, place)} />
+              <RailItem place={place} here={isAt(path, place)} narrow />
             </View>
           ))}
         </View>
@@ -86,13 +86,22 @@ export function Shell({ children }: { children: ReactNode }) {
   );
 }
 
-function RailItem({ place, here }: { place: Place; here: boolean }) {
+function RailItem({
+  place,
+  here,
+  narrow = false,
+}: {
+  place: Place;
+  here: boolean;
+  /** In the bar, where four of them share the width of a small phone. */
+  narrow?: boolean;
+}) {
   const colors = useColors();
   return (
     <Press
       href={place.href}
       attributes={{ "aria-current": here ? "page" : undefined }}
-      style={styles.item}
+      style={[styles.item, narrow && styles.narrow]}
     >
       <View style={styles.itemContent}>
         <View style={[styles.itemIcon, here && { backgroundColor: colors.petrolTint }]}>
@@ -121,6 +130,7 @@ const styles = StyleSheet.create({
   },
   barItem: { flex: 1, alignItems: "center", paddingVertical: space.xs },
   item: { minWidth: 88, borderRadius: radius.card, alignItems: "center" },
+  narrow: { minWidth: 72 },
   itemContent: { alignItems: "center", paddingVertical: 2 },
   itemIcon: {
     width: 60,

@@ -12,6 +12,7 @@ import { space } from "@/theme/tokens";
 import { isEmptyFilter } from "~shared/filter/address";
 import type { CanonicalFilter, ConstraintFilter } from "~shared/filter/filter";
 import { METHOD_FAMILIES, METHOD_TAGS } from "~shared/methods/vocabulary";
+import { RECORD_STATES, type RecordState } from "~shared/review/states";
 import {
   QUANTITIES,
   STATEMENT_KINDS,
@@ -25,6 +26,12 @@ import {
   VERSION_WORDS,
   WEIGHTING_WORDS,
 } from "~shared/statement/words";
+
+const STATE_WORDS: Record<RecordState, string> = {
+  current: "Current",
+  superseded: "Superseded",
+  withdrawn: "Withdrawn",
+};
 
 /** The list with or without one word. */
 function toggled<T>(list: readonly T[] | undefined, word: T): T[] {
@@ -181,6 +188,19 @@ export function FilterPanel({
               label={VERSION_WORDS[version]}
               selected={filter.versions?.includes(version) ?? false}
               onPress={() => change({ versions: toggled(filter.versions, version) })}
+            />
+          ))}
+        </View>
+      </View>
+      <View role="group" aria-label="State of the record" style={styles.group}>
+        <Label>State of the record</Label>
+        <View style={styles.chips}>
+          {RECORD_STATES.map((state) => (
+            <Chip
+              key={state}
+              label={STATE_WORDS[state]}
+              selected={filter.states?.includes(state) ?? false}
+              onPress={() => change({ states: toggled(filter.states, state) })}
             />
           ))}
         </View>

@@ -1,10 +1,11 @@
 import { View } from "react-native";
 
 import { CheckRow } from "@/components/CheckRow";
-import { TagField } from "@/components/TagField";
 import { Label } from "@/components/Text";
 import { CONDITION_KINDS } from "~shared/statement/fields";
 import { CONDITION_WORDS } from "~shared/statement/words";
+
+import { RecordPicker } from "./RecordPicker";
 
 const KINDS: readonly string[] = CONDITION_KINDS;
 
@@ -12,10 +13,12 @@ const KINDS: readonly string[] = CONDITION_KINDS;
 export function ConditionPicker({
   label,
   values,
+  error,
   onChange,
 }: {
   label: string;
   values: string[];
+  error?: string;
   onChange: (values: string[]) => void;
 }) {
   const records = values.filter((value) => !KINDS.includes(value));
@@ -33,14 +36,12 @@ export function ConditionPicker({
         />
       ))}
       <View style={{ marginTop: 8 }}>
-        <TagField
+        <RecordPicker
           label="Records of this registry"
           values={records}
+          error={error}
           onChange={(next) =>
-            onChange([
-              ...values.filter((value) => KINDS.includes(value)),
-              ...next.map((number) => number.trim().toUpperCase()),
-            ])
+            onChange([...values.filter((value) => KINDS.includes(value)), ...next])
           }
         />
       </View>

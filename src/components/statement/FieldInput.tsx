@@ -40,8 +40,10 @@ import {
 } from "~shared/statement/words";
 
 import { ConditionPicker } from "./ConditionPicker";
+import { DataUsedInput } from "./DataUsedInput";
 import { KindGlyph } from "./KindGlyph";
 import { MethodPicker } from "./MethodPicker";
+import { RecordPicker } from "./RecordPicker";
 
 export type SetField = <N extends FieldName>(name: N, value: ConstraintFields[N]) => void;
 
@@ -157,11 +159,25 @@ function Input(props: FieldInputProps) {
         <ConditionPicker
           label={label}
           values={fields.conditionedOn}
+          error={error}
           onChange={(values) => set("conditionedOn", values)}
         />
       );
     case "dataUsed":
-      return <DataUsed {...props} label={label} />;
+      return <DataUsedInput fields={fields} set={set} label={label} error={error} />;
+    case "supersedes":
+    case "erratumOf":
+    case "reanalysisOf":
+    case "subsetOf":
+      return (
+        <RecordPicker
+          label={label}
+          hint={hint}
+          error={error}
+          values={fields[name]}
+          onChange={(values) => set(name, values)}
+        />
+      );
     case "modelTags":
       return (
         <TagField
@@ -281,32 +297,5 @@ function TextInput({
       onBlur={onBlur}
       onChangeText={(next) => set(name, (next === "" ? null : next) as never)}
     />
-  );
-}
-
-function DataUsed({ fields, set, label, error }: FieldInputProps & { label: string }) {
-  return (
-    <View style={{ gap: 8 }}>
-      {fields.dataKnown !== false && (
-        <TagField
-          label={label}
-          error={error}
-          values={fields.dataUsed}
-          onChange={(values) => {
-            set("dataUsed", values);
-            set("dataKnown", values.length > 0 ? true : null);
-          }}
-        />
-      )}
-      <CheckRow
-        label="The paper doesn't say which data it used"
-        hint="Unknown is a value: it is shown as a caution, never taken for none."
-        checked={fields.dataKnown === false}
-        onChange={(checked) => {
-          set("dataKnown", checked ? false : null);
-          if (checked) set("dataUsed", []);
-        }}
-      />
-    </View>
   );
 }

@@ -4,6 +4,7 @@ import { Divider } from "@/components/Card";
 import { Marker } from "@/components/Marker";
 import { NotationText } from "@/components/NotationText";
 import { Press } from "@/components/Press";
+import { StatusPill } from "@/components/StatusPill";
 import { Caption, Dense, Label, SymbolText } from "@/components/Text";
 import { useColors } from "@/theme/ThemeProvider";
 import { space } from "@/theme/tokens";
@@ -43,6 +44,20 @@ export function RowNotation({ fields }: { fields: ListedConstraint["fields"] }) 
   );
 }
 
+/** The state of a record in a list, where it is not current. */
+export function RowState({
+  state,
+  supersededBy,
+}: Pick<ListedConstraint, "state" | "supersededBy">) {
+  if (state === "current") return null;
+  return (
+    <View style={styles.state}>
+      <StatusPill state={state} />
+      {supersededBy ? <Caption muted>by {supersededBy}</Caption> : null}
+    </View>
+  );
+}
+
 /** Records as a list of links, for a phone and for the column beside a record. */
 export function ConstraintRows({
   constraints,
@@ -56,7 +71,7 @@ export function ConstraintRows({
   const colors = useColors();
   return (
     <View role="list">
-      {constraints.map(({ number, fields, citation }) => {
+      {constraints.map(({ number, fields, citation, state, supersededBy }) => {
         const family = familyOf(fields.methodTags);
         return (
           <View key={number} role="listitem">
@@ -74,6 +89,7 @@ export function ConstraintRows({
                 <View style={styles.words}>
                   <Whereabouts fields={fields} />
                   <Dense muted>{citation.shortName}</Dense>
+                  <RowState state={state} supersededBy={supersededBy} />
                 </View>
                 <View style={styles.value}>
                   {fields.kind === "qualitative" ? (
@@ -103,5 +119,12 @@ const styles = StyleSheet.create({
   },
   marker: { width: 20, alignItems: "center" },
   words: { flex: 1, minWidth: 0 },
+  state: {
+    flexDirection: "row",
+    flexWrap: "wrap",
+    alignItems: "center",
+    gap: space.xs,
+    paddingTop: space.xxs,
+  },
   value: { alignItems: "flex-end" },
 });

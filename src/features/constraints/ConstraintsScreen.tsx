@@ -22,7 +22,13 @@ import { isEmptyFilter } from "~shared/filter/address";
 import { familyOf } from "~shared/methods/vocabulary";
 import { levelPhrase } from "~shared/statement/words";
 
-import { ConstraintRows, RowNotation, Whereabouts, type ListedConstraint } from "./ConstraintRows";
+import {
+  ConstraintRows,
+  RowNotation,
+  RowState,
+  Whereabouts,
+  type ListedConstraint,
+} from "./ConstraintRows";
 import {
   FilterButton,
   ListDownloads,
@@ -59,6 +65,7 @@ export function ConstraintsScreen() {
           <View style={styles.aside}>
             <Section>Filter</Section>
             <FilterPanel filter={address.filter} onChange={address.setFilter} />
+            <NamesLink />
           </View>
         ) : undefined
       }
@@ -76,6 +83,7 @@ export function ConstraintsScreen() {
             <View style={styles.buttons}>
               <FilterButton address={address} />
               <ListDownloads query={address.query} />
+              <NamesLink />
             </View>
           )}
         </View>
@@ -122,6 +130,17 @@ export function ConstraintsScreen() {
   );
 }
 
+function NamesLink() {
+  return (
+    <Button
+      label="Sightlines, fields, samples"
+      icon="map-marker-outline"
+      kind="text"
+      href="/data"
+    />
+  );
+}
+
 function WideTable({
   constraints,
   query,
@@ -141,7 +160,7 @@ function WideTable({
         { key: "year", title: "Year", align: "right" },
         { key: "number", title: "Record", align: "right" },
       ]}
-      rows={constraints.map(({ number, fields, citation }) => {
+      rows={constraints.map(({ number, fields, citation, state, supersededBy }) => {
         const family = familyOf(fields.methodTags);
         return {
           id: number,
@@ -151,7 +170,10 @@ function WideTable({
               {family ? (
                 <Marker family={family} hollow={fields.kind !== "twoSided"} size={18} />
               ) : null}
-              <Dense>{citation.shortName}</Dense>
+              <View>
+                <Dense>{citation.shortName}</Dense>
+                <RowState state={state} supersededBy={supersededBy} />
+              </View>
             </View>
           ),
           where: <Whereabouts fields={fields} />,

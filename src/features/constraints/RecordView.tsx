@@ -1,6 +1,9 @@
+import { useQuery } from "@apollo/client/react";
 import { useState } from "react";
 import { StyleSheet, View } from "react-native";
 
+import { useSession } from "@/apollo/useSession";
+import { Failed } from "@/components/feedback/Failed";
 import { StatementCurve } from "@/components/statement/StatementCurve";
 import { Button } from "@/components/Button";
 import { Card, Divider } from "@/components/Card";
@@ -9,6 +12,7 @@ import { CiteSheet } from "@/components/CiteSheet";
 import { RecordSets } from "@/components/correlatedSet/RecordSets";
 import { DefinitionList } from "@/components/DefinitionList";
 import { Marker } from "@/components/Marker";
+import { EvidenceFiles } from "@/components/evidence/EvidenceFiles";
 import { NotationText } from "@/components/NotationText";
 import { Notice } from "@/components/Notice";
 import { RecordTitle } from "@/components/RecordTitle";
@@ -18,13 +22,18 @@ import { dateTime } from "@/components/when";
 import { useLayoutClass } from "@/layout/useLayoutClass";
 import { useColors } from "@/theme/ThemeProvider";
 import { space } from "@/theme/tokens";
-import type { ConstraintByNumberQuery } from "~graphql/generated/graphql";
+import { RecordLifeDocument, type ConstraintByNumberQuery } from "~graphql/generated/graphql";
 import { familyOf, METHOD_TAGS } from "~shared/methods/vocabulary";
 import { asUsed, type AsUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
 import { notationAsPrinted, notationAsUsed } from "~shared/statement/notation";
 import { conditionWord, FIELD_NAMES, fieldText, levelPhrase } from "~shared/statement/words";
 
+import { DataUsedPart } from "./DataUsedPart";
+import { HappenedPart } from "./HappenedPart";
+import { LifeNotices } from "./LifeNotices";
+import { LifeSheet, type LifeTask } from "./LifeSheet";
+import { RelationsPart } from "./RelationsPart";
 import { ReportCount } from "./ReportCount";
 import { ReportSheet } from "./ReportSheet";
 import { RevisionCredits } from "./RevisionCredits";
@@ -40,8 +49,19 @@ export function RecordView({ record }: { record: RecordData }) {
   const { fields, citation } = record;
   const used = asUsed(fields);
   const family = familyOf(fields.methodTags);
+  const lifeQuery = useQuery(RecordLifeDocument, {
+    variables: { number: record.number },
+    fetchPolicy: "cache-and-network",
+  });
+  const life = lifeQuery.data?.recordLife ?? null;
+  const mayChange = useSession().may("changeRecordLife");
+  const [task, setTask] = useState<LifeTask | null>(null);
   return (
     <View style={styles.all}>
+      <LifeNotices
+        notices={life?.notices ?? []}
+        onTakeBack={mayChange ? (notice) => setTask({ kind: "takeBack", notice }) : undefined}
+      />
       <View style={styles.head}>
         <View style={styles.line}>
           <Mono style={styles.number}>{record.quotable}</Mono>
@@ -60,12 +80,14 @@ export function RecordView({ record }: { record: RecordData }) {
           </View>
         </View>
         <View style={styles.line}>
-          <Button
-            label="Add to a table"
-            kind="filled"
-            icon="table-plus"
-            href={`/tables/new?with=${record.number}`}
-          />
+          {record.state === "withdrawn" ? null : (
+            <Button
+              label="Add to a table"
+              kind="filled"
+              icon="table-plus"
+              href={`/tables/new?with=${record.number}`}
+            />
+          )}
           <Button label="Cite" icon="format-quote-close" onPress={() => setCiting(true)} />
         </View>
       </View>
@@ -103,10 +125,14 @@ export function RecordView({ record }: { record: RecordData }) {
               href={`https://arxiv.org/abs/${citation.arxiv}`}
             />
           ) : null}
+          <EvidenceFiles number={record.quotable} />
         </View>
         <View style={[styles.column, columns && styles.third]}>
-          <DataUsed record={record} />
-          <Relations record={record} />
+          <DataUsedPart record={record} />
+          <RelationsPart record={record} life={life} />
+          {lifeQuery.error && !life ? (
+            <Failed error={lifeQuery.error} onRetry={() => void lifeQuery.refetch()} />
+          ) : null}
         </View>
         <View style={[styles.column, columns && styles.third]}>
           <Revisions record={record} />
@@ -117,6 +143,12 @@ export function RecordView({ record }: { record: RecordData }) {
             onPress={() => setReporting(true)}
           />
           <ReportCount number={record.number} count={record.errorReports} />
+          {life ? (
+            <HappenedPart
+              life={life}
+              onChange={mayChange ? () => setTask({ kind: "record" }) : undefined}
+            />
+          ) : null}
         </View>
       </View>
       <CiteSheet
@@ -124,6 +156,16 @@ export function RecordView({ record }: { record: RecordData }) {
         onClose={() => setCiting(false)}
         quotable={record.quotable}
         citation={citation}
+      />
+      <LifeSheet
+        task={task}
+        number={record.number}
+        state={record.state}
+        onClose={() => setTask(null)}
+        onDone={() => {
+          setTask(null);
+          void lifeQuery.refetch();
+        }}
       />
       <ReportSheet visible={reporting} onClose={() => setReporting(false)} number={record.number} />
     </View>
@@ -275,50 +317,6 @@ function Provenance({ record }: { record: RecordData }) {
   );
 }
 
-function DataUsed({ record }: { record: RecordData }) {
-  const { dataUsed, dataKnown } = record.fields;
-  return (
-    <View style={styles.stackSmall}>
-      <Block>Data used</Block>
-      {dataUsed.map((name) => (
-        <Dense key={name}>{name}</Dense>
-      ))}
-      {dataUsed.length === 0 ? (
-        <Dense muted>{dataKnown === false ? "The paper does not say." : "None named."}</Dense>
-      ) : null}
-    </View>
-  );
-}
-
-function Relations({ record }: { record: RecordData }) {
-  const links = [
-    ...record.sharesDataWith.map((link) => ({ ...link, word: `Shares ${link.via}` })),
-    ...record.alternatives
-      .filter(({ number }) => number !== record.number)
-      .map((link) => ({
-        ...link,
-        word: link.preferred
-          ? "Alternative answer, preferred by the authors"
-          : "Alternative answer",
-      })),
-  ];
-  return (
-    <View style={styles.stackSmall}>
-      <Block>Relations</Block>
-      {links.length === 0 ? <Dense muted>None on record.</Dense> : null}
-      {links.map(({ number, shortName, word }) => (
-        <View key={`${word}-${number}`} style={styles.relation}>
-          <View style={styles.grow}>
-            <Caption muted>{word}</Caption>
-            <Dense>{shortName}</Dense>
-          </View>
-          <Button label={number} kind="text" href={`/constraints/${number}`} />
-        </View>
-      ))}
-    </View>
-  );
-}
-
 function Revisions({ record }: { record: RecordData }) {
   return (
     <View style={styles.stackSmall}>
@@ -361,6 +359,5 @@ const styles = StyleSheet.create({
   stack: { gap: space.l },
   column: { gap: space.s },
   stackSmall: { gap: space.xs },
-  relation: { flexDirection: "row", alignItems: "center", gap: space.s },
   revision: { gap: space.xxs, paddingBottom: space.xs },
 });

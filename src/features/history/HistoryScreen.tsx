@@ -73,7 +73,13 @@ export function HistoryScreen() {
   // Families are filtered here, so that the legend can count what each of them would show.
   const families = address.filter.families;
   const asked = useMemo(
-    () => filterInput({ ...address.filter, families: undefined }),
+    () =>
+      // Superseded records stand on the chart only when they are asked for.
+      filterInput({
+        ...address.filter,
+        families: undefined,
+        states: address.filter.states ?? ["current"],
+      }),
     [address.filter],
   );
   const { data, previousData, loading, error, refetch } = useQuery(HistoryConstraintsDocument, {

@@ -68,6 +68,12 @@ export function MethodStep({
         {row(["modelTags"])}
         {row(["cosmicVariance"])}
       </EntryGroup>
+      <EntryGroup title="Relation to other records">
+        {row(["supersedes", undefined, "Once this is approved, they are marked as superseded."])}
+        {row(["erratumOf", undefined, "Once this is approved, they are marked as superseded."])}
+        {row(["reanalysisOf"])}
+        {row(["subsetOf"])}
+      </EntryGroup>
       <EntryGroup title="Alternatives">
         {row([
           "alternativesGroup",

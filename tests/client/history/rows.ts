@@ -12,6 +12,7 @@ export function buildConstraint(
     number,
     quotable: `${number}.1`,
     state: "current",
+    supersededBy: null,
     fields: {
       __typename: "ConstraintFields",
       ...emptyFields(),

@@ -44,7 +44,7 @@ describe("named data", () => {
       variables,
     );
     // eslint-disable-next-line @typescript-eslint/no-explicit-any
-    return errors ? errors[0].extensions.code : (Object.values(data)[0] as any);
+    return errors ? errors[0]?.extensions.code : (Object.values(data)[0] as any);
   };
   const thing = (slug: string, person: Person | null = null) =>
     call(`query ($slug: ID!) { namedData(slug: $slug) { ${PARTS} } }`, { slug }, person);

@@ -42,7 +42,7 @@ describe("the life of a record", () => {
       variables,
     );
     // eslint-disable-next-line @typescript-eslint/no-explicit-any
-    return errors ? errors[0].extensions.code : (Object.values(data)[0] as any);
+    return errors ? errors[0]?.extensions.code : (Object.values(data)[0] as any);
   };
   const withdraw = (of: string, reason = "The authors withdrew the paper.", person?: Person) =>
     call(

@@ -14,6 +14,7 @@ import {
   buildSubmission,
   granted,
   send,
+  tickAll,
 } from "../../factories/constraint";
 import { startTestServer, type TestServer } from "../support/harness";
 
@@ -58,6 +59,7 @@ describe("relations between records", () => {
     const who = actingAs(server.dataSource, editor.user);
     granted(await claim(who, submitted.id));
     const read = granted(await storeReading(who, submitted.id, submitted.fields));
+    await tickAll(who, read);
     const outcome = await approve(who, submitted.id, read.version, null);
     return outcome instanceof Refusal ? outcome.message : "approved";
   }
@@ -195,7 +197,7 @@ describe("relations between records", () => {
         { who: actingAs(server.dataSource, editor.user), submitted: ofOne },
         { who: actingAs(server.dataSource, secondEditor.user), submitted: ofTwo },
       ];
-      const read = [];
+      const read: Revision[] = [];
       for (const reader of readers) {
         granted(await claim(reader.who, reader.submitted.id));
         read.push(

@@ -1,0 +1,1 @@
+export { DataEntryScreen as default } from "@/features/namedData/DataEntryScreen";
