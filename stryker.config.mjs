@@ -19,8 +19,9 @@ export default {
   incremental: true,
   incrementalFile: ".fogline/mutation/incremental.json",
   concurrency: 1,
-  timeoutMS: 1_500,
-  timeoutFactor: 1.25,
+  // Endless loops are counted out; on a busy machine anything shorter takes slow tests for caught mutants.
+  timeoutMS: 10_000,
+  timeoutFactor: 2,
   tempDirName: path.join(os.tmpdir(), "fogline-mutants"),
   reporters: ["clear-text", "progress-append-only", "html", "json"],
   clearTextReporter: { allowColor: false, logTests: false, reportTests: false },

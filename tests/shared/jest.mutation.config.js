@@ -6,6 +6,11 @@ const [shared] = require("../../jest.config").projects;
 module.exports = {
   ...shared,
   rootDir: "../..",
-  setupFiles: ["<rootDir>/tests/shared/support/failAtOnce.js"],
+  moduleNameMapper: {
+    ...shared.moduleNameMapper,
+    "^fast-check$": "<rootDir>/tests/shared/support/quickProperties.js",
+  },
+  testSequencer: "<rootDir>/tests/shared/support/quickestFirst.js",
+  watchman: false,
   testMatch: ["<rootDir>/tests/shared/{likelihood,statement}/**/*.test.ts"],
 };

@@ -46,11 +46,12 @@ describe("equal mixture of alternatives", () => {
   it("is (1/n) Σ p_i normalized over [0, 1], relative to its peak over a common x", () => {
     const mixture = mixtureOf(three());
     expect(mixture.commonPeak).toBe(true);
-    const at = (x: number) => mixture.minus2LnL(three().map(({ shape }) => shape.minus2LnL(x)));
+    const shapes = three().map(({ shape }) => shape);
+    const areas = shapes.map((shape) => distributionOf(shape, [0, 1])!.area);
+    const at = (x: number) => mixture.minus2LnL(shapes.map((shape) => shape.minus2LnL(x)));
     const density = (x: number) =>
-      three().reduce(
-        (sum, { shape }) =>
-          sum + Math.exp(-0.5 * shape.minus2LnL(x)) / distributionOf(shape, [0, 1])!.area / 3,
+      shapes.reduce(
+        (sum, shape, i) => sum + Math.exp(-0.5 * shape.minus2LnL(x)) / areas[i]! / 3,
         0,
       );
     let peak = 0;
