@@ -5,28 +5,31 @@ import { fonts, radius } from "@/theme/tokens";
 import Icon from "./Icon";
 import { Caption, Label } from "./Text";
 
-/** A text file from the device, read in the browser. Dropping it on the frame works too. */
-export function FilePick({
-  label,
-  accept,
-  onPick,
-}: {
+interface Props {
   label: string;
   accept: string;
-  onPick: (file: { name: string; text: string }) => void;
-}) {
+  /** A text file, read here. */
+  onPick?: (file: { name: string; text: string }) => void;
+  /** Files as they are, several at once; nothing is read. */
+  onFiles?: (files: File[]) => void;
+}
+
+/** A file from the device. Dropping it on the frame works too. */
+export function FilePick({ label, accept, onPick, onFiles }: Props) {
   const colors = useColors();
   const id = useId();
   const [name, setName] = useState<string | null>(null);
   const [problem, setProblem] = useState<string | null>(null);
 
-  async function take(file: File | undefined) {
+  async function take(files: FileList | null) {
+    const file = files?.[0];
     if (file === undefined) return;
+    if (onFiles) return onFiles([...(files ?? [])]);
     try {
       const text = new TextDecoder("utf-8", { fatal: true }).decode(await file.arrayBuffer());
       setName(file.name);
       setProblem(null);
-      onPick({ name: file.name, text });
+      onPick?.({ name: file.name, text });
     } catch {
       setProblem(`${file.name} is not a UTF-8 text file.`);
     }
@@ -40,7 +43,7 @@ export function FilePick({
         onDragOver={(event) => event.preventDefault()}
         onDrop={(event) => {
           event.preventDefault();
-          void take(event.dataTransfer.files[0]);
+          void take(event.dataTransfer.files);
         }}
         style={{
           position: "relative",
@@ -66,7 +69,12 @@ export function FilePick({
           id={id}
           type="file"
           accept={accept}
-          onChange={(event) => void take(event.target.files?.[0])}
+          multiple={onFiles !== undefined}
+          onChange={(event) => {
+            void take(event.target.files);
+            // So that the same file can be chosen again after it was refused or removed.
+            if (onFiles) event.target.value = "";
+          }}
           style={{ position: "absolute", inset: 0, opacity: 0, cursor: "pointer" }}
         />
       </label>

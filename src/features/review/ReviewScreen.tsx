@@ -7,6 +7,7 @@ import { userMessage } from "@/apollo/userMessage";
 import { useSession } from "@/apollo/useSession";
 import { Button } from "@/components/Button";
 import { Confirm } from "@/components/Confirm";
+import { EvidenceFiles } from "@/components/evidence/EvidenceFiles";
 import { Empty } from "@/components/feedback/Empty";
 import { Failed } from "@/components/feedback/Failed";
 import { Loading } from "@/components/feedback/Loading";
@@ -366,6 +367,7 @@ function Work({ review, actions, onReload }: WorkProps) {
           }}
         />
         <Changes review={review} />
+        <EvidenceFiles number={`${item.number}.${item.ordinal}`} level={2} />
       </View>
     );
     beside = (

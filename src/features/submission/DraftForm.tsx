@@ -7,11 +7,12 @@ import { useSession } from "@/apollo/useSession";
 import { userMessage } from "@/apollo/userMessage";
 import { Button } from "@/components/Button";
 import { Confirm } from "@/components/Confirm";
+import { AttachEvidence } from "@/components/evidence/AttachEvidence";
 import { IconButton } from "@/components/IconButton";
 import { Notice } from "@/components/Notice";
 import { StepBar } from "@/components/StepBar";
 import { focusField, type SetField } from "@/components/statement/FieldInput";
-import { PrintedEntry } from "@/components/statement/PrintedEntry";
+import { EntryGroup, PrintedEntry } from "@/components/statement/PrintedEntry";
 import {
   changeShape,
   METHOD_FIELDS,
@@ -290,7 +291,15 @@ export function DraftForm({ submission }: { submission: SubmissionPartsFragment 
           <PrintedEntry fields={fields} set={set} error={error} under={under} onBlur={blur} />
         ) : null}
         {step === "method" ? (
-          <MethodStep fields={fields} set={set} error={error} under={under} onBlur={blur} />
+          <>
+            <MethodStep fields={fields} set={set} error={error} under={under} onBlur={blur} />
+            <EntryGroup title="Evidence">
+              <AttachEvidence
+                revisionId={id}
+                number={`${submission.number}.${submission.ordinal}`}
+              />
+            </EntryGroup>
+          </>
         ) : null}
         {step === "check" ? (
           <>

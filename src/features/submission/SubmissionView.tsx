@@ -9,6 +9,7 @@ import { Card } from "@/components/Card";
 import { CitationLine } from "@/components/CitationLine";
 import { Confirm } from "@/components/Confirm";
 import { DefinitionList } from "@/components/DefinitionList";
+import { EvidenceFiles } from "@/components/evidence/EvidenceFiles";
 import { Notice } from "@/components/Notice";
 import { NotationText } from "@/components/NotationText";
 import { plainFields } from "@/components/statement/plainFields";
@@ -90,6 +91,7 @@ export function SubmissionView({ submission }: { submission: SubmissionPartsFrag
           <Section>Where it comes from</Section>
           <DefinitionList items={rows(METHOD_FIELDS)} />
         </View>
+        <EvidenceFiles number={`${number}.${ordinal}`} level={2} />
       </View>
     </Screen>
   );
