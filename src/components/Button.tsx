@@ -122,8 +122,16 @@ export function IconButton({
 }
 
 const styles = StyleSheet.create({
-  row: { flexDirection: "row", alignItems: "center", flexWrap: "wrap", gap: space.xs },
+  // A label that names a paper or a person can be longer than a small phone is wide.
+  row: {
+    flexDirection: "row",
+    alignItems: "center",
+    flexWrap: "wrap",
+    gap: space.xs,
+    maxWidth: "100%",
+  },
   button: {
+    maxWidth: "100%",
     minHeight: target,
     minWidth: target,
     borderRadius: radius.pill,
@@ -134,7 +142,7 @@ const styles = StyleSheet.create({
   },
   textOnly: { paddingHorizontal: space.s },
   content: { flexDirection: "row", alignItems: "center", justifyContent: "center", gap: space.xs },
-  label: { fontSize: 15 },
+  label: { fontSize: 15, flexShrink: 1 },
   reason: { flexShrink: 1 },
   icon: {
     width: target,

@@ -19,7 +19,7 @@ import { shownNumber } from "./readouts";
 import type { HistoryRow } from "./rows";
 import type { Overlay } from "./useOverlays";
 
-const LINE = 44;
+const LINE = 60;
 const AXIS = 24;
 /** Width of a figure in the axis labels. */
 const DIGIT = 7.5;
@@ -181,7 +181,7 @@ const StripNames = memo(function StripNames({
           style={[styles.name, selected === row.number && { backgroundColor: colors.petrolTint }]}
         >
           <View>
-            <Dense muted numberOfLines={1}>
+            <Dense muted numberOfLines={2} style={styles.source}>
               {row.citation.shortName}
             </Dense>
             {row.used ? <NotationText notation={notationAsUsed(row.used)} /> : null}
@@ -327,5 +327,6 @@ const styles = StyleSheet.create({
     paddingHorizontal: space.xs,
     marginLeft: -space.xs,
   },
+  source: { lineHeight: 17 },
   drawing: { flex: 1, minWidth: 120 },
 });

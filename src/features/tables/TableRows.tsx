@@ -109,7 +109,9 @@ function Listed({ constraints, decided }: Props) {
               {index > 0 ? <Divider /> : null}
               <View style={styles.row}>
                 <View style={styles.between}>
-                  <Source constraint={constraint} />
+                  <View style={styles.grow}>
+                    <Source constraint={constraint} />
+                  </View>
                   <Mono style={styles.number}>{quotable}</Mono>
                 </View>
                 <View style={styles.facts}>
@@ -151,6 +153,7 @@ const styles = StyleSheet.create({
     justifyContent: "space-between",
     gap: space.s,
   },
+  grow: { flex: 1, minWidth: 0 },
   number: { fontSize: 13 },
   facts: { flexDirection: "row", flexWrap: "wrap", columnGap: space.s, rowGap: space.xs },
   fact: { gap: 2, flexGrow: 1, flexShrink: 0, flexBasis: 140 },

@@ -12,6 +12,11 @@ export const SIZES = {
   phone: { width: 390, height: 844 },
   wide: { width: 1440, height: 900 },
 } as const;
+/** Widths a page is also held to, as it stands on a phone: a small phone, an upright tablet. */
+const OTHER_SIZES = {
+  "small phone": { width: 320, height: 640 },
+  tablet: { width: 768, height: 1024 },
+} as const;
 export type Size = keyof typeof SIZES;
 export const SIZE_NAMES = Object.keys(SIZES) as Size[];
 
@@ -158,6 +163,46 @@ export function layoutProblems(page: Page): Promise<string[]> {
     }
     return found;
   });
+}
+
+/**
+ * What overflows or is cut when the window of an open page gets another width, in words. The page
+ * is not loaded again, which makes it cheap enough for every situation.
+ */
+export async function layoutProblemsAtOtherSizes(
+  page: Page,
+  present: Size,
+  photograph: (size: string) => Promise<void>,
+): Promise<string[]> {
+  const found: string[] = [];
+  for (const [name, size] of Object.entries(OTHER_SIZES)) {
+    await page.setViewportSize(size);
+    await drawn(page);
+    await photograph(name);
+    found.push(...(await layoutProblems(page)).map((words) => `${name}: ${words}`));
+    const first = await page.getByRole("heading", { level: 1 }).count();
+    if (first !== 1) found.push(`${name}: ${first} headings of the first level`);
+  }
+  await page.setViewportSize(SIZES[present]);
+  await drawn(page);
+  return found;
+}
+
+/** Waits until what depends on the window's width was measured and drawn anew. */
+async function drawn(page: Page): Promise<void> {
+  await page.evaluate(
+    () =>
+      new Promise<void>((resolve) => {
+        let frames = 0;
+        const next = (): void => {
+          frames += 1;
+          if (frames === 4) resolve();
+          else requestAnimationFrame(next);
+        };
+        requestAnimationFrame(next);
+      }),
+  );
+  await page.waitForFunction(() => !document.querySelector("[aria-busy=true]"));
 }
 
 /** Bytes over the network, compressed as sent, for everything a page loads until `ready` holds. */

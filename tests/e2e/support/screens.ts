@@ -7,6 +7,7 @@ import {
   SCHEMES,
   axeViolations,
   layoutProblems,
+  layoutProblemsAtOtherSizes,
   openBrowser,
   openPage,
   screenshot,
@@ -283,6 +284,17 @@ const NOBODY: Situation[] = [
       ["confirm, no token", "/account/confirm", "Confirm your address", "The address is not whole"],
       ["new password", "/account/reset", "A new password", "Send the mail"],
       ["new password, link", "/account/reset?token=x", /new password/i, "New password"],
+      ["error reports", "/desk/reports", "Error reports", "Sign in first"],
+      ["error report", "/desk/reports/none", "Error report", "Sign in first"],
+      ["reporter's link, not whole", "/report/none", "Your error report", /opens no report/],
+      ["person without a page", "/people/none", "A person", "No such page"],
+      [
+        "new address, no token",
+        "/account/address",
+        "Confirm your new address",
+        "The address is not whole",
+      ],
+      ["objection", "/account/object?token=x", /^Object/, "Keep my address"],
       ["unknown address", "/nowhere/at/all", "Nothing at this address", /\/nowhere\/at\/all/],
     ] as const
   ).map(([name, address, title, mark]): Situation => ({
@@ -327,6 +339,85 @@ const NOBODY: Situation[] = [
   },
 ];
 
+/** The record that gets reports here; the seed has none. */
+const REPORTED = "FL-0005";
+
+const REPORTS: Situation[] = [
+  {
+    who: "nobody",
+    name: "record, reporting an error",
+    async go(page) {
+      await visit(page, `/constraints/${REPORTED}`, "Constraint");
+      await button(page, "Report an error").click();
+      await entry(page, "What is wrong").waitFor();
+    },
+  },
+  {
+    who: "nobody",
+    name: "record, error reported",
+    async go(page) {
+      await entry(page, "What is wrong").fill(
+        "Table 3 of the published version prints another number than this record says.",
+      );
+      await button(page, "Send the report").click();
+      await link(page, "See the report").waitFor();
+    },
+  },
+  {
+    who: "nobody",
+    name: "reporter's page, before the answer",
+    async go(page) {
+      await link(page, "See the report").click();
+      await heading(page, "Your error report").waitFor();
+      await shown(page, /Once the editors have answered/);
+    },
+  },
+  {
+    who: "editor",
+    name: "error reports",
+    async go(page) {
+      await visit(page, `/desk/reports?q=${REPORTED}`, "Error reports");
+      await page.getByRole("list", { name: "Waiting, oldest first" }).waitFor();
+    },
+  },
+  {
+    who: "editor",
+    name: "error report, answering",
+    async go(page) {
+      await link(page, /prints another number/).click();
+      await entry(page, "Answer or question").fill("Thank you. Which row of the table is it?");
+      await button(page, "Send the answer").click();
+      await shown(page, /The answer (is on its way|stands)/);
+    },
+  },
+  {
+    who: "editor",
+    name: "error report, asked whether to close it",
+    async go(page) {
+      await entry(page, "What became of it").selectOption("noError");
+      await button(page, "Close the report").click();
+      await dialog(page).waitFor();
+    },
+  },
+  {
+    who: "nobody",
+    name: "reporter's page, answered",
+    async go(page) {
+      await page.reload();
+      await entry(page, "Your reply").waitFor();
+    },
+  },
+  {
+    who: "nobody",
+    name: "person's page",
+    async go(page) {
+      await visit(page, "/constraints/FL-0002", "Constraint");
+      await link(page, "Rosalka Wend").first().click();
+      await page.getByRole("list", { name: "Entered" }).waitFor();
+    },
+  },
+];
+
 const READER: Situation[] = (
   [
     ["desk without a role", "/desk", "Desk", "Build a fitting table"],
@@ -345,6 +436,41 @@ const READER: Situation[] = (
   },
 }));
 
+const ACCOUNT: Situation[] = [
+  {
+    who: "reader",
+    name: "account, change of address refused",
+    async go(page) {
+      await visit(page, "/account", "Account");
+      const form = page.getByRole("form", { name: "Change the address" });
+      await entry(form, "New mail address").fill("sefa@lanternmoor.example");
+      await entry(form, "Your password").fill("not this one, surely");
+      await button(form, "Change the address").click();
+      await form.locator("[aria-invalid=true]").waitFor();
+    },
+  },
+  {
+    who: "reader",
+    name: "account, asked whether to sign out everywhere",
+    async go(page) {
+      await visit(page, "/account", "Account");
+      await button(page, "Sign out everywhere").click();
+      await dialog(page).waitFor();
+    },
+  },
+  {
+    who: "reader",
+    name: "account, asked whether to delete it",
+    async go(page) {
+      await visit(page, "/account", "Account");
+      const form = page.getByRole("form", { name: "Delete the account" });
+      await form.getByRole("radio", { name: /a former member/ }).check();
+      await button(form, "Delete the account").click();
+      await dialog(page).waitFor();
+    },
+  },
+];
+
 const atStep = (who: Viewer, name: string, step: string, title: string): Situation => ({
   who,
   name,
@@ -360,6 +486,26 @@ const CONTRIBUTOR: Situation[] = [
     async go(page) {
       await visit(page, "/desk", "Desk");
       await page.getByRole("list", { name: "Approved" }).waitFor();
+    },
+  },
+  {
+    who: "contributor",
+    name: "new constraint, looked up",
+    async go(page) {
+      await visit(page, "/desk/submit/new", "The paper");
+      await entry(page, "DOI or arXiv number").fill("https://doi.org/10.5555/les.2028.0017");
+      await button(page, "Look it up").click();
+      await button(page, /^Use Quarrelow/).waitFor();
+    },
+  },
+  {
+    who: "contributor",
+    name: "new constraint, nothing looked up",
+    async go(page) {
+      await visit(page, "/desk/submit/new", "The paper");
+      await entry(page, "DOI or arXiv number").fill("10.5555/nobody.knows");
+      await button(page, "Look it up").click();
+      await shown(page, /knows no paper by this number/);
     },
   },
   {
@@ -639,7 +785,16 @@ const EMPTY: Situation[] = (
   },
 }));
 
-const SITUATIONS = [...NOBODY, ...READER, ...CONTRIBUTOR, ...EDITOR, ...MAINTAINER, ...EMPTY];
+export const SITUATIONS = [
+  ...NOBODY,
+  ...REPORTS,
+  ...READER,
+  ...ACCOUNT,
+  ...CONTRIBUTOR,
+  ...EDITOR,
+  ...MAINTAINER,
+  ...EMPTY,
+];
 
 /** Every screen at one size, as whoever sees it: whole, within reach of everybody, light and dark. */
 export function describeScreens(size: Size): void {
@@ -693,7 +848,15 @@ export function describeScreens(size: Size): void {
         found.push(...(await axeViolations(page, rules)).map((words) => `${scheme}: ${words}`));
       }
       await wear(page, "light");
-      found.push(...(await layoutProblems(page)), ...problems);
+      found.push(...(await layoutProblems(page)));
+      // The phone's page is also looked at smaller, and as wide as an upright tablet.
+      if (size === "phone")
+        found.push(
+          ...(await layoutProblemsAtOtherSizes(page, size, (other) =>
+            screenshot(page, `${other}-${who}-${name.replaceAll(/\W+/g, "-")}`),
+          )),
+        );
+      found.push(...problems);
       const first = await heading(page, /./).count();
       if (first !== 1) found.push(`${first} headings of the first level`);
       expect(found).toEqual([]);
