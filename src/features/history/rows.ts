@@ -13,6 +13,7 @@ export type HistoryConstraint = ListedPartsFragment;
 export interface HistoryRow {
   number: string;
   quotable: string;
+  state: HistoryConstraint["state"];
   citation: HistoryConstraint["citation"];
   fields: ConstraintFields;
   family: MethodFamily;
@@ -26,6 +27,7 @@ export function historyRow(constraint: HistoryConstraint): HistoryRow {
   return {
     number: constraint.number,
     quotable: constraint.quotable,
+    state: constraint.state,
     citation: constraint.citation,
     fields,
     family: familyOf(fields.methodTags) ?? "other",

@@ -34,9 +34,10 @@ export function decideByDefault(
   correlated: readonly SetToScore[] = [],
 ): ScoredRows {
   const proposals = proposeRows(
-    rows.map(({ number, fields, citation }) => ({
+    rows.map(({ number, fields, citation, state }) => ({
       number,
       fields,
+      state,
       citation: citation.key,
       year: citation.year,
     })),

@@ -35,6 +35,7 @@ function listed(number: string, fields: Partial<ConstraintFields> = {}) {
     number,
     quotable: `${number}.1`,
     state: "current",
+    supersededBy: null,
     fields: { __typename: "ConstraintFields", ...completeFields(), ...fields },
     citation: CITATION,
   };
@@ -84,6 +85,7 @@ const record = (fields: Partial<ConstraintFields> = {}): MockedResponse =>
             ...CITATION,
             bibtex: "@article{Osuwande2027,\n  title = {Neutral gas}\n}",
           },
+          dataEntries: [],
           sharesDataWith: [],
           alternatives: [],
           errorReports: { __typename: "ErrorReportCount", open: 1, answered: 1 },

@@ -9,6 +9,8 @@ import {
   ErrorReportsDocument,
   LooksUpCitationsDocument,
   MySetsDocument,
+  NamedDataNamesDocument,
+  RecordLifeDocument,
   SessionDocument,
   SetQueueDocument,
   type SubmissionPartsFragment,
@@ -85,6 +87,11 @@ const NOTHING_ELSE = [
     request: { query: LooksUpCitationsDocument },
     result: { data: { session: { __typename: "Session", looksUpCitations: false } } },
   },
+  {
+    request: { query: RecordLifeDocument, variables: () => true },
+    result: { data: { recordLife: null } },
+  },
+  { request: { query: NamedDataNamesDocument }, result: { data: { namedDataList: [] } } },
   { request: { query: MySetsDocument }, result: { data: { mySets: [] } } },
   { request: { query: SetQueueDocument }, result: { data: { setQueue: [] } } },
 ].map((mock) => ({ ...mock, maxUsageCount: Number.POSITIVE_INFINITY }) as MockedResponse);

@@ -61,7 +61,10 @@ const depth = buildConstraint("FL-0003", {
   minus: "0.011",
 });
 
-function answer(constraints: ReturnType<typeof buildConstraint>[], filter = {}) {
+function answer(
+  constraints: ReturnType<typeof buildConstraint>[],
+  filter: object = { states: ["current"] },
+) {
   return {
     request: { query: HistoryConstraintsDocument, variables: { filter } },
     result: {
@@ -173,7 +176,10 @@ describe("History", () => {
 
   it("says what a failed server means for the reader and offers a retry", async () => {
     const failed = {
-      request: { query: HistoryConstraintsDocument, variables: { filter: {} } },
+      request: {
+        query: HistoryConstraintsDocument,
+        variables: { filter: { states: ["current"] } },
+      },
       result: {
         errors: [
           new GraphQLError("secret", { extensions: { code: "INTERNAL", requestId: "r-9" } }),
