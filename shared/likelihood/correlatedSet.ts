@@ -30,7 +30,10 @@ export function correlatedSet(rho: readonly (readonly number[])[]): CorrelatedSe
     });
     if (Math.abs(row[i]! - 1) > 1e-9) throw new DomainError(`rho[${i}][${i}]`, row[i], "1");
   });
-  const matrix = new Matrix(rho.map((row) => [...row]));
+  // The library wants it symmetric to the last bit, and ones that are.
+  const matrix = new Matrix(
+    rho.map((row, i) => row.map((value, j) => (i === j ? 1 : 0.5 * (value + rho[j]![i]!)))),
+  );
   const cholesky = new CholeskyDecomposition(matrix);
   if (!cholesky.isPositiveDefinite()) {
     throw new DomainError("rho", "this matrix", "positive definite");
