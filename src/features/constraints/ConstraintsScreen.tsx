@@ -72,7 +72,7 @@ export function ConstraintsScreen() {
     >
       <View style={styles.all}>
         <View style={layout === "compact" ? styles.toolsPhone : styles.tools}>
-          <View style={styles.grow}>
+          <View style={styles.search}>
             <SearchField address={address} />
           </View>
           {wide ? (
@@ -196,10 +196,10 @@ function WideTable({
 const styles = StyleSheet.create({
   all: { gap: space.m },
   aside: { gap: space.m, padding: space.l },
-  tools: { flexDirection: "row", alignItems: "center", gap: space.s },
+  tools: { flexDirection: "row", flexWrap: "wrap", alignItems: "center", gap: space.s },
   toolsPhone: { gap: space.s },
   buttons: { flexDirection: "row", flexWrap: "wrap", gap: space.xs },
-  grow: { flex: 1, minWidth: 0 },
+  search: { flexGrow: 1, flexShrink: 1, flexBasis: "auto", minWidth: 240 },
   sort: { width: 240 },
   source: { flexDirection: "row", alignItems: "center", gap: space.s },
 });

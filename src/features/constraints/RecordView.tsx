@@ -46,6 +46,8 @@ export function RecordView({ record }: { record: RecordData }) {
   const [reporting, setReporting] = useState(false);
   const layout = useLayoutClass();
   const columns = layout !== "compact";
+  // Terms and their values need more than a third of a tablet.
+  const beside = layout === "wide";
   const { fields, citation } = record;
   const used = asUsed(fields);
   const family = familyOf(fields.methodTags);
@@ -105,8 +107,8 @@ export function RecordView({ record }: { record: RecordData }) {
       </Card>
       <Cautions record={record} />
       <RecordSets number={record.number} citationId={citation.id} fields={fields} />
-      <View style={columns ? styles.columns : styles.stack}>
-        <View style={[styles.column, columns && styles.third]}>
+      <View style={beside ? styles.columns : styles.stack}>
+        <View style={[styles.column, beside && styles.third]}>
           <Block>Provenance</Block>
           <Provenance record={record} />
           {citation.doi ? (
@@ -127,14 +129,14 @@ export function RecordView({ record }: { record: RecordData }) {
           ) : null}
           <EvidenceFiles number={record.quotable} />
         </View>
-        <View style={[styles.column, columns && styles.third]}>
+        <View style={[styles.column, beside && styles.third]}>
           <DataUsedPart record={record} />
           <RelationsPart record={record} life={life} />
           {lifeQuery.error && !life ? (
             <Failed error={lifeQuery.error} onRetry={() => void lifeQuery.refetch()} />
           ) : null}
         </View>
-        <View style={[styles.column, columns && styles.third]}>
+        <View style={[styles.column, beside && styles.third]}>
           <Revisions record={record} />
           <Button
             label="Report an error"

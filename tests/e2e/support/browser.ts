@@ -14,7 +14,7 @@ export const SIZES = {
 } as const;
 /** Widths a page is also held to, as it stands on a phone: a small phone, an upright tablet. */
 const OTHER_SIZES = {
-  "small phone": { width: 320, height: 640 },
+  smallPhone: { width: 320, height: 640 },
   tablet: { width: 768, height: 1024 },
 } as const;
 export type Size = keyof typeof SIZES;
