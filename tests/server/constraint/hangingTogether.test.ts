@@ -27,14 +27,14 @@ describe("records that hang together", () => {
   ) => buildApproved(server.dataSource, contributor.user, editor.user, overrides, paper);
 
   /** What a fitting table over these words proposes, asked by nobody in particular. */
-  const propose = async (text: string) => {
+  const propose = async (text: string, out: { number: string; reason: string }[] = []) => {
     const { data, errors } = await server.graphql(
       server.agent(),
       `query ($recipe: TableInput!) { tableProposal(recipe: $recipe) { __typename
         ... on TableProposal { open rows { number included set weight mixture form }
           decisions { kind rows words proposed options { code words } }
           mixtures { members standardDeviation } sets { id members rho whole } } } }`,
-      { recipe: { filter: { text } } },
+      { recipe: { filter: { text }, out } },
     );
     expect(errors).toBeUndefined();
     return data.tableProposal;
@@ -82,6 +82,17 @@ describe("records that hang together", () => {
       expect(data.recordLife.conditionChains).toEqual([
         { through: [third.number, second.number], on: first.number },
       ]);
+    });
+
+    it("asks a table that holds both its ends to decide, though the middle is out", async () => {
+      const out = [{ number: second.number, reason: "Its field is another table's." }];
+      const proposal = await propose("Chainlink", out);
+      const decision = proposal.decisions.find(
+        ({ kind, rows }: { kind: string; rows: string[] }) =>
+          kind === "conditioned" && rows.includes(third.number),
+      );
+      expect(decision.rows).toContain(first.number);
+      expect(decision.words).toContain(second.number);
     });
 
     it("can't be closed to a circle", async () => {

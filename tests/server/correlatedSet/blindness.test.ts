@@ -1,7 +1,9 @@
 import { reviseSubmission, saveDraft, submitDraft } from "~server/constraint/draft.service";
 import { EventRecord } from "~server/event/event.entity";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
+import { cutRelease } from "~server/release/release.service";
 import { claim } from "~server/review/review.service";
+import { saveRecipe } from "~server/table/version.service";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 import { formatSetNumber } from "~shared/identifiers/setNumber";
 
@@ -13,6 +15,8 @@ import { setsOf } from "./sets";
 /** Entries that occur nowhere but in the matrix: one of them anywhere is a leak. */
 const MATRIX = [["0.0092163"], ["0.0051847", "0.0092416"]];
 const SECRETS = MATRIX.flat();
+/** Its correlation, 0.0051847 / √(0.0092163 · 0.0092416), as a table or a release would hold it. */
+const RHO = /0\.56178/;
 const COMMENT = "Not 0.0051847 but something else";
 
 // A walk asks some hundred questions; a busy machine takes its time over them.
@@ -66,6 +70,12 @@ describe("blindness of correlated sets", () => {
       ((await server.dataSource.query(sql)) as { v: unknown }[]).map(({ v }) => String(v));
     const records = (await rows("SELECT id v FROM constraint_record")).map(Number);
     const sets = (await rows("SELECT id v FROM correlated_set")).map(Number);
+    const slugs = await rows("SELECT slug v FROM fitting_table");
+    const releases = await rows("SELECT number v FROM registry_release");
+    const files = [
+      ...slugs.flatMap((slug) => ["csv", "json", "bib"].map((end) => `/api/tables/${slug}.${end}`)),
+      ...releases.map((number) => `/api/releases/${number}.json`),
+    ];
     const answers = await walkEverything(
       server,
       agent,
@@ -73,18 +83,20 @@ describe("blindness of correlated sets", () => {
         ids: [
           ...(await rows("SELECT id v FROM citation")),
           ...(await rows("SELECT id v FROM set_reading")),
+          ...slugs,
         ],
         guesses: ["FLS-", "0.0051847"],
         contents: [],
         numbers: [...records.map(formatRecordNumber), ...sets.map(formatSetNumber)],
       },
-      ["/api/constraints.csv", "/api/constraints.bib"],
+      ["/api/constraints.csv", "/api/constraints.bib", ...files],
     );
     return answers.flatMap(({ asked, text }) => [
       ...numbersIn(text, SECRETS)
         .filter((number) => !numbersIn(asked, [number]).length)
         .map((number) => `${number} in ${asked}`),
       ...(text.includes("something else") ? [`comment in ${asked}`] : []),
+      ...(RHO.test(text) ? [`ρ in ${asked}`] : []),
     ]);
   }
 
@@ -180,13 +192,39 @@ describe("blindness of correlated sets", () => {
     await theirs.claim(number);
     const { item } = await theirs.read(number, MATRIX, "covariance");
     await theirs.approve(number, item.version);
+    // A saved table and a release that hold it.
+    const all = { filter: {} };
+    const proposal = await hers.propose(all);
+    const taken = proposal.decisions.map(({ id, proposed }: { id: string; proposed: string }) => ({
+      id,
+      option: proposed,
+      byDefault: true,
+    }));
+    const name = "Both bins";
+    const recipe = { ...all, decisions: taken };
+    granted(
+      await saveRecipe(actingAs(server.dataSource, contributor.user), {
+        name,
+        visibility: "public",
+        recipe,
+      }),
+    );
+    const keeper = await server.signedIn(["maintainer"]);
+    granted(await cutRelease(actingAs(server.dataSource, keeper.user), "The first one."));
     const next = await hers.revise(number);
     const saved = await hers.save(next, content);
     await hers.submit(next.number, saved.version);
-    // Unclaimed: the approved one is public.
-    expect((await leaks(editor.agent)).some((leak) => leak.includes("in correlatedSets"))).toBe(
-      true,
-    );
+    // Unclaimed: the approved one is public, alone and in what holds it.
+    const open = await leaks(editor.agent);
+    for (const place of [
+      "correlatedSets",
+      "tableProposal",
+      "fittingTable ",
+      "/api/tables/",
+      "/api/releases/",
+    ]) {
+      expect(open.some((leak) => leak.includes(`in ${place}`))).toBe(true);
+    }
     await setsOf(server, editor.agent).claim(next.number);
     expect(await leaks(editor.agent)).toEqual([]);
     expect((await leaks(contributor.agent)).some((leak) => leak.includes("in mySets"))).toBe(true);

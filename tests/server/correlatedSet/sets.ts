@@ -97,6 +97,12 @@ export function setsOf(server: TestServer, agent: Agent) {
     queue: () => call(`{ setQueue { number state members barredBecause claimedByMe } }`),
     review: (number: string) =>
       call(`query ($number: String!) { setReview(number: $number) { ${REVIEW} } }`, { number }),
+    propose: (recipe: object) =>
+      call(
+        `query ($recipe: TableInput!) { tableProposal(recipe: $recipe) { __typename
+          ... on TableProposal { open decisions { id proposed } } } }`,
+        { recipe },
+      ),
     linksOf: (number: string) =>
       call(
         `query ($number: String!) { constraint(number: $number) { correlatedSets { number label members } } }`,

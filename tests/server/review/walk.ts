@@ -58,12 +58,18 @@ function valuesFor(type: GraphQLInputType, name: string, known: Known): unknown[
   if (isInputObjectType(type)) {
     if (type.name === "ConstraintFieldsInput") return [{}, ...known.contents];
     // One field at a time; the walk is after what each of them lets through.
+    const fields = Object.values(type.getFields());
+    const least = Object.fromEntries(
+      fields
+        .filter((field) => isNonNullType(field.type))
+        .map((field) => [field.name, valuesFor(field.type, field.name, known)[0]]),
+    );
     return [
-      {},
-      ...Object.values(type.getFields()).flatMap((field) =>
+      least,
+      ...fields.flatMap((field) =>
         valuesFor(field.type, field.name, known)
           .filter((one) => one !== null)
-          .map((one) => ({ [field.name]: one })),
+          .map((one) => ({ ...least, [field.name]: one })),
       ),
     ];
   }
@@ -71,7 +77,9 @@ function valuesFor(type: GraphQLInputType, name: string, known: Known): unknown[
     case "ID":
       return [null, ...known.ids];
     case "String":
-      return name === "number" || name === "member" ? [...known.numbers] : [null, "", ...known.guesses];
+      return name === "number" || name === "member"
+        ? [...known.numbers]
+        : [null, "", ...known.guesses];
     case "Int":
     case "Float":
       return [null, 0, 7];
