@@ -27,6 +27,8 @@ const ACCOUNT: Place = { name: "Account", href: "/account", icon: "account-circl
 function isAt(path: string, place: Place): boolean {
   // A release is one of the tables in all but its address.
   if (place.href === "/tables" && path.startsWith("/releases")) return true;
+  // Named data are looked at from the constraints that use them.
+  if (place.href === "/constraints" && /^\/data(\/|$)/.test(path)) return true;
   return place.href === "/" ? path === "/" : path.startsWith(place.href);
 }
 
