@@ -6,6 +6,10 @@ import { buildSchema, type BuildSchemaOptions } from "type-graphql";
 import { AccountResolver } from "~server/account/account.resolver";
 import { PeopleResolver } from "~server/account/people.resolver";
 import { SessionResolver } from "~server/account/session.resolver";
+import {
+  AuthorCheckMarkResolver,
+  AuthorCheckResolver,
+} from "~server/authorCheck/authorCheck.resolver";
 import { CitationResolver } from "~server/citation/citation.resolver";
 import { RoleChecker } from "~server/common/authChecker";
 import { ConstraintResolver } from "~server/constraint/constraint.resolver";
@@ -25,6 +29,8 @@ import { RowsSinceResolver } from "~server/recordLife/rowsSince.resolver";
 import { CaughtMailResolver } from "~server/mail/caughtMail.resolver";
 import { ReleaseResolver } from "~server/release/release.resolver";
 import { ReviewResolver } from "~server/review/review.resolver";
+import { ThreadResolver } from "~server/review/thread.resolver";
+import { TrailResolver } from "~server/review/trail.resolver";
 import { TableResolver } from "~server/table/table.resolver";
 
 /** Every resolver of the server; each folder adds its own here. */
@@ -41,6 +47,10 @@ export const resolvers = [
   ErrorReportCountResolver,
   SubmissionResolver,
   ReviewResolver,
+  ThreadResolver,
+  TrailResolver,
+  AuthorCheckResolver,
+  AuthorCheckMarkResolver,
   TableResolver,
   ReleaseResolver,
   CorrelatedSetResolver,

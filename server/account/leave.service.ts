@@ -2,6 +2,7 @@ import { randomBytes } from "node:crypto";
 
 import { In, type EntityManager } from "typeorm";
 
+import { AuthorCheck } from "~server/authorCheck/authorCheck.entity";
 import type { RequestContext } from "~server/common/context";
 import { done, refuse, Refusal, type Done } from "~server/common/outcomes";
 import { updateAt } from "~server/constraint/draft.service";
@@ -13,6 +14,7 @@ import { ImportMatch } from "~server/import/importMatch.entity";
 import { CaughtMailRow } from "~server/mail/caughtMail.entity";
 import { queueMail } from "~server/mail/outbox";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
+import { Recusal } from "~server/review/recusal.entity";
 import { Upload } from "~server/upload/upload.entity";
 import { formatQuotable } from "~shared/identifiers/recordNumber";
 import { FORMER_MEMBER, type CreditAfterwards } from "~shared/review/formerMember";
@@ -121,4 +123,10 @@ async function forget(manager: EntityManager, { id, email }: User): Promise<void
   const nobody = { reporterId: null, reporterEmail: null };
   await manager.update(ErrorReport, { reporterId: id }, nobody);
   await manager.update(ErrorReport, { reporterEmail: email }, { reporterEmail: null });
+  await manager.update(
+    AuthorCheck,
+    { authorEmail: email },
+    { authorName: null, authorEmail: null },
+  );
+  await manager.delete(Recusal, { editorId: id });
 }

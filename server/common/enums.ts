@@ -16,6 +16,7 @@ import {
 import { LINK_RELATIONS, type LinkRelation } from "~shared/dependence/relation";
 import { EVIDENCE_KINDS, type EvidenceKind } from "~shared/evidence/evidence";
 import { METHOD_FAMILIES, type MethodFamily } from "~shared/methods/vocabulary";
+import { CHECK_STATES, CHECK_VERDICTS, LINK_STANDINGS } from "~shared/review/authorCheck";
 import { REPORT_OUTCOMES, REPORT_STATES } from "~shared/review/errorReport";
 import { NOTICE_KINDS, type NoticeKind } from "~shared/review/notice";
 import { CREDITS_AFTERWARDS } from "~shared/review/formerMember";
@@ -62,6 +63,9 @@ export const RecordStateEnum = enumOf<RecordState>("RecordState", RECORD_STATES)
 export const RoleEnum = enumOf<Role>("Role", ROLES);
 export const FindingGradeEnum = enumOf("FindingGrade", FINDING_GRADES);
 export const ConstraintSortEnum = enumOf("ConstraintSort", CONSTRAINT_SORTS);
+export const CheckStateEnum = enumOf("CheckState", CHECK_STATES);
+export const CheckVerdictEnum = enumOf("CheckVerdict", CHECK_VERDICTS);
+export const LinkStandingEnum = enumOf("LinkStanding", LINK_STANDINGS);
 export const ReportStateEnum = enumOf("ReportState", REPORT_STATES);
 export const ReportOutcomeEnum = enumOf("ReportOutcome", REPORT_OUTCOMES);
 export const CreditAfterwardsEnum = enumOf("CreditAfterwards", CREDITS_AFTERWARDS);

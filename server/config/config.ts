@@ -13,6 +13,11 @@ export interface Limits {
   /** Reported errors per caller, and from all callers together, each hour. */
   reportPerCaller: number;
   reportInAll: number;
+  /** Links sent to a paper's author per record and per address, each day. */
+  checksPerRecord: number;
+  checksPerAddress: number;
+  /** Answers to such links per caller and hour. */
+  checkAnswersPerCaller: number;
   /** Papers looked up elsewhere per person and hour. */
   lookUpsPerPerson: number;
   /** GraphQL requests per caller and minute. */
@@ -69,6 +74,9 @@ export const DEFAULT_LIMITS: Limits = {
   mailPerCaller: 30,
   reportPerCaller: 10,
   reportInAll: 100,
+  checksPerRecord: 5,
+  checksPerAddress: 3,
+  checkAnswersPerCaller: 20,
   lookUpsPerPerson: 100,
   graphqlPerMinute: 600,
   uploadsPerMinute: 60,

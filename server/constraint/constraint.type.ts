@@ -119,6 +119,15 @@ export class FindingAnswer {
   @Field(() => Boolean) accepted!: boolean;
 }
 
+@ObjectType({ description: "What was written below a comment after its first answer." })
+export class ThreadMessage {
+  @Field(() => ID) id!: string;
+  @Field(() => String) by!: string;
+  @Field(() => Boolean, { description: "Whether the viewer wrote it." }) mine!: boolean;
+  @Field(() => String) text!: string;
+  @Field(() => Date) at!: Date;
+}
+
 @ObjectType()
 export class FieldComment {
   @Field(() => ID) id!: string;
@@ -127,6 +136,8 @@ export class FieldComment {
   @Field(() => String) by!: string;
   @Field(() => Date) at!: Date;
   @Field(() => String, { nullable: true }) answer!: string | null;
+  @Field(() => [ThreadMessage], { description: "What followed the answer, oldest first." })
+  messages!: ThreadMessage[];
 }
 
 /** An approved record as the API shows it. */

@@ -95,6 +95,10 @@ export class Revision {
   @Column({ type: "datetime", precision: 6, nullable: true })
   claimedUntil!: Date | null;
 
+  /** How often the present holder has lengthened the claim. */
+  @Column({ type: "tinyint", unsigned: true, default: 0 })
+  claimRenewals!: number;
+
   @Column({ type: "uuid", nullable: true })
   decidedById!: string | null;
 

@@ -1,22 +1,23 @@
+import type { EntityManager } from "typeorm";
+
 import { RoleGrant } from "~server/account/roleGrant.entity";
 import { User } from "~server/account/user.entity";
 import type { ViewerIdentity } from "~server/common/context";
 import type { Acting, Change } from "~server/event/acting";
+import { barredFromPaper, papersLeftBy } from "~server/review/recusal.service";
 import { formatSetNumber } from "~shared/identifiers/setNumber";
-import { isAuthor } from "~shared/review/recusal";
 
 import type { CorrelatedSet } from "./correlatedSet.entity";
 
 // As for submissions: none of these holds a number of the matrix, a label or a comment.
 
-/** Whether a person signs this set's paper, under any of their names. */
-export function isAuthorOfSet(
-  person: Pick<ViewerIdentity, "nameOnPapers"> & { furtherNames?: readonly string[] },
+/** Why a person can't judge this set's paper, in words: an author, or said not to be impartial. */
+export async function barredFromSetsPaper(
+  manager: EntityManager,
+  person: Pick<ViewerIdentity, "id" | "nameOnPapers" | "furtherNames" | "orcid">,
   set: CorrelatedSet,
-): boolean {
-  return [person.nameOnPapers, ...(person.furtherNames ?? [])].some((name) =>
-    isAuthor(name, set.citation.authors),
-  );
+): Promise<string | null> {
+  return barredFromPaper(person, set.citation, await papersLeftBy(manager, person.id));
 }
 
 function paper({ citation }: CorrelatedSet): string {
@@ -37,7 +38,7 @@ export async function tellEditorsOfSet(
     .orderBy("user.email")
     .getMany();
   for (const editor of editors) {
-    if (isAuthorOfSet(editor, set)) continue;
+    if ((await barredFromSetsPaper(here.manager, editor, set)) !== null) continue;
     await here.mail({
       to: editor.email,
       subject: `${number} waits for a second reading`,

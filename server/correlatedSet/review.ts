@@ -19,7 +19,7 @@ import { CLAIM_HOURS } from "~shared/review/states";
 
 import { CorrelatedSet, SetReading } from "./correlatedSet.entity";
 import { alreadyIn } from "./draft";
-import { isAuthorOfSet, tellOwnerOfSet } from "./mails";
+import { barredFromSetsPaper, tellOwnerOfSet } from "./mails";
 import { loadSet, lockMembers, membersFor, reloadSet, setWithMember, updateSetAt } from "./store";
 
 const HOUR_MS = 3_600_000;
@@ -51,9 +51,8 @@ export async function barredFromSet(
   if (!mayWithOwn("reviewSet", set.ownerId === editor.id)) {
     return "You submitted it. Another editor has to read it.";
   }
-  if (isAuthorOfSet(editor, set)) {
-    return "You are an author of this paper. Another editor has to read it.";
-  }
+  const paper = await barredFromSetsPaper(manager, editor, set);
+  if (paper) return paper;
   const blind = await recordsReadBlind(manager, editor, now);
   const held = set.members.find((number) => blind.has(parseRecordNumber(number) ?? 0));
   if (held !== undefined) return `You are reading ${held} yourself. Store that reading first.`;

@@ -46,6 +46,44 @@ export async function seesRevision(
   return !(await hasUnread(manager, viewer.id, revision.constraintId));
 }
 
+/**
+ * Which of these revisions a person sees, by the rules of `seesRevision`, in three queries for a
+ * whole list.
+ *
+ * @param revisions - With their records loaded (`constraint.ownerId`).
+ * @returns Their ids.
+ */
+export async function seenAmong(
+  manager: EntityManager,
+  viewer: ViewerIdentity | null,
+  revisions: readonly Revision[],
+  now: Date,
+): Promise<Set<string>> {
+  const blind = await recordsReadBlind(manager, viewer, now);
+  const open = (revision: Revision): boolean =>
+    revision.constraint.ownerId === viewer?.id ||
+    (revision.state === "approved" && !blind.has(revision.constraintId));
+  const seen = new Set(revisions.filter(open).map(({ id }) => id));
+  const others = revisions.filter(({ id, state }) => !seen.has(id) && state !== "approved");
+  if (others.length === 0 || !viewer || !hasRole(viewer, "editor")) return seen;
+  const read: { id: string }[] = await manager.query(
+    "SELECT revisionId AS id FROM reading WHERE editorId = ? AND revisionId IN (?)",
+    [viewer.id, others.map(({ id }) => id)],
+  );
+  const unread: { id: number }[] = await manager.query(
+    `SELECT DISTINCT pending.constraintId AS id FROM revision pending
+      WHERE pending.constraintId IN (?) AND pending.state IN ('submitted', 'inReview')
+        AND NOT EXISTS (SELECT 1 FROM reading r WHERE r.revisionId = pending.id AND r.editorId = ?)`,
+    [others.map(({ constraintId }) => constraintId), viewer.id],
+  );
+  const readIds = new Set(read.map(({ id }) => id));
+  const withUnread = new Set(unread.map(({ id }) => Number(id)));
+  for (const { id, constraintId } of others) {
+    if (readIds.has(id) && !withUnread.has(constraintId)) seen.add(id);
+  }
+  return seen;
+}
+
 /** Whether this editor has stored a reading of this revision. */
 export async function hasRead(
   manager: EntityManager,

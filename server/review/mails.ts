@@ -3,9 +3,11 @@ import { User } from "~server/account/user.entity";
 import type { Revision } from "~server/constraint/revision.entity";
 import type { Acting, Change } from "~server/event/acting";
 import { formatQuotable } from "~shared/identifiers/recordNumber";
-import { isAuthor } from "~shared/review/recusal";
+import { CLAIM_HOURS } from "~shared/review/states";
 import type { FieldName } from "~shared/statement/fields";
 import { FIELD_NAMES } from "~shared/statement/words";
+
+import { barredBecause, papersLeftBy } from "./recusal.service";
 
 // A mail is read by whoever holds the mailbox, and in the demonstration by maintainers: none of
 // these holds a number of a submission, nor a comment, which may quote one.
@@ -29,9 +31,9 @@ export async function tellEditors(here: Change, who: Acting, revision: Revision)
     })
     .orderBy("user.email")
     .getMany();
-  const authors = revision.citation?.authors ?? [];
   for (const editor of editors) {
-    if (isAuthor(editor.nameOnPapers, authors)) continue;
+    const left = await papersLeftBy(here.manager, editor.id);
+    if (barredBecause(revision, editor, left) !== null) continue;
     await here.mail({
       to: editor.email,
       subject: `${quotable(revision)} waits for a second reading`,
@@ -43,6 +45,51 @@ export async function tellEditors(here: Change, who: Acting, revision: Revision)
       ].join("\n\n"),
     });
   }
+}
+
+/** Tells an editor that another one handed a submission to them. */
+export async function tellHandedOver(
+  here: Change,
+  who: Acting,
+  revision: Revision,
+  next: User,
+): Promise<void> {
+  await here.mail({
+    to: next.email,
+    subject: `${quotable(revision)} was handed to you`,
+    text: [
+      `${who.viewer.nameOnPapers} handed ${quotable(revision)} to you for a second reading.`,
+      `Paper: ${paper(revision)}.`,
+      `You hold it for ${CLAIM_HOURS} hours and read the paper on your own: ${who.publicUrl}/desk/review/${revision.id}`,
+      "If you can't read it, release it there; it goes back into the queue.",
+      "",
+    ].join("\n\n"),
+  });
+}
+
+/** Tells the other side of a comment's thread that something was written; not what. */
+export async function tellThread(
+  here: Change,
+  who: Acting,
+  revision: Revision,
+  field: string,
+  byContributor: boolean,
+): Promise<void> {
+  const name = FIELD_NAMES[field as FieldName] ?? "The paper";
+  const to = byContributor
+    ? await here.manager.findOneBy(User, { id: revision.claimedById ?? "" })
+    : await owner(here, revision);
+  if (!to) return; // nobody holds it now; whoever claims it next reads the thread
+  const page = byContributor ? "review" : "submit";
+  await here.mail({
+    to: to.email,
+    subject: `${quotable(revision)}: an entry about ${name.toLowerCase()}`,
+    text: [
+      `${byContributor ? "The contributor" : "An editor"} wrote about ${name.toLowerCase()} in ${quotable(revision)} of ${paper(revision)}.`,
+      `Read it at ${who.publicUrl}/desk/${page}/${revision.id}`,
+      "",
+    ].join("\n\n"),
+  });
 }
 
 async function owner(here: Change, revision: Revision): Promise<User> {

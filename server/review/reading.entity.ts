@@ -54,4 +54,8 @@ export class Reading {
 
   @Column({ type: "json" })
   corrections!: Correction[];
+
+  /** Codes of the checklist (shared/review/checklist.ts) that this editor has ticked. */
+  @Column({ type: "json" })
+  ticked!: string[];
 }

@@ -9,8 +9,17 @@ import type { Revision } from "~server/constraint/revision.entity";
 import { acting } from "~server/event/acting";
 
 import { hasRead } from "./blindness";
+import * as claims from "./claim.service";
+import { papersLeftBy } from "./recusal.service";
 import * as reviews from "./review.service";
-import { queueItem, QueueItem, ReturnComment, Review, ReviewResult } from "./review.type";
+import {
+  OtherEditor,
+  queueItem,
+  QueueItem,
+  ReturnComment,
+  Review,
+  ReviewResult,
+} from "./review.type";
 import { reviewFor } from "./review.view";
 
 @Resolver()
@@ -19,8 +28,9 @@ export class ReviewResolver {
   @Query(() => [QueueItem])
   async queue(@Ctx() ctx: RequestContext): Promise<QueueItem[]> {
     const who = acting(ctx);
-    const revisions = await reviews.queued(who);
-    return revisions.map((revision) => queueItem(revision, who.viewer, who.now));
+    const revisions = await claims.queued(who);
+    const left = await papersLeftBy(ctx.database.manager, who.viewer.id);
+    return revisions.map((revision) => queueItem(revision, who.viewer, left, who.now));
   }
 
   @Requires("readQueue")
@@ -29,7 +39,7 @@ export class ReviewResolver {
     @Ctx() ctx: RequestContext,
     @Arg("id", () => ID) id: string,
   ): Promise<Review | null> {
-    await reviews.lapseClaims(acting(ctx));
+    await claims.lapseClaims(acting(ctx));
     const revision = await loadRevision(ctx.database.manager, id);
     if (!revision?.submittedAt) return null;
     const waiting = revision.state === "submitted" || revision.state === "inReview";
@@ -44,7 +54,7 @@ export class ReviewResolver {
     @Ctx() ctx: RequestContext,
     @Arg("id", () => ID) id: string,
   ): Promise<typeof ReviewResult> {
-    return outcome(ctx, await reviews.claim(acting(ctx), id));
+    return outcome(ctx, await claims.claim(acting(ctx), id));
   }
 
   @Requires("releaseClaim")
@@ -53,7 +63,55 @@ export class ReviewResolver {
     @Ctx() ctx: RequestContext,
     @Arg("id", () => ID) id: string,
   ): Promise<typeof DoneResult> {
-    return reviews.releaseClaim(acting(ctx), id);
+    return claims.releaseClaim(acting(ctx), id);
+  }
+
+  @Requires("claimSubmission")
+  @Mutation(() => ReviewResult, {
+    description:
+      "Starts the hours of one's own claim anew; in its last day only, and twice at most.",
+  })
+  async renewClaim(
+    @Ctx() ctx: RequestContext,
+    @Arg("id", () => ID) id: string,
+  ): Promise<typeof ReviewResult> {
+    return outcome(ctx, await claims.renewClaim(acting(ctx), id));
+  }
+
+  @Requires("handOverClaim")
+  @Query(() => [OtherEditor], {
+    description: "Editors who can take over what one holds; none when one doesn't hold it.",
+  })
+  async handOverList(
+    @Ctx() ctx: RequestContext,
+    @Arg("id", () => ID) id: string,
+  ): Promise<OtherEditor[]> {
+    const editors = await claims.handOverList(acting(ctx), id);
+    return editors.map(({ id: editorId, nameOnPapers }) =>
+      Object.assign(new OtherEditor(), { id: editorId, nameOnPapers }),
+    );
+  }
+
+  @Requires("handOverClaim")
+  @Mutation(() => DoneResult)
+  handOverClaim(
+    @Ctx() ctx: RequestContext,
+    @Arg("id", () => ID) id: string,
+    @Arg("editorId", () => ID) editorId: string,
+  ): Promise<typeof DoneResult> {
+    return claims.handOverClaim(acting(ctx), id, editorId);
+  }
+
+  @Requires("tickChecklist")
+  @Mutation(() => ReviewResult, {
+    description: "Keeps which points of the checklist are ticked: these and no others.",
+  })
+  async tickChecklist(
+    @Ctx() ctx: RequestContext,
+    @Arg("id", () => ID) id: string,
+    @Arg("codes", () => [String]) codes: string[],
+  ): Promise<typeof ReviewResult> {
+    return outcome(ctx, await reviews.tickChecklist(acting(ctx), id, codes));
   }
 
   @Requires("storeReading")

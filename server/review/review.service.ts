@@ -2,17 +2,15 @@ import type { EntityManager } from "typeorm";
 
 import { done, refuse, type Done, type Refusal } from "~server/common/outcomes";
 import { Constraint } from "~server/constraint/constraint.entity";
-import { loadRevision, reload, updateAt } from "~server/constraint/draft.service";
+import { reload, updateAt } from "~server/constraint/draft.service";
 import {
   FIELD_NAMES_IN_ORDER,
   fieldsFromInput,
   type ConstraintFieldsInput,
 } from "~server/constraint/fields.type";
 import { Revision } from "~server/constraint/revision.entity";
-import { change, type Acting, type Change } from "~server/event/acting";
-import { appendEvent } from "~server/event/eventLog";
+import { change, type Acting } from "~server/event/acting";
 import { comeIntoUse, refuseIntoUse } from "~server/recordLife/intoUse";
-import { formatQuotable } from "~shared/identifiers/recordNumber";
 import {
   READING_FIELDS,
   compareReading,
@@ -20,142 +18,17 @@ import {
   mergeReading,
   readingMissing,
 } from "~shared/review/reading";
-import { mayWithOwn } from "~shared/review/policy";
-import { isAuthor } from "~shared/review/recusal";
-import { CLAIM_HOURS } from "~shared/review/states";
+import { checklistFor } from "~shared/review/checklist";
 import { emptyFields, type ConstraintFields, type FieldName } from "~shared/statement/fields";
 import { FIELD_NAMES } from "~shared/statement/words";
 
+import { CHANGED, held, holdsClaim, subjectOf } from "./claim.service";
 import { FieldCommentRecord } from "./comment.entity";
 import { tellApproved, tellReturned } from "./mails";
 import { Reading } from "./reading.entity";
+import { barredBecause, papersLeftBy, type Editor } from "./recusal.service";
 
-const HOUR_MS = 3_600_000;
-
-export function claimIsLive(revision: Revision, now: Date): boolean {
-  return (
-    revision.state === "inReview" && revision.claimedUntil !== null && revision.claimedUntil > now
-  );
-}
-
-export function holdsClaim(revision: Revision, editorId: string, now: Date): boolean {
-  return claimIsLive(revision, now) && revision.claimedById === editorId;
-}
-
-/** Why this person can't read this submission, in words, or null. */
-export function barredBecause(
-  revision: Revision,
-  editor: { id: string; nameOnPapers: string },
-): string | null {
-  if (!mayWithOwn("storeReading", revision.constraint.ownerId === editor.id)) {
-    return "You submitted it. Another editor has to read it.";
-  }
-  if (isAuthor(editor.nameOnPapers, revision.citation?.authors ?? [])) {
-    return "You are an author of this paper. Another editor has to read it.";
-  }
-  return null;
-}
-
-/**
- * Puts submissions whose claim has run out back into the queue. Called before the queue is read
- * and before a claim is made, so no clock has to run for it.
- */
-export async function lapseClaims(who: Pick<Acting, "database" | "now">): Promise<void> {
-  const { database, now } = who;
-  const lapsed = await database.manager
-    .createQueryBuilder(Revision, "revision")
-    .select(["revision.id", "revision.version", "revision.constraintId", "revision.ordinal"])
-    .where("revision.state = 'inReview' AND revision.claimedUntil <= :now", { now })
-    .getMany();
-  for (const revision of lapsed) {
-    await database.transaction("READ COMMITTED", async (manager) => {
-      const won = await updateAt(manager, revision.id, revision.version, ["inReview"], {
-        state: "submitted",
-        claimedById: null,
-        claimedUntil: null,
-      });
-      if (!won) return; // someone else has put it back meanwhile
-      await appendEvent(manager, {
-        kind: "claim.lapsed",
-        actorId: null,
-        subject: formatQuotable(revision.constraintId, revision.ordinal),
-        at: now,
-      });
-    });
-  }
-}
-
-/** Submissions that wait or are being read, oldest first. */
-export async function queued(who: Pick<Acting, "database" | "now">): Promise<Revision[]> {
-  await lapseClaims(who);
-  return who.database.manager.find(Revision, {
-    where: [{ state: "submitted" }, { state: "inReview" }],
-    relations: { constraint: true, citation: true },
-    order: { submittedAt: "ASC", id: "ASC" },
-  });
-}
-
-const unknown = (): Refusal => refuse("notFound", "There is no such submission in the queue.");
-const NOT_YOURS =
-  "You don't hold this submission any more: the claim has ended or was never yours. Claim it again.";
-const CHANGED = "This submission has changed since you opened it. Reload the page.";
-
-/** Takes a submission for 72 hours. Of several who try at once, one gets it. */
-export async function claim(who: Acting, id: string): Promise<Revision | Refusal> {
-  await lapseClaims(who);
-  return change<Revision | Refusal>(who, async (here) => {
-    const revision = await loadRevision(here.manager, id);
-    if (!revision || !["submitted", "inReview"].includes(revision.state)) return unknown();
-    const barred = barredBecause(revision, who.viewer);
-    if (barred) return refuse("barred", barred);
-    if (holdsClaim(revision, who.viewer.id, who.now)) return revision;
-    const won = await updateAt(here.manager, id, revision.version, ["submitted"], {
-      state: "inReview",
-      claimedById: who.viewer.id,
-      claimedUntil: new Date(who.now.getTime() + CLAIM_HOURS * HOUR_MS),
-    });
-    if (!won) return refuse("claimed", "Another editor is reading it already.");
-    await here.event({ kind: "claim.made", subject: subjectOf(revision) });
-    return reload(here.manager, id);
-  });
-}
-
-function subjectOf(revision: Revision): string {
-  return formatQuotable(revision.constraintId, revision.ordinal);
-}
-
-/** Gives a claimed submission back to the queue. A stored reading stays on record. */
-export async function releaseClaim(who: Acting, id: string): Promise<Done | Refusal> {
-  return change<Done | Refusal>(who, async (here) => {
-    const revision = await loadRevision(here.manager, id);
-    if (!revision || !holdsClaim(revision, who.viewer.id, who.now)) {
-      return refuse("notClaimed", NOT_YOURS);
-    }
-    const won = await updateAt(here.manager, id, revision.version, ["inReview"], {
-      state: "submitted",
-      claimedById: null,
-      claimedUntil: null,
-    });
-    if (!won) return refuse("stale", CHANGED);
-    await here.event({ kind: "claim.released", subject: subjectOf(revision) });
-    return done("It is back in the queue.");
-  });
-}
-
-/** The submission if this editor holds it now; its row stays locked until the change ends. */
-async function held(here: Change, who: Acting, id: string): Promise<Revision | Refusal> {
-  await here.manager
-    .createQueryBuilder(Revision, "revision")
-    .select("revision.id")
-    .setLock("pessimistic_write")
-    .where("revision.id = :id", { id })
-    .getOne();
-  const revision = await loadRevision(here.manager, id);
-  if (!revision) return unknown();
-  if (!holdsClaim(revision, who.viewer.id, who.now)) return refuse("notClaimed", NOT_YOURS);
-  const barred = barredBecause(revision, who.viewer);
-  return barred ? refuse("barred", barred) : revision;
-}
+export { claim, releaseClaim } from "./claim.service";
 
 /** What an earlier reading of this record already settles, if this revision follows a read one. */
 export async function earlierReading(
@@ -224,6 +97,7 @@ export async function storeReading(
       latest: content,
       typed,
       corrections: [],
+      ticked: [],
     } as never);
     await here.event({ kind: "reading.stored", subject: subjectOf(revision) });
     return reload(manager, id);
@@ -314,6 +188,30 @@ export async function acceptAnswer(
   });
 }
 
+/**
+ * Keeps which points of the checklist this editor has ticked, all of them at once; codes that the
+ * submission's checklist doesn't have are left out.
+ */
+export async function tickChecklist(
+  who: Acting,
+  id: string,
+  codes: readonly string[],
+): Promise<Revision | Refusal> {
+  return change<Revision | Refusal>(who, async (here) => {
+    const revision = await held(here, who, id);
+    if (!(revision instanceof Revision)) return revision;
+    const ticked = checklistFor(revision.fields)
+      .map(({ code }) => code)
+      .filter((code) => codes.includes(code));
+    const own = { revisionId: id, editorId: who.viewer.id };
+    if (!(await here.manager.existsBy(Reading, own))) {
+      return refuse("notRead", "Store your own reading first.");
+    }
+    await here.manager.update(Reading, own, { ticked });
+    return revision;
+  });
+}
+
 async function hasStoredReading(
   manager: EntityManager,
   who: Acting,
@@ -326,10 +224,11 @@ async function hasStoredReading(
 export function blockersOf(
   revision: Revision,
   reading: Reading | null,
-  editor: { id: string; nameOnPapers: string },
+  editor: Editor,
+  declared: ReadonlySet<string>,
   now: Date,
 ): string[] {
-  const barred = barredBecause(revision, editor);
+  const barred = barredBecause(revision, editor, declared);
   if (barred) return [barred];
   const blockers: string[] = [];
   if (!holdsClaim(revision, editor.id, now)) blockers.push("Claim it first.");
@@ -352,6 +251,16 @@ export function blockersOf(
         : `${open.length} answers of the contributor are not accepted yet.`,
     );
   }
+  const unticked = checklistFor(revision.fields).filter(
+    ({ code }) => !reading.ticked.includes(code),
+  );
+  if (unticked.length > 0) {
+    blockers.push(
+      unticked.length === 1
+        ? "One point of the checklist is not ticked yet."
+        : `${unticked.length} points of the checklist are not ticked yet.`,
+    );
+  }
   return blockers;
 }
 
@@ -372,7 +281,8 @@ export async function approve(
     if (!(revision instanceof Revision)) return revision;
     const { manager } = here;
     const reading = await manager.findOneBy(Reading, { revisionId: id, editorId: who.viewer.id });
-    const [blocker] = blockersOf(revision, reading, who.viewer, who.now);
+    const left = await papersLeftBy(manager, who.viewer.id);
+    const [blocker] = blockersOf(revision, reading, who.viewer, left, who.now);
     if (blocker !== undefined) return refuse("blocked", blocker);
     const linked = await refuseIntoUse(here, who, revision);
     if (linked) return linked;
@@ -388,7 +298,11 @@ export async function approve(
       { id: revision.constraintId },
       { approvedRevisionId: revision.id },
     );
-    await here.event({ kind: "revision.approved", subject: subjectOf(revision) });
+    await here.event({
+      kind: "revision.approved",
+      subject: subjectOf(revision),
+      detail: { checklist: reading?.ticked.length ?? 0 },
+    });
     await comeIntoUse(here, who, revision);
     await tellApproved(here, who, revision);
     return done(`${subjectOf(revision)} is approved.`);

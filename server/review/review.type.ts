@@ -15,7 +15,8 @@ import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 import type { RevisionState } from "~shared/review/states";
 import type { VersionRead } from "~shared/statement/fields";
 
-import { barredBecause, claimIsLive } from "./review.service";
+import { claimIsLive, notRenewable } from "./claim.service";
+import { barredBecause, type Editor } from "./recusal.service";
 
 @ObjectType({
   description: "What an editor sees of a submission before the second reading: no number of it.",
@@ -38,7 +39,45 @@ export class QueueItem {
     description: "Why this person can't claim it, or null.",
   })
   barredBecause!: string | null;
+  @Field(() => Boolean, { description: "Whether this person leaves the paper to other editors." })
+  leftToOthers!: boolean;
+  @Field(() => String, {
+    nullable: true,
+    description:
+      "Why one's own claim can't be lengthened now; null when it can, or is not one's own.",
+  })
+  notRenewable!: string | null;
 }
+
+@ObjectType({ description: "An editor who can take a submission over." })
+export class OtherEditor {
+  @Field(() => ID) id!: string;
+  @Field(() => String) nameOnPapers!: string;
+}
+
+@ObjectType({ description: "A paper that the viewer leaves to other editors." })
+export class LeftPaper {
+  @Field(() => CitationType) citation!: CitationType;
+  @Field(() => String, { nullable: true }) reason!: string | null;
+  @Field(() => Date) at!: Date;
+}
+
+@ObjectType()
+export class ChecklistPoint {
+  @Field(() => String) code!: string;
+  @Field(() => String) text!: string;
+  @Field(() => Boolean) ticked!: boolean;
+}
+
+@ObjectType({ description: "A comment with everything written below it." })
+export class CommentThread {
+  @Field(() => FieldComment) comment!: FieldComment;
+}
+
+export const ThreadResult = createUnionType({
+  name: "ThreadResult",
+  types: () => [CommentThread, Refusal] as const,
+});
 
 @ObjectType()
 export class ReviewField {
@@ -73,6 +112,8 @@ export class Review {
   @Field(() => [FindingAnswer]) answers!: FindingAnswer[];
   @Field(() => [FieldComment]) comments!: FieldComment[];
   @Field(() => [FieldChange]) changes!: FieldChange[];
+  @Field(() => [ChecklistPoint], { description: "All are ticked before it can be approved." })
+  checklist!: ChecklistPoint[];
 }
 
 export const ReviewResult = createUnionType({
@@ -89,7 +130,8 @@ export class ReturnComment {
 /** A waiting submission for one editor: place, page and version lead to the paper, no more. */
 export function queueItem(
   revision: Revision,
-  editor: { id: string; nameOnPapers: string },
+  editor: Editor,
+  declared: ReadonlySet<string>,
   now: Date,
 ): QueueItem {
   if (!revision.citation || !revision.submittedAt) {
@@ -109,6 +151,8 @@ export function queueItem(
     submittedAt: revision.submittedAt,
     claimedByMe: live && revision.claimedById === editor.id,
     claimedUntil: live ? revision.claimedUntil : null,
-    barredBecause: barredBecause(revision, editor),
+    barredBecause: barredBecause(revision, editor, declared),
+    leftToOthers: declared.has(revision.citation.id),
+    notRenewable: live && revision.claimedById === editor.id ? notRenewable(revision, now) : null,
   });
 }

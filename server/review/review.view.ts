@@ -3,6 +3,7 @@ import { fieldChanges, FindingAnswer, FindingType } from "~server/constraint/con
 import { fieldsType } from "~server/constraint/fields.type";
 import { nameOf } from "~server/constraint/names";
 import { Revision } from "~server/constraint/revision.entity";
+import { checklistFor } from "~shared/review/checklist";
 import { compareReading } from "~shared/review/reading";
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
 import { fieldText } from "~shared/statement/words";
@@ -11,7 +12,8 @@ import { findingFor, recordsReadBlind, seesRevision } from "./blindness";
 import { commentsOf } from "./comments";
 import { Reading } from "./reading.entity";
 import { blockersOf, fieldsToRead } from "./review.service";
-import { queueItem, Review, ReviewField } from "./review.type";
+import { papersLeftBy } from "./recusal.service";
+import { ChecklistPoint, queueItem, Review, ReviewField } from "./review.type";
 
 /** A submission as this editor may see it now: after the reading with everything, before it without. */
 export async function reviewFor(ctx: RequestContext, revision: Revision): Promise<Review> {
@@ -19,12 +21,13 @@ export async function reviewFor(ctx: RequestContext, revision: Revision): Promis
   const editor = requireViewer(ctx);
   const now = new Date();
   const waiting = revision.state === "submitted" || revision.state === "inReview";
+  const left = await papersLeftBy(manager, editor.id);
   const reading = await manager.findOneBy(Reading, {
     revisionId: revision.id,
     editorId: editor.id,
   });
   const review = Object.assign(new Review(), {
-    item: queueItem(revision, editor, now),
+    item: queueItem(revision, editor, left, now),
     fieldsToRead: waiting && !reading ? await fieldsToRead(manager, revision) : [],
     readingStoredAt: reading?.storedAt ?? null,
     blockers: waiting ? [] : ["It is decided."],
@@ -35,10 +38,11 @@ export async function reviewFor(ctx: RequestContext, revision: Revision): Promis
     answers: [],
     comments: [],
     changes: [],
+    checklist: [],
   });
   if (waiting && !reading) {
     // Said without comparing anything: before the reading a blocker tells nothing of the content.
-    review.blockers = blockersOf(revision, null, editor, now);
+    review.blockers = blockersOf(revision, null, editor, left, now);
     return review;
   }
   if (!reading || !(await seesRevision(manager, editor, revision, now))) return review;
@@ -49,7 +53,7 @@ export async function reviewFor(ctx: RequestContext, revision: Revision): Promis
       : await manager.findOneBy(Revision, { id: revision.followsId });
   const blind = await recordsReadBlind(manager, editor, now);
   return Object.assign(review, {
-    blockers: waiting ? blockersOf(revision, reading, editor, now) : review.blockers,
+    blockers: waiting ? blockersOf(revision, reading, editor, left, now) : review.blockers,
     comparison: comparison(reading, revision.fields),
     contributor: await nameOf(ctx)(revision.constraint.ownerId),
     submission: fieldsType(revision.fields),
@@ -62,6 +66,9 @@ export async function reviewFor(ctx: RequestContext, revision: Revision): Promis
       revision.state === "returned" ? revision.id : (revision.followsId ?? revision.id),
     ),
     changes: followed ? fieldChanges(followed.fields, revision.fields) : [],
+    checklist: checklistFor(revision.fields).map(({ code, text }) =>
+      Object.assign(new ChecklistPoint(), { code, text, ticked: reading.ticked.includes(code) }),
+    ),
   });
 }
 

@@ -25,6 +25,9 @@ export type LimitName =
   | "mailPerCaller"
   | "reportPerCaller"
   | "reportInAll"
+  | "checkPerRecord"
+  | "checkPerAddress"
+  | "checkAnswerPerCaller"
   | "lookUp"
   | "upload"
   | "evidence"
@@ -33,6 +36,7 @@ export type LimitName =
 
 export type RateLimits = Record<LimitName, Limit> & { close(): Promise<void> };
 
+const DAY_S = 86_400;
 const HOUR_S = 3600;
 const MINUTE_S = 60;
 
@@ -69,6 +73,9 @@ export function createRateLimits(config: Config): RateLimits {
     mailPerCaller: shared("mailPerCaller", limits.mailPerCaller, HOUR_S),
     reportPerCaller: shared("reportPerCaller", limits.reportPerCaller, HOUR_S),
     reportInAll: shared("reportInAll", limits.reportInAll, HOUR_S),
+    checkPerRecord: shared("checkPerRecord", limits.checksPerRecord, DAY_S),
+    checkPerAddress: shared("checkPerAddress", limits.checksPerAddress, DAY_S),
+    checkAnswerPerCaller: shared("checkAnswerPerCaller", limits.checkAnswersPerCaller, HOUR_S),
     lookUp: shared("lookUp", limits.lookUpsPerPerson, HOUR_S),
     evidence: shared("evidence", limits.evidencePerHour, HOUR_S),
     upload: shared("upload", limits.uploadsPerMinute, MINUTE_S),

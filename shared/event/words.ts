@@ -97,9 +97,22 @@ const EVENT_WORDS: Readonly<Record<string, EventWords>> = {
     (event) =>
       `${by(event)} accepted the contributor's answer in ${event.subject} (${text(event, "code")}).`,
   ),
+  "authorCheck.answered": words("Author answered", (event) => {
+    const said = text(event, "verdict") === "correct" ? "called it correct" : "commented";
+    return `An author of the paper checked ${event.subject} and ${said}.`;
+  }),
+  "authorCheck.closed": plain("Author check closed", "closed the author's check of"),
+  "authorCheck.revoked": plain("Author check revoked", "took back the link to check"),
+  "authorCheck.sent": plain("Author asked", "asked an author of the paper to check"),
+  "claim.handedOver": plain("Claim handed over", "handed the claim on", " to another editor"),
   "claim.made": plain("Claim made", "claimed", " to read it again"),
+  "claim.renewed": plain("Claim lengthened", "lengthened the claim on"),
   "claim.released": plain("Claim given back", "gave back the claim on"),
   "claim.lapsed": words("Claim ended", (event) => `The claim on ${event.subject} ended.`),
+  "comment.replied": words(
+    "Comment replied to",
+    (event) => `${by(event)} wrote about ${fieldName(text(event, "field"))} in ${event.subject}.`,
+  ),
   "correlatedSet.approved": words(
     "Set approved",
     (event) => `${by(event)} approved ${event.subject}${inBrackets(list(event, "members"))}.`,
@@ -162,6 +175,14 @@ const EVENT_WORDS: Readonly<Record<string, EventWords>> = {
   "record.withdrawn": words(
     "Record withdrawn",
     (event) => `${by(event)} withdrew ${event.subject}.`,
+  ),
+  "recusal.declared": words(
+    "Paper left to others",
+    (event) => `${by(event)} left the paper ${thing(event)} to other editors.`,
+  ),
+  "recusal.takenBack": words(
+    "Recusal taken back",
+    (event) => `${by(event)} may read the paper ${thing(event)} again.`,
   ),
   "release.cut": words(
     "Release cut",

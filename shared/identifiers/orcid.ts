@@ -22,3 +22,11 @@ function checkCharacter(digits: string): string {
   const rest = (12 - total) % 11;
   return rest === 10 ? "X" : String(rest);
 }
+
+/** Every ORCID that stands somewhere in a text, in its one form, each once. */
+export function orcidsIn(text: string): string[] {
+  const found = [...text.matchAll(/(?<![\dX])\d{4}-?\d{4}-?\d{4}-?\d{3}[\dX](?![\dX])/gi)]
+    .map(([written]) => normalizeOrcid(written))
+    .filter((orcid) => orcid !== null);
+  return [...new Set(found)];
+}

@@ -102,3 +102,30 @@ export function isAuthor(nameOnPapers: string, authors: readonly string[]): bool
     ),
   );
 }
+
+/** A person under every name a paper may have. */
+export interface PublishedPerson {
+  nameOnPapers: string;
+  furtherNames: readonly string[];
+  orcid: string | null;
+}
+
+/** Whom a paper names. */
+export interface PaperAuthors {
+  authors: readonly string[];
+  /** ORCIDs that the citation carries, whoever's they are. */
+  orcids: readonly string[];
+}
+
+export type AuthorMatch = "orcid" | "name" | "furtherName";
+
+/** By what a person is an author of a paper; null when by nothing. */
+export function authorMatch(person: PublishedPerson, paper: PaperAuthors): AuthorMatch | null {
+  if (person.orcid !== null && paper.orcids.includes(person.orcid)) return "orcid";
+  if (isAuthor(person.nameOnPapers, paper.authors)) return "name";
+  const another = person.furtherNames.some((name) => isAuthor(name, paper.authors));
+  return another ? "furtherName" : null;
+}
+
+/** Characters of an editor's reason for leaving a paper to others. */
+export const RECUSAL_REASON_LONGEST = 500;

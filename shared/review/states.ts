@@ -28,3 +28,10 @@ export const NEXT_STATES: Record<RevisionState, readonly RevisionState[]> = {
 
 /** How long a claim holds a submission. */
 export const CLAIM_HOURS = 72;
+
+/** In its last hours a claim can be lengthened, and only so often: others may be waiting. */
+export const RENEW_WITHIN_HOURS = 24;
+export const MOST_RENEWALS = 2;
+
+/** A submission that has waited longer is called overdue. */
+export const OVERDUE_DAYS = 14;

@@ -10,7 +10,14 @@ import { allFindings, neighbours } from "~server/constraint/neighbours";
 import type { Revision } from "~server/constraint/revision.entity";
 import type { User } from "~server/account/user.entity";
 import type { Acting } from "~server/event/acting";
-import { acceptAnswer, approve, claim, storeReading } from "~server/review/review.service";
+import {
+  acceptAnswer,
+  approve,
+  claim,
+  storeReading,
+  tickChecklist,
+} from "~server/review/review.service";
+import { checklistFor } from "~shared/review/checklist";
 import { emptyFields, type ConstraintFields } from "~shared/statement/fields";
 
 /** A person as services see them, without a request. */
@@ -164,6 +171,12 @@ export async function buildApproved(
   return approveAs(database, editor, submitted);
 }
 
+/** Ticks every point of the checklist. */
+export async function tickAll(who: Acting, { id, fields }: Revision): Promise<void> {
+  const codes = checklistFor(fields).map(({ code }) => code);
+  granted(await tickChecklist(who, id, codes));
+}
+
 export async function approveAs(
   database: DataSource,
   editor: User,
@@ -175,6 +188,7 @@ export async function approveAs(
   for (const { code } of current.answers) {
     current = granted(await acceptAnswer(who, current.id, code));
   }
+  await tickAll(who, current);
   granted(await approve(who, current.id, current.version, null));
   return reload(database.manager, submitted.id);
 }

@@ -200,9 +200,11 @@ describe("relations between records", () => {
       const read: Revision[] = [];
       for (const reader of readers) {
         granted(await claim(reader.who, reader.submitted.id));
-        read.push(
-          granted(await storeReading(reader.who, reader.submitted.id, reader.submitted.fields)),
+        const stored = granted(
+          await storeReading(reader.who, reader.submitted.id, reader.submitted.fields),
         );
+        await tickAll(reader.who, stored);
+        read.push(stored);
       }
       const outcomes = await Promise.all(
         readers.map((reader, index) =>

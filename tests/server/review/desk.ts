@@ -27,7 +27,8 @@ const REVIEW = `
   findings { code message }
   answers { code answer accepted }
   comments { field text answer }
-  changes { field before after }`;
+  changes { field before after }
+  checklist { code text ticked }`;
 
 const REVIEW_RESULT = `__typename ... on Refusal { code message field } ... on Review { ${REVIEW} }`;
 const DONE = `__typename ... on Refusal { code message field } ... on Done { message }`;
@@ -76,6 +77,42 @@ export function deskOf(server: TestServer, agent: Agent) {
     review: (id: string) => call(`query ($id: ID!) { review(id: $id) { ${REVIEW} } }`, { id }),
     claim: (id: string) =>
       call(`mutation ($id: ID!) { claimSubmission(id: $id) { ${REVIEW_RESULT} } }`, { id }),
+    renew: (id: string) =>
+      call(`mutation ($id: ID!) { renewClaim(id: $id) { ${REVIEW_RESULT} } }`, { id }),
+    handOverList: (id: string) =>
+      call(`query ($id: ID!) { handOverList(id: $id) { id nameOnPapers } }`, { id }),
+    handOver: (id: string, editorId: string) =>
+      call(
+        `mutation ($id: ID!, $editorId: ID!) {
+          handOverClaim(id: $id, editorId: $editorId) { ${DONE} } }`,
+        { id, editorId },
+      ),
+    leave: (citationId: string, reason: string | null = null) =>
+      call(
+        `mutation ($citationId: ID!, $reason: String) {
+          leavePaper(citationId: $citationId, reason: $reason) { ${DONE} } }`,
+        { citationId, reason },
+      ),
+    takeBack: (citationId: string) =>
+      call(`mutation ($citationId: ID!) { takePaperBack(citationId: $citationId) { ${DONE} } }`, {
+        citationId,
+      }),
+    reply: (commentId: string, text: string) =>
+      call(
+        `mutation ($commentId: ID!, $text: String!) {
+          replyToComment(commentId: $commentId, text: $text) {
+            __typename ... on Refusal { code message }
+            ... on CommentThread { comment { id answer messages { by mine text } } } } }`,
+        { commentId, text },
+      ),
+    trail: (id: string) =>
+      call(
+        `query ($id: ID!) { submission(id: $id) { trail {
+          ordinal state enteredBy submittedAt readBy readAt decidedAt decisionNote
+          changes { field before after } answers { message answer accepted }
+          comments { field text by answer messages { by text } } } } }`,
+        { id },
+      ),
     release: (id: string) =>
       call(`mutation ($id: ID!) { releaseClaim(id: $id) { ${DONE} } }`, { id }),
     read: (id: string, reading: Partial<ConstraintFields>) =>
@@ -95,12 +132,32 @@ export function deskOf(server: TestServer, agent: Agent) {
         `mutation ($id: ID!, $code: String!) { acceptAnswer(id: $id, code: $code) { ${REVIEW_RESULT} } }`,
         { id, code },
       ),
-    approve: (id: string, version: number, note: string | null = null) =>
+    tick: (id: string, codes: readonly string[]) =>
       call(
+        `mutation ($id: ID!, $codes: [String!]!) {
+          tickChecklist(id: $id, codes: $codes) { ${REVIEW_RESULT} } }`,
+        { id, codes },
+      ),
+    /** Ticks the whole checklist, where there is one to tick, and approves. */
+    approve: async (id: string, version: number, note: string | null = null) => {
+      const review = await call(
+        `query ($id: ID!) { review(id: $id) { checklist { code ticked } } }`,
+        { id },
+      );
+      const points: { code: string; ticked: boolean }[] = review?.checklist ?? [];
+      if (points.some(({ ticked }) => !ticked)) {
+        await call(
+          `mutation ($id: ID!, $codes: [String!]!) {
+            tickChecklist(id: $id, codes: $codes) { __typename } }`,
+          { id, codes: points.map(({ code }) => code) },
+        );
+      }
+      return call(
         `mutation ($id: ID!, $version: Int!, $note: String) {
           approveSubmission(id: $id, version: $version, note: $note) { ${DONE} } }`,
         { id, version, note },
-      ),
+      );
+    },
     giveBack: (
       id: string,
       version: number,

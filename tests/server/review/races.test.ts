@@ -8,6 +8,7 @@ import {
   buildFields,
   buildSubmission,
   granted,
+  tickAll,
 } from "../../factories/constraint";
 import { startTestServer, type TestServer } from "../support/harness";
 import { deskOf } from "./desk";
@@ -143,6 +144,7 @@ describe("races", () => {
     const who = actingAs(server.dataSource, editor.user);
     granted(await claim(who, submitted.id));
     const read = granted(await storeReading(who, submitted.id, submitted.fields));
+    await tickAll(who, read);
     const events = await server.dataSource.manager.count(EventRecord);
     await server.dataSource.query("RENAME TABLE outbox_mail TO elsewhere");
     await expect(approve(who, submitted.id, read.version, null)).rejects.toThrow();
