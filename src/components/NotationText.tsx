@@ -80,7 +80,12 @@ export function NotationText({
         {sign || (band && symbol) ? (
           <Mono style={[number, styles.sign, symbol && styles.afterSymbol]}>{sign || "="}</Mono>
         ) : null}
-        {band ? <Mono style={number}>{`${low ?? "?"}–${high ?? "?"}`}</Mono> : null}
+        {band ? (
+          // A dash between two negative numbers would read as a third minus.
+          <Mono
+            style={number}
+          >{`${low ?? "?"}${high?.startsWith("−") ? " to " : "–"}${high ?? "?"}`}</Mono>
+        ) : null}
         {value === null ? null : <Mono style={number}>{value}</Mono>}
         {equal ? <Mono style={number}>{` ± ${plus}`}</Mono> : null}
         {stacked ? (

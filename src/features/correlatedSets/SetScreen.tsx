@@ -113,7 +113,11 @@ function Whole({ set, onChanged }: { set: CorrelatedSetPartsFragment; onChanged:
               ? [
                   {
                     term: "Follows",
-                    value: <Button kind="text" label={set.follows} href={`/sets/${set.follows}`} />,
+                    value: (
+                      <View style={styles.link}>
+                        <Button kind="text" label={set.follows} href={`/sets/${set.follows}`} />
+                      </View>
+                    ),
                   },
                 ]
               : []),
@@ -263,4 +267,6 @@ const styles = StyleSheet.create({
   },
   place: { fontSize: 14, width: 24 },
   grow: { flex: 1, minWidth: 0 },
+  // In line with the values above it, though 44 points high.
+  link: { marginLeft: -space.s, marginTop: -space.s },
 });

@@ -191,6 +191,15 @@ export function ReadoutBlock({ overlays }: { overlays: readonly Overlay[] }) {
   );
 }
 
+/** What is not taken as independent: rows with a printed matrix. */
+function setWords({ score: { sets } }: Overlay): string {
+  if (sets.length === 0) return "";
+  const rows = sets.reduce((sum, { members }) => sum + members.length, 0);
+  return sets.length === 1
+    ? `, but for ${rows} rows of ${sets[0]?.id ?? "a correlated set"} with their matrix`
+    : `, but for ${rows} rows of ${sets.length} correlated sets with their matrices`;
+}
+
 /** How many rows the scores rest on, and on touch which are left out and why. */
 export function ScoreNote({
   overlays,
@@ -219,7 +228,7 @@ export function ScoreNote({
     <View style={styles.note}>
       <Caption style={styles.noteText}>
         −2 ln <SymbolText muted>L</SymbolText> over {scored} of {rows.length} rows shown, with
-        default decisions and taken as independent. Duration from{" "}
+        default decisions and taken as independent{setWords(first)}. Duration from{" "}
         <SymbolText muted>x_HI</SymbolText> 0.75 to 0.25.
       </Caption>
       {left.size > 0 ? (
