@@ -9,10 +9,25 @@ import path from "node:path";
 export default {
   testRunner: "jest",
   plugins: ["@stryker-mutator/jest-runner"],
-  jest: { projectType: "custom", configFile: "tests/shared/jest.mutation.config.js" },
+  jest: {
+    projectType: "custom",
+    configFile: "tests/shared/mutation/jest.config.js",
+    enableFindRelatedTests: false,
+  },
   coverageAnalysis: "perTest",
   mutate: ["shared/likelihood/**/*.ts", "shared/statement/**/*.ts"],
-  ignorePatterns: ["app", "src", "server", "graphql", "public", "tests/e2e", "tests/server"],
+  ignorePatterns: [
+    "app",
+    "src",
+    "server",
+    "graphql",
+    "public",
+    "tests/e2e",
+    "tests/server",
+    ".fogline",
+  ],
+  // Nothing checks types there: swc only drops them.
+  disableTypeChecks: false,
   // A mutant in a number that only a module's start reads would need every test anew for each.
   ignoreStatic: true,
   // What no change touched keeps its result from the run before.

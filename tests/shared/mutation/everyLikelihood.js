@@ -1,0 +1,4 @@
+"use strict";
+const { testFilesOf } = require("./testFilesOf");
+
+testFilesOf("likelihood").forEach((file) => require(file));
