@@ -22,7 +22,7 @@ import {
   DiscardSetDocument,
   SubmitSetDocument,
 } from "~graphql/generated/graphql";
-import { setFindings } from "~shared/correlatedSet/checks";
+import { setFindings, type SetFinding } from "~shared/correlatedSet/checks";
 import { fitTriangle, rearrange, type MatrixKind } from "~shared/correlatedSet/content";
 import type { SetMember } from "~shared/correlatedSet/members";
 
@@ -30,6 +30,13 @@ import { AddMembers, MatrixPreview, MemberList } from "./SetParts";
 import { SetFindings } from "./SetFindings";
 import { TriangleEntry } from "./TriangleEntry";
 import { type SetSave, useSetDraft } from "./useSetDraft";
+
+const AT_FIELDS = ["label", "place", "matrixKind", "members"];
+
+/** Errors that are said at their field already. */
+function standsAtField({ grade, fields }: SetFinding): boolean {
+  return grade === "error" && fields.some((field) => AT_FIELDS.includes(field));
+}
 
 function saveWords(state: SetSave): string {
   switch (state.kind) {
@@ -182,7 +189,9 @@ export function SetForm({
         />
         <MemberList
           labels={labels}
-          error={at("members")}
+          errors={shown
+            .filter(({ grade, fields }) => grade === "error" && fields.includes("members"))
+            .map(({ message }) => message)}
           onMove={move}
           onDrop={(index) =>
             change(
@@ -251,7 +260,7 @@ export function SetForm({
           hint="What a reader of the matrix must know; it becomes public with it."
         />
         <SetFindings
-          findings={shown}
+          findings={shown.filter((finding) => !standsAtField(finding))}
           answers={draft.answers}
           onAnswer={(code, answer) => change({ answers: { ...draft.answers, [code]: answer } })}
         />

@@ -20,12 +20,12 @@ type Labels = readonly { number: string; words: string }[];
 /** The records in the order of the matrix's rows; up, down, out. */
 export function MemberList({
   labels,
-  error,
+  errors,
   onMove,
   onDrop,
 }: {
   labels: Labels;
-  error: string | null;
+  errors: readonly string[];
   onMove: (from: number, to: number) => void;
   onDrop: (at: number) => void;
 }) {
@@ -59,12 +59,12 @@ export function MemberList({
           {labels.length === 0 ? <Dense muted>No record yet.</Dense> : null}
         </View>
       </Card>
-      {error ? (
-        <View style={styles.error}>
+      {errors.map((error) => (
+        <View key={error} style={styles.error}>
           <Icon name="close-circle-outline" size={16} color={colors.emberText} />
           <Caption style={{ color: colors.emberText, flex: 1 }}>{error}</Caption>
         </View>
-      ) : null}
+      ))}
     </View>
   );
 }
