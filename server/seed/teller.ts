@@ -9,9 +9,11 @@ import type { Acting } from "~server/event/acting";
 import { FieldCommentRecord } from "~server/review/comment.entity";
 import * as reviews from "~server/review/review.service";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
+import { checklistFor } from "~shared/review/checklist";
 import type { ConstraintFields } from "~shared/statement/fields";
 
 import { noticeSteps, reportSteps } from "./aftermath";
+import { dataSteps } from "./dataEntries";
 import { PAPERS, type PaperName } from "./papers";
 import { PEOPLE, type PersonName } from "./people";
 import { SETS, setSteps } from "./sets";
@@ -36,6 +38,7 @@ export class Teller implements Stage {
       ...STORY.flatMap((record) => this.stepsOf(record)),
       ...STORY.flatMap((record) => noticeSteps(this, record)),
       ...SETS.flatMap((set) => setSteps(this, set)),
+      ...dataSteps(this),
       ...reportSteps(this),
       ...tableSteps(this),
     ];
@@ -254,6 +257,8 @@ export class Teller implements Stage {
     for (const { code } of current.answers) {
       current = done(await reviews.acceptAnswer(who, id, code), "accepted answer");
     }
+    const points = checklistFor(submitted.fields).map(({ code }) => code);
+    current = done(await reviews.tickChecklist(who, id, points), "checklist");
     done(await reviews.approve(who, id, current.version, null), `approval ${record.from}`);
     return drafts.reload(this.manager, id);
   }
