@@ -26,6 +26,7 @@ import { informationLoss } from "~shared/likelihood/informationLoss";
 import { type ModelRequest, modelValue } from "~shared/likelihood/modelRequest";
 import { sigmasOfLevel } from "~shared/numerics/special";
 import type { AsUsed } from "~shared/statement/asUsed";
+import type { CurveNodes } from "~shared/statement/curve";
 import type { Quantity } from "~shared/statement/fields";
 
 /** How a history's redshift range meets a row. */
@@ -41,11 +42,8 @@ export interface RowOptions {
   readonly redshift?: RedshiftTreatment;
   /** Use a mass-weighted value as if it were volume-weighted. */
   readonly acceptMassWeighted?: boolean;
-  /**
-   * The nodes of the record's curve: places in the variable the row is evaluated in and densities there,
-   * [n] each. A record that has one is evaluated as it stands unless another form is chosen.
-   */
-  readonly curve?: { readonly x: readonly number[]; readonly p: readonly number[] };
+  /** Nodes of a curve in place of the record's own, in the variable the row is evaluated in, [n] each. */
+  readonly curve?: CurveNodes;
 }
 
 /** Why a row is left out, as a stable word. */
@@ -152,8 +150,8 @@ export function rowLikelihood(
     quantiles: (probabilities) => quantilesOf(shape, range, probabilities),
     informationLost: () => {
       if (shape.name !== "tabulated") return null;
-      const { curve: _, form: __, ...others } = options;
-      const summary = shapeOf(used, others);
+      const { form: _, ...others } = options;
+      const summary = quotedShape(used, others);
       return "leftOut" in summary ? null : informationLoss(shape, summary, range);
     },
     curve: (n) => curveOf(shape, used, range, n),
@@ -212,8 +210,18 @@ function obstacleOf(used: AsUsed, options: RowOptions): RowLeftOut | null {
 
 /** The form of a statement: its default, or the one chosen. */
 function shapeOf(used: AsUsed, options: RowOptions): Form | RowLeftOut {
-  const { curve, form } = options;
+  const curve = options.curve ?? used.curve;
+  const { form } = options;
+  // A curve is evaluated as it stands, unless another form is chosen for what it quotes beside it.
   if (curve && (form === undefined || form === "tabulated")) return curveShape(curve);
+  if (used.kind === "curve" && !curve && form === undefined) {
+    return leftOut("curveMissing", "The nodes of the curve are not at hand.");
+  }
+  return quotedShape(used, options);
+}
+
+/** The form of the numbers a statement quotes. */
+function quotedShape(used: AsUsed, options: RowOptions): Form | RowLeftOut {
   const level = used.level ?? options.level ?? null;
   const stated = level === null ? null : { level, k: sigmasOfLevel(level) };
   switch (used.kind) {
@@ -226,15 +234,15 @@ function shapeOf(used: AsUsed, options: RowOptions): Form | RowLeftOut {
     case "band":
       return bandShape(used, options, stated);
     case "curve":
-      return curve
-        ? doesNotFit(form!, "a curve")
-        : leftOut("curveMissing", "The nodes of the curve are not at hand.");
+      return used.value === null
+        ? doesNotFit(options.form ?? "twoPiece", "a curve that quotes no interval")
+        : twoSidedShape(used, options, stated);
     case "qualitative":
       return QUALITATIVE;
   }
 }
 
-function curveShape({ x, p }: NonNullable<RowOptions["curve"]>): Form | RowLeftOut {
+function curveShape({ x, p }: CurveNodes): Form | RowLeftOut {
   try {
     return tabulated(x, p);
   } catch (error) {

@@ -300,11 +300,31 @@ describe("a record with a curve", () => {
     }
     expect(row({}, { curve, form: "tabulated" }).form).toBe("tabulated");
     expect(row({}, { curve, form: "twoPiece" }).form).toBe("twoPiece");
-    expect(rowLikelihood(used({ kind: "curve" }), { curve, form: "twoPiece" })).toEqual({
+    const curveOnly = used({ ...noNumbers, kind: "curve" });
+    expect(rowLikelihood(curveOnly, { curve, form: "twoPiece" })).toEqual({
       code: "formDoesNotFit",
       leftOut: "The form “two-piece” does not fit a curve.",
     });
     expect(rowLikelihood(used(), { form: "tabulated" })).toMatchObject({ code: "formDoesNotFit" });
+  });
+
+  it("is the record's own where it has one, with the interval quoted beside it", () => {
+    const curveOnly: Partial<AsUsed> = { ...noNumbers, kind: "curve", curve };
+    expect(row(curveOnly).form).toBe("tabulated");
+    expect(row(curveOnly).informationLost()).toBeNull();
+    // What a table decides on goes before the record's own.
+    expect(row(curveOnly, { curve: normal(0.6, 0.1) }).minus2LnL(0.6)).toBeCloseTo(0, 10);
+    const quoted: Partial<AsUsed> = { kind: "curve", curve: normal(0.4, 0.1 / K95) };
+    expect(row(quoted).informationLost()).toBeCloseTo(0, 6);
+    expect(row(quoted, { form: "twoPiece" }).form).toBe("twoPiece");
+    expect(rowLikelihood(used(curveOnly), { form: "twoPiece" })).toMatchObject({
+      leftOut: "The form “two-piece” does not fit a curve.",
+    });
+    expect(
+      rowLikelihood(used({ ...noNumbers, kind: "curve" }), { form: "twoPiece" }),
+    ).toMatchObject({
+      code: "curveMissing",
+    });
   });
 
   it("needs no level, and stays out where it is qualitative", () => {
