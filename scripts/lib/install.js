@@ -35,8 +35,22 @@ const MARIADB_CLIENT = {
   programs: ["mariadb", "mariadb-dump"],
   packages: ["mariadb-client-core", "mariadb-client"],
 };
-/** The real BibTeX, which the tests run over what is handed out as .bib. */
-const BIBTEX = { title: "BibTeX", programs: ["bibtex"], packages: ["texlive-binaries"] };
+/** Readers of the field, run over what is handed out: astropy, the VOTable checker, LaTeX. */
+const READERS = {
+  title: "The readers of tables",
+  programs: ["stilts", "latex", "bibtex"],
+  files: [
+    "/usr/lib/python3/dist-packages/astropy",
+    "/usr/share/texlive/texmf-dist/tex/latex/booktabs/booktabs.sty",
+  ],
+  packages: [
+    "python3-astropy",
+    "stilts",
+    "texlive-binaries",
+    "texlive-latex-base",
+    "texlive-latex-recommended",
+  ],
+};
 const CHROMIUM = { title: "Chromium", programs: ["chromium"], packages: ["chromium"] };
 
 /**
@@ -44,9 +58,12 @@ const CHROMIUM = { title: "Chromium", programs: ["chromium"], packages: ["chromi
  *
  * @throws {PlainFailure} Without the right to install, or when apt-get fails.
  */
-async function ensurePrograms({ title, programs, packages }, log) {
-  const missing = programs.filter((name) => findProgram(name) === null);
-  if (missing.length === 0) return;
+async function ensurePrograms({ title, programs, files = [], packages }, log) {
+  const missing = () => [
+    ...programs.filter((name) => findProgram(name) === null),
+    ...files.filter((file) => !fs.existsSync(file)),
+  ];
+  if (missing().length === 0) return;
   await step(`${title} installed from Debian (${packages.join(", ")})`, async () => {
     const [apt, asRoot] = installer(title, packages);
     const environment = ["DEBIAN_FRONTEND=noninteractive", "LC_ALL=C.UTF-8"];
@@ -71,7 +88,7 @@ async function ensurePrograms({ title, programs, packages }, log) {
       `Debian's package manager could not install ${packages.join(", ")}. ` +
         "Check the network and the package sources, then run the command again.",
     );
-    const still = programs.filter((name) => findProgram(name) === null);
+    const still = missing();
     if (still.length > 0)
       throw new PlainFailure(
         `${title}: ${still.join(", ")} is missing even after the installation.`,
@@ -159,6 +176,6 @@ module.exports = {
   spaceNeeded,
   MARIADB_SERVER,
   MARIADB_CLIENT,
-  BIBTEX,
+  READERS,
   CHROMIUM,
 };

@@ -53,7 +53,7 @@ async function test({ projects, jest }, add) {
   install.requireSpace(fromRoot(), install.spaceNeeded({ database: true }));
 
   await install.ensurePrograms(install.MARIADB_SERVER, log);
-  if (projects.includes("server")) await install.ensurePrograms(install.BIBTEX, log);
+  if (projects.includes("server")) await install.ensurePrograms(install.READERS, log);
   if (withBrowser) await install.ensurePrograms(install.CHROMIUM, log);
   await withProject(async () => {
     await install.ensureModules(log);
@@ -79,10 +79,16 @@ async function test({ projects, jest }, add) {
     if (group.length === 0) continue;
     const report = path.join(folder, `${group[0]}.json`);
     await step(`tests: ${group.join(", ")}`, () =>
-      runJest(group, jest, report, environment, group[0] === "e2e" ? ["--maxWorkers=2"] : []),
+      runJest(group, jest, report, environment, workersFor(group)),
     );
     add(readCounts(report));
   }
+}
+
+/** On two cores Jest would take one worker; a server test waits for its database half of the time. */
+function workersFor(group) {
+  const most = group[0] === "e2e" ? 2 : Math.max(2, os.availableParallelism() - 1);
+  return [`--maxWorkers=${most}`];
 }
 
 async function runJest(projects, more, report, env, workers) {

@@ -11,9 +11,9 @@ import { findRelease } from "~server/release/release.service";
 import { recordsReadBlind } from "~server/review/blindness";
 import { matchesFilter } from "~shared/filter/matches";
 
-import { creditNames } from "./credit";
+import { copyRecords } from "./copyRecords";
 import type { TableRecipe } from "./recipe";
-import { snapshotConstraint, type SnapshotConstraint } from "./snapshot";
+import type { SnapshotConstraint } from "./snapshot";
 
 /** Rows a table can be built over; more than any group fits, and no more than one answer should hold. */
 export const MOST_CANDIDATES = 2000;
@@ -55,9 +55,8 @@ async function fromLatest(
     0,
     MOST_CANDIDATES + 1,
   );
-  const names = await creditNames(manager, found);
   return {
-    records: found.slice(0, MOST_CANDIDATES).map((row) => snapshotConstraint(row, names(row))),
+    records: await copyRecords(manager, found.slice(0, MOST_CANDIDATES)),
     total: found.length,
     lastEvent: last,
   };

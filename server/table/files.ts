@@ -6,11 +6,14 @@ import { ZipFile } from "yazl";
 
 import { compilableBibtex } from "~server/citation/export";
 import { REGISTRY } from "~server/download/header";
+import { findRelease } from "~server/release/release.service";
+import { citedRelease } from "~server/release/release.type";
 import { byteByByte, fieldWidths } from "~shared/formats/columnFile/byteByByte";
 import type { FileHead, FileRow } from "~shared/formats/columnFile/columnFile";
 import { csv } from "~shared/formats/columnFile/csv";
 import { ecsv } from "~shared/formats/columnFile/ecsv";
 import { votable } from "~shared/formats/columnFile/votable";
+import { releaseBibtex, releaseKey, type CitedRelease } from "~shared/formats/releaseCitation";
 import { latexTable } from "~shared/formats/latexTable";
 
 import { contentPieces, DIGEST_NOTE, TABLE_FORMAT } from "./tableContent";
@@ -141,7 +144,20 @@ async function* bib(filed: FiledVersion): AsyncGenerator<string> {
     const { key, bibtex } = JSON.parse(paper) as { key: string; bibtex: string };
     kept.push({ key, entryBibtex: bibtex });
   }
+  const release = await pinnedRelease(filed);
+  if (release) kept.push({ key: releaseKey(release), entryBibtex: releaseBibtex(release) });
   yield compilableBibtex(kept, [headOf(filed).title, ...filed.version.lines]);
+}
+
+/** The release that a table pins is a cited work like its papers. */
+async function pinnedRelease({
+  manager,
+  version,
+  address,
+}: FiledVersion): Promise<CitedRelease | null> {
+  if (version.releaseNumber === null) return null;
+  const release = await findRelease(manager, version.releaseNumber);
+  return release && citedRelease(release, new URL(address).origin);
 }
 
 async function* tex(filed: FiledVersion): AsyncGenerator<string> {

@@ -24,7 +24,7 @@ export interface SnapshotConstraint {
   ordinal: number;
   state: RecordState;
   /** Number of the record in its place, if there is one. */
-  supersededBy?: string | null;
+  supersededBy?: string | null; // missing in tables older than versions
   approvedAt: string;
   submittedBy: string;
   readBy: string;
@@ -48,6 +48,7 @@ export interface TableSnapshot {
 export function snapshotConstraint(
   { constraint, revision, citation }: ApprovedRow,
   names: { submittedBy: string; readBy: string },
+  supersededBy: string | null = null,
 ): SnapshotConstraint {
   const { createdById: _by, createdAt: _at, ...kept } = citation;
   return {
@@ -55,6 +56,7 @@ export function snapshotConstraint(
     number: formatRecordNumber(constraint.id),
     ordinal: revision.ordinal,
     state: constraint.state,
+    supersededBy,
     approvedAt: (revision.decidedAt ?? revision.updatedAt).toISOString(),
     ...names,
     fields: revision.fields,

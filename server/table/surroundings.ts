@@ -55,7 +55,8 @@ async function presentSets(manager: EntityManager): Promise<KeptSet[]> {
 }
 
 async function presentConditions(manager: EntityManager): Promise<Record<string, string[]>> {
-  const rows: { id: number; words: string }[] = await manager.query(
+  // The driver reads JSON columns by itself, where the server says that one is JSON.
+  const rows: { id: number; words: string | string[] }[] = await manager.query(
     `SELECT record.id AS id, JSON_EXTRACT(revision.fields, '$.conditionedOn') AS words
        FROM constraint_record record
        JOIN revision ON revision.id = record.approvedRevisionId
@@ -65,7 +66,7 @@ async function presentConditions(manager: EntityManager): Promise<Record<string,
   return Object.fromEntries(
     rows.map(({ id, words }) => [
       formatRecordNumber(Number(id)),
-      conditionsIn(JSON.parse(words) as string[]),
+      conditionsIn(typeof words === "string" ? (JSON.parse(words) as string[]) : words),
     ]),
   );
 }
