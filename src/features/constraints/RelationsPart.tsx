@@ -52,8 +52,15 @@ export function RelationsPart({
           ))}
         </View>
       ) : null}
-      {links.map((link) => (
-        <Row key={`${link.word}-${link.number}`} {...link} />
+      {[...new Set(links.map(({ word }) => word))].map((word) => (
+        <View key={word}>
+          <Caption muted>{word}</Caption>
+          {links
+            .filter((link) => link.word === word)
+            .map(({ number, shortName }) => (
+              <Row key={number} number={number} shortName={shortName} />
+            ))}
+        </View>
       ))}
     </View>
   );
@@ -65,7 +72,8 @@ function Row({
   number,
   state,
 }: {
-  word: string;
+  /** Left out where it stands over several. */
+  word?: string;
   shortName: string;
   number: string;
   state?: LifePartsFragment["relations"][number]["state"];
@@ -73,7 +81,7 @@ function Row({
   return (
     <View style={styles.row}>
       <View style={styles.grow}>
-        <Caption muted>{word}</Caption>
+        {word ? <Caption muted>{word}</Caption> : null}
         <View style={styles.line}>
           <Dense>{shortName}</Dense>
           {state && state !== "current" ? <StatusPill state={state} /> : null}

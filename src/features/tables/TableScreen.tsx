@@ -12,6 +12,7 @@ import { Empty } from "@/components/feedback/Empty";
 import { Failed } from "@/components/feedback/Failed";
 import { Loading } from "@/components/feedback/Loading";
 import { Notice } from "@/components/Notice";
+import { RowsSince } from "@/components/recordLife/RowsSince";
 import { Confirm } from "@/components/Sheet";
 import { Block, Dense, Mono, Section } from "@/components/Text";
 import { dateTime } from "@/components/when";
@@ -105,6 +106,7 @@ function TableView({ table }: { table: Table }) {
           <TableFiles table={table} />
         </View>
       </View>
+      <RowsSince slug={table.slug} version={table.version > 0 ? table.version : null} />
       <Notice grade="caution">
         <Dense>
           The choices are this table&apos;s, not the authors&apos;; cite the originals. Rows are

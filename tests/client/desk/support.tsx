@@ -6,11 +6,13 @@ import type { ReactNode } from "react";
 import { createCache } from "@/apollo/client";
 import { ThemeProvider } from "@/theme/ThemeProvider";
 import {
+  EvidenceDocument,
   ErrorReportsDocument,
   LooksUpCitationsDocument,
   MySetsDocument,
   NamedDataNamesDocument,
   RecordLifeDocument,
+  RowsSinceDocument,
   SessionDocument,
   SetQueueDocument,
   type SubmissionPartsFragment,
@@ -91,9 +93,18 @@ const NOTHING_ELSE = [
     request: { query: RecordLifeDocument, variables: () => true },
     result: { data: { recordLife: null } },
   },
+  {
+    request: { query: RowsSinceDocument, variables: () => true },
+    result: { data: { fittingTable: null } },
+  },
   { request: { query: NamedDataNamesDocument }, result: { data: { namedDataList: [] } } },
   { request: { query: MySetsDocument }, result: { data: { mySets: [] } } },
   { request: { query: SetQueueDocument }, result: { data: { setQueue: [] } } },
+  // Whatever the revision.
+  {
+    request: { query: EvidenceDocument, variables: () => true },
+    result: { data: { evidence: [] } },
+  },
 ].map((mock) => ({ ...mock, maxUsageCount: Number.POSITIVE_INFINITY }) as MockedResponse);
 
 /** A page as one person sees it at one width. */
