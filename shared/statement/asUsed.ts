@@ -3,6 +3,7 @@ import Big from "big.js";
 
 import { sigmasOfLevel } from "~shared/numerics/special";
 
+import { curveNodes, type CurveNodes, trimmedRows } from "./curve";
 import { computedText, decimalPlaces, decimalText, oneMinus, parseDecimal } from "./decimal";
 import type {
   ConstraintFields,
@@ -13,12 +14,10 @@ import type {
   StatementKind,
   Weighting,
 } from "./fields";
+import { HELIUM_MASS_FRACTION, HELIUM_PER_HYDROGEN } from "./helium";
 import { levelProbability } from "./level";
 
-/** Mass fraction of primordial helium (Planck 2018 VI, table 2). */
-export const HELIUM_MASS_FRACTION = 0.2454;
-/** Helium nuclei per hydrogen nucleus: Y / (3.9715 (1 − Y)), 3.9715 being the ratio of the atoms' masses. */
-export const HELIUM_PER_HYDROGEN = HELIUM_MASS_FRACTION / (3.9715 * (1 - HELIUM_MASS_FRACTION));
+export { HELIUM_MASS_FRACTION, HELIUM_PER_HYDROGEN };
 
 export interface ConversionStep {
   code: string;
@@ -60,6 +59,8 @@ export interface AsUsed {
   fractionFrom: number | null;
   fractionTo: number | null;
   durationUnit: DurationUnit | null;
+  /** The nodes of a tabulated curve; left out for what is no curve, or one that can't be used. */
+  curve?: CurveNodes;
   /** True when a number rests on more than an exact change of convention. */
   derived: boolean;
   /** The part of `derived` that concerns the stated numbers (an assumption about helium, a logarithm undone). */
@@ -87,7 +88,7 @@ interface Numbers {
  * @param fields - A revision's fields; strings as printed.
  * @returns Null when the fields do not say enough yet (a draft), say it in a way that can't be used
  *   (an electron fraction with helium unknown), or hold something that is not a number.
- *   A qualitative statement and a curve come back without numbers.
+ *   A qualitative statement comes back without numbers, a curve with the interval quoted beside it, if any.
  */
 export function asUsed(fields: ConstraintFields): AsUsed | null {
   const { quantity, kind } = fields;
@@ -109,6 +110,8 @@ export function asUsed(fields: ConstraintFields): AsUsed | null {
   const k = level === null ? null : sigmasOfLevel(level);
   const sigmas = oneSigma(numbers, k);
   const sigmaDerived = sigmas.minus !== null && fields.level !== "oneSigma";
+  const curve = curveNodes(fields);
+  if (curve !== null) describeCurve(fields, curve, evaluatedIn, steps);
   describeLevel(fields, numbers, k, steps);
   if (quantity === "neutralFraction" && fields.weighting === "mass") {
     steps.push({
@@ -144,6 +147,7 @@ export function asUsed(fields: ConstraintFields): AsUsed | null {
     fractionFrom: ends.from,
     fractionTo: ends.to,
     durationUnit: quantity === "duration" ? (fields.durationUnit ?? "redshift") : null,
+    ...(curve === null ? {} : { curve }),
     derived: valueDerived || sigmaDerived,
     valueDerived,
     sigmaDerived,
@@ -172,16 +176,22 @@ function numbersAsPrinted(fields: ConstraintFields): Numbers {
   const kind = fields.kind ?? "qualitative";
   const limit = kind === "upperLimit" || kind === "lowerLimit";
   const own = limit && parseDecimal(fields.limitBase) !== null;
+  const interval = kind === "twoSided" || (kind === "curve" && quotesInterval(fields));
   return {
     kind,
-    value: kind === "twoSided" || (limit && !own) ? plain(fields.value) : null,
-    plus: kind === "twoSided" ? widthText(fields.plus) : null,
-    minus: kind === "twoSided" ? widthText(fields.minus) : null,
+    value: interval || (limit && !own) ? plain(fields.value) : null,
+    plus: interval ? widthText(fields.plus) : null,
+    minus: interval ? widthText(fields.minus) : null,
     limitBase: own ? plain(fields.limitBase) : null,
     limitSigma: own ? widthText(fields.limitSigma) : null,
     low: kind === "band" ? plain(fields.bandLow) : null,
     high: kind === "band" ? plain(fields.bandHigh) : null,
   };
+}
+
+/** Whether a curve comes with the interval the paper quotes of it. */
+function quotesInterval({ value, plus, minus }: ConstraintFields): boolean {
+  return [value, plus, minus].every((text) => parseDecimal(text) !== null);
 }
 
 function hasItsNumbers(fields: ConstraintFields): boolean {
@@ -280,6 +290,8 @@ function flipText(neutral: Numbers): string {
       return `${start}the upper limit becomes a lower limit.`;
     case "band":
       return `${start}the ends of the band swap.`;
+    case "curve":
+      return `${start}every place of the curve moves to the other side${neutral.value === null ? "." : ", and plus and minus of the quoted interval swap."}`;
     default:
       return `${start}no number to convert.`;
   }
@@ -402,7 +414,8 @@ function oneSigma(
   numbers: Numbers,
   k: number | null,
 ): { minus: number | null; plus: number | null } {
-  if (k === null || numbers.kind !== "twoSided") return { minus: null, plus: null };
+  const interval = numbers.kind === "twoSided" || numbers.kind === "curve";
+  if (k === null || !interval || numbers.plus === null) return { minus: null, plus: null };
   return { minus: Number(numbers.minus) / k, plus: Number(numbers.plus) / k };
 }
 
@@ -412,6 +425,7 @@ function describeLevel(
   k: number | null,
   steps: ConversionStep[],
 ): void {
+  if (fields.kind === "curve" && numbers.value === null) return;
   if (fields.level === "notStated") {
     steps.push({
       code: "levelNotStated",
@@ -421,7 +435,7 @@ function describeLevel(
   }
   if (k === null || fields.level === "oneSigma") return;
   const divisor = k.toFixed(3);
-  if (numbers.kind === "twoSided" && numbers.minus !== null && numbers.plus !== null) {
+  if (numbers.minus !== null && numbers.plus !== null) {
     const widths =
       numbers.minus === numbers.plus
         ? `${numbers.plus} / ${divisor} on both sides`
@@ -433,4 +447,23 @@ function describeLevel(
       text: `Level, derived: one sigma of the limit is ${numbers.limitSigma} / ${divisor}.`,
     });
   }
+}
+
+function describeCurve(
+  fields: ConstraintFields,
+  { x }: CurveNodes,
+  evaluatedIn: "linear" | "log10",
+  steps: ConversionStep[],
+): void {
+  const trimmed = trimmedRows(fields);
+  const column = fields.curveColumn === "lnLikelihood" ? "ln L" : "the density, read as L,";
+  steps.push({
+    code: "curve",
+    text:
+      `Curve: ${column} is used over its highest value, ln L linear between ${x.length} rows` +
+      `${evaluatedIn === "log10" ? " in log10" : ""}; nothing is allowed beyond its ends.` +
+      (trimmed > 0
+        ? ` ${trimmed === 1 ? "One row of zero at an end is" : `${trimmed} rows of zero at the ends are`} left out.`
+        : ""),
+  });
 }

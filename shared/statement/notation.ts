@@ -104,7 +104,7 @@ export function notationAsPrinted(fields: ConstraintFields): Notation {
   const own = limit && shown(fields.limitBase) !== null;
   const band = fields.kind === "band";
   const value = band ? null : own ? shown(fields.limitBase) : shown(fields.value);
-  const two = fields.kind === "twoSided" || fields.kind === null;
+  const two = fields.kind === "twoSided" || fields.kind === "curve" || fields.kind === null;
   return {
     symbol: symbolOf(fields.quantity, fields.species, log, unit),
     argument:
@@ -112,28 +112,30 @@ export function notationAsPrinted(fields: ConstraintFields): Notation {
         ? argumentOf(shown(fields.rangeLow), shown(fields.rangeHigh))
         : "",
     relation: relationOf(fields.kind, value !== null || band),
-    value: fields.kind === "curve" || fields.kind === "qualitative" ? null : value,
+    value: fields.kind === "qualitative" ? null : value,
     plus: two ? shownWidth(fields.plus) : null,
     minus: two ? shownWidth(fields.minus) : null,
     low: band ? shown(fields.bandLow) : null,
     high: band ? shown(fields.bandHigh) : null,
     limitSigma: own ? shownWidth(fields.limitSigma) : null,
     unit,
-    tail: tailOf(fields.kind, levelPhrase(fields.level, fields.levelPercent)),
+    tail: tailOf(fields.kind, levelPhrase(fields.level, fields.levelPercent), value !== null),
     derived: false,
   };
 }
 
 function relationOf(kind: ConstraintFields["kind"], numbers: boolean): Notation["relation"] {
-  if (!numbers || kind === "curve" || kind === "qualitative") return "";
+  if (!numbers || kind === "qualitative") return "";
   if (kind === "upperLimit") return "<";
   if (kind === "lowerLimit") return ">";
   return kind === "band" ? "in" : "=";
 }
 
-function tailOf(kind: ConstraintFields["kind"], level: string): string {
-  if (kind === "curve" || kind === "qualitative") return KIND_WORDS[kind].toLowerCase();
-  return level;
+function tailOf(kind: ConstraintFields["kind"], level: string, numbers: boolean): string {
+  if (kind === "qualitative") return KIND_WORDS.qualitative.toLowerCase();
+  if (kind !== "curve") return level;
+  const curve = KIND_WORDS.curve.toLowerCase();
+  return numbers && level !== "" ? `${level}, ${curve}` : curve;
 }
 
 /** Long computed texts are cut for the eye only; printed digits and exact flips stay as they are. */
@@ -164,7 +166,7 @@ export function notationAsUsed(used: AsUsed): Notation {
     high: forTheEye(used.high),
     limitSigma: forTheEye(used.limitSigma),
     unit,
-    tail: tailOf(used.kind, level),
+    tail: tailOf(used.kind, level, value !== null),
     derived: used.valueDerived,
   };
 }

@@ -51,12 +51,23 @@ export function statementFields(fields: ConstraintFields): FieldName[] {
     case "band":
       names.push("bandLow", "bandHigh");
       break;
+    case "curve": {
+      names.push("curveTable", "curveColumn", "value", "plus", "minus");
+      if (!quotesNumbers(fields)) return names;
+      names.push("estimator");
+      break;
+    }
     default:
       return names;
   }
   names.push("level");
   if (fields.level === "other") names.push("levelPercent");
   return names;
+}
+
+/** Whether a number of an interval stands beside a curve: level and estimator are asked for then. */
+export function quotesNumbers(fields: ConstraintFields): boolean {
+  return (["value", "plus", "minus"] as const).some((name) => !isOpen(fields, name));
 }
 
 /** Fields of both lists: those whose content counts; what else was typed before a choice changed is not used. */

@@ -1,6 +1,6 @@
 /** What must be given before a record can be submitted. */
 import type { ConstraintFields, FieldName } from "./fields";
-import { isFractionBearing, isLimit, isOpen } from "./relevant";
+import { isFractionBearing, isLimit, isOpen, quotesNumbers } from "./relevant";
 
 /** The role decides which redshifts a fraction needs. */
 function redshiftFields(fields: ConstraintFields): FieldName[] {
@@ -37,6 +37,12 @@ function quantityNeeds(fields: ConstraintFields): FieldName[] {
 
 function statementNeeds(fields: ConstraintFields): FieldName[] {
   if (fields.kind === null) return ["kind", "level"];
+  if (fields.kind === "curve") {
+    const quoted = quotesNumbers(fields);
+    const interval: FieldName[] = quoted ? ["value", "plus", "minus", "estimator", "level"] : [];
+    if (quoted && fields.level === "other") interval.push("levelPercent");
+    return ["kind", "curveTable", "curveColumn", ...interval];
+  }
   const level: FieldName[] = fields.level === "other" ? ["level", "levelPercent"] : ["level"];
   if (fields.kind === "twoSided") {
     return ["kind", "value", "plus", "minus", ...level, "estimator"];

@@ -5,6 +5,7 @@ import { findTag, METHOD_TAGS } from "~shared/methods/vocabulary";
 
 import { asUsed, HELIUM_PER_HYDROGEN } from "./asUsed";
 import type { AsUsed } from "./asUsed";
+import { curveFindings } from "./curveRules";
 import { parseDecimal } from "./decimal";
 import { error, mustAnswer, note, sortFindings } from "./finding";
 import type { Finding } from "./finding";
@@ -57,6 +58,7 @@ export function fieldFindings(fields: ConstraintFields, options: FindingOptions)
     ...texts(fields),
     ...origin(fields),
     ...digitizingErrorSaysNothing(fields),
+    ...curveFindings(fields, quantityRange(fields)),
     ...notes(fields),
   ];
   return sortFindings(findings);
@@ -97,6 +99,8 @@ const MISSING_WORDS: Partial<Record<FieldName, string>> = {
   dataUsed: "Name at least one sightline, field or sample, or say that the data are unknown.",
   versionRead: "Say which version you read: published, preprint or erratum.",
   place: "Say where in the paper it stands: table and row, figure, section.",
+  curveTable: "Give the curve: a file, or its rows pasted.",
+  curveColumn: "Say what the second column of the curve holds: a density or ln L.",
   digitizingError:
     "Read off a figure: give the digitizing error, how far off the number can be for having been read.",
 };
@@ -394,7 +398,11 @@ function widths(fields: ConstraintFields): Finding[] {
           `Plus ${typed(fields.plus)} and minus ${typed(fields.minus)} differ by a factor of ${ratioText(large, small)}. Look at both in the paper: a digit may be missing, or a bound may have been typed in place of a width.`,
         ),
       );
-    } else if (fields.estimator === "median" && large.gt(small.times(SECOND_PEAK_RATIO))) {
+    } else if (
+      fields.kind === "twoSided" &&
+      fields.estimator === "median" &&
+      large.gt(small.times(SECOND_PEAK_RATIO))
+    ) {
       found.push(
         note(
           "secondPeak",
@@ -553,7 +561,8 @@ function texts(fields: ConstraintFields): Finding[] {
       : typeof held === "string"
         ? held.length
         : 0;
-    if (name !== "printedText" && longest > NOTE_LONGEST) {
+    // A curve says itself that it is too long.
+    if (name !== "printedText" && name !== "curveTable" && longest > NOTE_LONGEST) {
       found.push(
         error(
           `tooLong.${name}`,
@@ -654,16 +663,11 @@ function notes(fields: ConstraintFields): Finding[] {
   if (fields.kind === "qualitative") {
     found.push(note("qualitative", ["kind"], "A qualitative statement is shown and never fitted."));
   }
-  if (fields.kind === "curve") {
-    found.push(
-      note(
-        "curveLater",
-        ["kind"],
-        "The record keeps that the paper gives a curve; the curve itself can't be entered yet.",
-      ),
-    );
-  }
-  if (fields.level === "notStated" && relevantFields(fields).includes("level")) {
+  if (
+    fields.level === "notStated" &&
+    fields.kind !== "curve" &&
+    relevantFields(fields).includes("level")
+  ) {
     found.push(
       note(
         "levelNotStated",

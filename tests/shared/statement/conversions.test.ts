@@ -49,7 +49,22 @@ describe("every conversion is told in words", () => {
     ],
     [
       "an ionized curve",
+      plain({ species: "ionized", kind: "curve", value: null, plus: null, minus: null }),
+      [["neutralFromIonized", `${FLIP}every place of the curve moves to the other side.`]],
+    ],
+    [
+      "an ionized curve with an interval",
       plain({ species: "ionized", kind: "curve" }),
+      [
+        [
+          "neutralFromIonized",
+          `${FLIP}every place of the curve moves to the other side, and plus and minus of the quoted interval swap.`,
+        ],
+      ],
+    ],
+    [
+      "ionized words",
+      plain({ species: "ionized", kind: "qualitative" }),
       [["neutralFromIonized", `${FLIP}no number to convert.`]],
     ],
     [
@@ -249,9 +264,22 @@ describe("numbers as used", () => {
       low: "0.2",
       high: "0.6",
     });
-    for (const kind of ["curve", "qualitative"] as const) {
-      expect(numbers({ ...everything, kind })).toEqual({ ...none, kind });
-    }
+    expect(numbers({ ...everything, kind: "curve" })).toEqual({
+      ...none,
+      kind: "curve",
+      value: "0.42",
+      plus: "0.19",
+      minus: "0.17",
+    });
+    // Half an interval is none.
+    expect(numbers({ ...everything, plus: null, kind: "curve" })).toEqual({
+      ...none,
+      kind: "curve",
+    });
+    expect(numbers({ ...everything, kind: "qualitative" })).toEqual({
+      ...none,
+      kind: "qualitative",
+    });
     expect(numbers({ ...everything, limitBase: "0.3" }).limitBase).toBeNull();
   });
 

@@ -70,7 +70,8 @@ describe("a line as printed", () => {
     [{ kind: "band", bandLow: "0.3" }, "x_HI from 0.3 to ? at 68 %"],
     [{ kind: "band", bandHigh: "0.7" }, "x_HI from ? to 0.7 at 68 %"],
     [{ kind: "band", bandLow: "0.3", bandHigh: "0.7", value: "1" }, "x_HI from 0.3 to 0.7 at 68 %"],
-    [{ kind: "curve" }, "x_HI tabulated curve"],
+    [{ kind: "curve" }, "x_HI = 0.42 +0.19 −0.17 at 68 %, tabulated curve"],
+    [{ kind: "curve", value: null, plus: null, minus: null }, "x_HI tabulated curve"],
     [{ level: null }, "x_HI = 0.42 +0.19 −0.17"],
     [{ level: "twoSigma" }, "x_HI = 0.42 +0.19 −0.17 at two sigma"],
     [{ level: "other" }, "x_HI = 0.42 +0.19 −0.17 at another level"],
@@ -119,7 +120,8 @@ describe("a line as used", () => {
     [limit("lowerLimit", { level: "other", levelPercent: "99.7" }), "x_HI > 0.42 at 99.7 %"],
     [limit("upperLimit", { limitBase: "0.1", limitSigma: "0.2" }), "x_HI < 0.1 + 0.2 at 68 %"],
     [{ kind: "band", bandLow: "0.3", bandHigh: "0.7" }, "x_HI from 0.3 to 0.7 at 68 %"],
-    [{ kind: "curve" }, "x_HI tabulated curve"],
+    [{ kind: "curve" }, "x_HI = 0.42 +0.19 −0.17 at 68 %, tabulated curve"],
+    [{ kind: "curve", value: null, plus: null, minus: null }, "x_HI tabulated curve"],
     [{ kind: "qualitative" }, "x_HI qualitative"],
     [
       { quantity: "opticalDepthRange", rangeLow: "15", rangeHigh: "30.5" },
@@ -157,7 +159,8 @@ describe("short texts", () => {
       { kind: "band", bandLow: "3", bandHigh: "7", quantity: "duration", durationUnit: "myr" },
       "3 to 7 Myr",
     ],
-    [{ kind: "curve" }, ""],
+    [{ kind: "curve" }, "0.42 +0.19 −0.17"],
+    [{ kind: "curve", value: null, plus: null, minus: null }, ""],
   ])("of %j", (changes, text) => {
     expect(shortText(printed(changes))).toBe(text);
   });
