@@ -93,7 +93,7 @@ export async function keepNotice(here: Change, who: Acting, notice: NewNotice): 
     },
   });
   const words = happenedWords(kind, replacedById);
-  await tellOfLife(here, who, { constraintId: record.id, words, reason });
+  await tellOfLife(here, who, { constraintId: record.id, words });
 }
 
 /** Records an erratum, a withdrawal, or what takes a record's place. */
@@ -212,9 +212,5 @@ export async function noteLifted(
     superseded: "is not superseded any more",
     withdrawn: "is not withdrawn any more",
   };
-  await tellOfLife(here, who, {
-    constraintId: notice.constraintId,
-    words: words[notice.kind],
-    reason,
-  });
+  await tellOfLife(here, who, { constraintId: notice.constraintId, words: words[notice.kind] });
 }

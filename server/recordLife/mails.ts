@@ -4,8 +4,6 @@ import { User } from "~server/account/user.entity";
 import { Constraint } from "~server/constraint/constraint.entity";
 import { Revision } from "~server/constraint/revision.entity";
 import type { Acting, Change } from "~server/event/acting";
-import { queueMail } from "~server/mail/outbox";
-import { readsBlindUntil } from "~server/review/blindness";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 
 export interface HeldTable {
@@ -38,17 +36,16 @@ export interface Happened {
   constraintId: number;
   /** "was withdrawn", "was superseded by FL-0009" */
   words: string;
-  reason: string;
 }
 
 /**
  * Tells the owner of a record, and the owners of saved tables that take it in, what was recorded about
- * it. A reason may quote numbers: to who is reading the record blind it goes once that has to end.
+ * it. The reason stands on the record's page only: it may quote numbers, and a mail is read by whoever
+ * holds the mailbox, who may be reading the record blind.
  */
 export async function tellOfLife(here: Change, who: Acting, happened: Happened): Promise<void> {
-  if (!who.sendsMail) return;
   const { manager } = here;
-  const { constraintId, words, reason } = happened;
+  const { constraintId, words } = happened;
   const record = await manager.findOneByOrFail(Constraint, { id: constraintId });
   const revision = await manager.findOne(Revision, {
     where: { id: record.approvedRevisionId ?? "" },
@@ -62,25 +59,23 @@ export async function tellOfLife(here: Change, who: Acting, happened: Happened):
       personId === who.viewer.id ? null : await manager.findOneBy(User, { id: personId });
     if (!person) continue;
     const own = tables.filter(({ ownerId }) => ownerId === personId);
-    await queueMail(
-      manager,
-      {
-        to: person.email,
-        subject: `${number} ${words}`,
-        text: [
-          `${number}${paper} ${words}.`,
-          `Reason: ${reason}`,
-          `It stands at ${who.publicUrl}/constraints/${number}`,
-          ...(own.length === 0
-            ? []
-            : [
-                `It is a row of ${own.length === 1 ? "a fitting table" : "fitting tables"} of yours. A saved table doesn't change by itself; its page says what happened to its rows.`,
-                own.map(({ slug, name }) => `${name}: ${who.publicUrl}/tables/${slug}`).join("\n"),
-              ]),
-          "",
-        ].join("\n\n"),
-      },
-      await readsBlindUntil(manager, personId, constraintId, who.now),
-    );
+    await here.mail({
+      to: person.email,
+      subject: `${number} ${words}`,
+      text: [
+        `${number}${paper} ${words}.`,
+        `Who, when and why stands with the record: ${who.publicUrl}/constraints/${number}`,
+        ...(own.length === 0 ? [] : tableWords(who, own)),
+        "",
+      ].join("\n\n"),
+    });
   }
+}
+
+function tableWords(who: Acting, own: readonly HeldTable[]): string[] {
+  const tables = own.length === 1 ? "a fitting table" : "fitting tables";
+  return [
+    `It is a row of ${tables} of yours. A saved table doesn't change by itself; its page says what happened to its rows.`,
+    own.map(({ slug, name }) => `${name}: ${who.publicUrl}/tables/${slug}`).join("\n"),
+  ];
 }

@@ -155,7 +155,7 @@ export function LifeSheet({
         multiline
         maxLength={NOTICE_REASON.longest}
         error={at("reason")}
-        hint="Public, with your name and the date. Its contributor gets it by mail, and so does who keeps it in a fitting table."
+        hint="Public, with your name and the date. Its contributor is told by mail, and so is who keeps it in a fitting table."
       />
       {refusal && !["reason", "replacedBy"].includes(refusal.field ?? "") ? (
         <Notice grade="error">{refusal.message}</Notice>

@@ -1,5 +1,6 @@
 import { EventRecord } from "~server/event/event.entity";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
+import { recordNotice } from "~server/recordLife/life.service";
 import { claim, returnSubmission, storeReading } from "~server/review/review.service";
 import { reviseSubmission, saveDraft, submitDraft } from "~server/constraint/draft.service";
 import { saveTable } from "~server/table/table.service";
@@ -60,6 +61,7 @@ describe("blindness", () => {
       ...(await rows("SELECT id v FROM field_comment LIMIT 1")),
       ...(await rows("SELECT id v FROM citation")),
       ...(await rows("SELECT slug v FROM fitting_table")),
+      ...(await rows("SELECT slug v FROM named_data")),
     ];
     const records = (await rows("SELECT id v FROM constraint_record")).map(Number);
     const slugs = await rows("SELECT slug v FROM fitting_table");
@@ -253,6 +255,14 @@ describe("blindness", () => {
             reason: "same sightline",
           },
         ],
+      }),
+    );
+    // What became of a record may quote its numbers, too.
+    granted(
+      await recordNotice(actingAs(server.dataSource, editor.user), {
+        number: record,
+        kind: "erratum",
+        reason: `The printed ${FIRST.value} has a misprint, says the journal.`,
       }),
     );
     // Approved: public, and the walk finds it.
