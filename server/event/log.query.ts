@@ -126,14 +126,18 @@ function dayStart(day: string | null | undefined): Date | null {
 
 const PERSON = "user:";
 
+const isId = (value: unknown): value is string =>
+  typeof value === "string" && /^[0-9a-f-]{36}$/.test(value);
+
 /** The events with their sentences; the names are those of today, of a former member what they chose. */
 async function inWords(
   manager: EntityManager,
   events: readonly EventRecord[],
 ): Promise<LogEntry[]> {
   const ids = new Set<string>();
-  for (const { actorId, subject } of events) {
+  for (const { actorId, subject, detail } of events) {
     if (actorId) ids.add(actorId);
+    if (isId(detail.to)) ids.add(detail.to);
     if (subject.startsWith(PERSON)) ids.add(subject.slice(PERSON.length));
   }
   const people =
@@ -151,7 +155,8 @@ async function inWords(
       ? (names.get(event.subject.slice(PERSON.length)) ?? null)
       : null;
     const { subject, detail } = event;
-    const sentence = eventSentence(event.kind, { who, subject, person, detail });
+    const to = isId(detail.to) ? (names.get(detail.to) ?? null) : null;
+    const sentence = eventSentence(event.kind, { who, subject, person, to, detail });
     return { ...event, who, sentence };
   });
 }

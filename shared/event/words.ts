@@ -10,6 +10,8 @@ export interface ToldEvent {
   subject: string;
   /** Name of the person that the subject is; null when it is none. */
   person: string | null;
+  /** Name of the person that the detail `to` is; null when it is none. */
+  to: string | null;
   /** Facts of the change. */
   detail: Readonly<Record<string, unknown>>;
 }
@@ -49,6 +51,12 @@ function joined(words: readonly string[]): string {
 
 /** The table's, release's or other thing's own name behind the colon of a subject. */
 const thing = (event: ToldEvent): string => event.subject.slice(event.subject.indexOf(":") + 1);
+
+/** The same of something that the detail names. */
+function otherThing(event: ToldEvent, name: string): string {
+  const other = text(event, name);
+  return other === "" ? "others" : other.slice(other.indexOf(":") + 1);
+}
 
 const person = (event: ToldEvent): string => event.person ?? "somebody";
 const thePerson = (event: ToldEvent): string => event.person ?? "Somebody";
@@ -105,6 +113,25 @@ const EVENT_WORDS: Readonly<Record<string, EventWords>> = {
   "authorCheck.revoked": plain("Author check revoked", "took back the link to check"),
   "authorCheck.sent": plain("Author asked", "asked an author of the paper to check"),
   "claim.handedOver": plain("Claim handed over", "handed the claim on", " to another editor"),
+  "authorCheck.answered": words(
+    "Author's check answered",
+    (event) =>
+      `${event.who ?? "The paper's author"} answered the author's check of ${event.subject}.`,
+  ),
+  "authorCheck.closed": plain("Author's check closed", "closed the author's check of"),
+  "authorCheck.revoked": plain("Author's check revoked", "took back the author's link to"),
+  "authorCheck.sent": plain("Author's check sent", "asked the paper's author to check"),
+  "claim.handedOver": words(
+    "Claim handed over",
+    (event) =>
+      `${by(event)} handed the claim on ${event.subject} over to ${event.to ?? "another editor"}.`,
+  ),
+  "claim.renewed": plain("Claim renewed", "kept the claim on", " for longer"),
+  "comment.replied": words(
+    "Comment replied to",
+    (event) =>
+      `${by(event)} replied to a comment on ${event.subject} (${fieldName(text(event, "field"))}).`,
+  ),
   "claim.made": plain("Claim made", "claimed", " to read it again"),
   "claim.renewed": plain("Claim lengthened", "lengthened the claim on"),
   "claim.released": plain("Claim given back", "gave back the claim on"),
@@ -148,6 +175,25 @@ const EVENT_WORDS: Readonly<Record<string, EventWords>> = {
     "Demonstration seeded",
     () => "The program filled the registry with the invented demonstration.",
   ),
+  "namedData.added": words("Data named", (event) => `${by(event)} named the data ${thing(event)}.`),
+  "namedData.edited": words(
+    "Named data edited",
+    (event) => `${by(event)} edited the named data ${thing(event)}.`,
+  ),
+  "namedData.merged": words(
+    "Named data merged",
+    (event) =>
+      `${by(event)} merged the named data ${thing(event)} into ${otherThing(event, "into")}.`,
+  ),
+  "namedData.related": words(
+    "Named data related",
+    (event) => `${by(event)} related the named data ${thing(event)} to ${otherThing(event, "to")}.`,
+  ),
+  "namedData.unrelated": words(
+    "Relation of data taken back",
+    (event) =>
+      `${by(event)} took back how the named data ${thing(event)} relate to ${otherThing(event, "to")}.`,
+  ),
   "reading.corrected": words(
     "Reading corrected",
     (event) =>
@@ -158,6 +204,14 @@ const EVENT_WORDS: Readonly<Record<string, EventWords>> = {
   "record.errorReported": words(
     "Error reported",
     (event) => `${event.who ?? "A reader"} reported an error in ${event.subject}.`,
+  ),
+  "recusal.declared": words(
+    "Recused",
+    (event) => `${by(event)} leaves the paper ${thing(event)} to other editors.`,
+  ),
+  "recusal.takenBack": words(
+    "Recusal taken back",
+    (event) => `${by(event)} no longer leaves the paper ${thing(event)} to other editors.`,
   ),
   "record.erratum": words(
     "Erratum recorded",

@@ -7,6 +7,7 @@ export const possibleTypes: Record<string, string[]> = {
   CorrelatedSetResult: ["CorrelatedSet", "Refusal"],
   DoneResult: ["Done", "Refusal"],
   ErrorReportResult: ["ErrorReport", "Refusal"],
+  EvidenceResult: ["Evidence", "Refusal"],
   FittingTableResult: ["FittingTable", "Refusal"],
   ImportPreviewResult: ["ImportPreview", "Refusal"],
   ImportResult: ["ImportDone", "Refusal"],

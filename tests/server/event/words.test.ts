@@ -5,16 +5,26 @@ import { EVENT_KINDS, eventName, eventSentence } from "~shared/event/words";
 
 const SERVER = path.join(__dirname, "../../../server");
 
-/** Kinds of events that the server's sources name: `kind: "claim.made"`, `kind: \`role.${change}\``, a row of a map. */
+const KIND = "([a-z][a-zA-Z]*\\.(?:[a-z][a-zA-Z]*|\\$\\{\\w+\\}))";
+/** `kind: "claim.made"`, `kind: \`role.${change}\``, `kind: same ? "a.b" : "a.c"`. */
+const AT_ONCE = new RegExp(
+  `\\bkind:\\s*(?:[^"\`,;{}()]*\\?\\s*)?["\`]${KIND}["\`](?:\\s*:\\s*["\`]${KIND}["\`])?`,
+  "g",
+);
+/** `const EVENTS: Record<Notice, string> = { … }` */
+const IN_A_MAP = /\bEVENTS\b[^=;]*=\s*\{([^}]*)\}/g;
+
+/** Kinds of events that the server's sources name. */
 function appendedKinds(): { kind: string; file: string }[] {
   const files = readdirSync(SERVER, { recursive: true, encoding: "utf8" });
   return files
     .filter((file) => file.endsWith(".ts"))
     .flatMap((file) => {
       const source = readFileSync(path.join(SERVER, file), "utf8");
-      const literal =
-        /\w+\s*:\s*(?:[^"`,;{}()]*\?\s*)?["`]([a-z][a-zA-Z]*\.(?:[a-z][a-zA-Z]*|\$\{\w+\}))["`](?:\s*:\s*["`]([a-z][a-zA-Z]*\.[a-z][a-zA-Z]*)["`])?/g;
-      return [...source.matchAll(literal)].flatMap((match) =>
+      const maps = [...source.matchAll(IN_A_MAP)].flatMap(([, rows = ""]) => [
+        ...rows.matchAll(new RegExp(`"${KIND}"`, "g")),
+      ]);
+      return [...source.matchAll(AT_ONCE), ...maps].flatMap((match) =>
         match
           .slice(1)
           .filter((kind) => kind !== undefined)
@@ -27,7 +37,7 @@ function appendedKinds(): { kind: string; file: string }[] {
 const covers = (written: string, kind: string): boolean =>
   new RegExp(`^${written.replace(".", "\\.").replace(/\$\{\w+\}/, "\\w+")}$`).test(kind);
 
-const event = { who: "Ottla Firn", subject: "FL-0042.1", person: null, detail: {} };
+const event = { who: "Ottla Firn", subject: "FL-0042.1", person: null, to: null, detail: {} };
 
 it("every kind that the server appends has its sentence in shared/event/words.ts", () => {
   const appended = appendedKinds();
@@ -50,7 +60,7 @@ it.each(EVENT_KINDS)("%s is said in one sentence, whoever did it and whatever it
       expect(sentence).not.toMatch(/undefined|null|NaN|\[object/);
     }
   }
-  expect(eventName(kind)).toMatch(/^[A-Z][a-z’' -]+$/);
+  expect(eventName(kind)).toMatch(/^[A-Z][a-z' -]+$/);
 });
 
 it("names differ, so that a list of kinds can be chosen from", () => {
@@ -70,6 +80,7 @@ it("says who did what to what", () => {
       who: null,
       subject: "user:1",
       person: "Brisa Kelm",
+      to: null,
       detail: { role: "editor" },
     }),
   ).toBe("The program gave Brisa Kelm the editor role.");
