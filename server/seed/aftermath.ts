@@ -5,6 +5,7 @@ import { ErrorReport } from "~server/errorReport/errorReport.entity";
 import { Constraint } from "~server/constraint/constraint.entity";
 import { Revision } from "~server/constraint/revision.entity";
 import { appendEvent } from "~server/event/eventLog";
+import { declareRecusal } from "~server/review/recusal.service";
 import { recordNotice } from "~server/recordLife/life.service";
 import { formatQuotable, parseRecordNumber } from "~shared/identifiers/recordNumber";
 import type { ReportOutcome } from "~shared/review/errorReport";
@@ -29,6 +30,23 @@ export function noticeSteps(stage: Stage, { name, notice }: StoryRecord): Step[]
             ...(replacedBy ? { replacedBy: stage.numberOf(replacedBy) } : {}),
           }),
           `notice on ${name}`,
+        );
+      },
+    },
+  ];
+}
+
+/** An editor leaves a paper to others. Papers of their own they are kept from anyway. */
+export function recusalSteps(stage: Stage): Step[] {
+  return [
+    {
+      at: new Date("2026-11-19T08:15:00Z"),
+      tell: async (at) => {
+        const who = stage.as("secondEditor", at);
+        const paper = await stage.citation("marlpit", who);
+        done(
+          await declareRecusal(who, paper, "I share an office with two of the collaboration."),
+          "recusal",
         );
       },
     },

@@ -5,6 +5,7 @@ import { keepCitations } from "~server/citation/citation.service";
 import * as drafts from "~server/constraint/draft.service";
 import { allFindings, neighbours } from "~server/constraint/neighbours";
 import type { Revision } from "~server/constraint/revision.entity";
+import { attachEvidence } from "~server/evidence/evidence.service";
 import type { Acting } from "~server/event/acting";
 import { FieldCommentRecord } from "~server/review/comment.entity";
 import * as reviews from "~server/review/review.service";
@@ -12,8 +13,10 @@ import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 import { checklistFor } from "~shared/review/checklist";
 import type { ConstraintFields } from "~shared/statement/fields";
 
-import { noticeSteps, reportSteps } from "./aftermath";
+import { noticeSteps, recusalSteps, reportSteps } from "./aftermath";
+import { checkSteps } from "./checks";
 import { dataSteps } from "./dataEntries";
+import { EVIDENCE } from "./files";
 import { PAPERS, type PaperName } from "./papers";
 import { PEOPLE, type PersonName } from "./people";
 import { SETS, setSteps } from "./sets";
@@ -39,6 +42,8 @@ export class Teller implements Stage {
       ...STORY.flatMap((record) => noticeSteps(this, record)),
       ...SETS.flatMap((set) => setSteps(this, set)),
       ...dataSteps(this),
+      ...recusalSteps(this),
+      ...checkSteps(this),
       ...reportSteps(this),
       ...tableSteps(this),
     ];
@@ -187,6 +192,9 @@ export class Teller implements Stage {
       at,
     });
     if (record.name) this.numbers.set(record.name, formatRecordNumber(draft.constraintId));
+    for (const file of EVIDENCE[record.name ?? ""] ?? []) {
+      done(await attachEvidence(who, { ...file, revisionId: draft.id }), `file ${file.name}`);
+    }
     return draft;
   }
 

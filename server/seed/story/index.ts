@@ -1,4 +1,5 @@
 import { CMB } from "./cmb";
+import { CURVES } from "./curves";
 import { EMITTERS } from "./emitters";
 import { FOREST } from "./forest";
 import { GROUPS } from "./groups";
@@ -19,6 +20,7 @@ export const STORY: readonly StoryRecord[] = [
   ...EMITTERS,
   ...CMB,
   ...OTHER_METHODS,
+  ...CURVES,
   ...GROUPS,
   ...LIFE,
   ...TRAPS,

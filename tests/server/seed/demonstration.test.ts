@@ -1,3 +1,4 @@
+import { AuthorCheck } from "~server/authorCheck/authorCheck.entity";
 import { Citation } from "~server/citation/citation.entity";
 import { Constraint } from "~server/constraint/constraint.entity";
 import { findApproved } from "~server/constraint/constraint.query";
@@ -6,12 +7,17 @@ import { CorrelatedSet } from "~server/correlatedSet/correlatedSet.entity";
 import { setsInUse } from "~server/correlatedSet/tableSets";
 import { isDemonstration } from "~server/database/settings";
 import { ErrorReport } from "~server/errorReport/errorReport.entity";
+import { kindOf } from "~server/evidence/content";
+import { Evidence } from "~server/evidence/evidence.entity";
 import { EventRecord } from "~server/event/event.entity";
 import { verifyChain } from "~server/event/eventLog";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
+import { NamedData, NamedDataAlias, NamedDataRelation } from "~server/namedData/namedData.entity";
 import { RecordNotice } from "~server/recordLife/recordNotice.entity";
+import { Recusal } from "~server/review/recusal.entity";
 import { Reading } from "~server/review/reading.entity";
 import { seedDemonstration } from "~server/seed";
+import { EVIDENCE } from "~server/seed/files";
 import { DEMONSTRATION_PASSWORD, PEOPLE } from "~server/seed/people";
 import { SavedTable } from "~server/table/table.entity";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
@@ -20,7 +26,7 @@ import { NOTICE_KINDS } from "~shared/review/notice";
 import { RECORD_STATES, REVISION_STATES } from "~shared/review/states";
 import { asUsed } from "~shared/statement/asUsed";
 import { hasErrors } from "~shared/statement/rules";
-import { QUANTITIES, VERSIONS_READ } from "~shared/statement/fields";
+import { QUANTITIES, STATEMENT_KINDS, VERSIONS_READ } from "~shared/statement/fields";
 
 import { TEST_PASSWORD_COST } from "../../factories/user";
 import { startTestServer, type TestServer } from "../support/harness";
@@ -60,20 +66,14 @@ describe("the demonstration", () => {
     for (const revision of revisions) expect(revision.createdAt.getUTCFullYear()).toBe(2026);
   });
 
-  it("holds every method family, quantity and statement that a paper prints in numbers", async () => {
+  it("holds every method family, quantity and kind of statement", async () => {
     const rows = await approved();
     const families = new Set(
       rows.flatMap(({ revision }) => revision.families.split(",").filter(Boolean)),
     );
     expect([...families].sort()).toEqual([...METHOD_FAMILIES].sort());
     expect(new Set(rows.map(({ revision }) => revision.quantity))).toEqual(new Set(QUANTITIES));
-    expect([...new Set(rows.map(({ revision }) => revision.kind))].sort()).toEqual([
-      "band",
-      "lowerLimit",
-      "qualitative",
-      "twoSided",
-      "upperLimit",
-    ]);
+    expect(new Set(rows.map(({ revision }) => revision.kind))).toEqual(new Set(STATEMENT_KINDS));
     const fields = rows.map(({ revision }) => revision.fields);
     expect(fields.some((one) => one.level === "notStated")).toBe(true);
     expect(fields.some((one) => one.level === "percent95")).toBe(true);
@@ -142,6 +142,34 @@ describe("the demonstration", () => {
   it("has an error report with its answer, and one that waits", async () => {
     const reports = await server.dataSource.manager.find(ErrorReport);
     expect(reports.map(({ state }) => state).sort()).toEqual(["closed", "open"]);
+  });
+
+  it("has authors who answered, one who has not yet, and an editor who left a paper to others", async () => {
+    const { manager } = server.dataSource;
+    const checks = await manager.find(AuthorCheck);
+    expect(checks.map(({ state }) => state).sort()).toEqual(["closed", "closed", "sent"]);
+    expect(new Set(checks.flatMap(({ verdict }) => verdict ?? []))).toEqual(
+      new Set(["correct", "comments"]),
+    );
+    expect(await manager.count(Recusal)).toBe(1);
+  });
+
+  it("attaches files that are what they say", async () => {
+    const files = Object.values(EVIDENCE).flat();
+    expect(new Set(files.map(({ kind }) => kind))).toEqual(new Set(["csv", "pdf", "png"]));
+    for (const { kind, bytes } of files) expect(kindOf(bytes)).toEqual({ kind });
+    expect(await server.dataSource.manager.count(Evidence)).toBe(files.length);
+  });
+
+  it("says what its named data are: coordinates, other names, parts of one another", async () => {
+    const { manager } = server.dataSource;
+    const things = await manager.find(NamedData);
+    expect(things.filter(({ ra }) => ra !== null).length).toBeGreaterThanOrEqual(5);
+    expect(new Set(things.map(({ kind }) => kind))).toEqual(
+      new Set(["sightline", "field", "sample", "unknown"]),
+    );
+    expect(await manager.count(NamedDataAlias)).toBeGreaterThan(things.length);
+    expect(await manager.count(NamedDataRelation)).toBe(3);
   });
 
   it("approves nothing with an error, and everything but the qualitative can be used", async () => {
