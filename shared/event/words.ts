@@ -112,25 +112,10 @@ const EVENT_WORDS: Readonly<Record<string, EventWords>> = {
   "authorCheck.closed": plain("Author check closed", "closed the author's check of"),
   "authorCheck.revoked": plain("Author check revoked", "took back the link to check"),
   "authorCheck.sent": plain("Author asked", "asked an author of the paper to check"),
-  "claim.handedOver": plain("Claim handed over", "handed the claim on", " to another editor"),
-  "authorCheck.answered": words(
-    "Author's check answered",
-    (event) =>
-      `${event.who ?? "The paper's author"} answered the author's check of ${event.subject}.`,
-  ),
-  "authorCheck.closed": plain("Author's check closed", "closed the author's check of"),
-  "authorCheck.revoked": plain("Author's check revoked", "took back the author's link to"),
-  "authorCheck.sent": plain("Author's check sent", "asked the paper's author to check"),
   "claim.handedOver": words(
     "Claim handed over",
     (event) =>
       `${by(event)} handed the claim on ${event.subject} over to ${event.to ?? "another editor"}.`,
-  ),
-  "claim.renewed": plain("Claim renewed", "kept the claim on", " for longer"),
-  "comment.replied": words(
-    "Comment replied to",
-    (event) =>
-      `${by(event)} replied to a comment on ${event.subject} (${fieldName(text(event, "field"))}).`,
   ),
   "claim.made": plain("Claim made", "claimed", " to read it again"),
   "claim.renewed": plain("Claim lengthened", "lengthened the claim on"),
@@ -204,14 +189,6 @@ const EVENT_WORDS: Readonly<Record<string, EventWords>> = {
   "record.errorReported": words(
     "Error reported",
     (event) => `${event.who ?? "A reader"} reported an error in ${event.subject}.`,
-  ),
-  "recusal.declared": words(
-    "Recused",
-    (event) => `${by(event)} leaves the paper ${thing(event)} to other editors.`,
-  ),
-  "recusal.takenBack": words(
-    "Recusal taken back",
-    (event) => `${by(event)} no longer leaves the paper ${thing(event)} to other editors.`,
   ),
   "record.erratum": words(
     "Erratum recorded",
