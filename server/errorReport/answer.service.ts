@@ -105,7 +105,7 @@ export async function answerReport(
     const won = await moved(here, report, version, ["open", "answered"], { state: "answered" });
     if (!won) return refuse("STALE", CHANGED);
     await write(here, who, report, text);
-    await answerReporter(here.manager, told(who, report), text, null);
+    if (who.sendsMail) await answerReporter(here.manager, told(who, report), text, null);
     await here.event({
       kind: "report.answered",
       subject: formatQuotable(report.constraintId, report.revision.ordinal),
@@ -149,7 +149,7 @@ export async function closeReport(
     });
     if (!won) return refuse("STALE", CHANGED);
     if (text !== null) await write(here, who, report, text);
-    await answerReporter(manager, told(who, report), text, set);
+    if (who.sendsMail) await answerReporter(manager, told(who, report), text, set);
     await here.event({
       kind: "report.closed",
       subject: formatQuotable(report.constraintId, report.revision.ordinal),

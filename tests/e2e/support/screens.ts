@@ -785,7 +785,7 @@ const EMPTY: Situation[] = (
   },
 }));
 
-export const SITUATIONS = [
+const SITUATIONS = [
   ...NOBODY,
   ...REPORTS,
   ...READER,
