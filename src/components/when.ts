@@ -32,3 +32,17 @@ export function waitingTime(since: string, now: Date = new Date()): string {
 export function monthYear(iso: string): string {
   return new Date(iso).toLocaleDateString("en-GB", { month: "long", year: "numeric" });
 }
+
+/** "2 days", "5 hours", "less than an hour": until something ends. */
+export function timeLeft(until: string, now: Date = new Date()): string {
+  return waitingTime(now.toISOString(), new Date(until));
+}
+
+/** "21 March 2026" */
+export function longDay(iso: string): string {
+  return new Date(iso).toLocaleDateString("en-GB", {
+    day: "numeric",
+    month: "long",
+    year: "numeric",
+  });
+}

@@ -5,6 +5,7 @@ import { StyleSheet, View } from "react-native";
 import { useSession } from "@/apollo/useSession";
 import { Failed } from "@/components/feedback/Failed";
 import { StatementCurve } from "@/components/statement/StatementCurve";
+import { AuthorChecks } from "@/components/authorCheck/AuthorChecks";
 import { Button } from "@/components/Button";
 import { Card, Divider } from "@/components/Card";
 import { CitationLine } from "@/components/CitationLine";
@@ -143,6 +144,11 @@ export function RecordView({ record }: { record: RecordData }) {
             kind="text"
             icon="alert-circle-outline"
             onPress={() => setReporting(true)}
+          />
+          <AuthorChecks
+            number={record.number}
+            quotable={record.quotable}
+            marks={record.authorChecks}
           />
           <ReportCount number={record.number} count={record.errorReports} />
           {life ? (

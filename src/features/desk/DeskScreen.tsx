@@ -8,6 +8,7 @@ import { Body, Dense, Section } from "@/components/Text";
 import { Screen } from "@/layout/Screen";
 import { View } from "react-native";
 
+import { AuthorChecksEntry } from "./AuthorChecksEntry";
 import { MaintainerDesk } from "./MaintainerDesk";
 import { MySubmissions } from "./MySubmissions";
 import { Queue } from "./Queue";
@@ -33,6 +34,7 @@ export function DeskScreen() {
             {hasRole("contributor") ? <MySets /> : null}
             {hasRole("editor") ? <Queue /> : null}
             {hasRole("editor") ? <SetQueue /> : null}
+            {hasRole("editor") ? <AuthorChecksEntry /> : null}
             {may("readErrorReports") ? <ReportsEntry /> : null}
             {hasRole("maintainer") ? <MaintainerDesk /> : null}
             {hasRole("contributor") ? null : <BecomeContributor alone={roles.length === 0} />}

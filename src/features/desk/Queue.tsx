@@ -1,27 +1,35 @@
 import { useQuery } from "@apollo/client/react";
 import { View } from "react-native";
 
+import { Button } from "@/components/Button";
 import { Card } from "@/components/Card";
 import { Empty } from "@/components/feedback/Empty";
 import { Failed } from "@/components/feedback/Failed";
 import { Loading } from "@/components/feedback/Loading";
-import { ListRow } from "@/components/ListRow";
-import { StatusPill } from "@/components/StatusPill";
-import { Block, Caption, Dense, Mono, Section } from "@/components/Text";
-import { dateTime, waitingTime } from "@/components/when";
-import { useColors } from "@/theme/ThemeProvider";
-import { type QueueItemPartsFragment, ReviewQueueDocument } from "~graphql/generated/graphql";
+import { Dense, Section } from "@/components/Text";
+import { ReviewQueueDocument } from "~graphql/generated/graphql";
 
-/** An editor's work: what one has claimed, then what waits, oldest first. */
+import { counted, isOverdue, partOf, searched } from "./queueFilter";
+import { QueueRows } from "./QueueRows";
+
+/** So many stand on the desk; the rest is a touch away. */
+const SHOWN = 4;
+
+/** An editor's work at a glance: what one has claimed, then the oldest that one could claim. */
 export function Queue() {
   const { data, loading, error, refetch } = useQuery(ReviewQueueDocument, {
     fetchPolicy: "cache-and-network",
   });
-  const all = data?.queue ?? [];
-  const mine = all.filter(({ claimedByMe }) => claimedByMe);
-  const waiting = all
-    .filter(({ claimedByMe }) => !claimedByMe)
-    .sort((a, b) => a.submittedAt.localeCompare(b.submittedAt));
+  const all = searched(data?.queue ?? [], "");
+  const mine = all.filter((item) => partOf(item) === "mine");
+  const free = all.filter((item) => partOf(item) === "free");
+  const counts = counted(all);
+  const overdue = free.filter((item) => isOverdue(item, new Date())).length;
+  const rest = [
+    overdue > 0 ? `${overdue} overdue` : "",
+    counts.others > 0 ? `${counts.others} with others` : "",
+    counts.barred > 0 ? `${counts.barred} not for you` : "",
+  ].filter(Boolean);
   return (
     <View style={{ gap: 16 }}>
       <Section>Queue</Section>
@@ -36,55 +44,24 @@ export function Queue() {
           />
         </Card>
       ) : null}
-      <Group title="Claimed by me" rows={mine} />
-      <Group title="Waiting, oldest first" rows={waiting} />
-    </View>
-  );
-}
-
-function Group({ title, rows }: { title: string; rows: readonly QueueItemPartsFragment[] }) {
-  if (rows.length === 0) return null;
-  return (
-    <View style={{ gap: 8 }}>
-      <Block>{`${title}, ${rows.length}`}</Block>
-      <Card flush>
-        <View role="list" aria-label={title}>
-          {rows.map((item, index) => (
-            <Row key={item.id} item={item} first={index === 0} />
-          ))}
-        </View>
-      </Card>
-    </View>
-  );
-}
-
-function Row({ item, first }: { item: QueueItemPartsFragment; first: boolean }) {
-  const colors = useColors();
-  const { citation, place, page } = item;
-  const where = [place, page ? `page ${page}` : null].filter(Boolean).join(", ");
-  return (
-    <ListRow href={`/desk/review/${item.id}`} first={first}>
-      <View style={{ flexDirection: "row", flexWrap: "wrap", alignItems: "center", gap: 8 }}>
-        <Mono style={{ fontSize: 14 }}>
-          {item.ordinal > 1 ? `${item.number}.${item.ordinal}` : item.number}
-        </Mono>
-        <StatusPill state={item.state} />
-        <Dense muted>{standing(item)}</Dense>
-      </View>
-      <Dense style={{ fontWeight: "600" }}>{citation.shortName}</Dense>
-      <Dense muted numberOfLines={2}>
-        {citation.title}
-      </Dense>
-      {where ? <Caption>{where}</Caption> : null}
-      {item.barredBecause ? (
-        <Caption style={{ color: colors.emberText }}>{item.barredBecause}</Caption>
+      {all.length > 0 && mine.length + free.length === 0 ? (
+        <Dense muted>Nothing is free to claim now.</Dense>
       ) : null}
-    </ListRow>
+      <QueueRows title="Claimed by me" rows={mine} />
+      <QueueRows title="Waiting, oldest first" rows={free.slice(0, SHOWN)} of={free.length} />
+      {data && all.length > 0 ? (
+        <View
+          style={{ flexDirection: "row", flexWrap: "wrap", alignItems: "center", columnGap: 12 }}
+        >
+          <Button
+            kind="outline"
+            icon="format-list-bulleted"
+            label={`The whole queue, ${all.length}`}
+            href="/desk/queue"
+          />
+          {rest.length > 0 ? <Dense muted>{rest.join(", ")}</Dense> : null}
+        </View>
+      ) : null}
+    </View>
   );
-}
-
-function standing(item: QueueItemPartsFragment): string {
-  if (item.claimedByMe && item.claimedUntil) return `yours until ${dateTime(item.claimedUntil)}`;
-  if (item.claimedUntil) return "another editor is reading it";
-  return `waits ${waitingTime(item.submittedAt)}`;
 }

@@ -5,8 +5,8 @@ import { View } from "react-native";
 
 import { userMessage } from "@/apollo/userMessage";
 import { useSession } from "@/apollo/useSession";
+import { AskAuthor } from "@/components/authorCheck/AskAuthor";
 import { Button } from "@/components/Button";
-import { Confirm } from "@/components/Confirm";
 import { EvidenceFiles } from "@/components/evidence/EvidenceFiles";
 import { Empty } from "@/components/feedback/Empty";
 import { Failed } from "@/components/feedback/Failed";
@@ -16,7 +16,7 @@ import { plainFields } from "@/components/statement/plainFields";
 import { StatusPill } from "@/components/StatusPill";
 import { StepBar } from "@/components/StepBar";
 import { Caption, Dense, Mono } from "@/components/Text";
-import { dateTime, shortDateTime } from "@/components/when";
+import { dateTime, timeLeft } from "@/components/when";
 import { Screen } from "@/layout/Screen";
 import { useLayoutClass } from "@/layout/useLayoutClass";
 import {
@@ -25,21 +25,24 @@ import {
   ClaimSubmissionDocument,
   CorrectReadingDocument,
   type OutcomeFragment,
-  ReleaseClaimDocument,
   ReturnSubmissionDocument,
   type ReviewPartsFragment,
   StoreReadingDocument,
+  TickChecklistDocument,
 } from "~graphql/generated/graphql";
-import { CLAIM_HOURS } from "~shared/review/states";
 import { emptyFields, type FieldName } from "~shared/statement/fields";
 import { isOpen } from "~shared/statement/relevant";
 
+import { Checklist } from "./Checklist";
+import { ClaimStep } from "./ClaimStep";
+import { ClaimTools } from "./ClaimTools";
 import { Comparison } from "./Comparison";
 import { Answers, type CommentDraft, Decision } from "./Decision";
 import { Difference } from "./Difference";
 import { PaperCard } from "./PaperCard";
 import { ReadingStep } from "./ReadingStep";
 import { fieldName, stillToRead } from "./readingText";
+import { Round } from "./Round";
 import { useReading } from "./useReading";
 import { type ReviewActions, useReview } from "./useReview";
 
@@ -142,26 +145,26 @@ function Work({ review, actions, onReload }: WorkProps) {
   const [accept] = useMutation(AcceptAnswerDocument);
   const [approve] = useMutation(ApproveSubmissionDocument);
   const [sendBack] = useMutation(ReturnSubmissionDocument);
-  const [release] = useMutation(ReleaseClaimDocument);
+  const [tick] = useMutation(TickChecklistDocument);
 
   const [comments, setComments] = useState<CommentDraft[]>([]);
   const [returning, setReturning] = useState(false);
-  const [releasing, setReleasing] = useState(false);
-  const [ended, setEnded] = useState<{ message: string; decided: boolean } | null>(null);
+  const [ended, setEnded] = useState<{ message: string; then: string } | null>(null);
   const [endProblem, setEndProblem] = useState<string | null>(null);
   const [ending, setEnding] = useState(false);
 
   const end = async (
     send: () => Promise<OutcomeFragment | undefined>,
-    decided: boolean,
+    then = "The contributor gets a mail.",
   ): Promise<void> => {
     setEnding(true);
     setEndProblem(null);
     try {
       const outcome = await send();
       if (outcome?.__typename === "Done") {
-        if (decided) reading.forget();
-        setEnded({ message: outcome.message, decided });
+        // What was typed and not stored goes with the claim.
+        reading.forget();
+        setEnded({ message: outcome.message, then });
       } else {
         setEndProblem(outcome?.message ?? "The server gave no answer. Try again.");
       }
@@ -190,11 +193,9 @@ function Work({ review, actions, onReload }: WorkProps) {
           <Notice
             grade="done"
             title={ended.message}
-            action={<Button kind="filled" label="To the queue" href={DESK} />}
+            action={<Button kind="filled" label="To the queue" href="/desk/queue" />}
           >
-            {ended.decided
-              ? "The contributor gets a mail."
-              : "Another editor can claim it now; what you stored stays on record."}
+            {ended.then}
           </Notice>
         </View>
       </Screen>
@@ -242,7 +243,6 @@ function Work({ review, actions, onReload }: WorkProps) {
           async () =>
             (await approve({ variables: { id, version, note: note.trim() || null } })).data
               ?.approveSubmission,
-          true,
         )
       }
       onReturn={(note) =>
@@ -258,7 +258,6 @@ function Work({ review, actions, onReload }: WorkProps) {
                 },
               })
             ).data?.returnSubmission,
-          true,
         )
       }
     />
@@ -269,9 +268,10 @@ function Work({ review, actions, onReload }: WorkProps) {
   let footer: ReactNode;
   if (step === "claim") {
     main = (
-      <Claim
+      <ClaimStep
         review={review}
-        busy={actions.busy}
+        busy={actions.busy || ending}
+        end={end}
         onClaim={() =>
           void actions.run(async () => (await claim({ variables: { id } })).data?.claimSubmission)
         }
@@ -307,16 +307,18 @@ function Work({ review, actions, onReload }: WorkProps) {
         {returning ? (
           decision
         ) : (
-          <View style={{ flexDirection: "row", flexWrap: "wrap", gap: 8 }}>
-            <Button
-              kind="text"
-              label="It can't be read there: return it"
-              onPress={() => {
-                setComments([{ field: "place", text: "" }]);
-                setReturning(true);
-              }}
-            />
-            <Button kind="text" label="Release claim" onPress={() => setReleasing(true)} />
+          <View style={{ gap: 12 }}>
+            <View style={{ flexDirection: "row", marginLeft: -12 }}>
+              <Button
+                kind="text"
+                label="It can't be read there: return it"
+                onPress={() => {
+                  setComments([{ field: "place", text: "" }]);
+                  setReturning(true);
+                }}
+              />
+            </View>
+            <ClaimTools item={item} actions={actions} end={end} />
           </View>
         )}
       </View>
@@ -366,7 +368,7 @@ function Work({ review, actions, onReload }: WorkProps) {
             setReturning(true);
           }}
         />
-        <Changes review={review} />
+        <Round review={review} />
         <EvidenceFiles number={`${item.number}.${item.ordinal}`} level={2} />
       </View>
     );
@@ -383,10 +385,17 @@ function Work({ review, actions, onReload }: WorkProps) {
             )
           }
         />
+        <Checklist
+          points={review.checklist}
+          onTick={(codes) =>
+            void actions.run(
+              async () => (await tick({ variables: { id, codes } })).data?.tickChecklist,
+            )
+          }
+        />
         {decision}
-        <View style={{ flexDirection: "row" }}>
-          <Button kind="text" label="Release claim" onPress={() => setReleasing(true)} />
-        </View>
+        <AskAuthor quotable={`${item.number}.${item.ordinal}`} />
+        <ClaimTools item={item} actions={actions} end={end} />
       </View>
     );
   }
@@ -419,22 +428,7 @@ function Work({ review, actions, onReload }: WorkProps) {
           {beside}
         </View>
       )}
-      <Confirm
-        visible={releasing}
-        title="Release the claim?"
-        text="The submission goes back to the queue. What you typed and did not store is dropped."
-        confirmLabel="Release it"
-        onConfirm={() => {
-          setReleasing(false);
-          void end(async () => {
-            const outcome = (await release({ variables: { id } })).data?.releaseClaim;
-            if (outcome?.__typename === "Done") reading.forget();
-            return outcome;
-          }, false);
-        }}
-        onCancel={() => setReleasing(false)}
-      />
-      {step === "read" && endProblem && !returning ? (
+      {endProblem && !returning && step !== "compare" && step !== "decide" ? (
         <Notice grade="error">{endProblem}</Notice>
       ) : null}
     </Screen>
@@ -467,7 +461,7 @@ function Standing({ review }: { review: ReviewPartsFragment }) {
     return (
       <Caption>
         <Mono>{item.number}</Mono>
-        {held ? `, claimed until ${shortDateTime(item.claimedUntil!)}` : ""}
+        {held ? `, ${timeLeft(item.claimedUntil!)} left` : ""}
       </Caption>
     );
   }
@@ -476,93 +470,9 @@ function Standing({ review }: { review: ReviewPartsFragment }) {
       <Mono style={{ fontSize: 15 }}>{item.number}</Mono>
       <StatusPill state={item.state} />
       {item.claimedByMe && item.claimedUntil ? (
-        <Dense muted>{`claimed by you until ${dateTime(item.claimedUntil)}`}</Dense>
-      ) : null}
-    </View>
-  );
-}
-
-/** Before the claim: the paper, and whether this editor may read it. */
-function Claim({
-  review,
-  busy,
-  onClaim,
-}: {
-  review: ReviewPartsFragment;
-  busy: boolean;
-  onClaim: () => void;
-}) {
-  const { item } = review;
-  if (item.state === "approved" || item.state === "returned") {
-    return (
-      <Notice
-        grade="note"
-        title={
-          item.state === "approved" ? "This revision is approved" : "This revision is returned"
-        }
-        action={<Button kind="tonal" label="To the queue" href={DESK} />}
-      >
-        It is decided; nothing is left to read.
-      </Notice>
-    );
-  }
-  if (item.barredBecause) {
-    return (
-      <Notice grade="caution" title="You can't read this one">
-        {item.barredBecause}
-      </Notice>
-    );
-  }
-  if (item.claimedUntil && !item.claimedByMe) {
-    return (
-      <Notice
-        grade="note"
-        title="Another editor is reading it"
-        action={<Button kind="tonal" label="To the queue" href={DESK} />}
-      >
-        {`The claim ends on ${dateTime(item.claimedUntil)} unless it is decided before.`}
-      </Notice>
-    );
-  }
-  return (
-    <View style={{ gap: 16 }}>
-      <Dense style={{ fontSize: 16, lineHeight: 24 }}>
-        {`A claim holds this submission for ${CLAIM_HOURS} hours. You read the paper and type its numbers before the submitted ones are shown to you.`}
-      </Dense>
-      <Button
-        kind="filled"
-        icon="eye-outline"
-        label="Claim for a second reading"
-        busy={busy}
-        onPress={onClaim}
-      />
-    </View>
-  );
-}
-
-function Changes({ review }: { review: ReviewPartsFragment }) {
-  const { comments, changes } = review;
-  if (comments.length === 0 && changes.length === 0) return null;
-  return (
-    <View style={{ gap: 12 }}>
-      {comments.map((comment) => (
-        <Notice
-          key={comment.id}
-          grade="note"
-          title={`${comment.by} asked at ${fieldName(comment.field).toLowerCase()}`}
-        >
-          <Dense>{comment.text}</Dense>
-          <Dense muted>{comment.answer ? `Answer: ${comment.answer}` : "Not answered"}</Dense>
-        </Notice>
-      ))}
-      {changes.length > 0 ? (
-        <Notice grade="note" title="Changed since the last revision">
-          {changes.map(({ field, before, after }) => (
-            <Dense key={field}>
-              {`${fieldName(field)}: ${before || "open"}, now ${after || "open"}`}
-            </Dense>
-          ))}
-        </Notice>
+        <Dense
+          muted
+        >{`yours until ${dateTime(item.claimedUntil)}, ${timeLeft(item.claimedUntil)} left`}</Dense>
       ) : null}
     </View>
   );

@@ -23,10 +23,9 @@ import type { FieldName } from "~shared/statement/fields";
 import { notationAsPrinted } from "~shared/statement/notation";
 import { FIELD_NAMES, fieldText } from "~shared/statement/words";
 
-import { ChangesSince } from "./ChangesSince";
-import { CommentAtField } from "./comments";
 import { DESK, submissionLink } from "./links";
 import { redshiftLine } from "./redshiftLine";
+import { Trail } from "./Trail";
 import { useStartDraft } from "./useStartDraft";
 
 /** A revision that is no draft any more, as its contributor sees it. */
@@ -64,20 +63,7 @@ export function SubmissionView({ submission }: { submission: SubmissionPartsFrag
           <Button kind="outline" label="To the desk" href={DESK} />
           {state === "submitted" ? <TakeBack submission={submission} /> : null}
         </View>
-        {submission.comments.length > 0 ? (
-          <View style={{ gap: 8 }}>
-            <Section>Comments</Section>
-            {submission.comments.map((comment) => (
-              <View key={comment.id}>
-                <Dense style={{ fontWeight: "600" }}>
-                  {FIELD_NAMES[comment.field as FieldName] ?? "The paper"}
-                </Dense>
-                <CommentAtField comment={comment} answer={comment.answer ?? ""} />
-              </View>
-            ))}
-          </View>
-        ) : null}
-        <ChangesSince changes={submission.changes} />
+        <Trail submission={submission} />
         <View style={{ gap: 12 }}>
           <Section>As printed</Section>
           <Card style={{ gap: 12 }}>

@@ -88,6 +88,7 @@ const record = (fields: Partial<ConstraintFields> = {}): MockedResponse =>
           dataEntries: [],
           sharesDataWith: [],
           alternatives: [],
+          authorChecks: [],
           errorReports: { __typename: "ErrorReportCount", open: 1, answered: 1 },
           revisions: [
             {

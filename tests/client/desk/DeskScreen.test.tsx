@@ -40,6 +40,8 @@ const queueItem = (id: string, number: string, submittedAt: string, part: object
   claimedByMe: false,
   claimedUntil: null,
   barredBecause: null,
+  leftToOthers: false,
+  notRenewable: null,
   place: "Table 1",
   page: null,
   versionRead: "published",
@@ -83,6 +85,7 @@ describe.each(WIDTHS)("the desk at %i points", (width) => {
       by: "Nakuda, Sel",
       at: "2026-12-01T10:00:00Z",
       answer: null,
+      messages: [],
     };
     at(
       ["contributor"],

@@ -7,6 +7,7 @@ import { createCache } from "@/apollo/client";
 import { ThemeProvider } from "@/theme/ThemeProvider";
 import {
   EvidenceDocument,
+  AuthorChecksDocument,
   ErrorReportsDocument,
   LooksUpCitationsDocument,
   MySetsDocument,
@@ -15,6 +16,7 @@ import {
   RowsSinceDocument,
   SessionDocument,
   SetQueueDocument,
+  SubmissionTrailDocument,
   type SubmissionPartsFragment,
 } from "~graphql/generated/graphql";
 import type { Role } from "~shared/review/states";
@@ -98,6 +100,14 @@ const NOTHING_ELSE = [
     result: { data: { fittingTable: null } },
   },
   { request: { query: NamedDataNamesDocument }, result: { data: { namedDataList: [] } } },
+  {
+    request: { query: AuthorChecksDocument, variables: { text: null } },
+    result: { data: { authorChecks: [] } },
+  },
+  {
+    request: { query: SubmissionTrailDocument, variables: { id: "s1" } },
+    result: { data: { submission: { __typename: "Submission", id: "s1", trail: [] } } },
+  },
   { request: { query: MySetsDocument }, result: { data: { mySets: [] } } },
   { request: { query: SetQueueDocument }, result: { data: { setQueue: [] } } },
   // Whatever the revision.

@@ -39,6 +39,8 @@ const item = (part: object = {}) => ({
   claimedByMe: true,
   claimedUntil: "2026-12-04T09:00:00Z",
   barredBecause: null,
+  leftToOthers: false,
+  notRenewable: null,
   place: "Table 2, row 3",
   page: "11",
   versionRead: "published",
@@ -58,6 +60,7 @@ const buildReview = (part: object = {}) => ({
   answers: [],
   comments: [],
   changes: [],
+  checklist: [],
   blockers: ["Your second reading is not stored yet."],
   ...part,
 });

@@ -186,6 +186,7 @@ describe.each(WIDTHS)("the submission form at %i points", (width) => {
               by: "Nakuda, S.",
               at: "2026-12-01T10:00:00Z",
               answer: null,
+              messages: [],
             },
           ],
         }),

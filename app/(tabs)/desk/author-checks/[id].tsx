@@ -1,0 +1,1 @@
+export { AuthorCheckScreen as default } from "@/features/authorCheck/AuthorCheckScreen";

@@ -1,0 +1,1 @@
+export { AuthorChecksScreen as default } from "@/features/authorCheck/AuthorChecksScreen";

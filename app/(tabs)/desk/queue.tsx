@@ -1,0 +1,1 @@
+export { QueueScreen as default } from "@/features/desk/QueueScreen";

@@ -1,0 +1,1 @@
+export { CheckLinkScreen as default } from "@/features/authorCheck/CheckLinkScreen";
