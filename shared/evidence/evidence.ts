@@ -33,9 +33,9 @@ export const EVIDENCE_LIMITS = {
   caption: 300,
 } as const;
 
-/** "1.4 MB", "12 kB", "1 byte": sizes as people read them, decimal. */
+/** "1.4 MB", "10 MB", "12 kB", "1 byte": sizes as people read them, decimal. */
 export function bytesInWords(bytes: number): string {
-  if (bytes >= 999_950) return `${(bytes / 1_000_000).toFixed(1)} MB`;
+  if (bytes >= 999_950) return `${(bytes / 1_000_000).toFixed(1).replace(/\.0$/, "")} MB`;
   if (bytes >= 1000) return `${Math.round(bytes / 1000)} kB`;
   return bytes === 1 ? "1 byte" : `${bytes} bytes`;
 }

@@ -93,7 +93,7 @@ describe.each(WIDTHS)("the files of a draft at %i points", (width) => {
 
   it("sends what is chosen, says how far it is, and then shows it as kept", async () => {
     at(kept(), kept(file({ name: "paper.pdf", kind: "pdf" })));
-    await screen.findByLabelText("Attach a file");
+    await screen.findByLabelText(/^Attach a file/);
     choose(PDF);
     await screen.findByText("0 % of 8 bytes");
     await waitFor(() => expect(FakeRequest.sent).toHaveLength(1));
@@ -111,7 +111,7 @@ describe.each(WIDTHS)("the files of a draft at %i points", (width) => {
 
   it("says in words why a file was not taken, and sends it again when asked", async () => {
     at(kept(), kept(file({ name: "paper.pdf" })));
-    await screen.findByLabelText("Attach a file");
+    await screen.findByLabelText(/^Attach a file/);
     FakeRequest.answer = { status: 400, body: '{"message":"The file is an archive."}' };
     choose(PDF);
     const alert = await screen.findByRole("alert");
@@ -128,7 +128,7 @@ describe.each(WIDTHS)("the files of a draft at %i points", (width) => {
     [{ status: 502, body: "<html>" }, "The server did not take this file"],
   ])("keeps a file in hand when the server is out of reach: %j", async (answer, words) => {
     at(kept());
-    await screen.findByLabelText("Attach a file");
+    await screen.findByLabelText(/^Attach a file/);
     FakeRequest.answer = answer;
     choose(PDF);
     const alert = await screen.findByRole("alert");
@@ -139,19 +139,19 @@ describe.each(WIDTHS)("the files of a draft at %i points", (width) => {
 
   it("does not send what is larger than the server takes", async () => {
     at(kept());
-    await screen.findByLabelText("Attach a file");
+    await screen.findByLabelText(/^Attach a file/);
     const large = new File(["x"], "large.pdf");
     Object.defineProperty(large, "size", { value: 12_300_000 });
     choose(large);
     expect(await screen.findByRole("alert")).toHaveTextContent(
-      "The file has 12.3 MB; 10.0 MB is the most.",
+      "The file has 12.3 MB; 10 MB is the most.",
     );
     expect(FakeRequest.sent).toEqual([]);
   });
 
   it("stops a file on its way", async () => {
     at(kept());
-    await screen.findByLabelText("Attach a file");
+    await screen.findByLabelText(/^Attach a file/);
     choose(PDF);
     fireEvent.click(await screen.findByRole("button", { name: "Stop paper.pdf" }));
     await waitFor(() => expect(screen.queryByText(/% of/)).toBeNull());

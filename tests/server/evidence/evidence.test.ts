@@ -127,7 +127,7 @@ describe("attaching", () => {
     const more = await post(person.agent, draft.id, Buffer.concat([bytes, Buffer.from("\n")]), {
       name: "paper.pdf",
     });
-    expect([more.status, more.body.message]).toEqual([413, "The file is larger than 10.0 MB."]);
+    expect([more.status, more.body.message]).toEqual([413, "The file is larger than 10 MB."]);
   });
 
   it.each([
@@ -215,7 +215,7 @@ describe("attaching", () => {
     const more = await post(person.agent, (await draftOf(person)).id, `${CSV}9,0.9,0,0\n`);
     expect([more.status, more.body.message]).toEqual([
       409,
-      expect.stringContaining("200.0 MB is the most"),
+      expect.stringContaining("200 MB is the most"),
     ]);
     await server.dataSource.manager.update(
       EvidenceFile,
