@@ -269,7 +269,7 @@ describe("blindness", () => {
     expect((await leaks(editor.agent)).some((leak) => leak.includes("in constraints "))).toBe(true);
 
     const inPublic = await leaks(server.agent());
-    expect(inPublic.some((leak) => leak.includes("in fittingTables"))).toBe(true);
+    expect(inPublic.some((leak) => leak.includes("in fittingTable "))).toBe(true);
     const files = [
       /\/api\/constraints\.csv$/,
       /\/api\/tables\/\w+\.csv/,
