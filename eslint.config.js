@@ -8,9 +8,9 @@ const importX = require("eslint-plugin-import-x");
 
 /** Concepts of shared/ from the ground up: a later one may use an earlier one, never the reverse. */
 const SHARED_ORDER = [
-  ...["errors", "numerics", "constants", "identifiers", "methods", "statement", "cosmology"],
-  ...["history", "likelihood", "inference", "review", "correlatedSet", "event", "filter", "formats"],
-  "chart",
+  ...["errors", "numerics", "constants", "identifiers", "methods", "statement", "dependence"],
+  ...["cosmology", "history", "likelihood", "inference", "review", "correlatedSet", "event"],
+  ...["filter", "formats", "chart"],
 ];
 
 const features = foldersOf("src/features");
