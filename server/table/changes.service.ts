@@ -43,7 +43,11 @@ export async function tableChanges(
   const now = await follow(manager, viewer, { ...recipe, release });
   if (now instanceof Refusal) return null;
   const saved = await savedRecords(manager, version);
-  const then = settleRecords(await surroundingsFor(manager, recipe.release), saved, recipe.choices);
+  const then = settleRecords(
+    await surroundingsFor(manager, viewer, recipe.release),
+    saved,
+    recipe.choices,
+  );
   const [best, bestThen] = [bestTanh(now.settled), bestTanh(then)];
   return Object.assign(new TableChanges(), {
     release,

@@ -129,6 +129,29 @@ export class TableProposal {
   @Field(() => EventMark) lastEvent!: EventMark;
 }
 
+@ObjectType({ description: "Two records that share data directly." })
+export class SharedDataPair {
+  @Field(() => String) a!: string;
+  @Field(() => String) b!: string;
+  @Field(() => String, { description: "What they share, in words." }) via!: string;
+}
+
+@ObjectType({ description: "Something a record is conditioned on, directly or through others." })
+export class ConditionWay {
+  @Field(() => [String], { description: "Records on the way, the record itself first." })
+  through!: string[];
+  @Field(() => String, { description: "Kind of data, or number of a record, at its end." })
+  on!: string;
+}
+
+@ObjectType("TableSurroundings", {
+  description: "What the registry knows of records beside their own content.",
+})
+export class TableSurroundingsType {
+  @Field(() => [SharedDataPair]) overlaps!: SharedDataPair[];
+  @Field(() => [ConditionWay]) conditions!: ConditionWay[];
+}
+
 @ObjectType()
 export class TableVersionMark {
   @Field(() => Int) version!: number;

@@ -4,6 +4,8 @@ import { refuse, Refusal } from "~server/common/outcomes";
 import type { ViewerIdentity } from "~server/common/context";
 import { setNumbersReadBlind } from "~server/correlatedSet/tableSets";
 import { Release, releaseSurroundings } from "~server/release/release.entity";
+import { recordsReadBlind } from "~server/review/blindness";
+import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 import type { TableChoices } from "~shared/table/decision";
 import { settleTable, type SettledTable } from "~shared/table/settleTable";
 
@@ -33,19 +35,35 @@ export async function follow(
       "filter",
     );
   }
-  const surroundings = await surroundingsFor(manager, recipe.release);
-  const blind = await setNumbersReadBlind(manager, viewer, new Date());
-  const kept = { ...surroundings, sets: surroundings.sets.filter(({ id }) => !blind.has(id)) };
+  const kept = await surroundingsFor(manager, viewer, recipe.release);
   return { candidates, settled: settleRecords(kept, candidates.records, recipe.choices) };
 }
 
-/** Surroundings as a release froze them, or as they stand now. */
+/**
+ * Surroundings as a release froze them, or as they stand now, without the sets that this person is
+ * reading blind and without what a record that they read blind is conditioned on.
+ */
 export async function surroundingsFor(
   manager: EntityManager,
+  viewer: ViewerIdentity | null,
   release: number | null,
 ): Promise<KeptSurroundings> {
-  if (release === null) return presentSurroundings(manager);
-  return releaseSurroundings(await manager.findOneByOrFail(Release, { number: release }));
+  const kept =
+    release === null
+      ? await presentSurroundings(manager)
+      : releaseSurroundings(await manager.findOneByOrFail(Release, { number: release }));
+  const now = new Date();
+  const sets = await setNumbersReadBlind(manager, viewer, now);
+  const records = new Set(
+    [...(await recordsReadBlind(manager, viewer, now))].map(formatRecordNumber),
+  );
+  return {
+    ...kept,
+    sets: kept.sets.filter(({ id }) => !sets.has(id)),
+    conditions: Object.fromEntries(
+      Object.entries(kept.conditions).filter(([number]) => !records.has(number)),
+    ),
+  };
 }
 
 /** Settles records that are at hand with what a person chose. */

@@ -3,17 +3,21 @@ import { Arg, Ctx, FieldResolver, ID, Int, Mutation, Query, Resolver, Root } fro
 import type { RequestContext } from "~server/common/context";
 import { DoneResult, Refusal } from "~server/common/outcomes";
 import { Requires } from "~server/common/requires";
-import { ConstraintType } from "~server/constraint/constraint.type";
+import { ConstraintFilterInput, ConstraintType } from "~server/constraint/constraint.type";
 import { acting } from "~server/event/acting";
 import { eventMark } from "~server/event/event.type";
+import { canonicalFilter } from "~shared/filter/address";
 import { filterWords } from "~shared/filter/describe";
 
+import { candidatesOf } from "./candidates";
 import { tableChanges } from "./changes.service";
 import { TABLE_FILES } from "./files";
 import { recipeOf } from "./recipe";
 import {
+  ConditionWay,
   SaveRecipeInput,
   SettledRowType,
+  SharedDataPair,
   TableChanges,
   TableCorrelation,
   TableDecision,
@@ -23,10 +27,12 @@ import {
   TableProposal,
   TableProposalResult,
   TableRecipeType,
+  TableSurroundingsType,
   TableVersionMark,
   VisibilityEnum,
 } from "./recipe.type";
-import { follow } from "./settle.service";
+import { follow, surroundingsFor } from "./settle.service";
+import { surroundingsOf } from "./surroundings";
 import type { Visibility } from "./table.entity";
 import * as tables from "./table.service";
 import {
@@ -96,6 +102,32 @@ export class TableResolver {
       ...groupTypes(settled),
       filter: filterWords(recipe.filter),
       lastEvent: eventMark(candidates.lastEvent),
+    });
+  }
+
+  @Query(() => TableSurroundingsType, {
+    description:
+      "Shared data among the latest approved records that a filter matches, and what each is conditioned on.",
+  })
+  async tableSurroundings(
+    @Ctx() ctx: RequestContext,
+    @Arg("filter", () => ConstraintFilterInput, { nullable: true })
+    filter: ConstraintFilterInput | null = null,
+  ): Promise<TableSurroundingsType> {
+    const { manager } = ctx.database;
+    const wanted = { release: null, filter: canonicalFilter(filter ?? {}) };
+    const candidates = await candidatesOf(manager, ctx.viewer, wanted);
+    const none = Object.assign(new TableSurroundingsType(), { overlaps: [], conditions: [] });
+    if (candidates instanceof Refusal) return none;
+    const { overlaps, conditions } = surroundingsOf(
+      await surroundingsFor(manager, ctx.viewer, null),
+      candidates.records,
+    );
+    return Object.assign(none, {
+      overlaps: overlaps.map((pair) => Object.assign(new SharedDataPair(), pair)),
+      conditions: [...conditions.values()]
+        .flat()
+        .map(({ through, on }) => Object.assign(new ConditionWay(), { through: [...through], on })),
     });
   }
 

@@ -38,7 +38,7 @@ import { ModelsProvider } from "./ModelsProvider";
 import { PointTable } from "./PointTable";
 import { stripGroups } from "./QuantityStrip";
 import { chartPoints, historyRow } from "./rows";
-import { decideByDefault } from "./scoring";
+import { decideByDefault, NO_SURROUNDINGS } from "./scoring";
 import { useView } from "./useView";
 
 const PLANCK = backgroundOf();
@@ -85,7 +85,8 @@ export function HistoryScreen() {
   const { data, previousData, loading, error, refetch } = useQuery(HistoryConstraintsDocument, {
     variables: { filter: asked },
   });
-  const page = (data ?? previousData)?.constraints;
+  const answer = data ?? previousData;
+  const page = answer?.constraints;
   const fetched = useMemo(() => (page?.constraints ?? []).map(historyRow), [page]);
   const rows = useMemo(
     () => (families ? fetched.filter((row) => families.includes(row.family)) : fetched),
@@ -124,7 +125,11 @@ export function HistoryScreen() {
       ),
     [setData],
   );
-  const decided = useMemo(() => decideByDefault(shownRows, sets), [shownRows, sets]);
+  const around = answer?.tableSurroundings;
+  const decided = useMemo(
+    () => decideByDefault(shownRows, { ...(around ?? NO_SURROUNDINGS), sets }),
+    [shownRows, around, sets],
+  );
   const selected = rows.find((row) => row.number === view.point) ?? null;
 
   const { filter, setFilter } = address;

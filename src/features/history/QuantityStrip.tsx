@@ -11,7 +11,7 @@ import { Block, Caption, Dense, Label } from "@/components/Text";
 import { FAMILY_MARKS } from "@/theme/families";
 import { useColors, useTheme } from "@/theme/ThemeProvider";
 import { fonts, radius, schemes, space } from "@/theme/tokens";
-import { limitDirection, statementSpan } from "~shared/chart/points";
+import { drawnCurve, limitDirection, statementSpan } from "~shared/chart/points";
 import { linearScale, type Scale } from "~shared/chart/scales";
 import { linearTicks } from "~shared/chart/ticks";
 import { notationAsUsed } from "~shared/statement/notation";
@@ -21,6 +21,8 @@ import type { Overlay } from "./useOverlays";
 
 const LINE = 60;
 const AXIS = 24;
+/** How far a curve rises over its base. */
+const CURVE = 24;
 /** Width of a figure in the axis labels. */
 const DIGIT = 7.5;
 
@@ -239,11 +241,21 @@ function StripDrawing({
         const y = LINE * (index + 0.5);
         const limit = limitDirection(used.kind);
         const x = scale.at(span.centre);
-        const dash = used.level === null ? "3 2.5" : undefined;
+        const curve = drawnCurve(used);
+        const dash = used.level === null && curve === null ? "3 2.5" : undefined;
         const tip = limit === null ? x : Math.min(width - 4, Math.max(4, x + limit * 34));
         return (
           <G key={row.number}>
-            {span.ends && used.kind === "band" ? (
+            {curve ? (
+              <Path
+                d={`M${scale.at(curve.at[0]!)} ${y}${curve.at.map((at, i) => `L${scale.at(at)} ${y - CURVE * curve.height[i]!}`).join("")}L${scale.at(curve.at[curve.at.length - 1]!)} ${y}Z`}
+                fill={hue}
+                fillOpacity={0.2}
+                stroke={hue}
+                strokeWidth={1.25}
+                strokeLinejoin="round"
+              />
+            ) : span.ends && used.kind === "band" ? (
               <Rect
                 x={scale.at(span.ends[0])}
                 y={y - 4.5}

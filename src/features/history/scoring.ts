@@ -1,8 +1,6 @@
 import type { Background } from "~shared/cosmology/background";
 import type { History } from "~shared/history/history";
 import {
-  type RowOptions,
-  rowLikelihood,
   type RowScore,
   type RowToScore,
   type Score,
@@ -11,7 +9,8 @@ import {
   type SetScore,
   type SetToScore,
 } from "~shared/likelihood";
-import { proposeRows } from "~shared/table/proposeRows";
+import { NO_CHOICES, type ConditionPath, type TableSurroundings } from "~shared/table/decision";
+import { settleTable } from "~shared/table/settleTable";
 import type { HistoryRow } from "./rows";
 
 export interface ScoredRows {
@@ -24,46 +23,69 @@ export interface ScoredRows {
   sets: readonly { set: SetToScore; rows: readonly RowToScore[] }[];
 }
 
+/** What the registry knows of the rows beside their content, as the API gives it. */
+export interface RowSurroundings {
+  overlaps: TableSurroundings["overlaps"];
+  conditions: readonly ConditionPath[];
+  sets: readonly SetToScore[];
+}
+
+export const NO_SURROUNDINGS: RowSurroundings = { overlaps: [], conditions: [], sets: [] };
+
 /**
- * Rows with the default decisions taken, the same that a new fitting table proposes: one of several
- * answers to a question, one of rows that share data, no row without a level. A limit that has no
- * default form is a hard step. Rows of a correlated set count together, a part by the exact marginal.
+ * Rows with the default decisions taken, the same that a new fitting table proposes: alternatives
+ * as their mixture or the preferred one, of rows that share data a largest set, no row without a level,
+ * no row that contains another. Rows of a correlated set count together, a part by the exact marginal.
  */
 export function decideByDefault(
   rows: readonly HistoryRow[],
-  correlated: readonly SetToScore[] = [],
+  { overlaps, conditions, sets }: RowSurroundings = NO_SURROUNDINGS,
 ): ScoredRows {
-  const proposals = proposeRows(
+  const ways = new Map<string, ConditionPath[]>();
+  for (const way of conditions) {
+    const [number = ""] = way.through;
+    ways.set(number, [...(ways.get(number) ?? []), way]);
+  }
+  const settled = settleTable(
     rows.map(({ number, fields, citation, state }) => ({
       number,
       fields,
       state,
       citation: citation.key,
-      year: citation.year,
+      shortName: citation.shortName,
+      year: citation.year ?? null,
+      supersededBy: null,
     })),
-    correlated,
+    { overlaps, conditions: ways, sets: sets.map((set) => ({ ...set, label: set.id })) },
+    NO_CHOICES,
   );
   const before: { id: string; reason: string }[] = [];
   const scored: RowToScore[] = [];
   const aside: RowToScore[] = [];
-  rows.forEach((row, index) => {
-    const reason = proposals[index]?.reason ?? null;
-    if (reason !== null) before.push({ id: row.number, reason: `${reason}.` });
-    const list = reason === null ? scored : aside;
-    list.push({ id: row.number, asUsed: row.used, ...optionsOf(row) });
+  settled.rows.forEach((row, index) => {
+    const used = rows[index]?.used ?? null;
+    const { number: id, reason, options, mixture } = row;
+    const open = Object.keys(options).length === 0 ? {} : { options };
+    const toScore: RowToScore = { id, asUsed: used, ...open };
+    if (row.included) {
+      // Labels of two papers may be alike: the paper tells them apart.
+      const group = mixture === null ? null : `${rows[index]?.citation.key}: ${mixture}`;
+      scored.push(group === null ? toScore : { ...toScore, alternativesGroup: group });
+    } else {
+      before.push({ id, reason: `${(reason ?? "Left out").replace(/\.$/, "")}.` });
+      aside.push(toScore);
+    }
   });
-  const sets = correlated.flatMap((set) => {
-    const members = scored.filter(({ id }) => set.members.includes(id));
-    return members.length > 1 ? [{ set, rows: members }] : [];
-  });
-  const together = new Set(sets.flatMap(({ rows: members }) => members.map(({ id }) => id)));
-  return { rows: scored.filter(({ id }) => !together.has(id)), before, aside, sets };
-}
-
-function optionsOf(row: HistoryRow): { options?: RowOptions } {
-  const plain = rowLikelihood(row.used);
-  const needsForm = "leftOut" in plain && plain.code === "limitNeedsForm";
-  return needsForm ? { options: { form: "hardStep" } } : {};
+  const together = new Set(settled.sets.flatMap(({ members }) => members));
+  return {
+    rows: scored.filter(({ id }) => !together.has(id)),
+    before,
+    aside,
+    sets: settled.sets.map(({ id, members, rho }) => ({
+      set: { id, members, rho },
+      rows: scored.filter((row) => members.includes(row.id)),
+    })),
+  };
 }
 
 export interface HistoryScore extends Score {

@@ -76,6 +76,11 @@ function answer(
           lastEvent: { __typename: "EventMark" as const, sequence: 12, at: "2026-03-14T10:00:00Z" },
           constraints,
         },
+        tableSurroundings: {
+          __typename: "TableSurroundings" as const,
+          overlaps: [],
+          conditions: [],
+        },
       },
     },
   };

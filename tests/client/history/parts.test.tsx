@@ -9,7 +9,7 @@ import {
 } from "@/features/history/models";
 import { readoutOf, shownNumber } from "@/features/history/readouts";
 import { stripGroups } from "@/features/history/QuantityStrip";
-import { decideByDefault, scoreHistory } from "@/features/history/scoring";
+import { decideByDefault, NO_SURROUNDINGS, scoreHistory } from "@/features/history/scoring";
 import { background } from "~shared/cosmology/background";
 import { tanhHistory } from "~shared/history/tanh";
 import { buildRow } from "./rows";
@@ -78,10 +78,13 @@ describe("default decisions", () => {
     expect(decided.before).toEqual([{ id: "FL-0001", reason: "Level not stated." }]);
   });
   it("count one of two papers on the same sightline, the later one", () => {
-    const decided = decideByDefault([
-      buildRow("FL-0001", { dataUsed: ["QV 0719+31"] }, { key: "early2021", year: 2021 }),
-      buildRow("FL-0002", { dataUsed: ["QV 0719+31"] }, { key: "late2025", year: 2025 }),
-    ]);
+    const decided = decideByDefault(
+      [
+        buildRow("FL-0001", { dataUsed: ["QV 0719+31"] }, { key: "early2021", year: 2021 }),
+        buildRow("FL-0002", { dataUsed: ["QV 0719+31"] }, { key: "late2025", year: 2025 }),
+      ],
+      { ...NO_SURROUNDINGS, overlaps: [{ a: "FL-0001", b: "FL-0002", via: "QV 0719+31" }] },
+    );
     expect(decided.rows.map(({ id }) => id)).toEqual(["FL-0002"]);
     expect(decided.before[0]?.reason).toBe("Shares QV 0719+31 with FL-0002.");
   });
@@ -108,7 +111,13 @@ describe("default decisions", () => {
         [0.6, 1],
       ],
     };
-    const decided = decideByDefault(rows, [set]);
+    const via = "Fen field";
+    const overlaps = [
+      { a: "FL-0001", b: "FL-0002", via },
+      { a: "FL-0001", b: "FL-0003", via },
+      { a: "FL-0002", b: "FL-0003", via },
+    ];
+    const decided = decideByDefault(rows, { ...NO_SURROUNDINGS, overlaps, sets: [set] });
     // The third shares the field without a matrix that would say how much.
     expect(decided.before.map(({ id }) => id)).toEqual(["FL-0003"]);
     const score = scoreHistory(decided, tanhHistory({ zRe: 7 }), background());
@@ -120,7 +129,7 @@ describe("default decisions", () => {
     expect(score.at("FL-0001")?.minus2LnL).toBeCloseTo(1, 3);
 
     // A part is the exact marginal: one bin by itself.
-    const part = decideByDefault(rows.slice(0, 1), [set]);
+    const part = decideByDefault(rows.slice(0, 1), { ...NO_SURROUNDINGS, sets: [set] });
     expect(part.sets).toEqual([]);
     expect(scoreHistory(part, tanhHistory({ zRe: 7 }), background()).minus2LnL).toBeCloseTo(1, 3);
   });

@@ -62,6 +62,7 @@ const RULES: Record<"Query" | "Mutation", Record<string, Rule>> = {
     submission: "signedIn",
     tableChanges: "public",
     tableProposal: "public",
+    tableSurroundings: "public",
   },
   Mutation: {
     acceptAnswer: "editor",
