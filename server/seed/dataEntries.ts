@@ -43,6 +43,7 @@ const THINGS: readonly StoryThing[] = [
     aliases: ["Candlewick sample"],
   },
   { name: "Candlewick bright spectra", kind: "sample", extent: "the 19 brightest of the 61" },
+  { name: "Tallow Down forest sample", kind: "sample", extent: "34 quasars, 6.0 < z < 6.8" },
   { name: "GRB-V stack of four", kind: "sample" },
   { name: "Ninefold narrow-band survey", kind: "field", extent: "9 fields, 14 square degrees" },
   { name: "Ninefold second field", kind: "field", extent: "1.6 square degrees" },

@@ -88,7 +88,7 @@ export const PAPERS = {
     doi = {10.5555/les.2025.0060}}`,
   twoBins: `@article{twoBins,
     author = {Lindqvaern, Esk and Tamsin-Orre, W. and Quarrelow, Signe},
-    title = {The opacity of the {Candlewick} forest in two bins, with their correlation},
+    title = {The opacity of the {Tallow Down} forest in two bins, with their correlation},
     journal = {Journal of Distant Weather}, year = 2026, volume = 44, pages = {61--79},
     doi = {10.5555/jdw.2026.0061}}`,
   gaps: `@article{gaps,

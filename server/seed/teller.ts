@@ -11,6 +11,7 @@ import { FieldCommentRecord } from "~server/review/comment.entity";
 import * as reviews from "~server/review/review.service";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 import { checklistFor } from "~shared/review/checklist";
+import { curveFacts } from "~shared/statement/curve";
 import type { ConstraintFields } from "~shared/statement/fields";
 
 import { noticeSteps, recusalSteps, reportSteps } from "./aftermath";
@@ -19,6 +20,7 @@ import { dataSteps } from "./dataEntries";
 import { EVIDENCE } from "./files";
 import { PAPERS, type PaperName } from "./papers";
 import { PEOPLE, type PersonName } from "./people";
+import { releaseSteps } from "./releases";
 import { SETS, setSteps } from "./sets";
 import { DAY_MS, done, HOUR_MS, type Stage, type Step } from "./stage";
 import { contentOf, STORY, type StoryRecord } from "./story";
@@ -45,6 +47,7 @@ export class Teller implements Stage {
       ...recusalSteps(this),
       ...checkSteps(this),
       ...reportSteps(this),
+      ...releaseSteps(this),
       ...tableSteps(this),
     ];
     steps.sort((a, b) => a.at.getTime() - b.at.getTime());
@@ -68,6 +71,20 @@ export class Teller implements Stage {
       erratumOf: numbers(fields.erratumOf),
       reanalysisOf: numbers(fields.reanalysisOf),
       subsetOf: numbers(fields.subsetOf),
+    };
+  }
+
+  /** What an editor types who reads this content in the paper: of a curve its facts. */
+  private readAgain(fields: ConstraintFields) {
+    const facts = curveFacts(fields.curveTable, fields.curveColumn);
+    return {
+      ...this.resolved(fields),
+      ...(facts && {
+        curveRows: facts.rows,
+        curveFirst: facts.first,
+        curveLast: facts.last,
+        curvePeak: facts.peak,
+      }),
     };
   }
 
@@ -254,7 +271,7 @@ export class Teller implements Stage {
     const { id } = submitted;
     const who = this.as(record.reader, at);
     done(await reviews.claim(who, id), "claim");
-    let current = done(await reviews.storeReading(who, id, this.resolved(reading)), "reading");
+    let current = done(await reviews.storeReading(who, id, this.readAgain(reading)), "reading");
     if (record.fate === "approvedAfterCorrection" && record.comment) {
       const { field, text } = record.comment;
       current = done(
@@ -280,7 +297,7 @@ export class Teller implements Stage {
     const { id } = submitted;
     const who = this.as(record.reader, at);
     done(await reviews.claim(who, id), "claim");
-    const read = done(await reviews.storeReading(who, id, this.resolved(reading)), "reading");
+    const read = done(await reviews.storeReading(who, id, this.readAgain(reading)), "reading");
     if (!record.comment) throw new Error("the story returns without a comment");
     done(await reviews.returnSubmission(who, id, read.version, [record.comment], null), "return");
     return drafts.reload(this.manager, id);

@@ -8,7 +8,7 @@ const opacity = (fields: Statement): Statement => ({
   estimator: "mean",
   methodTags: ["forestOpacity"],
   cosmicVariance: "included",
-  dataUsed: ["Candlewick forest sample"],
+  dataUsed: ["Tallow Down forest sample"],
   ...fields,
 });
 

@@ -14,6 +14,7 @@ import { verifyChain } from "~server/event/eventLog";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
 import { NamedData, NamedDataAlias, NamedDataRelation } from "~server/namedData/namedData.entity";
 import { RecordNotice } from "~server/recordLife/recordNotice.entity";
+import { Release } from "~server/release/release.entity";
 import { Recusal } from "~server/review/recusal.entity";
 import { Reading } from "~server/review/reading.entity";
 import { seedDemonstration } from "~server/seed";
@@ -221,6 +222,13 @@ describe("the demonstration", () => {
     expect(table?.snapshot?.rows.filter((row) => !row.included).map((row) => row.reason)).toEqual(
       expect.arrayContaining([expect.stringMatching(/^Shares QV /)]),
     );
+  });
+
+  it("cut two releases of growing size", async () => {
+    const releases = await server.dataSource.manager.find(Release, { order: { number: "ASC" } });
+    expect(releases.map(({ number }) => number)).toEqual([1, 2]);
+    expect(releases[1]!.records).toBeGreaterThan(releases[0]!.records);
+    expect(releases[0]!.records).toBeGreaterThan(20);
   });
 
   it("lets each of its people sign in", async () => {
