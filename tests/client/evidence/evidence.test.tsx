@@ -119,7 +119,7 @@ describe.each(WIDTHS)("the files of a draft at %i points", (width) => {
     expect(alert).toHaveTextContent("The file is an archive.");
     FakeRequest.answer = { status: 201, body: "{}" };
     fireEvent.click(within(alert).getByRole("button", { name: "Send it again" }));
-    expect(await screen.findByText("paper.pdf")).toBeInTheDocument();
+    expect(await screen.findByText("PNG picture, 1.4 MB")).toBeInTheDocument();
     await waitFor(() => expect(screen.queryByRole("alert")).toBeNull());
   });
 

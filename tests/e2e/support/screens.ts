@@ -76,6 +76,22 @@ async function reviewOf(page: Page, wanted: "waiting" | "barred" | "mine"): Prom
   return `/desk/review/${found.id}`;
 }
 
+async function recordWithEvidence(page: Page): Promise<string> {
+  const { request } = page.context();
+  const { constraints } = await ask<{ constraints: { constraints: { number: string }[] } }>(
+    request,
+    "{ constraints(limit: 200) { constraints { number } } }",
+  );
+  for (const { number } of constraints.constraints) {
+    const { evidence } = await ask<{ evidence: unknown[] }>(
+      request,
+      `{ evidence(number: "${number}") { kind } }`,
+    );
+    if (evidence.length > 0) return `/constraints/${number}`;
+  }
+  throw new Error("no record of the demonstration keeps evidence");
+}
+
 const SAMPLES = path.join(__dirname, "../../fixtures/samples");
 const sample = (name: string, mimeType: string) => ({
   name,
@@ -278,6 +294,7 @@ const NOBODY: Situation[] = [
       ["import", "/desk/import", "Import a file", "Sign in first"],
       ["people", "/desk/people", "People", "Sign in first"],
       ["mail", "/desk/mail", "Caught mail", "Sign in first"],
+      ["event log", "/desk/log", "Event log", "Sign in first"],
       ["account", "/account", "Account", "Nobody is signed in"],
       ["sign in", "/account/sign-in", "Sign in", "Demonstration accounts"],
       ["register", "/account/register", "Register", "I have an account"],
@@ -425,6 +442,7 @@ const READER: Situation[] = (
     ["new constraint without the role", "/desk/submit/new", "New constraint", /submit constraints/],
     ["import without the role", "/desk/import", "Import a file", "Contributors import files"],
     ["people without the role", "/desk/people", "People", "Maintainers only"],
+    ["event log without the role", "/desk/log", "Event log", "Maintainers only"],
     ["second reading without the role", "/desk/review/none", "Second reading", /Editors read/],
   ] as const
 ).map(([name, address, title, mark]) => ({
@@ -470,6 +488,28 @@ const ACCOUNT: Situation[] = [
     },
   },
 ];
+
+const EVIDENCE_CLOSED: Situation = {
+  who: "reader",
+  name: "record with evidence that is not passed on",
+  async go(page) {
+    await visit(page, await recordWithEvidence(page), "Constraint");
+    await shown(page, /under copyright/);
+  },
+};
+
+const EVIDENCE_REFUSED: Situation = {
+  who: "contributor",
+  name: "where it comes from, a file refused",
+  async go(page) {
+    await visit(page, `${await submissionOf(page, "draft")}?step=method`, "Where it comes from");
+    const buffer = Buffer.alloc(10_000_001, "x");
+    await page
+      .locator("input[type=file]")
+      .setInputFiles({ name: "paper.pdf", mimeType: "application/pdf", buffer });
+    await shown(page, "paper.pdf is not attached");
+  },
+};
 
 const atStep = (who: Viewer, name: string, step: string, title: string): Situation => ({
   who,
@@ -758,6 +798,46 @@ const MAINTAINER: Situation[] = [
   },
   {
     who: "maintainer",
+    name: "event log, the digest of an event open",
+    async go(page) {
+      await visit(page, "/desk/log", "Event log");
+      await button(page, /^Digest of event/)
+        .first()
+        .click();
+      await button(page, /^All about/).waitFor();
+    },
+  },
+  {
+    who: "maintainer",
+    name: "event log, filtered",
+    async go(page) {
+      await visit(page, "/desk/log?kind=revision.returned", "Event log");
+      await shown(page, /events of this filter$/);
+      await shown(page, /with comments/);
+    },
+  },
+  {
+    who: "maintainer",
+    name: "event log, nothing found",
+    async go(page, size) {
+      await visit(page, "/desk/log?person=nobody", "Event log");
+      await shown(page, "No event is like this");
+      if (size === "phone") {
+        await button(page, /^Filter/).click();
+        await entry(dialog(page), "About").waitFor();
+      }
+    },
+  },
+  {
+    who: "maintainer",
+    name: "record with evidence",
+    async go(page) {
+      await visit(page, await recordWithEvidence(page), "Constraint");
+      await page.getByRole("region", { name: "Evidence" }).getByRole("link").first().waitFor();
+    },
+  },
+  {
+    who: "maintainer",
     name: "mail",
     async go(page) {
       await visit(page, "/desk/mail", "Caught mail");
@@ -790,7 +870,9 @@ const SITUATIONS = [
   ...REPORTS,
   ...READER,
   ...ACCOUNT,
+  EVIDENCE_CLOSED,
   ...CONTRIBUTOR,
+  EVIDENCE_REFUSED,
   ...EDITOR,
   ...MAINTAINER,
   ...EMPTY,
