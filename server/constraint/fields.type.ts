@@ -1,6 +1,7 @@
 import { Field, InputType, ObjectType } from "type-graphql";
 
 import * as enums from "~server/common/enums";
+import { CURVE_LONGEST } from "~shared/statement/curve";
 import { emptyFields, type ConstraintFields, type FieldName } from "~shared/statement/fields";
 
 type Kind = object | "text" | "flag" | "texts";
@@ -93,7 +94,7 @@ export function fieldsType(fields: ConstraintFields): ConstraintFieldsType {
   return Object.assign(new ConstraintFieldsType(), emptyFields(), fields);
 }
 
-/** Longest text kept in a field; the printed text has its own, shorter rule. */
+/** Longest text kept in a field; the printed text has its own, shorter rule, a curve a longer one. */
 const LONGEST = 2000;
 const MOST_WORDS = 50;
 
@@ -119,7 +120,7 @@ export function fieldsFromInput(
       target[name] = words;
     } else if (typeof given === "string") {
       const text = given.trim();
-      if (text.length > LONGEST) return { tooLong: name };
+      if (text.length > (name === "curveTable" ? CURVE_LONGEST : LONGEST)) return { tooLong: name };
       target[name] = text === "" ? null : text;
     } else target[name] = given;
   }

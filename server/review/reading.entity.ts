@@ -9,11 +9,11 @@ import {
 } from "typeorm";
 
 import { Revision } from "~server/constraint/revision.entity";
-import type { ConstraintFields, FieldName } from "~shared/statement/fields";
+import type { ReadingContent, ReadingField } from "~shared/review/reading";
 
 /** One field read again after the comparison: what stood there before stays on record. */
 export interface Correction {
-  field: FieldName;
+  field: ReadingField;
   /** Content of the field before, as it is stored (text, list or flag). */
   before: unknown;
   why: string;
@@ -42,15 +42,15 @@ export class Reading {
 
   /** As it was stored first; never written again. */
   @Column({ type: "json" })
-  first!: ConstraintFields;
+  first!: ReadingContent;
 
   /** With the corrections since. */
   @Column({ type: "json" })
-  latest!: ConstraintFields;
+  latest!: ReadingContent;
 
   /** Fields this editor typed; the others come from the reading of an earlier revision. */
   @Column({ type: "json" })
-  typed!: FieldName[];
+  typed!: ReadingField[];
 
   @Column({ type: "json" })
   corrections!: Correction[];

@@ -4,13 +4,13 @@ import { requireViewer, type RequestContext } from "~server/common/context";
 import { DoneResult, Refusal } from "~server/common/outcomes";
 import { Requires } from "~server/common/requires";
 import { loadRevision } from "~server/constraint/draft.service";
-import { ConstraintFieldsInput } from "~server/constraint/fields.type";
 import type { Revision } from "~server/constraint/revision.entity";
 import { acting } from "~server/event/acting";
 
 import { hasRead } from "./blindness";
 import * as claims from "./claim.service";
 import { papersLeftBy } from "./recusal.service";
+import { ReadingInput } from "./reading.input";
 import * as reviews from "./review.service";
 import {
   OtherEditor,
@@ -119,7 +119,7 @@ export class ReviewResolver {
   async storeReading(
     @Ctx() ctx: RequestContext,
     @Arg("id", () => ID) id: string,
-    @Arg("reading", () => ConstraintFieldsInput) reading: ConstraintFieldsInput,
+    @Arg("reading", () => ReadingInput) reading: ReadingInput,
   ): Promise<typeof ReviewResult> {
     return outcome(ctx, await reviews.storeReading(acting(ctx), id, reading));
   }
@@ -133,7 +133,7 @@ export class ReviewResolver {
     @Ctx() ctx: RequestContext,
     @Arg("id", () => ID) id: string,
     @Arg("field", () => String) field: string,
-    @Arg("reading", () => ConstraintFieldsInput) reading: ConstraintFieldsInput,
+    @Arg("reading", () => ReadingInput) reading: ReadingInput,
     @Arg("why", () => String) why: string,
   ): Promise<typeof ReviewResult> {
     return outcome(ctx, await reviews.correctReading(acting(ctx), id, field, reading, why));

@@ -3,11 +3,7 @@ import type { EntityManager } from "typeorm";
 import { done, refuse, type Done, type Refusal } from "~server/common/outcomes";
 import { Constraint } from "~server/constraint/constraint.entity";
 import { reload, updateAt } from "~server/constraint/draft.service";
-import {
-  FIELD_NAMES_IN_ORDER,
-  fieldsFromInput,
-  type ConstraintFieldsInput,
-} from "~server/constraint/fields.type";
+import { FIELD_NAMES_IN_ORDER } from "~server/constraint/fields.type";
 import { Revision } from "~server/constraint/revision.entity";
 import { change, type Acting } from "~server/event/acting";
 import { comeIntoUse, refuseIntoUse } from "~server/recordLife/intoUse";
@@ -16,16 +12,19 @@ import {
   compareReading,
   fieldsToReread,
   mergeReading,
+  readingFieldName,
   readingMissing,
+  type ReadingContent,
+  type ReadingField,
 } from "~shared/review/reading";
 import { checklistFor } from "~shared/review/checklist";
-import { emptyFields, type ConstraintFields, type FieldName } from "~shared/statement/fields";
-import { FIELD_NAMES } from "~shared/statement/words";
+import { emptyFields, type ConstraintFields } from "~shared/statement/fields";
 
 import { CHANGED, held, holdsClaim, subjectOf } from "./claim.service";
 import { FieldCommentRecord } from "./comment.entity";
 import { tellApproved, tellReturned } from "./mails";
 import { Reading } from "./reading.entity";
+import { readingFromInput, type ReadingInput } from "./reading.input";
 import { barredBecause, papersLeftBy, type Editor } from "./recusal.service";
 
 export { claim, releaseClaim } from "./claim.service";
@@ -34,7 +33,7 @@ export { claim, releaseClaim } from "./claim.service";
 export async function earlierReading(
   manager: EntityManager,
   revision: Revision,
-): Promise<{ reading: ConstraintFields; submitted: ConstraintFields } | null> {
+): Promise<{ reading: ReadingContent; submitted: ConstraintFields } | null> {
   if (revision.followsId === null) return null;
   const followed = await manager.findOneBy(Revision, { id: revision.followsId });
   if (!followed || followed.citationId !== revision.citationId) return null;
@@ -50,7 +49,7 @@ export async function earlierReading(
 export async function fieldsToRead(
   manager: EntityManager,
   revision: Revision,
-): Promise<FieldName[]> {
+): Promise<ReadingField[]> {
   const earlier = await earlierReading(manager, revision);
   return earlier
     ? fieldsToReread(earlier.reading, earlier.submitted, revision.fields)
@@ -64,9 +63,9 @@ export async function fieldsToRead(
 export async function storeReading(
   who: Acting,
   id: string,
-  input: ConstraintFieldsInput,
+  input: ReadingInput,
 ): Promise<Revision | Refusal> {
-  const parsed = fieldsFromInput(input);
+  const parsed = readingFromInput(input);
   if ("tooLong" in parsed) {
     return refuse("tooLong", "This text is too long to keep.", parsed.tooLong);
   }
@@ -79,13 +78,13 @@ export async function storeReading(
     }
     const earlier = await earlierReading(manager, revision);
     const typed = await fieldsToRead(manager, revision);
-    const content = mergeReading(earlier?.reading ?? emptyFields(), parsed.fields, typed);
+    const content = mergeReading(earlier?.reading ?? emptyFields(), parsed.reading, typed);
     const missing = readingMissing(content, typed);
     const [first] = missing;
     if (first !== undefined) {
       return refuse(
         "incomplete",
-        `Read this too: ${missing.map((name) => FIELD_NAMES[name]).join(", ")}.`,
+        `Read this too: ${missing.map(readingFieldName).join(", ")}.`,
         first,
       );
     }
@@ -111,11 +110,11 @@ export async function correctReading(
   who: Acting,
   id: string,
   field: string,
-  input: ConstraintFieldsInput,
+  input: ReadingInput,
   why: string,
 ): Promise<Revision | Refusal> {
-  const name = FIELD_NAMES_IN_ORDER.find((one) => one === field);
-  const parsed = fieldsFromInput(input);
+  const name = READING_FIELDS.find((one) => one === field);
+  const parsed = readingFromInput(input);
   if (!name) return refuse("unknownField", "There is no such field.", field);
   if ("tooLong" in parsed) {
     return refuse("tooLong", "This text is too long to keep.", parsed.tooLong);
@@ -135,15 +134,15 @@ export async function correctReading(
     if (!reading) return refuse("notRead", "Store your own reading first.");
     const compared = compareReading(reading.latest, revision.fields);
     if (!compared.some((one) => one.field === name && !one.agrees)) {
-      return refuse("agrees", `${FIELD_NAMES[name]} doesn't differ.`, name);
+      return refuse("agrees", `${readingFieldName(name)} doesn't differ.`, name);
     }
     await here.manager.update(Reading, { id: reading.id }, {
-      latest: { ...reading.latest, [name]: parsed.fields[name] },
+      latest: { ...reading.latest, [name]: parsed.reading[name] ?? null },
       corrections: [
         ...reading.corrections,
         {
           field: name,
-          before: reading.latest[name],
+          before: reading.latest[name] ?? null,
           why: reason,
           at: who.now.toISOString(),
         },
@@ -235,7 +234,7 @@ export function blockersOf(
   if (!reading) return [...blockers, "Your second reading is not stored yet."];
   const differing = compareReading(reading.latest, revision.fields).filter((one) => !one.agrees);
   if (differing.length > 0) {
-    const names = differing.map((one) => FIELD_NAMES[one.field]).join(", ");
+    const names = differing.map((one) => readingFieldName(one.field)).join(", ");
     blockers.push(`Your reading differs at: ${names}. Correct it, or return the submission.`);
   }
   const accepted = new Set(

@@ -4,9 +4,13 @@ import { fieldsType } from "~server/constraint/fields.type";
 import { nameOf } from "~server/constraint/names";
 import { Revision } from "~server/constraint/revision.entity";
 import { checklistFor } from "~shared/review/checklist";
-import { compareReading } from "~shared/review/reading";
-import type { ConstraintFields, FieldName } from "~shared/statement/fields";
-import { fieldText } from "~shared/statement/words";
+import {
+  compareReading,
+  readingText,
+  type ReadingContent,
+  type ReadingField,
+} from "~shared/review/reading";
+import type { ConstraintFields } from "~shared/statement/fields";
 
 import { findingFor, recordsReadBlind, seesRevision } from "./blindness";
 import { commentsOf } from "./comments";
@@ -73,22 +77,19 @@ export async function reviewFor(ctx: RequestContext, revision: Revision): Promis
 }
 
 function comparison(reading: Reading, submitted: ConstraintFields): ReviewField[] {
-  return compareReading(reading.latest, submitted).map(({ field, agrees }) =>
+  return compareReading(reading.latest, submitted).map((compared) =>
     Object.assign(new ReviewField(), {
-      field,
-      reading: fieldText(field, reading.latest) || null,
-      submitted: fieldText(field, submitted) || null,
-      agrees,
-      earlier: earlierTexts(reading, field),
+      ...compared,
+      earlier: earlierTexts(reading, compared.field),
     }),
   );
 }
 
-function earlierTexts(reading: Reading, field: FieldName): string[] {
+function earlierTexts(reading: Reading, field: ReadingField): string[] {
   return reading.corrections
     .filter((correction) => correction.field === field)
     .map((correction) => {
-      const then = { ...reading.latest, [field]: correction.before } as ConstraintFields;
-      return fieldText(field, then) || "open";
+      const then = { ...reading.latest, [field]: correction.before } as ReadingContent;
+      return readingText(field, then) ?? "open";
     });
 }

@@ -26,6 +26,8 @@ export interface Mark {
   /** Shaft of a limit, from the marker's edge to the head, and the head's three corners. */
   arrow: { shaft: Segment; head: readonly [number, number][] } | null;
   band: { x: number; y: number; width: number; height: number } | null;
+  /** Outline of a half violin, closed by its base; [n]. */
+  violin: readonly (readonly [number, number])[] | null;
   hollow: boolean;
   dashed: boolean;
 }
@@ -40,6 +42,8 @@ export interface MarkSizes {
   /** Length of a bin's end tick. */
   endTick: number;
   bandWidth: number;
+  /** How far the half violin of a curve stands out at its peak. */
+  violinWidth: number;
 }
 
 /** Sizes of the look on a wide screen. */
@@ -49,6 +53,7 @@ export const WIDE_SIZES: MarkSizes = {
   head: 8,
   endTick: 7,
   bandWidth: 9,
+  violinWidth: 26,
 };
 
 /** Sizes of the look on a phone. */
@@ -58,6 +63,7 @@ export const PHONE_SIZES: MarkSizes = {
   head: 8,
   endTick: 7,
   bandWidth: 7,
+  violinWidth: 20,
 };
 
 /**
@@ -105,6 +111,7 @@ export function markOf(
     ends,
     arrow: point.arrow ? arrowOf(point.arrow, x, y, xScale, box, sizes) : null,
     band: point.band ? bandOf(point.band, x, y, zScale, xScale, box, sizes) : null,
+    violin: point.violin ? violinOf(point.violin, x, y, zScale, xScale, box, sizes) : null,
     hollow: point.hollow,
     dashed: !point.levelStated,
   };
@@ -171,6 +178,30 @@ function bandOf(
   const a = clamp(zScale.at(band.ends[0]), box.left, box.right);
   const b = clamp(zScale.at(band.ends[1]), box.left, box.right);
   return { x: a, y: y - sizes.bandWidth / 2, width: b - a, height: sizes.bandWidth };
+}
+
+/** To the right of the redshift of a fraction, above the fraction of a redshift. */
+function violinOf(
+  violin: NonNullable<PlanePoint["violin"]>,
+  x: number,
+  y: number,
+  zScale: Scale,
+  xScale: Scale,
+  box: Box,
+  sizes: MarkSizes,
+): Mark["violin"] {
+  const vertical = violin.along === "x";
+  const place = (value: number) =>
+    vertical
+      ? clamp(xScale.at(value), box.top, box.bottom)
+      : clamp(zScale.at(value), box.left, box.right);
+  const point = (value: number, height: number): readonly [number, number] =>
+    vertical
+      ? [clamp(x + height * sizes.violinWidth, box.left, box.right), place(value)]
+      : [place(value), clamp(y - height * sizes.violinWidth, box.top, box.bottom)];
+  const { at, height } = violin;
+  const ends = [at[0]!, at[at.length - 1]!] as const;
+  return [point(ends[0], 0), ...at.map((value, i) => point(value, height[i]!)), point(ends[1], 0)];
 }
 
 /**

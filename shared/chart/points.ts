@@ -18,6 +18,8 @@ export interface PlanePoint {
   arrow: { along: "x" | "z"; direction: 1 | -1 } | null;
   /** The statement is an interval without a best value. */
   band: { along: "x" | "z"; ends: readonly [number, number] } | null;
+  /** A tabulated curve: places along its axis, ascending, and L there relative to its peak. */
+  violin: { along: "x" | "z"; at: readonly number[]; height: readonly number[] } | null;
   /** Limits and bands are hollow: there is no best value. */
   hollow: boolean;
   levelStated: boolean;
@@ -52,13 +54,15 @@ function fractionPoint(used: AsUsed): PlanePoint | null {
     kind: used.kind,
     z,
     x: band && ends !== null ? 0.5 * (ends[0] + ends[1]) : real(span.centre),
-    xEnds: band ? null : ends,
+    xEnds: band || used.kind === "curve" ? null : ends,
     zEnds: low !== null && high !== null && low < high ? [low, high] : null,
     bin: used.zRole === "binAverage" || used.zRole === "sampleRange",
     arrow: limit === null ? null : { along: "x", direction: limit },
     band: band && ends !== null ? { along: "x", ends } : null,
+    violin: violinOf(used, "x", real),
     hollow: band || limit !== null,
-    levelStated: used.level !== null,
+    // A curve has no level to miss.
+    levelStated: used.level !== null || used.kind === "curve",
   };
 }
 
@@ -72,16 +76,64 @@ function redshiftPoint(used: AsUsed): PlanePoint | null {
     z: span.centre,
     x: used.fraction,
     xEnds: null,
-    zEnds: band ? null : span.ends,
+    zEnds: band || used.kind === "curve" ? null : span.ends,
     bin: false,
     arrow: limit === null ? null : { along: "z", direction: limit },
     band: band && span.ends !== null ? { along: "z", ends: span.ends } : null,
+    violin: violinOf(used, "z", (value) => value),
     hollow: band || limit !== null,
-    levelStated: used.level !== null,
+    levelStated: used.level !== null || used.kind === "curve",
   };
 }
 
-/** Centre and ends of a statement along its own quantity; null where it holds no number. */
+/** Below this part of its peak a curve is not drawn: e⁻². */
+const VIOLIN_CUT = Math.exp(-2);
+
+/** The curve where it is above the cut, with the places where it crosses it, ln L being linear between nodes. */
+function violinOf(
+  used: AsUsed,
+  along: "x" | "z",
+  real: (value: number) => number,
+): PlanePoint["violin"] {
+  if (used.kind !== "curve" || used.curve === undefined) return null;
+  const { x, p } = used.curve;
+  const at: number[] = [];
+  const height: number[] = [];
+  x.forEach((place, i) => {
+    const here = p[i]!;
+    const before = i > 0 ? p[i - 1]! : here;
+    if (i > 0 && here > VIOLIN_CUT !== before > VIOLIN_CUT) {
+      const part = Math.log(VIOLIN_CUT / before) / Math.log(here / before);
+      at.push(real(x[i - 1]! + part * (place - x[i - 1]!)));
+      height.push(VIOLIN_CUT);
+    }
+    if (here > VIOLIN_CUT) {
+      at.push(real(place));
+      height.push(here);
+    } else if (at.length > 0) {
+      // Between two peaks the drawing goes back to its base.
+      at.push(real(place));
+      height.push(0);
+    }
+  });
+  while (height[height.length - 1] === 0) {
+    at.pop();
+    height.pop();
+  }
+  return { along, at, height };
+}
+
+/** What is drawn of a curve along its own quantity; null for another kind of statement. */
+export function drawnCurve(
+  used: AsUsed,
+): { at: readonly number[]; height: readonly number[] } | null {
+  return violinOf(used, "x", (value) => value);
+}
+
+/**
+ * Centre and ends of a statement along its own quantity; null where it holds no number. Of a curve they
+ * are its highest place and those where it falls to e⁻² of it.
+ */
 export function statementSpan(
   used: AsUsed,
 ): { centre: number; ends: readonly [number, number] | null } | null {
@@ -90,7 +142,14 @@ export function statementSpan(
     const ends = [Number(used.low), Number(used.high)] as const;
     return { centre: 0.5 * (ends[0] + ends[1]), ends };
   }
-  const text = used.value ?? used.limitBase;
+  if (used.kind === "curve" && used.curve !== undefined) {
+    const drawn = drawnCurve(used)!;
+    return {
+      centre: used.curve.x[used.curve.p.indexOf(1)]!,
+      ends: [drawn.at[0]!, drawn.at[drawn.at.length - 1]!],
+    };
+  }
+  const text = used.kind === "curve" ? null : (used.value ?? used.limitBase);
   if (text === null) return null;
   const centre = Number(text);
   if (used.kind !== "twoSided" || used.minus === null || used.plus === null) {

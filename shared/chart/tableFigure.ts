@@ -28,7 +28,14 @@ export interface TableFigure {
 export const FIGURE_WIDTH_INCHES = 3.5;
 const WIDTH = 252;
 const BOX: Box = { left: 34, right: 246, top: 8, bottom: 168 };
-const SIZES: MarkSizes = { radius: 2.6, arrowLength: 13, head: 3.6, endTick: 3, bandWidth: 4 };
+const SIZES: MarkSizes = {
+  radius: 2.6,
+  arrowLength: 13,
+  head: 3.6,
+  endTick: 3,
+  bandWidth: 4,
+  violinWidth: 11,
+};
 const INK = "#1B2730";
 const LINE = 9;
 
@@ -147,6 +154,12 @@ function drawn(mark: Mark, family: MethodFamily): string {
     const { x, y, width, height } = mark.band;
     parts.push(
       `<rect x="${round(x)}" y="${round(y)}" width="${round(width)}" height="${round(height)}" fill="${light}" fill-opacity="0.2" stroke="${light}" stroke-width="0.6"${dash}/>`,
+    );
+  }
+  if (mark.violin) {
+    const points = mark.violin.map(([x, y]) => `${round(x)},${round(y)}`).join(" ");
+    parts.push(
+      `<polygon points="${points}" fill="${light}" fill-opacity="0.2" stroke="${light}" stroke-width="0.6"/>`,
     );
   }
   parts.push(...mark.bars.map((bar) => line(bar, light, dash)));

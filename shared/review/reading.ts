@@ -1,10 +1,28 @@
 /** The second reading: what an editor reads, when two texts agree, and what must be read again. */
+import { curveFacts } from "~shared/statement/curve";
 import { parseDecimal } from "~shared/statement/decimal";
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
 import { emptyFields } from "~shared/statement/fields";
 import { isNumberField, isOpen, relevantFields } from "~shared/statement/relevant";
 import { openStatementFields } from "~shared/statement/required";
-import { fieldText } from "~shared/statement/words";
+import { FIELD_NAMES, fieldText } from "~shared/statement/words";
+
+/**
+ * What is read of a tabulated curve in place of its rows. They belong to readings only: of a submission
+ * they follow from its table.
+ */
+export const CURVE_FACTS = ["curveRows", "curveFirst", "curveLast", "curvePeak"] as const;
+export type CurveFact = (typeof CURVE_FACTS)[number];
+
+/** What an editor typed: fields of the record, and the facts of a curve. */
+export type ReadingContent = ConstraintFields & Partial<Record<CurveFact, string | null>>;
+
+const CURVE_FACT_NAMES: Record<CurveFact, string> = {
+  curveRows: "Rows of the curve",
+  curveFirst: "First value of the curve",
+  curveLast: "Last value of the curve",
+  curvePeak: "Value at its highest point",
+};
 
 /**
  * All an editor can be asked to read, in the order of the form. A first reading is always asked for this
@@ -35,29 +53,64 @@ export const READING_FIELDS = [
   "limitSigma",
   "bandLow",
   "bandHigh",
+  "curveColumn",
+  ...CURVE_FACTS,
   "level",
   "levelPercent",
   "estimator",
   "methodTags",
-] as const satisfies readonly FieldName[];
+] as const satisfies readonly (FieldName | CurveFact)[];
 export type ReadingField = (typeof READING_FIELDS)[number];
+
+/** Whether the field is one of a reading of a curve, and none of the record. */
+export function isCurveFact(name: string): name is CurveFact {
+  return (CURVE_FACTS as readonly string[]).includes(name);
+}
+
+/** A field of a reading or of the record by its name on the screen. */
+export function readingFieldName(name: ReadingField | FieldName): string {
+  return isCurveFact(name) ? CURVE_FACT_NAMES[name] : FIELD_NAMES[name];
+}
+
+/**
+ * Content as it is read: the table of a curve by its facts. Of an editor who hands in the whole table
+ * no more is kept either.
+ */
+export function readingOf(content: ReadingContent): ReadingContent {
+  if (content.kind !== "curve" || content.curveTable === null) return content;
+  const facts = curveFacts(content.curveTable, content.curveColumn);
+  return {
+    ...content,
+    curveTable: null,
+    ...(facts && {
+      curveRows: facts.rows,
+      curveFirst: facts.first,
+      curveLast: facts.last,
+      curvePeak: facts.peak,
+    }),
+  };
+}
 
 /**
  * Fields that belong to a reading, given the quantity, species and kind chosen in it so far.
  *
  * @param reading - The editor's own choices; never the submission, whose choices would leak.
  */
-export function readingFieldsFor(reading: ConstraintFields): ReadingField[] {
-  const relevant = [...relevantFields(reading), "methodTags"];
+export function readingFieldsFor(reading: ReadingContent): ReadingField[] {
+  const curve = reading.kind === "curve" ? CURVE_FACTS : [];
+  const relevant: readonly string[] = [...relevantFields(reading), ...curve, "methodTags"];
   return READING_FIELDS.filter((name) => relevant.includes(name));
 }
 
 /** What a reading still lacks before it can be stored; limited to the fields asked for. */
 export function readingMissing(
-  reading: ConstraintFields,
-  asked: readonly FieldName[] = READING_FIELDS,
+  reading: ReadingContent,
+  asked: readonly ReadingField[] = READING_FIELDS,
 ): ReadingField[] {
-  const missing = openStatementFields(reading);
+  const missing: (FieldName | CurveFact)[] = openStatementFields(reading);
+  if (reading.kind === "curve") {
+    missing.push(...CURVE_FACTS.filter((name) => isEmpty(reading[name])));
+  }
   if (reading.quantity === "neutralFraction" && reading.weighting === null) {
     missing.push("weighting");
   }
@@ -66,30 +119,32 @@ export function readingMissing(
 }
 
 /** Only the fields of a reading that its own choices call for; the rest is emptied before it is stored. */
-export function tidyReading(reading: ConstraintFields): ConstraintFields {
+export function tidyReading(reading: ReadingContent): ReadingContent {
   const kept = readingFieldsFor(reading);
-  const tidy: ConstraintFields = { ...emptyFields() };
-  for (const name of kept) copyField(name, reading, tidy);
+  const read = readingOf(reading);
+  const tidy: ReadingContent = { ...emptyFields() };
+  for (const name of kept) copyField(name, read, tidy);
   return tidy;
 }
 
-function copyField<K extends FieldName>(name: K, from: ConstraintFields, to: ConstraintFields) {
+function copyField<K extends ReadingField>(name: K, from: ReadingContent, to: ReadingContent) {
   to[name] = from[name];
 }
 
 /** A partial reading laid over the one before: fields asked for come from the new one. */
 export function mergeReading(
-  previous: ConstraintFields,
-  next: ConstraintFields,
-  asked: readonly FieldName[],
-): ConstraintFields {
-  const merged: ConstraintFields = { ...previous };
-  for (const name of asked) copyField(name, next, merged);
+  previous: ReadingContent,
+  next: ReadingContent,
+  asked: readonly ReadingField[],
+): ReadingContent {
+  const merged: ReadingContent = { ...previous };
+  const read = readingOf(next);
+  for (const name of asked) copyField(name, read, merged);
   return tidyReading(merged);
 }
 
 /** Widths are compared by size: "-0.17" in the field for minus is 0.17. */
-const WIDTHS: readonly FieldName[] = ["plus", "minus", "limitSigma"];
+const WIDTHS: readonly string[] = ["plus", "minus", "limitSigma"];
 
 function isEmpty(held: unknown): boolean {
   if (held === null || held === undefined) return true;
@@ -101,10 +156,10 @@ function isEmpty(held: unknown): boolean {
  * Whether two contents of one field agree: numbers by their printed value (0.3 is 0.30), lists as sets,
  * texts without surrounding space. An open weighting counts as unknown.
  */
-export function fieldsAgree<K extends FieldName>(
+export function fieldsAgree<K extends FieldName | CurveFact>(
   name: K,
-  a: ConstraintFields[K],
-  b: ConstraintFields[K],
+  a: ReadingContent[K],
+  b: ReadingContent[K],
 ): boolean {
   if (name === "weighting") return (a ?? "unknown") === (b ?? "unknown");
   if (isEmpty(a) || isEmpty(b)) return isEmpty(a) && isEmpty(b);
@@ -113,7 +168,7 @@ export function fieldsAgree<K extends FieldName>(
     return left.size === right.size && [...left].every((entry) => right.has(entry));
   }
   if (typeof a === "string" && typeof b === "string") {
-    if (isNumberField(name)) {
+    if (isCurveFact(name) || isNumberField(name)) {
       const [left, right] = [parseDecimal(a), parseDecimal(b)];
       if (left && right) {
         return WIDTHS.includes(name) ? left.abs().eq(right.abs()) : left.eq(right);
@@ -132,19 +187,29 @@ export interface ComparedField {
   agrees: boolean;
 }
 
-function textOrNull(name: FieldName, fields: ConstraintFields): string | null {
-  const text = fieldText(name, fields);
-  return text === "" ? null : text;
+function textOrNull(name: ReadingField, content: ReadingContent): string | null {
+  const text = isCurveFact(name) ? content[name] : fieldText(name, content);
+  return text === "" ? null : (text ?? null);
+}
+
+/** What was read or submitted of one field in words; null when it is open. */
+export function readingText(name: ReadingField, content: ReadingContent): string | null {
+  return textOrNull(name, readingOf(content));
+}
+
+function openIn(content: ReadingContent, name: ReadingField): boolean {
+  return isCurveFact(name) ? isEmpty(content[name]) : isOpen(content, name);
 }
 
 /** Reading and submission side by side, in every field either side's choices call for; both open is left out. */
 export function compareReading(
-  reading: ConstraintFields,
-  submitted: ConstraintFields,
+  reading: ReadingContent,
+  submission: ConstraintFields,
 ): ComparedField[] {
+  const submitted = readingOf(submission);
   const called = new Set([...readingFieldsFor(reading), ...readingFieldsFor(submitted)]);
   return READING_FIELDS.filter(
-    (name) => called.has(name) && !(isOpen(reading, name) && isOpen(submitted, name)),
+    (name) => called.has(name) && !(openIn(reading, name) && openIn(submitted, name)),
   ).map((name) => ({
     field: name,
     reading: textOrNull(name, reading),
@@ -165,18 +230,22 @@ const DECISIVE: readonly ReadingField[] = ["quantity", "kind", "species", "scale
  * @param next - The resubmission.
  */
 export function fieldsToReread(
-  previousReading: ConstraintFields | null,
+  previousReading: ReadingContent | null,
   previousSubmitted: ConstraintFields | null,
   next: ConstraintFields,
 ): ReadingField[] {
   if (previousReading === null || previousSubmitted === null) return [...READING_FIELDS];
+  const [before, after] = [readingOf(previousSubmitted), readingOf(next)];
+  // A row changed inside a curve changes none of its facts: they are read anew all the same.
+  const otherTable = previousSubmitted.curveTable !== next.curveTable;
   const again = READING_FIELDS.filter((name) => {
-    const relevant = readingFieldsFor(next).includes(name);
-    const changed = !fieldsAgree(name, previousSubmitted[name], next[name]);
+    const relevant = readingFieldsFor(after).includes(name);
+    const changed =
+      (isCurveFact(name) && otherTable) || !fieldsAgree(name, before[name], after[name]);
     const differed =
       (readingFieldsFor(previousReading).includes(name) ||
-        readingFieldsFor(previousSubmitted).includes(name)) &&
-      !fieldsAgree(name, previousReading[name], previousSubmitted[name]);
+        readingFieldsFor(before).includes(name)) &&
+      !fieldsAgree(name, previousReading[name], before[name]);
     return DECISIVE.includes(name) ? changed || differed : relevant && (changed || differed);
   });
   return again.some((name) => DECISIVE.includes(name)) ? [...READING_FIELDS] : again;

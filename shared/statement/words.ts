@@ -1,6 +1,7 @@
 /** Words for every field and every word of the vocabulary, the same in the form, the review and the exports. */
 import { METHOD_TAGS } from "~shared/methods/vocabulary";
 
+import { curveText } from "./curve";
 import type {
   ConditionKind,
   ConstraintFields,
@@ -222,10 +223,13 @@ export function withTrueMinus(text: string): string {
   return text.replace(/^-/, "\u2212");
 }
 
-/** A field's content as a person reads it, for comparisons and differences; "" when it is open. */
+/** A field's content as a person reads it, for comparisons and differences; "" when it is open; of a curve its facts. */
 export function fieldText(name: FieldName, fields: ConstraintFields): string {
   const held = fields[name];
   if (held === null || held === undefined) return "";
+  if (name === "curveTable") {
+    return curveText(fields.curveTable, fields.curveColumn) || "A table that is no curve yet";
+  }
   if (typeof held === "boolean") return held ? "Yes" : "No";
   if (Array.isArray(held)) {
     const word =

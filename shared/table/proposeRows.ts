@@ -5,6 +5,7 @@ import { rowLikelihood } from "~shared/likelihood";
 import { METHOD_TAGS } from "~shared/methods/vocabulary";
 import type { RecordState } from "~shared/review/states";
 import { asUsed, type AsUsed } from "~shared/statement/asUsed";
+import { curveNodes } from "~shared/statement/curve";
 import type { ConstraintFields } from "~shared/statement/fields";
 
 import { atSeparateRedshifts } from "./separateRedshifts";
@@ -80,7 +81,9 @@ function lifeless(state: RecordState | undefined): string | null {
 
 function unusable(fields: ConstraintFields): string | null {
   if (fields.kind === "qualitative") return "Qualitative statement";
-  if (fields.kind === "curve") return "Tabulated curve without its nodes";
+  if (fields.kind === "curve") {
+    return curveNodes(fields) === null ? "Tabulated curve without its nodes" : null;
+  }
   if (fields.level === "notStated") return "Level not stated";
   return null;
 }

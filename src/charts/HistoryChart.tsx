@@ -475,7 +475,7 @@ const Marks = memo(function Marks({
   );
 });
 
-/** Bars, band and arrow of one point. */
+/** Bars, band, half violin and arrow of one point. */
 export function Bars({ mark, hue, width }: { mark: Mark; hue: string; width: number }) {
   const dash = mark.dashed ? "3 2.5" : undefined;
   return (
@@ -488,6 +488,16 @@ export function Bars({ mark, hue, width }: { mark: Mark; hue: string; width: num
           stroke={hue}
           strokeWidth={width}
           strokeDasharray={dash}
+        />
+      ) : null}
+      {mark.violin ? (
+        <Path
+          d={`M${mark.violin.map(([px, py]) => `${px} ${py}`).join("L")}Z`}
+          fill={hue}
+          fillOpacity={0.2}
+          stroke={hue}
+          strokeWidth={width}
+          strokeLinejoin="round"
         />
       ) : null}
       {mark.bars.map((bar, index) => (

@@ -12,6 +12,7 @@ import { useColors } from "@/theme/ThemeProvider";
 import type { ConstraintFields, FieldName, StatementKind } from "~shared/statement/fields";
 import {
   COSMIC_VARIANCES,
+  CURVE_COLUMNS,
   DURATION_UNITS,
   ESTIMATORS,
   HELIUM,
@@ -27,6 +28,7 @@ import { isNumberField } from "~shared/statement/relevant";
 import { PRINTED_TEXT_LONGEST } from "~shared/statement/rules";
 import {
   COSMIC_VARIANCE_WORDS,
+  CURVE_COLUMN_WORDS,
   DURATION_UNIT_WORDS,
   ESTIMATOR_WORDS,
   FIELD_NAMES,
@@ -44,8 +46,9 @@ import { DataUsedInput } from "./DataUsedInput";
 import { KindGlyph } from "./KindGlyph";
 import { MethodPicker } from "./MethodPicker";
 import { RecordPicker } from "./RecordPicker";
+import type { SetField } from "./setField";
 
-export type SetField = <N extends FieldName>(name: N, value: ConstraintFields[N]) => void;
+export type { SetField } from "./setField";
 
 export interface FieldInputProps {
   name: FieldName;
@@ -57,12 +60,13 @@ export interface FieldInputProps {
   onBlur?: () => void;
 }
 
-/** Statements a person can enter; a tabulated curve waits for its own screen. */
+/** Statements in the order of how often papers make them. */
 const OFFERED_KINDS: readonly { kind: StatementKind; label: string }[] = [
   { kind: "twoSided", label: "value" },
   { kind: "upperLimit", label: "upper" },
   { kind: "lowerLimit", label: "lower" },
   { kind: "band", label: "band" },
+  { kind: "curve", label: "curve" },
   { kind: "qualitative", label: "in words" },
 ];
 
@@ -76,6 +80,8 @@ const LONG: ReadonlySet<FieldName> = new Set<FieldName>([
   "printedText",
   "furtherIntervals",
   "historyAssumed",
+  "heliumAssumed",
+  "truncationAssumed",
   "remark",
 ]);
 
@@ -95,6 +101,7 @@ const CHOICES: Partial<Record<FieldName, Words>> = {
   cosmicVariance: { values: COSMIC_VARIANCES, words: COSMIC_VARIANCE_WORDS },
   versionRead: { values: VERSIONS_READ, words: VERSION_WORDS },
   durationUnit: { values: DURATION_UNITS, words: DURATION_UNIT_WORDS },
+  curveColumn: { values: CURVE_COLUMNS, words: CURVE_COLUMN_WORDS },
 };
 
 /** Id of the element around one field's input, where focus goes when the field is named. */

@@ -2,11 +2,12 @@ import { Fragment, type ReactNode, useState } from "react";
 import { View } from "react-native";
 
 import { Segments } from "@/components/Segments";
-import { Block } from "@/components/Text";
+import { Block, Dense } from "@/components/Text";
 import { useLayoutClass } from "@/layout/useLayoutClass";
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
 
-import { FieldInput, type SetField } from "./FieldInput";
+import { CurveEntry } from "./CurveEntry";
+import { fieldAnchor, FieldInput, type SetField } from "./FieldInput";
 import { isRelevant } from "./printedFields";
 
 export interface PrintedEntryProps {
@@ -18,15 +19,27 @@ export interface PrintedEntryProps {
   /** Shown under a field: a comment of a return, say. */
   under?: (name: FieldName) => ReactNode;
   onBlur?: () => void;
+  /** Asked of a tabulated curve in place of its rows; the second reading does. */
+  curve?: ReactNode;
 }
 
 /**
  * The entry of what a paper prints, in the order one reads it off the page. The submission form
  * and the second reading both use it, so that two people answer the same questions.
  */
-export function PrintedEntry({ fields, set, asked, error, under, onBlur }: PrintedEntryProps) {
+export function PrintedEntry({
+  fields,
+  set,
+  asked,
+  error,
+  under,
+  onBlur,
+  curve,
+}: PrintedEntryProps) {
   const { kind } = fields;
   const limit = kind === "upperLimit" || kind === "lowerLimit";
+  const interval = kind === "twoSided" || kind === "curve";
+  const depth = fields.quantity === "opticalDepth" || fields.quantity === "opticalDepthRange";
 
   // Half a phone is too narrow for "One sigma (68.27 %)".
   const phone = useLayoutClass() === "compact";
@@ -67,7 +80,28 @@ export function PrintedEntry({ fields, set, asked, error, under, onBlur }: Print
       {row(["species", "Fraction as printed"])}
       {row(["helium"])}
       {row(["kind", "Statement"])}
-      {kind === "twoSided" && shown("value") && (shown("plus") || shown("minus")) ? (
+      {kind === "curve" ? (
+        <>
+          {curve ?? (
+            <View nativeID={fieldAnchor("curveTable")} style={{ gap: 4 }}>
+              <CurveEntry
+                fields={fields}
+                set={set}
+                error={error?.("curveTable")}
+                columnError={error?.("curveColumn")}
+                onBlur={onBlur}
+              />
+              {under?.("curveTable")}
+              {under?.("curveColumn")}
+            </View>
+          )}
+          <Dense>
+            The interval that the paper quotes of it, if it does. The curve is what is used; the
+            interval is held against it.
+          </Dense>
+        </>
+      ) : null}
+      {interval && shown("value") && (shown("plus") || shown("minus")) ? (
         <View style={{ gap: 4 }}>
           <View style={{ flexDirection: "row", gap: 12, alignItems: "center" }}>
             <View style={{ flex: 1, minWidth: 0 }}>{control("value", "Value")}</View>
@@ -80,7 +114,7 @@ export function PrintedEntry({ fields, set, asked, error, under, onBlur }: Print
           {under?.("plus")}
           {under?.("minus")}
         </View>
-      ) : kind === "twoSided" ? (
+      ) : interval ? (
         row(["value", "Value"], ["plus", "+ plus"], ["minus", "− minus"])
       ) : null}
       {limit ? <LimitEntry fields={fields} set={set} row={row} shown={shown} /> : null}
@@ -100,7 +134,9 @@ export function PrintedEntry({ fields, set, asked, error, under, onBlur }: Print
       {row(["z", "Redshift"], ["zLow", "low"], ["zHigh", "high"])}
       {row(["zRole", "Role of the redshift"])}
       {row(["weighting", "Weighting"], ["scale", "Scale"])}
-      {row(["historyAssumed", "History and truncation assumed"])}
+      {row(["historyAssumed", depth ? "History family assumed" : "History assumed"])}
+      {row(["heliumAssumed", "Helium, as the paper treats it"])}
+      {row(["truncationAssumed", "Where history or integral is cut off"])}
       {row(["printedText", "Exact printed text"])}
       {row(["furtherIntervals", "Further intervals of the same paper"])}
     </View>

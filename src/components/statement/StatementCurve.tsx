@@ -4,10 +4,12 @@ import { LikelihoodCurve, type LikelihoodLine } from "@/charts/LikelihoodCurve";
 import { Caption, Dense } from "@/components/Text";
 import { FAMILY_MARKS } from "@/theme/families";
 import { useTheme } from "@/theme/ThemeProvider";
-import { rowLikelihood } from "~shared/likelihood";
+import { type RowLikelihood, rowLikelihood } from "~shared/likelihood";
 import { familyOf } from "~shared/methods/vocabulary";
-import { asUsed } from "~shared/statement/asUsed";
+import { type AsUsed, asUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields } from "~shared/statement/fields";
+
+import { InformationLost } from "./InformationLost";
 
 const POINTS = 161;
 
@@ -29,14 +31,27 @@ export function StatementCurve({
   const row = rowLikelihood(used);
   if ("leftOut" in row) return <Dense muted>No likelihood yet: {row.leftOut}</Dense>;
   const family = familyOf(fields.methodTags);
+  const quoted = quotedBeside(used);
   return (
     <View style={{ gap: 4 }}>
       <LikelihoodCurve
-        lines={[{ ...row.curve(POINTS), label: "as used" }, ...others]}
+        lines={[
+          { ...row.curve(POINTS), label: quoted ? "the curve" : "as used" },
+          ...(quoted ? [{ ...quoted.curve(POINTS), label: "the quoted interval" }] : []),
+          ...others,
+        ]}
         hue={family ? FAMILY_MARKS[family][scheme] : undefined}
         marks={marks}
       />
       <Caption muted>{row.formula}</Caption>
+      <InformationLost fields={fields} />
     </View>
   );
+}
+
+/** The interval quoted beside a curve by itself, in its default form. */
+function quotedBeside({ curve, ...used }: AsUsed): RowLikelihood | null {
+  if (used.kind !== "curve" || curve === undefined || used.value === null) return null;
+  const row = rowLikelihood({ ...used, kind: "twoSided" });
+  return "leftOut" in row ? null : row;
 }

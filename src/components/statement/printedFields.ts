@@ -14,6 +14,8 @@ export const PRINTED_FIELDS: readonly FieldName[] = [
   "limitSigma",
   "bandLow",
   "bandHigh",
+  "curveTable",
+  "curveColumn",
   "level",
   "levelPercent",
   "estimator",
@@ -30,6 +32,8 @@ export const PRINTED_FIELDS: readonly FieldName[] = [
   "weighting",
   "scale",
   "historyAssumed",
+  "heliumAssumed",
+  "truncationAssumed",
   "furtherIntervals",
   "printedText",
 ];
@@ -56,10 +60,16 @@ export const METHOD_FIELDS: readonly FieldName[] = [
   "remark",
 ];
 
+const IN_WORDS: readonly FieldName[] = [
+  "historyAssumed",
+  "heliumAssumed",
+  "truncationAssumed",
+  "furtherIntervals",
+  "printedText",
+];
+
 const BY_CHOICE: ReadonlySet<FieldName> = new Set<FieldName>(
-  PRINTED_FIELDS.filter(
-    (name) => !["historyAssumed", "furtherIntervals", "printedText"].includes(name),
-  ),
+  PRINTED_FIELDS.filter((name) => !IN_WORDS.includes(name)),
 );
 
 /**
@@ -71,6 +81,9 @@ export function isRelevant(name: FieldName, fields: ConstraintFields): boolean {
   switch (name) {
     case "historyAssumed":
       return fields.quantity !== null && fields.quantity !== "neutralFraction";
+    case "heliumAssumed":
+    case "truncationAssumed":
+      return fields.quantity === "opticalDepth" || fields.quantity === "opticalDepthRange";
     case "furtherIntervals":
       return fields.kind !== null && fields.kind !== "qualitative";
     case "preprintVersion":

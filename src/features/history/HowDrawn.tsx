@@ -11,6 +11,7 @@ const SIGNS = [
   { key: "lower", words: "lower limit" },
   { key: "bin", words: "redshift bin" },
   { key: "band", words: "band, no best value" },
+  { key: "curve", words: "tabulated curve" },
   { key: "dashed", words: "level not stated" },
 ] as const;
 
@@ -54,6 +55,11 @@ function Sign({ name }: { name: (typeof SIGNS)[number]["key"] }) {
         <>
           <Rect x={-4} y={-10} width={8} height={20} fill={muted} fillOpacity={0.2} {...line} />
           <Circle r={2.6} fill={surface} {...line} />
+        </>
+      ) : name === "curve" ? (
+        <>
+          <Path d="M-3 -10C-3 -4 7 -3 7 0S-3 4 -3 10Z" fill={muted} fillOpacity={0.2} {...line} />
+          <Circle cx={-3} r={4} fill={muted} />
         </>
       ) : (
         <>

@@ -5,12 +5,14 @@ import { Button } from "@/components/Button";
 import { Card } from "@/components/Card";
 import { Field } from "@/components/Field";
 import Icon from "@/components/Icon";
+import { CurveFactInput } from "@/components/statement/CurveReading";
 import { FieldInput } from "@/components/statement/FieldInput";
 import { Caption, Dense, Label, Mono, Section } from "@/components/Text";
 import { useLayoutClass } from "@/layout/useLayoutClass";
 import { useColors } from "@/theme/ThemeProvider";
 import type { ReviewPartsFragment } from "~graphql/generated/graphql";
-import { type ConstraintFields, emptyFields, type FieldName } from "~shared/statement/fields";
+import { isCurveFact, type ReadingContent } from "~shared/review/reading";
+import { emptyFields, type FieldName } from "~shared/statement/fields";
 
 import { fieldName, isNumber } from "./readingText";
 
@@ -21,7 +23,7 @@ export interface ComparisonProps {
   busy: boolean;
   /** Whether the editor still holds the claim; a closed comparison is only read. */
   open: boolean;
-  onCorrect: (field: FieldName, reading: ConstraintFields, why: string) => Promise<boolean>;
+  onCorrect: (field: FieldName, reading: ReadingContent, why: string) => Promise<boolean>;
   onReturnAt: (row: Row) => void;
 }
 
@@ -217,19 +219,28 @@ function ReadAgain({
 }: {
   field: FieldName;
   busy: boolean;
-  onStore: (fields: ConstraintFields, why: string) => void;
+  onStore: (fields: ReadingContent, why: string) => void;
   onCancel: () => void;
 }) {
-  const [fields, setFields] = useState(emptyFields);
+  const [fields, setFields] = useState<ReadingContent>(emptyFields);
   const [why, setWhy] = useState("");
   return (
     <View style={{ gap: 12, maxWidth: 520 }}>
-      <FieldInput
-        name={field}
-        fields={fields}
-        label={`${fieldName(field)}, read again`}
-        set={(name, value) => setFields((before) => ({ ...before, [name]: value }))}
-      />
+      {isCurveFact(field) ? (
+        <CurveFactInput
+          name={field}
+          reading={fields}
+          label={`${fieldName(field)}, read again`}
+          set={(name, value) => setFields((before) => ({ ...before, [name]: value }))}
+        />
+      ) : (
+        <FieldInput
+          name={field}
+          fields={fields}
+          label={`${fieldName(field)}, read again`}
+          set={(name, value) => setFields((before) => ({ ...before, [name]: value }))}
+        />
+      )}
       <Field
         label="Why you read it differently now"
         value={why}

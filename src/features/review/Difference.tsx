@@ -3,10 +3,12 @@ import Svg, { Line } from "react-native-svg";
 
 import { LikelihoodCurve, type LikelihoodLine } from "@/charts/LikelihoodCurve";
 import { NotationText } from "@/components/NotationText";
+import { StatementCurve } from "@/components/statement/StatementCurve";
 import { Dense, Section } from "@/components/Text";
 import { useColors } from "@/theme/ThemeProvider";
 import { rowLikelihood } from "~shared/likelihood";
 import { asUsed } from "~shared/statement/asUsed";
+import { curveText } from "~shared/statement/curve";
 import type { ConstraintFields, Quantity } from "~shared/statement/fields";
 import { notationAsPrinted } from "~shared/statement/notation";
 
@@ -41,11 +43,16 @@ export function Difference({
   submission: ConstraintFields;
   comparison: readonly { field: string; reading?: string | null; agrees: boolean }[];
 }) {
-  if (comparison.every(({ agrees }) => agrees)) return null;
+  const shown = <NotCompared submission={submission} />;
+  if (comparison.every(({ agrees }) => agrees)) return shown;
   const read = asRead(submission, comparison);
   const lines = [line(read, "your reading", "main"), line(submission, "submitted", "other")];
-  // Curves of two quantities share no axis.
-  const comparable = read.quantity === submission.quantity && lines.every((one) => one !== null);
+  // Curves of two quantities share no axis, and of a tabulated one the editor reads no rows.
+  const comparable =
+    submission.kind !== "curve" &&
+    read.kind !== "curve" &&
+    read.quantity === submission.quantity &&
+    lines.every((one) => one !== null);
   return (
     <View style={{ gap: 12 }}>
       <Section>What the difference does</Section>
@@ -58,8 +65,37 @@ export function Difference({
       ) : null}
       <Side word="your reading" fields={read} look="main" />
       <Side word="submitted" fields={submission} look="other" />
+      {shown}
     </View>
   );
+}
+
+/** What a reading can't compare: the curve between the facts read of it, and a statement in words. */
+function NotCompared({ submission }: { submission: ConstraintFields }) {
+  if (submission.kind === "curve") {
+    return (
+      <View style={{ gap: 12 }}>
+        <Section>The submitted curve</Section>
+        <Dense muted>
+          {curveText(submission.curveTable, submission.curveColumn)}. Hold its shape against the
+          paper’s figure.
+        </Dense>
+        <StatementCurve fields={submission} />
+      </View>
+    );
+  }
+  if (submission.kind === "qualitative" && submission.printedText) {
+    return (
+      <View style={{ gap: 12 }}>
+        <Section>In words</Section>
+        <Dense>{`“${submission.printedText}”`}</Dense>
+        <Dense muted>
+          Words are not compared. Look whether the paper says this, and no number.
+        </Dense>
+      </View>
+    );
+  }
+  return null;
 }
 
 /** One of the two, with the line it has in the curve above. */

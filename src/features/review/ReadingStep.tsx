@@ -2,11 +2,13 @@ import { useEffect } from "react";
 import { View } from "react-native";
 
 import Icon from "@/components/Icon";
-import { FieldInput, focusField, type SetField } from "@/components/statement/FieldInput";
+import { CurveFactInput, CurveReading, type SetReading } from "@/components/statement/CurveReading";
+import { FieldInput, focusField } from "@/components/statement/FieldInput";
 import { PrintedEntry } from "@/components/statement/PrintedEntry";
 import { Dense, Section } from "@/components/Text";
 import { useColors } from "@/theme/ThemeProvider";
-import type { ConstraintFields, FieldName } from "~shared/statement/fields";
+import { isCurveFact, type ReadingContent } from "~shared/review/reading";
+import type { FieldName } from "~shared/statement/fields";
 
 import { fieldName } from "./readingText";
 
@@ -18,8 +20,8 @@ export function ReadingStep({
   refusedField,
   refusal,
 }: {
-  fields: ConstraintFields;
-  set: SetField;
+  fields: ReadingContent;
+  set: SetReading;
   fieldsToRead: readonly string[];
   refusedField: string | null;
   refusal: string | null;
@@ -27,7 +29,7 @@ export function ReadingStep({
   const colors = useColors();
   // The whole statement, or only what changed since the last reading.
   const whole = fieldsToRead.includes("quantity");
-  const error = (name: FieldName) => (refusedField === name ? (refusal ?? undefined) : undefined);
+  const error = (name: string) => (refusedField === name ? (refusal ?? undefined) : undefined);
   useEffect(() => {
     if (refusedField) focusField(refusedField as FieldName);
   }, [refusedField, refusal]);
@@ -55,6 +57,7 @@ export function ReadingStep({
           set={set}
           asked={(name) => fieldsToRead.includes(name)}
           error={error}
+          curve={<CurveReading reading={fields} set={set} error={error} />}
         />
       ) : (
         <View style={{ gap: 16 }}>
@@ -64,15 +67,25 @@ export function ReadingStep({
               ? "Nothing of the statement changed since it was last read. Store that to compare."
               : `This record was read before. Only what changed or differed is asked again: ${fieldsToRead.map(fieldName).join(", ")}.`}
           </Dense>
-          {fieldsToRead.map((name) => (
-            <FieldInput
-              key={name}
-              name={name as FieldName}
-              fields={fields}
-              set={set}
-              error={error(name as FieldName)}
-            />
-          ))}
+          {fieldsToRead.map((name) =>
+            isCurveFact(name) ? (
+              <CurveFactInput
+                key={name}
+                name={name}
+                reading={fields}
+                set={set}
+                error={error(name)}
+              />
+            ) : (
+              <FieldInput
+                key={name}
+                name={name as FieldName}
+                fields={fields}
+                set={set}
+                error={error(name as FieldName)}
+              />
+            ),
+          )}
         </View>
       )}
       {whole && fieldsToRead.includes("methodTags") ? (

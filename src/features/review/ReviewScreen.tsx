@@ -438,7 +438,7 @@ function Work({ review, actions, onReload }: WorkProps) {
 function leftWords(
   asked: readonly string[],
   fields: ReturnType<typeof emptyFields>,
-  missing: readonly FieldName[],
+  missing: readonly string[],
 ): string {
   const typed = asked.filter((name) => !isOpen(fields, name as FieldName)).length;
   const kept = typed > 0 ? `Draft kept, ${typed} typed.` : "Nothing typed yet.";

@@ -1,10 +1,17 @@
-import { readingMissing } from "~shared/review/reading";
+import {
+  isCurveFact,
+  readingFieldName,
+  readingMissing,
+  type ReadingContent,
+  type ReadingField,
+} from "~shared/review/reading";
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
 import { isNumberField, isOpen } from "~shared/statement/relevant";
 import { CHOICE_WORDS, FIELD_NAMES } from "~shared/statement/words";
 
 /** A field's name in a sentence or a head; what is no field of the record is the paper itself. */
 export function fieldName(field: string): string {
+  if (isCurveFact(field)) return readingFieldName(field);
   return FIELD_NAMES[field as FieldName] ?? "The paper";
 }
 
@@ -20,17 +27,21 @@ const MAY_STAY_OPEN: ReadonlySet<FieldName> = new Set<FieldName>([
 
 /** What an editor has yet to type before the reading can be stored. */
 export function stillToRead(
-  reading: ConstraintFields,
-  asked: readonly FieldName[],
-): readonly FieldName[] {
+  reading: ReadingContent,
+  asked: readonly (FieldName | ReadingField)[],
+): readonly (FieldName | ReadingField)[] {
   // Asked again is only what changed or differed: the rest of the statement is not in this reading.
   return asked.includes("quantity")
-    ? readingMissing(reading, asked)
-    : asked.filter((name) => isOpen(reading, name) && !MAY_STAY_OPEN.has(name));
+    ? readingMissing(reading, asked as readonly ReadingField[])
+    : asked.filter((name) =>
+        isCurveFact(name)
+          ? !reading[name]?.trim()
+          : isOpen(reading, name) && !MAY_STAY_OPEN.has(name),
+      );
 }
 
 export function isNumber(field: string): boolean {
-  return isNumberField(field as FieldName);
+  return isCurveFact(field) || isNumberField(field as FieldName);
 }
 
 /**
@@ -43,7 +54,7 @@ export function asRead(
 ): ConstraintFields {
   const read = { ...submission } as unknown as Record<string, unknown>;
   for (const { field, reading, agrees } of comparison) {
-    if (agrees || field === "methodTags") continue;
+    if (agrees || field === "methodTags" || isCurveFact(field)) continue;
     const words = CHOICE_WORDS[field as FieldName];
     const value = words
       ? (Object.entries(words).find(([, word]) => word === reading)?.[0] ?? null)

@@ -2,17 +2,22 @@ import { useState } from "react";
 
 import { plainFields } from "@/components/statement/plainFields";
 import { changeShape, type Stash } from "@/components/statement/printedFields";
-import type { SetField } from "@/components/statement/FieldInput";
-import { type ConstraintFields, emptyFields, type FieldName } from "~shared/statement/fields";
+import type { SetReading } from "@/components/statement/CurveReading";
+import { CURVE_FACTS, type ReadingContent } from "~shared/review/reading";
+import { emptyFields, type FieldName } from "~shared/statement/fields";
 
 function keyOf(id: string): string {
   return `fogline.reading.${id}`;
 }
 
-function kept(id: string): ConstraintFields {
+function kept(id: string): ReadingContent {
   try {
     const text = globalThis.localStorage?.getItem(keyOf(id));
-    return text ? plainFields(JSON.parse(text) as Partial<ConstraintFields>) : emptyFields();
+    if (!text) return emptyFields();
+    const held = JSON.parse(text) as Partial<ReadingContent>;
+    const reading: ReadingContent = plainFields(held);
+    for (const name of CURVE_FACTS) if (held[name]) reading[name] = held[name];
+    return reading;
   } catch {
     return emptyFields();
   }
@@ -30,11 +35,11 @@ const SHAPING: ReadonlySet<FieldName> = new Set<FieldName>([
  * kept in this browser until it is stored.
  */
 export function useReading(id: string) {
-  const [state, setState] = useState<{ fields: ConstraintFields; stash: Stash }>(() => ({
+  const [state, setState] = useState<{ fields: ReadingContent; stash: Stash }>(() => ({
     fields: kept(id),
     stash: {},
   }));
-  const set: SetField = (name, value) =>
+  const set = ((name: FieldName, value: never) =>
     setState((before) => {
       const next = SHAPING.has(name)
         ? changeShape(before.fields, name, value, before.stash)
@@ -45,7 +50,7 @@ export function useReading(id: string) {
         // Without storage the reading lives as long as the page.
       }
       return next;
-    });
+    })) as SetReading;
   const forget = () => {
     try {
       globalThis.localStorage?.removeItem(keyOf(id));

@@ -9,6 +9,7 @@ import { Field } from "@/components/Field";
 import { Notice } from "@/components/Notice";
 import { NotationText } from "@/components/NotationText";
 import { METHOD_FIELDS, PRINTED_FIELDS } from "@/components/statement/printedFields";
+import { StatementCurve } from "@/components/statement/StatementCurve";
 import { Body, Caption, Dense, Section } from "@/components/Text";
 import type { FindingPartsFragment } from "~graphql/generated/graphql";
 import { asUsed } from "~shared/statement/asUsed";
@@ -199,6 +200,11 @@ function Reading({ fields }: { fields: ConstraintFields }) {
           )}
         </Side>
       </View>
+      {fields.kind === "curve" && used?.curve ? (
+        <Card>
+          <StatementCurve fields={fields} />
+        </Card>
+      ) : null}
     </View>
   );
 }

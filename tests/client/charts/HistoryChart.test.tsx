@@ -24,6 +24,7 @@ const point = (
     bin: false,
     arrow: null,
     band: null,
+    violin: null,
     hollow: false,
     levelStated: true,
     ...extra,

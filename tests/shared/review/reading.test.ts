@@ -7,6 +7,7 @@ import {
   fieldsToReread,
   mergeReading,
   READING_FIELDS,
+  type ReadingContent,
   readingFieldsFor,
   readingMissing,
   tidyReading,
@@ -44,7 +45,7 @@ describe("fieldsAgree", () => {
 
   it("is symmetric, and every content agrees with itself", () => {
     fc.assert(
-      fc.property(arbitraryFields, arbitraryFields, (a, b) => {
+      fc.property(arbitraryFields, arbitraryFields, (a: ReadingContent, b: ReadingContent) => {
         for (const name of READING_FIELDS) {
           expect(fieldsAgree(name, a[name], a[name])).toBe(true);
           expect(fieldsAgree(name, a[name], b[name])).toBe(fieldsAgree(name, b[name], a[name]));
@@ -176,5 +177,110 @@ describe("diffFields", () => {
     const after = buildFields({ value: "0.420", methodTags: ["darkGaps"], place: null });
     expect(diffFields(buildFields(), after).sort()).toEqual(["methodTags", "place", "value"]);
     expect(diffFields(buildFields(), buildFields())).toEqual([]);
+  });
+});
+
+describe("a tabulated curve", () => {
+  const table = (change: (rows: string[]) => string[] = (rows) => rows) =>
+    change(
+      Array.from(
+        { length: 21 },
+        (_, i) => `${(i / 20).toFixed(2)},${(1 + i * (20 - i)).toFixed(1)}`,
+      ),
+    ).join("\n");
+  const submitted = buildFields({
+    kind: "curve",
+    value: null,
+    plus: null,
+    minus: null,
+    level: null,
+    estimator: null,
+    curveTable: `x,p\n${table()}`,
+    curveColumn: "density",
+  });
+  const facts = { curveRows: "21", curveFirst: "0", curveLast: "1.0", curvePeak: ".5" };
+  const reading: ReadingContent = { ...submitted, curveTable: null, ...facts };
+  const differing = (content: ReadingContent, against = submitted) =>
+    compareReading(tidyReading(content), against)
+      .filter(({ agrees }) => !agrees)
+      .map(({ field }) => field);
+
+  it("is read by its facts, never by its rows", () => {
+    const asked = readingFieldsFor({ ...emptyFields(), quantity: "opticalDepth", kind: "curve" });
+    expect(asked).toEqual([
+      "quantity",
+      "kind",
+      "value",
+      "plus",
+      "minus",
+      "curveColumn",
+      "curveRows",
+      "curveFirst",
+      "curveLast",
+      "curvePeak",
+      "methodTags",
+    ]);
+    expect(READING_FIELDS).not.toContain("curveTable");
+    expect(tidyReading({ ...reading, curveTable: "0,1" })).toEqual(tidyReading(reading));
+    // Whoever hands in the whole table has read its facts.
+    expect(tidyReading(submitted)).toMatchObject({
+      ...facts,
+      curveTable: null,
+      curveFirst: "0.00",
+      curveLast: "1.00",
+      curvePeak: "0.50",
+    });
+    expect(readingMissing({ ...reading, curvePeak: null })).toEqual(["curvePeak"]);
+    expect(readingMissing(reading)).toEqual([]);
+  });
+
+  it("agrees by the printed digits", () => {
+    expect(differing(reading)).toEqual([]);
+    expect(compareReading(tidyReading(reading), submitted)).toContainEqual({
+      field: "curvePeak",
+      reading: ".5",
+      submitted: "0.50",
+      agrees: true,
+    });
+  });
+
+  it.each([
+    ["curveRows", "20"],
+    ["curveFirst", "0.05"],
+    ["curveLast", "0.95"],
+    ["curvePeak", "0.45"],
+  ] as const)("differs at %s", (name, text) => {
+    expect(differing({ ...reading, [name]: text })).toEqual([name]);
+  });
+
+  it("differs where an interval is quoted on one side only", () => {
+    const quoted = { value: "0.50", plus: "0.2", minus: "0.2", level: "oneSigma" } as const;
+    expect(differing({ ...reading, ...quoted, estimator: "median" })).toEqual([
+      "value",
+      "plus",
+      "minus",
+      "level",
+      "estimator",
+    ]);
+  });
+
+  it("differs in all its facts from what is no curve", () => {
+    const limit = buildFields({ kind: "upperLimit", plus: null, minus: null, estimator: null });
+    expect(differing(reading, limit)).toEqual(
+      expect.arrayContaining(["kind", "curveRows", "curveFirst", "curveLast", "curvePeak"]),
+    );
+  });
+
+  it("is read again when its table changed, and not otherwise", () => {
+    const other = { ...submitted, curveTable: table((rows) => rows.with(3, "0.15,51.5")) };
+    expect(fieldsToReread(reading, submitted, other)).toEqual([
+      "curveRows",
+      "curveFirst",
+      "curveLast",
+      "curvePeak",
+    ]);
+    expect(fieldsToReread(reading, submitted, { ...submitted, remark: "as in the file" })).toEqual(
+      [],
+    );
   });
 });

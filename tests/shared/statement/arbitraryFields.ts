@@ -39,7 +39,22 @@ const choices: Partial<Record<FieldName, readonly string[]>> = {
   cosmicVariance: fields.COSMIC_VARIANCES,
   versionRead: fields.VERSIONS_READ,
   durationUnit: fields.DURATION_UNITS,
+  curveColumn: fields.CURVE_COLUMNS,
 };
+
+/** Tables of a curve, most of them good and some of them anything. */
+const curveTables = fc
+  .array(fc.tuple(typedText, typedText), { maxLength: 3 })
+  .chain((odd) =>
+    fc
+      .integer({ min: 0, max: 40 })
+      .map((rows) =>
+        [
+          ...odd.map((cells) => cells.join(",")),
+          ...Array.from({ length: rows }, (_, i) => `${(i / 40).toFixed(3)},${1 + (i % 7)}`),
+        ].join("\n"),
+      ),
+  );
 
 function contentOf(name: FieldName): fc.Arbitrary<unknown> {
   const words = choices[name];
@@ -53,6 +68,7 @@ function contentOf(name: FieldName): fc.Arbitrary<unknown> {
   if (name === "dataKnown" || name === "alternativesPreferred" || name === "readOffFigure") {
     return fc.option(fc.boolean());
   }
+  if (name === "curveTable") return fc.option(curveTables);
   return fc.option(typedText);
 }
 
