@@ -13,6 +13,7 @@ import {
   signInByForm,
   startDraft,
   submitChecked,
+  tickChecklist,
   typeOrigin,
   typeStatement,
   visit,
@@ -143,7 +144,7 @@ describe.each(SIZE_NAMES)("the main job on a %s screen", (size) => {
     "shows the editor the paper and none of the numbers before the reading is stored",
     async () => {
       await signIn(editor, EDITOR);
-      await visit(editor, "/desk", "Desk");
+      await visit(editor, "/desk/queue", "Queue");
       await link(editor, new RegExp(`^${number}\\b.*Thessing`)).click();
       await button(editor, "Claim for a second reading").waitFor();
       await look(editor, "05-claim");
@@ -214,7 +215,7 @@ describe.each(SIZE_NAMES)("the main job on a %s screen", (size) => {
   });
 
   step("asks the editor for the changed field alone, and approves", async () => {
-    await visit(editor, "/desk", "Desk");
+    await visit(editor, "/desk/queue", "Queue");
     await link(editor, new RegExp(`^${number}\\b.*Thessing`)).click();
     await button(editor, "Claim for a second reading").click();
     await entry(editor, "Minus").waitFor();
@@ -226,6 +227,7 @@ describe.each(SIZE_NAMES)("the main job on a %s screen", (size) => {
     await button(editor, "Store my reading").click();
     await editor.getByText(/^\d+ fields, all the same$/).waitFor();
     for (const accept of await button(editor, "Accept the answer").all()) await accept.click();
+    await tickChecklist(editor);
     await look(editor, "14-decide");
     const approve = button(editor, "Approve");
     await approve.and(editor.locator(":not([aria-disabled=true])")).click();

@@ -120,7 +120,7 @@ function Opened({
       return (
         <>
           <Notice grade="done" title="You have answered, and it is closed" action={toRecord}>
-            Thank you. The answer stands with the record and can't be changed here any more.
+            Thank you. The answer stands with the record; nothing here is open any more.
           </Notice>
           <Lines lines={page.lines} author="You" />
         </>

@@ -163,8 +163,9 @@ export function LeavePaper({ item, onClose, end }: { item: Item; onClose: () => 
     >
       <View style={{ gap: 16 }}>
         <Body>
-          Say so when you can't read it impartially: you work with its authors, or compete with
-          them. You can't claim or be handed any submission of this paper then.
+          {
+            "Say so when you can't read it impartially: you work with its authors, or compete with them. You can't claim or be handed any submission of this paper then."
+          }
         </Body>
         <Field
           label="Reason"

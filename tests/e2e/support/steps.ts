@@ -105,6 +105,17 @@ export async function submitChecked(page: Page): Promise<void> {
   await page.getByText(/^FL-\d+ is submitted$/).waitFor();
 }
 
+/** Ticks every point of the second reading's checklist, one after the other. */
+export async function tickChecklist(page: Page): Promise<void> {
+  const list = page.getByRole("group", { name: "Checklist" });
+  const points = list.getByRole("checkbox");
+  const all = await points.count();
+  for (let at = 0; at < all; at++) {
+    await points.nth(at).click();
+    await list.getByText(`${at + 1} of ${all} ticked`, { exact: false }).waitFor();
+  }
+}
+
 /** What a person sees or hears on the page, with everything typed into it. */
 export function pageWords(page: Page): Promise<string> {
   return page.evaluate(() => {
