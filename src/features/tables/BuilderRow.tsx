@@ -1,3 +1,4 @@
+import { useEffect, useRef } from "react";
 import { StyleSheet, View } from "react-native";
 
 import { Marker } from "@/components/Marker";
@@ -39,21 +40,29 @@ export function BuilderRow({ built, wanted, onOpen }: Props) {
   const { constraint, row } = built;
   const waits = row.open.length > 0;
   const back = waits ? colors.emberTint : wanted ? colors.petrolTint : undefined;
+  const place = useRef<View>(null);
+  useEffect(() => {
+    // On the web a View is an element; nothing else knows where the page is scrolled.
+    if (wanted)
+      (place.current as unknown as HTMLElement | null)?.scrollIntoView?.({ block: "center" });
+  }, [wanted]);
   const words = `${constraint.citation.shortName}: ${recordTitle(constraint.fields)}, ${row.included ? "in" : "out"}`;
   return (
-    <Press onPress={onOpen} label={words} style={[styles.row, { backgroundColor: back }]}>
-      {wide ? <WideFacts built={built} /> : <NarrowFacts built={built} />}
-      {row.included ? null : (
-        <Caption muted style={styles.indent}>
-          {`Out: ${row.reason ?? "hidden until your second reading is stored"}`}
-        </Caption>
-      )}
-      {row.cautions.map((caution) => (
-        <Caption key={caution} style={[styles.indent, { color: colors.emberText }]}>
-          {caution.replace(/\.$/, "")}.
-        </Caption>
-      ))}
-    </Press>
+    <View ref={place}>
+      <Press onPress={onOpen} label={words} style={[styles.row, { backgroundColor: back }]}>
+        {wide ? <WideFacts built={built} /> : <NarrowFacts built={built} />}
+        {row.included ? null : (
+          <Caption muted style={styles.indent}>
+            {`Out: ${row.reason ?? "hidden until your second reading is stored"}`}
+          </Caption>
+        )}
+        {row.cautions.map((caution) => (
+          <Caption key={caution} style={[styles.indent, { color: colors.emberText }]}>
+            {caution.replace(/\.$/, "")}.
+          </Caption>
+        ))}
+      </Press>
+    </View>
   );
 }
 

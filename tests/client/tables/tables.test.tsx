@@ -5,10 +5,11 @@ import { TableBuilderScreen } from "@/features/tables/TableBuilderScreen";
 import { TableScreen } from "@/features/tables/TableScreen";
 import { TablesScreen } from "@/features/tables/TablesScreen";
 import {
-  SaveTableDocument,
+  ReleaseListDocument,
+  SaveRecipeDocument,
   TableBySlugDocument,
-  TableCandidatesDocument,
   TableListDocument,
+  TableProposalDocument,
 } from "~graphql/generated/graphql";
 import type { ConstraintFields } from "~shared/statement/fields";
 
@@ -38,6 +39,7 @@ function row(number: string, fields: Partial<ConstraintFields> = {}) {
     number,
     quotable: `${number}.1`,
     state: "current",
+    supersededBy: null,
     fields: {
       __typename: "ConstraintFields",
       ...completeFields(),
@@ -48,26 +50,101 @@ function row(number: string, fields: Partial<ConstraintFields> = {}) {
   };
 }
 
-const candidates = (rows: object[]): MockedResponse =>
-  ({
-    request: { query: TableCandidatesDocument, variables: () => true },
-    result: {
-      data: {
-        constraints: {
-          __typename: "ConstraintPage",
-          total: rows.length,
-          registryTotal: 24,
-          lastEvent: null,
-          constraints: rows,
-        },
-      },
-    },
-    ...endless,
-  }) as unknown as MockedResponse;
+function settled(number: string, more: object = {}) {
+  return {
+    __typename: "SettledRow",
+    number,
+    included: true,
+    reason: null,
+    proposed: true,
+    open: [],
+    cautions: [],
+    form: "quantileMatched",
+    forms: ["quantileMatched", "twoPiece"],
+    formula: "quantile-matched",
+    formReason: null,
+    redshift: "point",
+    level: 0.6827,
+    weight: 1,
+    mixture: null,
+    set: null,
+    ...more,
+  };
+}
+
+const OVERLAP = "overlap:FL-0001+FL-0003";
+
+/** Two papers on one field: open until the choice is there. */
+function decision(taken: string | null) {
+  const option = (code: string, words: string, override = false) => ({
+    __typename: "DecisionOption",
+    code,
+    words,
+    override,
+  });
+  return {
+    __typename: "TableDecision",
+    id: OVERLAP,
+    kind: "overlap",
+    rows: ["FL-0001", "FL-0003"],
+    words: "Two rows share data: Field of FL-0001.",
+    options: [
+      option("keep:FL-0001", "Keep FL-0001"),
+      option("keep:FL-0003", "Keep FL-0003"),
+      option("all", "Keep both, with a reason", true),
+    ],
+    proposed: "keep:FL-0001",
+    because: "only one of these 2 rows can stand",
+    taken,
+    byDefault: taken === "keep:FL-0001",
+    reason: null,
+  };
+}
+
+interface Recipe {
+  decisions: { id: string; option: string; byDefault: boolean; reason: string | null }[];
+  out: { number: string; reason: string }[];
+  forms: { number: string; form: string; reason: string }[];
+}
+
+/** The proposal a server would make of the recipe. */
+function proposal(recipe: Recipe, rows: object[]) {
+  const [choice] = recipe.decisions;
+  const settles = choice && (choice.byDefault || choice.reason);
+  const taken = settles ? choice.option : null;
+  const kept = taken ?? "keep:FL-0001";
+  const outOf = (number: string) => recipe.out.find((one) => one.number === number);
+  const shown = ["FL-0001", "FL-0002", "FL-0003"].map((number) => {
+    const byHand = outOf(number);
+    const lost = number !== "FL-0002" && kept !== "all" && kept !== `keep:${number}`;
+    return settled(number, {
+      included: !byHand && !lost,
+      reason: byHand ? `Taken out: ${byHand.reason}` : lost ? "Shares Field of FL-0001" : null,
+      open: taken === null && number !== "FL-0002" ? [OVERLAP] : [],
+    });
+  });
+  return {
+    __typename: "TableProposal",
+    open: rows.length > 0 && taken === null ? 1 : 0,
+    filter: "All constraints",
+    lastEvent: { __typename: "EventMark", sequence: 7, at: "2026-11-20T08:00:00Z" },
+    rows: rows.length > 0 ? shown : [],
+    constraints: rows,
+    decisions: rows.length > 0 ? [decision(taken)] : [],
+    mixtures: [],
+    sets: [],
+  };
+}
 
 const tables = (list: object[] = []): MockedResponse => ({
   request: { query: TableListDocument },
   result: { data: { fittingTables: list } },
+  ...endless,
+});
+
+const releases = (list: object[] = []): MockedResponse => ({
+  request: { query: ReleaseListDocument },
+  result: { data: { releases: list } },
   ...endless,
 });
 
@@ -76,11 +153,13 @@ const ROWS = [row("FL-0001"), row("FL-0002"), row("FL-0003", { dataUsed: ["Field
 
 beforeEach(() => {
   route.params = {};
-  sessionStorage.clear();
+  localStorage.clear();
   router.replace.mockClear();
 });
 
 describe.each(WIDTHS)("the builder at %i points", (width) => {
+  const wide = width >= 1100;
+
   function build(options: {
     params?: Record<string, string>;
     roles?: [] | null;
@@ -88,116 +167,145 @@ describe.each(WIDTHS)("the builder at %i points", (width) => {
     rows?: object[];
   }) {
     const saved = jest.fn();
-    route.params = options.params ?? {};
+    route.params = { ...(wide ? {} : { step: "rows" }), ...options.params };
+    const proposed = {
+      request: { query: TableProposalDocument, variables: () => true },
+      result: ({ recipe }: { recipe: Recipe }) => ({
+        data: { tableProposal: proposal(recipe, options.rows ?? ROWS) },
+      }),
+      ...endless,
+    } as unknown as MockedResponse;
     const save = {
       request: {
-        query: SaveTableDocument,
+        query: SaveRecipeDocument,
         variables: (variables: object) => {
           saved(variables);
           return true;
         },
       },
-      result: { data: { saveTable: options.answer } },
+      result: { data: { saveRecipe: options.answer } },
     } as unknown as MockedResponse;
     show(<TableBuilderScreen />, {
       width,
       roles: options.roles === undefined ? [] : options.roles,
-      mocks: [candidates(options.rows ?? ROWS), tables(), save],
+      mocks: [proposed, tables(), releases(), save],
     });
     return saved;
   }
-  const box = (number: string) =>
-    screen.findByRole("checkbox", { name: new RegExp(`^Paper of ${number}:`) });
+  const rowButton = (number: string) =>
+    screen.findByRole("button", { name: new RegExp(`^Paper of ${number}:`) });
   const saveButton = () => screen.getByRole("button", { name: "Save the table" });
-  const name = (value: string) =>
-    fireEvent.change(screen.getByLabelText("Name of the table"), { target: { value } });
+  const takeAll = () =>
+    fireEvent.click(screen.getByRole("button", { name: "Take it as proposed" }));
 
   it("proposes rows, the one that shares data out with its reason", async () => {
     build({});
-    expect(await box("FL-0001")).toBeChecked();
-    expect(await box("FL-0002")).toBeChecked();
-    expect(await box("FL-0003")).not.toBeChecked();
-    expect(
-      screen.getByText("Out, as proposed: Shares Field of FL-0001 with FL-0001."),
-    ).toBeInTheDocument();
-    expect(screen.getByText(/^2 in, 1 out\./)).toBeInTheDocument();
-    const preview = within(
-      screen.getByRole(width < 700 ? "list" : "group", { name: "Rows of the table" }),
+    expect(await rowButton("FL-0001")).toHaveAccessibleName(/, in$/);
+    expect(await rowButton("FL-0003")).toHaveAccessibleName(/, out$/);
+    expect(screen.getByText("2 in, 1 out with a reason")).toBeInTheDocument();
+    expect(screen.getByText("Out: Shares Field of FL-0001")).toBeInTheDocument();
+  });
+
+  it("preselects nothing in a decision, tags the proposal and says why", async () => {
+    build({ params: { step: "decisions" } });
+    const group = within(
+      await screen.findByRole("group", { name: "Decision 1, Overlapping data" }),
     );
-    expect(preview.getByText("FL-0002.1")).toBeInTheDocument();
-    expect(preview.queryByText("FL-0003.1")).not.toBeInTheDocument();
+    for (const option of group.getAllByRole("radio")) expect(option).not.toBeChecked();
+    expect(group.getByText("proposed")).toBeInTheDocument();
+    expect(group.getByText("Proposed: only one of these 2 rows can stand.")).toBeInTheDocument();
+    expect(screen.getByText("1 open")).toBeInTheDocument();
   });
 
-  it("is not saved while a row is out without a reason, and says which", async () => {
-    const saved = build({});
-    fireEvent.click(await box("FL-0002"));
-    name("Wings");
-    fireEvent.click(saveButton());
-    expect(saveButton()).toHaveAccessibleDescription("A reason is missing: FL-0002.");
-    fireEvent.change(screen.getByLabelText("Why it is left out"), {
-      target: { value: "I trust it less" },
-    });
-    expect(saveButton()).not.toHaveAttribute("aria-disabled", "true");
-    expect(saved).not.toHaveBeenCalled();
+  it("takes every proposal in one tap", async () => {
+    build({ params: { step: "decisions" } });
+    await screen.findByText("1 open");
+    takeAll();
+    expect(await screen.findByText("None open")).toBeInTheDocument();
+    fireEvent.click(screen.getByRole("button", { name: "Show 1 taken" }));
+    expect(screen.getByText("Taken as proposed.")).toBeInTheDocument();
   });
 
-  it("sends each row with its reason, in or out, and goes to the table's page", async () => {
-    const saved = build({
-      answer: { __typename: "FittingTable", slug: "abc234def567", name: "Wings" },
+  it("asks for the reason of a choice of one's own before it counts", async () => {
+    build({ params: { step: "decisions" } });
+    fireEvent.click(await screen.findByRole("radio", { name: /Keep both/ }));
+    expect(screen.getByText("1 open")).toBeInTheDocument();
+    fireEvent.change(screen.getByLabelText("Why, in a few words"), {
+      target: { value: "Disjoint halves" },
     });
-    fireEvent.click(await box("FL-0002"));
-    fireEvent.change(screen.getByLabelText("Why it is left out"), {
-      target: { value: "I trust it less" },
-    });
-    fireEvent.click(await box("FL-0003"));
-    expect(screen.getByText("A reason is missing: FL-0003.")).toBeInTheDocument();
-    fireEvent.change(screen.getByLabelText("Why it is in all the same"), {
-      target: { value: " Disjoint halves " },
-    });
-    name("Wings");
-    fireEvent.click(saveButton());
-    await waitFor(() => expect(router.replace).toHaveBeenCalledWith("/tables/abc234def567"));
-    expect(saved).toHaveBeenCalledWith({
-      input: {
-        name: "Wings",
-        filter: expect.anything(),
-        rows: [
-          { number: "FL-0001", included: true, reason: null },
-          { number: "FL-0002", included: false, reason: "I trust it less" },
-          { number: "FL-0003", included: true, reason: "Disjoint halves" },
-        ],
-      },
-    });
+    expect(await screen.findByText("None open")).toBeInTheDocument();
   });
 
-  it("shows a refusal in its words and keeps the choices", async () => {
-    const message = "FL-0009 matches the filter too and is neither in nor out.";
-    build({ answer: { __typename: "Refusal", code: "stale", message, field: null } });
-    fireEvent.click(await box("FL-0002"));
-    fireEvent.change(screen.getByLabelText("Why it is left out"), { target: { value: "Dim" } });
-    name("Wings");
-    fireEvent.click(saveButton());
-    expect(await screen.findByText(message)).toBeInTheDocument();
-    expect(router.replace).not.toHaveBeenCalled();
-    expect(await box("FL-0002")).not.toBeChecked();
-    expect(screen.getByLabelText("Why it is left out")).toHaveValue("Dim");
-  });
-
-  it("takes a choice back to the proposal", async () => {
+  it("takes a row out by hand with its reason, and puts it back", async () => {
     build({});
-    fireEvent.click(await box("FL-0003"));
-    fireEvent.click(screen.getByRole("button", { name: "As proposed" }));
-    expect(await box("FL-0003")).not.toBeChecked();
-    expect(screen.queryByLabelText("Why it is in all the same")).not.toBeInTheDocument();
+    fireEvent.click(await rowButton("FL-0002"));
+    fireEvent.click(await screen.findByRole("button", { name: "Take it out" }));
+    fireEvent.change(screen.getByLabelText("Why it is taken out"), {
+      target: { value: "I trust it less" },
+    });
+    expect(await screen.findAllByText(/Taken out: I trust it less/)).not.toHaveLength(0);
+    fireEvent.click(screen.getByRole("button", { name: "Put it back" }));
+    expect(await screen.findByText("2 in, 1 out with a reason")).toBeInTheDocument();
   });
 
-  it("brings the record it was opened for into view, or says that the filter leaves it out", async () => {
+  if (wide) {
+    it("is not saved while a decision is open or the name is missing, and says so", async () => {
+      const saved = build({});
+      await rowButton("FL-0001");
+      fireEvent.click(saveButton());
+      expect(saveButton()).toHaveAccessibleDescription("One decision is open.");
+      takeAll();
+      await screen.findByText("None open");
+      expect(saveButton()).toHaveAccessibleDescription("Give the table a name.");
+      expect(saved).not.toHaveBeenCalled();
+    });
+
+    it("sends the recipe and goes to the table's page", async () => {
+      const saved = build({
+        answer: { __typename: "FittingTable", slug: "abc234def567", version: 1 },
+      });
+      await rowButton("FL-0001");
+      takeAll();
+      await screen.findByText("None open");
+      fireEvent.change(screen.getByLabelText("Name of the table"), { target: { value: "Wings" } });
+      fireEvent.click(saveButton());
+      await waitFor(() => expect(router.replace).toHaveBeenCalledWith("/tables/abc234def567"));
+      expect(saved).toHaveBeenCalledWith({
+        input: expect.objectContaining({
+          name: "Wings",
+          visibility: "public",
+          recipe: expect.objectContaining({
+            release: null,
+            decisions: [{ id: OVERLAP, option: "keep:FL-0001", byDefault: true, reason: null }],
+            out: [],
+            forms: [],
+          }),
+        }),
+      });
+      expect(localStorage.getItem("fogline.tableRecipe")).not.toContain("Wings");
+    });
+
+    it("shows a refusal in its words and keeps the choices", async () => {
+      const message = "One decision is still open.";
+      build({ answer: { __typename: "Refusal", code: "open", message, field: null } });
+      await rowButton("FL-0001");
+      takeAll();
+      await screen.findByText("None open");
+      fireEvent.change(screen.getByLabelText("Name of the table"), { target: { value: "Wings" } });
+      fireEvent.click(saveButton());
+      expect(await screen.findByText(message)).toBeInTheDocument();
+      expect(router.replace).not.toHaveBeenCalled();
+      expect(screen.getByLabelText("Name of the table")).toHaveValue("Wings");
+    });
+  }
+
+  it("brings the record it was opened for into view", async () => {
     const scrolled = jest.fn();
     Element.prototype.scrollIntoView = function (this: Element) {
       scrolled(this.textContent);
     };
     build({ params: { with: "FL-0002" } });
-    await box("FL-0002");
+    await rowButton("FL-0002");
     expect(scrolled).toHaveBeenCalledWith(expect.stringContaining("Paper of FL-0002"));
     expect(screen.queryByText(/does not match/)).not.toBeInTheDocument();
   });
@@ -208,9 +316,8 @@ describe.each(WIDTHS)("the builder at %i points", (width) => {
   });
 
   it("can be tried by anybody; saving asks to sign in", async () => {
-    build({ roles: null });
-    expect(await box("FL-0001")).toBeChecked();
-    expect(screen.getByRole("link", { name: "Sign in to save" })).toBeInTheDocument();
+    build({ roles: null, params: wide ? {} : { step: "save" } });
+    expect(await screen.findByRole("link", { name: "Sign in to save" })).toBeInTheDocument();
     expect(screen.queryByRole("button", { name: "Save the table" })).not.toBeInTheDocument();
   });
 
@@ -227,6 +334,23 @@ describe.each(WIDTHS)("a saved table at %i points", (width) => {
     name: "Wings",
     owner: "Vask, Inna",
     ownedByMe,
+    visibility: "public",
+    notify: false,
+    version: 0,
+    release: null,
+    adaptedFrom: null,
+    methods: null,
+    decisions: [],
+    mixtures: [],
+    sets: [],
+    versions: [],
+    rowsSince: [],
+    files: ["csv", "json", "bib"].map((kind) => ({
+      __typename: "TableFileMark",
+      kind,
+      name: { csv: "CSV", json: "JSON", bib: "BibTeX" }[kind],
+      path: `/api/tables/abc234def567.${kind}`,
+    })),
     createdAt: "2026-11-20T09:00:00Z",
     filter: "All constraints",
     digest: "ab12".repeat(16),
@@ -234,21 +358,9 @@ describe.each(WIDTHS)("a saved table at %i points", (width) => {
     rowsOut: 1,
     lastEvent: { __typename: "EventMark", sequence: 7, digest: "cd", at: "2026-11-20T08:00:00Z" },
     rows: [
-      { __typename: "TableRow", number: "FL-0001", included: true, reason: null, proposed: true },
-      {
-        __typename: "TableRow",
-        number: "FL-0002",
-        included: false,
-        reason: "I trust it less",
-        proposed: false,
-      },
-      {
-        __typename: "TableRow",
-        number: "FL-0003",
-        included: true,
-        reason: "Disjoint halves",
-        proposed: false,
-      },
+      settled("FL-0001"),
+      settled("FL-0002", { included: false, reason: "I trust it less", proposed: false }),
+      settled("FL-0003", { reason: "Disjoint halves", proposed: false }),
     ],
     constraints: ROWS,
   });
@@ -259,7 +371,10 @@ describe.each(WIDTHS)("a saved table at %i points", (width) => {
       roles: [],
       mocks: [
         {
-          request: { query: TableBySlugDocument, variables: { slug: "abc234def567" } },
+          request: {
+            query: TableBySlugDocument,
+            variables: { slug: "abc234def567", version: null },
+          },
           result: { data: { fittingTable: table } },
           ...endless,
         } as unknown as MockedResponse,
@@ -288,7 +403,7 @@ describe.each(WIDTHS)("a saved table at %i points", (width) => {
     for (const [label, kind] of [
       ["CSV", "csv"],
       ["JSON", "json"],
-      [".bib", "bib"],
+      ["BibTeX", "bib"],
     ] as const) {
       expect(await screen.findByRole("link", { name: label })).toHaveAttribute(
         "href",
@@ -310,7 +425,7 @@ describe.each(WIDTHS)("a saved table at %i points", (width) => {
 });
 
 it("the list of tables says how to make the first one", async () => {
-  show(<TablesScreen />, { width: 390, roles: null, mocks: [tables()] });
+  show(<TablesScreen />, { width: 390, roles: null, mocks: [tables(), releases()] });
   expect(await screen.findByText("No fitting table yet")).toBeInTheDocument();
   expect(screen.getByRole("link", { name: "Build the first one" })).toHaveAttribute(
     "href",
