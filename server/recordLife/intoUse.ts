@@ -1,6 +1,7 @@
 import { IsNull, type EntityManager } from "typeorm";
 
 import type { Refusal } from "~server/common/outcomes";
+import { refuseSecondPreferred } from "~server/constraint/alternatives";
 import { Constraint } from "~server/constraint/constraint.entity";
 import { passRelationGate, linksIn, refuseLinks } from "~server/constraint/links";
 import type { Revision } from "~server/constraint/revision.entity";
@@ -26,6 +27,8 @@ export async function refuseIntoUse(
 ): Promise<Refusal | null> {
   const { manager } = here;
   await passRelationGate(manager);
+  const second = await refuseSecondPreferred(manager, revision);
+  if (second) return second;
   const record = { id: revision.constraintId, fields: revision.fields };
   const linked = await refuseLinks(manager, who.viewer, record, "approval", who.now);
   if (linked) return linked;

@@ -1,8 +1,14 @@
+import type { Revision } from "~server/constraint/revision.entity";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 import { correlatedSet } from "~shared/likelihood/correlatedSet";
 import type { ConstraintFields } from "~shared/statement/fields";
 
-import { buildApproved, buildCitation } from "../../factories/constraint";
+import {
+  approveAs,
+  buildApproved,
+  buildCitation,
+  buildSubmission,
+} from "../../factories/constraint";
 import { pairReading, setsOf } from "../correlatedSet/sets";
 import { deskOf } from "../review/desk";
 import { startTestServer, type TestServer } from "../support/harness";
@@ -167,6 +173,24 @@ describe("records that hang together", () => {
         code: "findings",
         message: expect.stringContaining(`${numbers[1]} is the preferred answer`),
       });
+    });
+
+    it("takes no second preferred one that was submitted beside the first, either", async () => {
+      const paper = await buildCitation(server.dataSource, contributor.user, { title: "Sidelong" });
+      const pair: Revision[] = [];
+      for (const value of ["0.31", "0.47"]) {
+        const fields = {
+          value,
+          dataUsed: ["Sidelong field"],
+          alternativesGroup: "side",
+          alternativesPreferred: true,
+        };
+        pair.push(await buildSubmission(server.dataSource, contributor.user, fields, paper));
+      }
+      await approveAs(server.dataSource, editor.user, pair[0]!);
+      await expect(approveAs(server.dataSource, editor.user, pair[1]!)).rejects.toThrow(
+        /^preferredTwice: FL-\d+ is the preferred answer of this group/,
+      );
     });
 
     it("enters a table by one of them or as their equal mixture, never multiplied", async () => {
