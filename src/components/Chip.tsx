@@ -52,7 +52,9 @@ export function Chip({
         {onRemove ? <Icon name="close" size={18} color={colors.ink} /> : null}
         {icon ? <Icon name={icon} size={18} color={colors.ink} /> : null}
         {glyph}
-        <Label numberOfLines={1}>{label}</Label>
+        <Label numberOfLines={2} style={styles.label}>
+          {label}
+        </Label>
         {count === undefined ? null : (
           <Label muted style={styles.count}>
             {count}
@@ -67,7 +69,12 @@ export function Chip({
 }
 
 const styles = StyleSheet.create({
-  target: { minHeight: target, justifyContent: "center", borderRadius: radius.chip },
+  target: {
+    minHeight: target,
+    maxWidth: "100%",
+    justifyContent: "center",
+    borderRadius: radius.chip,
+  },
   chip: {
     minHeight: 32,
     borderRadius: radius.chip,
@@ -77,5 +84,6 @@ const styles = StyleSheet.create({
     gap: space.xs,
     paddingHorizontal: space.s,
   },
+  label: { flexShrink: 1 },
   count: { fontWeight: "400" },
 });

@@ -14,8 +14,11 @@ export function Choice({
   error,
   hint,
   placeholder = "Choose",
+  spokenLabel,
 }: {
   label: string;
+  /** Name heard and looked for, where the label stands beside what it is about; begins with it. */
+  spokenLabel?: string;
   value: string | null;
   options: readonly { value: string; label: string }[];
   onChange: (value: string | null) => void;
@@ -34,6 +37,7 @@ export function Choice({
         onChange={(event) => onChange(event.target.value === "" ? null : event.target.value)}
         onFocus={() => setFocused(true)}
         onBlur={() => setFocused(false)}
+        aria-label={spokenLabel}
         aria-invalid={error ? true : undefined}
         aria-describedby={error || hint ? `${id}-about` : undefined}
         style={{

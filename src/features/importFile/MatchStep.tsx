@@ -92,7 +92,8 @@ export function MatchStep({
                       style={{ flex: phone ? undefined : 1, maxWidth: phone ? undefined : 420 }}
                     >
                       <Choice
-                        label={`Meaning of ${word.word}`}
+                        label="Meaning"
+                        spokenLabel={`Meaning of ${word.word}`}
                         value={valueOf(match, word)}
                         options={optionsOf(word)}
                         placeholder="Leave it open"

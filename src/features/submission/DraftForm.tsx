@@ -217,7 +217,15 @@ export function DraftForm({ submission }: { submission: SubmissionPartsFragment 
   const wide = layout === "wide";
   const preview = step === "printed" || step === "method";
   const nav = (
-    <View style={{ flexDirection: "row", alignItems: "center", gap: 12 }}>
+    <View
+      style={{
+        flexDirection: "row",
+        flexWrap: "wrap",
+        alignItems: "center",
+        justifyContent: "flex-end",
+        gap: 12,
+      }}
+    >
       {back ? <Button kind="outline" label="Back" onPress={() => go(back)} /> : null}
       <View style={{ flex: 1, alignItems: "center" }}>
         <SaveLine save={save} />

@@ -25,9 +25,17 @@ export function MethodStep({
     if (present.length === 0) return null;
     return (
       <View style={{ gap: 4 }}>
-        <View style={{ flexDirection: "row", gap: 12, alignItems: "flex-start" }}>
+        <View
+          style={{
+            flexDirection: "row",
+            flexWrap: "wrap",
+            columnGap: 12,
+            alignItems: "flex-start",
+          }}
+        >
           {present.map(([name, label, hint]) => (
-            <View key={name} style={{ flex: 1, minWidth: 0 }}>
+            // Two of them stand side by side from a common phone on, one below the other before.
+            <View key={name} style={{ flexGrow: 1, flexShrink: 1, flexBasis: 160, minWidth: 0 }}>
               <FieldInput
                 name={name}
                 fields={fields}
