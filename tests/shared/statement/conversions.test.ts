@@ -169,6 +169,59 @@ describe("every conversion is told in words", () => {
   });
 });
 
+describe("a curve", () => {
+  /** x from 0.00 to 0.40 in 21 rows; the first `zeros` of them are zero. */
+  const table = (zeros: number): string =>
+    Array.from(
+      { length: 21 },
+      (_, i) => `${(i / 50).toFixed(2)},${i < zeros ? 0 : 1 + (i % 10)}`,
+    ).join("\n");
+  const curve = (changes: Changes): Changes =>
+    plain({
+      kind: "curve",
+      value: null,
+      plus: null,
+      minus: null,
+      curveTable: table(0),
+      curveColumn: "density",
+      ...changes,
+    });
+  const text = (changes: Changes) => steps(curve(changes)).find(([code]) => code === "curve")?.[1];
+
+  it("is told with its column, its rows and what is left out", () => {
+    expect(text({})).toBe(
+      "Curve: the density, read as L, is used over its highest value, ln L linear between 21 rows; nothing is allowed beyond its ends.",
+    );
+    expect(text({ curveColumn: "lnLikelihood" })).toBe(
+      "Curve: ln L is used over its highest value, ln L linear between 21 rows; nothing is allowed beyond its ends.",
+    );
+    expect(text({ curveTable: table(1) })).toMatch(
+      /between 20 rows; nothing is allowed beyond its ends\. One row of zero at an end is left out\.$/,
+    );
+    expect(text({ curveTable: table(3) })).toMatch(/ 3 rows of zero at the ends are left out\.$/);
+    const log = table(0)
+      .split("\n")
+      .map((line) => `-${line}`)
+      .join("\n");
+    expect(text({ scale: "log10", curveTable: log })).toContain(
+      "between 21 rows in log10; nothing",
+    );
+    expect(text({ curveTable: null })).toBeUndefined();
+  });
+
+  it("has one-sigma equivalents of the interval quoted beside it only", () => {
+    expect(used(curve({ level: "percent90" }))).toMatchObject({
+      sigmaMinus: null,
+      sigmaPlus: null,
+    });
+    expect(steps(curve({ level: "percent90" })).map(([code]) => code)).toEqual(["curve"]);
+    expect(steps(curve({ level: "notStated" })).map(([code]) => code)).toEqual(["curve"]);
+    const quoted = curve({ value: "0.2", plus: "0.1", minus: "0.05", level: "percent90" });
+    expect(used(quoted).sigmaPlus).toBeCloseTo(0.1 / 1.6448536269514722, 12);
+    expect(steps(quoted).map(([code]) => code)).toEqual(["curve", "oneSigma"]);
+  });
+});
+
 describe("what is derived", () => {
   const flags = (changes: Changes): boolean[] => {
     const { derived, valueDerived, sigmaDerived } = used(changes);
