@@ -4,6 +4,7 @@ import { space } from "@/theme/tokens";
 import { Chip } from "./Chip";
 import { Field } from "./Field";
 import { IconButton } from "./Button";
+import { web } from "./web";
 
 /** Several words, each a chip: Enter or the separator adds what is typed, a press takes one out. */
 export function TagField({
@@ -63,7 +64,19 @@ export function TagField({
     )
     .slice(0, 8);
   return (
-    <View role="group" aria-labelledby={groupId} style={styles.all}>
+    <View
+      role="group"
+      aria-labelledby={groupId}
+      style={styles.all}
+      {...web({
+        // Nothing typed is lost by going on; going to a suggestion is no going on.
+        onBlur: (event: FocusEvent) => {
+          const group = event.currentTarget as Element;
+          const inside = event.relatedTarget instanceof Node && group.contains(event.relatedTarget);
+          if (!inside && typed.trim() !== "") add(typed);
+        },
+      })}
+    >
       <View style={styles.entry}>
         <View style={styles.field}>
           <Field
@@ -73,7 +86,6 @@ export function TagField({
               separator !== null && text.includes(separator) ? add(text) : setTyped(text)
             }
             onSubmit={() => add(typed)}
-            onBlur={() => typed.trim() !== "" && add(typed)}
             hint={hint}
             error={error}
           />
@@ -94,7 +106,13 @@ export function TagField({
         </View>
       ) : null}
       {offered.length > 0 ? (
-        <View style={styles.chips} aria-label={`Suggestions for ${label}`} role="group">
+        <View
+          style={styles.chips}
+          aria-label={`Suggestions for ${label}`}
+          role="group"
+          // The field keeps the focus while one is pressed, or it would take the half-typed word.
+          {...web({ onMouseDown: (event: MouseEvent) => event.preventDefault() })}
+        >
           {offered.map((value) => (
             <Chip key={value} label={reads(value)} icon="plus" onPress={() => add(value)} />
           ))}
