@@ -4,6 +4,7 @@ import Papa from "papaparse";
 import { familiesOf } from "~shared/methods/vocabulary";
 import { asUsed } from "~shared/statement/asUsed";
 import type { AsUsed } from "~shared/statement/asUsed";
+import { curveFacts } from "~shared/statement/curve";
 
 import {
   commentLine,
@@ -95,6 +96,19 @@ export const CONSTRAINT_COLUMNS: readonly Column<ExportRow>[] = [
   { name: "printed_band_low", meaning: "Low end of a band", cell: (row) => row.fields.bandLow },
   { name: "printed_band_high", meaning: "High end of a band", cell: (row) => row.fields.bandHigh },
   {
+    name: "printed_curve_rows",
+    meaning: "Rows of a tabulated curve; the rows themselves are a file of the record",
+    cell: ({ fields }) => {
+      const facts = curveFacts(fields.curveTable, fields.curveColumn);
+      return facts === null ? null : Number(facts.rows);
+    },
+  },
+  {
+    name: "printed_curve_column",
+    meaning: "What its second column holds: density or lnLikelihood",
+    cell: (row) => row.fields.curveColumn,
+  },
+  {
     name: "printed_fraction",
     meaning: "Fraction of a redshift at a fraction",
     cell: (row) => row.fields.fraction,
@@ -110,6 +124,21 @@ export const CONSTRAINT_COLUMNS: readonly Column<ExportRow>[] = [
     cell: (row) => row.fields.fractionTo,
   },
   { name: "duration_unit", meaning: "redshift or myr", cell: (row) => row.fields.durationUnit },
+  {
+    name: "history_assumed",
+    meaning: "History family an optical depth or duration was derived with",
+    cell: (row) => row.fields.historyAssumed,
+  },
+  {
+    name: "helium_assumed",
+    meaning: "How helium was treated in an optical depth",
+    cell: (row) => row.fields.heliumAssumed,
+  },
+  {
+    name: "truncation_assumed",
+    meaning: "Where the history or the integral was cut off",
+    cell: (row) => row.fields.truncationAssumed,
+  },
   { name: "printed_text", meaning: "Exact printed text", cell: (row) => row.fields.printedText },
   {
     name: "used_kind",

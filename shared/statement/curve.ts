@@ -280,6 +280,23 @@ export function curveNodes(fields: ConstraintFields): CurveNodes | null {
   return nodes.x.every((place, i) => i === 0 || place > nodes.x[i - 1]!) ? nodes : null;
 }
 
+/** The node as used of each line of the text that has one; rows of zero density at the ends have none. */
+export function nodesByLine(
+  fields: ConstraintFields,
+): ReadonlyMap<number, { x: number; p: number }> {
+  const nodes = curveNodes(fields);
+  const rows = keptRows(fields)?.rows ?? [];
+  if (nodes === null) return new Map();
+  const last = rows.length - 1;
+  const turned = rows.length > 0 && nodes.x[0] !== placeAsUsed(fields, rows[0]!.value);
+  return new Map(
+    rows.map(({ line }, i) => {
+      const at = turned ? last - i : i;
+      return [line, { x: nodes.x[at]!, p: nodes.p[at]! }];
+    }),
+  );
+}
+
 /** One place of the curve in the registry's convention; decimal as long as nothing is computed. */
 function placeAsUsed(fields: ConstraintFields, printed: Big): number | null {
   if (fields.quantity !== "neutralFraction") return printed.toNumber();

@@ -103,6 +103,14 @@ export function RecordView({ record }: { record: RecordData }) {
           <View style={[styles.part, columns && styles.third]}>
             <Block>Likelihood</Block>
             <StatementCurve fields={fields} />
+            {fields.kind === "curve" && used?.curve ? (
+              <Button
+                label="Curve as CSV"
+                kind="text"
+                icon="tray-arrow-down"
+                href={`/api/constraints/${record.number}/curve.csv`}
+              />
+            ) : null}
           </View>
         </View>
       </Card>

@@ -81,6 +81,7 @@ describe("blindness", () => {
         "/api/log.csv",
         "/api/log.jsonl",
         ...records.map((id) => `/api/constraints/${formatRecordNumber(id)}.bib`),
+        ...records.map((id) => `/api/constraints/${formatRecordNumber(id)}/curve.csv`),
         ...slugs.flatMap((slug) =>
           ["csv", "json", "bib"].map((end) => `/api/tables/${slug}.${end}`),
         ),

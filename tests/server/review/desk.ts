@@ -1,3 +1,4 @@
+import type { ReadingContent } from "~shared/review/reading";
 import type { ConstraintFields } from "~shared/statement/fields";
 import { FIELD_NAMES_IN_ORDER } from "~server/constraint/fields.type";
 
@@ -115,15 +116,15 @@ export function deskOf(server: TestServer, agent: Agent) {
       ),
     release: (id: string) =>
       call(`mutation ($id: ID!) { releaseClaim(id: $id) { ${DONE} } }`, { id }),
-    read: (id: string, reading: Partial<ConstraintFields>) =>
+    read: (id: string, reading: Partial<ReadingContent>) =>
       call(
-        `mutation ($id: ID!, $reading: ConstraintFieldsInput!) {
+        `mutation ($id: ID!, $reading: ReadingInput!) {
           storeReading(id: $id, reading: $reading) { ${REVIEW_RESULT} } }`,
         { id, reading },
       ),
-    correct: (id: string, field: string, reading: Partial<ConstraintFields>, why: string) =>
+    correct: (id: string, field: string, reading: Partial<ReadingContent>, why: string) =>
       call(
-        `mutation ($id: ID!, $field: String!, $reading: ConstraintFieldsInput!, $why: String!) {
+        `mutation ($id: ID!, $field: String!, $reading: ReadingInput!, $why: String!) {
           correctReading(id: $id, field: $field, reading: $reading, why: $why) { ${REVIEW_RESULT} } }`,
         { id, field, reading, why },
       ),
