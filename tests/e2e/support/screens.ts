@@ -269,21 +269,79 @@ const NOBODY: Situation[] = [
     who: "nobody",
     name: "table builder",
     async go(page) {
-      await visit(page, "/tables/new?family=dampingWing&z=6-8&with=FL-0002", "New table");
+      await visit(page, "/tables/new?family=dampingWing&z=6-8&with=FL-0002&step=rows", "New table");
+      await button(page, /^.*, (in|out)$/)
+        .first()
+        .waitFor();
+    },
+  },
+  {
+    who: "nobody",
+    name: "table builder, a row's sheet",
+    async go(page) {
+      await button(page, /^.*, in$/)
+        .first()
+        .click();
+      await dialog(page).waitFor();
+      await shown(page, "In the table");
+      await button(dialog(page), "Take it out").click();
+      await entry(page, "Why it is taken out").waitFor();
+    },
+  },
+  {
+    who: "nobody",
+    name: "table builder, decisions",
+    async go(page) {
+      await visit(page, "/tables/new?step=decisions", "New table");
+      await page.getByRole("radio").first().waitFor();
+      await page
+        .getByRole("radio", { name: /, with a reason$/ })
+        .first()
+        .check();
+      await entry(page, "Why, in a few words").waitFor();
+    },
+  },
+  {
+    who: "nobody",
+    name: "table builder, no row",
+    async go(page) {
+      await visit(page, "/tables/new?z=40-50&step=rows", "New table");
+      await shown(page, "No row matches");
+    },
+  },
+  {
+    who: "nobody",
+    name: "table builder, save",
+    async go(page) {
+      await visit(page, "/tables/new?step=save", "New table");
       await link(page, "Sign in to save").waitFor();
     },
   },
   {
     who: "nobody",
-    name: "table builder, filter open",
-    async go(page, size) {
-      if (size === "phone") {
-        await button(page, "Filter").click();
-        await dialog(page).waitFor();
-      } else {
-        await visit(page, "/tables/new?z=40-50", "New table");
-        await shown(page, "No row matches");
-      }
+    name: "release",
+    async go(page) {
+      await visit(page, "/releases/2", "Release 2");
+      await shown(page, "Cite it");
+      await shown(page, "Difference");
+    },
+  },
+  {
+    who: "nobody",
+    name: "table with decisions",
+    async go(page) {
+      await visit(page, "/tables", "Tables");
+      await link(page, /^Everything that says how late/).click();
+      await heading(page, "Everything that says how late").waitFor();
+      await shown(page, "What would change");
+    },
+  },
+  {
+    who: "nobody",
+    name: "release that does not exist",
+    async go(page) {
+      await visit(page, "/releases/99", "Release 99");
+      await shown(page, "No release of this number");
     },
   },
   ...(
@@ -352,6 +410,14 @@ const NOBODY: Situation[] = [
       await visit(page, "/account/confirm?token=worn-out", "Confirm your address");
       await button(page, "Confirm my address").click();
       await page.getByRole("alert").waitFor();
+    },
+  },
+  {
+    who: "nobody",
+    name: "author's link that opens nothing",
+    async go(page) {
+      await visit(page, "/check/made-up", "Check of a record");
+      await shown(page, "This link opens nothing");
     },
   },
 ];
@@ -688,6 +754,22 @@ const CONTRIBUTOR: Situation[] = [
       await button(page, "Go to the comment at Minus").waitFor();
     },
   },
+  {
+    who: "contributor",
+    name: "my constraints, searched",
+    async go(page) {
+      await visit(page, "/desk/mine?show=approved", "My constraints");
+      await page.getByRole("list", { name: "Approved" }).waitFor();
+    },
+  },
+  {
+    who: "contributor",
+    name: "my constraints, none found",
+    async go(page) {
+      await entry(page, "Search by paper, number, place, method or data").fill("no such paper");
+      await shown(page, "None of yours is like this");
+    },
+  },
 ];
 
 const EDITOR: Situation[] = [
@@ -758,6 +840,62 @@ const EDITOR: Situation[] = [
       await button(page, "Return to contributor").click();
       await button(dialog(page), "Return it").click();
       await link(page, "To the queue").waitFor();
+    },
+  },
+  {
+    who: "editor",
+    name: "queue",
+    async go(page) {
+      await visit(page, "/desk/queue", "Queue");
+      await page.getByRole("list", { name: "Submissions" }).waitFor();
+    },
+  },
+  {
+    who: "editor",
+    name: "queue, none found",
+    async go(page) {
+      await entry(page, "Search by author, title, number or place").fill("no such paper");
+      await shown(page, "No submission is like this");
+    },
+  },
+  {
+    who: "editor",
+    name: "second reading, handing over",
+    async go(page) {
+      await visit(page, "/desk", "Desk");
+      await page.getByRole("list", { name: "Claimed by me" }).getByRole("link").first().click();
+      await button(page, "Hand over").click();
+      await dialog(page).getByRole("radio").first().waitFor();
+    },
+  },
+  {
+    who: "editor",
+    name: "author checks",
+    async go(page) {
+      await visit(page, "/desk/author-checks", "Author checks");
+      await page.getByRole("list", { name: "Answered and ended" }).waitFor();
+    },
+  },
+  {
+    who: "editor",
+    name: "author check",
+    async go(page) {
+      await page
+        .getByRole("list", { name: "Answered and ended" })
+        .getByRole("link")
+        .first()
+        .click();
+      await heading(page, "Author check").waitFor();
+      await page.getByRole("list", { name: "Answers" }).waitFor();
+    },
+  },
+  {
+    who: "editor",
+    name: "record, asking an author",
+    async go(page) {
+      await visit(page, "/constraints/FL-0002", "FL-0002");
+      await button(page, "Ask an author of the paper").click();
+      await entry(page, "Author's name").waitFor();
     },
   },
 ];
@@ -851,7 +989,7 @@ const EMPTY: Situation[] = (
     ["history", "/", "History", "No approved constraint yet"],
     ["constraints", "/constraints", "Constraints", "No constraint yet"],
     ["tables", "/tables", "Tables", "No fitting table yet"],
-    ["table builder", "/tables/new", "New table", "No row matches"],
+    ["table builder", "/tables/new?step=rows", "New table", "No row matches"],
     ["desk", "/desk", "Desk", "Nothing waits"],
     ["people", "/desk/people", "People", "Sunniva Kelterborn"],
     ["mail", "/desk/mail", "Caught mail", "Mails go out here"],
