@@ -5,6 +5,7 @@ import { text } from "node:stream/consumers";
 import { readConfig } from "~server/config/config";
 import { createDataSource } from "~server/database/dataSource";
 import { connectDatabase } from "~server/database/prepare";
+import { verifyEvidence } from "~server/evidence/verifyEvidence";
 
 import type { Anchor } from "./anchors";
 import { verifyLog } from "./verifyLog";
@@ -19,8 +20,10 @@ async function main(): Promise<void> {
   try {
     await connectDatabase(dataSource);
     const { holds, lines } = await verifyLog(dataSource.manager, anchors);
-    process.stdout.write(`${lines.join("\n")}\n`);
-    if (!holds) process.exitCode = 1;
+    const { files, problems } = await verifyEvidence(dataSource.manager);
+    if (files > 0 && problems.length === 0) lines.push(`The evidence holds: ${files} files.`);
+    process.stdout.write(`${[...lines, ...problems].join("\n")}\n`);
+    if (!holds || problems.length > 0) process.exitCode = 1;
   } finally {
     if (dataSource.isInitialized) await dataSource.destroy();
   }

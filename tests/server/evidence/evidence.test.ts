@@ -10,6 +10,7 @@ import {
   saveDraft,
   submitDraft,
 } from "~server/constraint/draft.service";
+import { verifyEvidence } from "~server/evidence/verifyEvidence";
 import { claim, releaseClaim, storeReading } from "~server/review/review.service";
 import type { Revision } from "~server/constraint/revision.entity";
 import { formatQuotable, formatRecordNumber } from "~shared/identifiers/recordNumber";
@@ -364,6 +365,47 @@ describe("an attached file", () => {
       [body.digest],
     );
     expect((await download(owner.agent, body.id)).status).toBe(500);
+  });
+});
+
+describe("the proof of the evidence", () => {
+  it("holds for what was kept, and names changed bytes and files taken off a submission", async () => {
+    const own = await startTestServer();
+    try {
+      const { manager } = own.dataSource;
+      const person = await own.signedIn(["contributor"]);
+      const draft = await draftOf(person, own);
+      const { body } = await post(person.agent, draft.id, CSV);
+      await post(person.agent, draft.id, pdf(), { name: "a.pdf" });
+      await send(own.dataSource, person.user, draft);
+      // A draft's file is nobody's claim yet.
+      await post(person.agent, (await draftOf(person, own)).id, png(), { name: "a.png" });
+      expect(await verifyEvidence(manager)).toEqual({ files: 3, problems: [] });
+
+      const change = (byte: string) =>
+        manager.query("UPDATE evidence_chunk SET data = INSERT(data, 3, 1, ?) WHERE digest = ?", [
+          byte,
+          body.digest,
+        ]);
+      await change("y");
+      expect((await verifyEvidence(manager)).problems).toEqual([
+        `The bytes of evidence ${body.digest} are not those that were kept.`,
+      ]);
+      await change("x");
+      expect((await verifyEvidence(manager)).problems).toEqual([]);
+
+      await manager.delete(Evidence, { id: body.id });
+      const number = formatQuotable(draft.constraintId, 1);
+      expect((await verifyEvidence(manager)).problems).toEqual([
+        expect.stringMatching(
+          new RegExp(
+            `^Event \\d+: ${number} does not keep the evidence with which it was submitted`,
+          ),
+        ),
+      ]);
+    } finally {
+      await own.stop();
+    }
   });
 });
 
