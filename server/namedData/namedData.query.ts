@@ -11,7 +11,7 @@ import { dataLink, namedDataType, type DataLink, type NamedDataType } from "./na
 import { keptDataOnce, type KeptData } from "./register";
 
 /** Entries handed out at once. */
-export const MOST_ENTRIES = 2000;
+const MOST_ENTRIES = 2000;
 
 /** Record numbers by the id of a thing they name, as far as this viewer may see them. */
 const usersOnce = perRequest(async (ctx: RequestContext): Promise<Map<number, Set<number>>> => {

@@ -6,17 +6,14 @@ import { Revision } from "~server/constraint/revision.entity";
 import type { Acting, Change } from "~server/event/acting";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 
-export interface HeldTable {
+interface HeldTable {
   slug: string;
   name: string;
   ownerId: string;
 }
 
 /** Saved fitting tables whose newest version takes a record in. */
-export async function tablesWith(
-  manager: EntityManager,
-  constraintId: number,
-): Promise<HeldTable[]> {
+async function tablesWith(manager: EntityManager, constraintId: number): Promise<HeldTable[]> {
   return manager.query(
     `SELECT saved.slug AS slug, saved.name AS name, saved.ownerId AS ownerId
        FROM fitting_table saved
