@@ -18,6 +18,7 @@ import {
 } from "./browser";
 import { DEMONSTRATION_PASSWORD, startFogline, type Fogline } from "./fogline";
 import { ask, newcomer } from "./people";
+import { SET_SCREENS } from "./setScreens";
 import { button, chooseMethod, entry, heading, link, typeStatement, visit } from "./steps";
 
 /** Who looks: a person of the demonstration, nobody, or somebody with every role in an empty registry. */
@@ -893,7 +894,7 @@ const EDITOR: Situation[] = [
     who: "editor",
     name: "record, asking an author",
     async go(page) {
-      await visit(page, "/constraints/FL-0002", "FL-0002");
+      await visit(page, "/constraints/FL-0002", "Constraint");
       await button(page, "Ask an author of the paper").click();
       await entry(page, "Author's name").waitFor();
     },
@@ -1012,6 +1013,7 @@ const SITUATIONS = [
   ...CONTRIBUTOR,
   EVIDENCE_REFUSED,
   ...EDITOR,
+  ...SET_SCREENS,
   ...MAINTAINER,
   ...EMPTY,
 ];
