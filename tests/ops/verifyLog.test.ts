@@ -40,6 +40,7 @@ it("holds the log of the demonstration against a backup, told of it or remembere
   const remembered = verifyLog("data");
   expect(remembered).toEqual({ code: 0, output: expect.stringContaining("The event log holds: ") });
   expect(remembered.output).toContain(`in ${backup} (event ${last?.sequence})`);
+  expect(remembered.output).toMatch(/The evidence holds: \d+ files\./);
   const told = verifyLog("elsewhere", "--against", backup);
   expect(told.code).toBe(0);
   expect(told.output).toContain(`in ${backup} (event ${last?.sequence})`);
