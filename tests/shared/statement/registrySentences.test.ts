@@ -1,3 +1,4 @@
+import { alternativesFindings } from "~shared/statement/alternatives";
 import type { ConstraintFields } from "~shared/statement/fields";
 import { type Finding, type Neighbour, registryFindings } from "~shared/statement/rules";
 
@@ -98,6 +99,47 @@ describe("a record beside its neighbours", () => {
   });
 });
 
+describe("alternatives", () => {
+  const said = (changes: Changes, ...neighbours: Neighbour[]): Finding[] =>
+    alternativesFindings(buildFields(changes), neighbours);
+  const group = { alternativesGroup: "A" } as const;
+
+  it("are told what is missing, doubled or alone", () => {
+    expect(said({ alternativesPreferred: true })).toEqual([
+      {
+        grade: "error",
+        code: "preferredWithoutGroup",
+        fields: ["alternativesGroup", "alternativesPreferred"],
+        message:
+          "Preferred among which alternatives? Give the group its label, the same in each of them.",
+      },
+    ]);
+    const preferred = { ...group, alternativesPreferred: true };
+    expect(said(preferred, neighbour(preferred, same))).toEqual([
+      {
+        grade: "error",
+        code: "preferredTwice",
+        fields: ["alternativesPreferred"],
+        message:
+          "FL-0007 is the preferred answer of this group already. The authors prefer one at most: look which of them it is.",
+      },
+    ]);
+    const alone: Finding[] = [
+      {
+        grade: "note",
+        code: "groupOfOne",
+        fields: ["alternativesGroup"],
+        message:
+          "No other approved record of this paper is in this group yet. Use the same label in each of them.",
+      },
+    ];
+    expect(said(group)).toEqual(alone);
+    expect(said(group, neighbour({ alternativesGroup: "B" }, same))).toEqual(alone);
+    expect(said(group, neighbour(group))).toEqual(alone);
+    expect(said(group, neighbour(group, same))).toEqual([]);
+  });
+});
+
 describe("numbers are nearly the same", () => {
   const alike = (own: Changes, other: Changes): boolean =>
     codes(own, neighbour(other)).includes("nearDuplicate.FL-0007");
@@ -171,6 +213,14 @@ describe("a 95 % width like the 68 % ones around it", () => {
           "The half-width 0.200 is entered at 95 %, yet the 68 % half-widths of Galaxy damping wing nearby have a median of 0.180 (FL-0001, FL-0002, FL-0003). Look whether the paper's level is 68 %.",
       },
     ]);
+  });
+
+  it("beside an odd number of them takes the middle one", () => {
+    // 0.10, 0.20, 0.40: within 30 % of 0.20, not of a mean.
+    const list = others([{ plus: "0.10", minus: "0.10" }, {}, { plus: "0.40", minus: "0.40" }]);
+    expect(asked(wide("0.25"), list)).toBe(true);
+    expect(asked(wide("0.28"), list)).toBe(false);
+    expect(asked(wide("0.15"), list)).toBe(true);
   });
 
   it("within 30 % of their median, of two or more", () => {
