@@ -12,7 +12,7 @@ import {
 } from "~server/release/release.entity";
 import { findRelease } from "~server/release/release.service";
 import { citedRelease, releaseAddress } from "~server/release/release.type";
-import { setNumbersReadBlind } from "~server/correlatedSet/tableSets";
+import { setNumbersReadBlind } from "~server/correlatedSet/readBlind";
 import { recordsReadBlind } from "~server/review/blindness";
 import type { RouteInstaller, RouteParts } from "~server/routes";
 import { byteByByte, fieldWidths } from "~shared/formats/columnFile/byteByByte";

@@ -2,7 +2,7 @@ import type { EntityManager } from "typeorm";
 
 import { refuse, Refusal } from "~server/common/outcomes";
 import type { ViewerIdentity } from "~server/common/context";
-import { setNumbersReadBlind } from "~server/correlatedSet/tableSets";
+import { setNumbersReadBlind } from "~server/correlatedSet/readBlind";
 import { Release, releaseSurroundings } from "~server/release/release.entity";
 import { recordsReadBlind } from "~server/review/blindness";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";

@@ -12,7 +12,7 @@ import { isDemonstration } from "~server/database/settings";
 import { REGISTRY } from "~server/download/header";
 import { change, type Acting } from "~server/event/acting";
 import { lastEvent } from "~server/event/eventLog";
-import { setNumbersReadBlind } from "~server/correlatedSet/tableSets";
+import { setNumbersReadBlind } from "~server/correlatedSet/readBlind";
 import { recordsReadBlind } from "~server/review/blindness";
 import { canonicalFilter } from "~shared/filter/address";
 import { filterWords } from "~shared/filter/describe";

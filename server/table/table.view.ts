@@ -2,7 +2,7 @@
 import { In, IsNull, type EntityManager } from "typeorm";
 
 import type { RequestContext } from "~server/common/context";
-import { setNumbersReadBlind } from "~server/correlatedSet/tableSets";
+import { setNumbersReadBlind } from "~server/correlatedSet/readBlind";
 import { recordsReadBlind } from "~server/review/blindness";
 import { choosableForms } from "~shared/table/choosableForms";
 import { rowLikelihood } from "~shared/likelihood";

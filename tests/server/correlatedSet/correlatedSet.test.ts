@@ -1,6 +1,5 @@
 import { EventRecord } from "~server/event/event.entity";
 import { verifyChain } from "~server/event/eventLog";
-import { setsInUse } from "~server/correlatedSet/tableSets";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 import { correlatedSet } from "~shared/likelihood/correlatedSet";
 import type { ConstraintFields } from "~shared/statement/fields";
@@ -131,8 +130,8 @@ describe("a correlated set", () => {
   it("gives χ² 1.25 to two bins that lie one sigma high at ρ 0.6 (PHYSICS.md, worked values)", async () => {
     const who = await people();
     await approved(who);
-    const [set] = await setsInUse({ database: server.dataSource, viewer: null });
-    expect(correlatedSet(set!.rho).chiSquared([1, 1])).toBeCloseTo(1.25, 12);
+    const [set] = await setsOf(server, server.agent()).inUse();
+    expect(correlatedSet(set.usedRho).chiSquared([1, 1])).toBeCloseTo(1.25, 12);
   });
 
   it("blocks a reading that differs until it is read again or the set goes back", async () => {
@@ -208,7 +207,7 @@ describe("a correlated set", () => {
       state: "withdrawn",
       withdrawnBecause: "Belongs to another model.",
     });
-    expect(await setsInUse({ database: server.dataSource, viewer: null })).toEqual([]);
+    expect(await nobody.inUse()).toEqual([]);
   });
 
   it("is replaced by the approved set that follows it", async () => {
