@@ -8,6 +8,8 @@ import { HttpProblem } from "~server/common/errors";
 
 /** Names in these folders carry a digest of their content, so they can be kept for ever. */
 const HASHED = /^\/(_expo\/static|assets)\//;
+/** Pages behind a mailed link: no search engine should keep their addresses. */
+const MAILED = /^\/(check|report)\//;
 /** Below these nothing is a page of the client. */
 const NO_PAGES = ["/api", "/graphql", "/_expo", "/assets", "/fonts", "/workers"];
 
@@ -41,6 +43,7 @@ export function serveWebClient(app: Express, webRoot: string): void {
     // A missing file is missing; answering it with the page would only hide that.
     if (path.extname(req.path) !== "" && !req.accepts("html")) return nothingHere(req, res, next);
     res.setHeader("Cache-Control", "no-cache");
+    if (MAILED.test(req.path)) res.setHeader("X-Robots-Tag", "noindex, nofollow");
     res.sendFile("index.html", { root }, (error) => {
       if (error) next(error);
     });

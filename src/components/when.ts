@@ -33,9 +33,11 @@ export function monthYear(iso: string): string {
   return new Date(iso).toLocaleDateString("en-GB", { month: "long", year: "numeric" });
 }
 
-/** "2 days", "5 hours", "less than an hour": until something ends. */
+/** "71 hours", "1 hour", "less than an hour": until a claim ends, which is never long. */
 export function timeLeft(until: string, now: Date = new Date()): string {
-  return waitingTime(now.toISOString(), new Date(until));
+  const hours = Math.floor((new Date(until).getTime() - now.getTime()) / 3_600_000);
+  if (hours < 1) return "less than an hour";
+  return hours === 1 ? "1 hour" : `${hours} hours`;
 }
 
 /** "21 March 2026" */

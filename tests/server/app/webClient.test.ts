@@ -97,3 +97,14 @@ it("answers of the API are kept by nobody", async () => {
     .send({ query: "{ session { licence } }" });
   expect(response.headers["cache-control"]).toBe("no-store");
 });
+
+it("pages behind a mailed link are kept out of search engines, the others are not", async () => {
+  const html = "text/html,*/*;q=0.8";
+  for (const address of ["/check/abc.def", "/report/abc.def"]) {
+    const response = await get(address).set("Accept", html);
+    expect(response.text).toContain('<div id="root">');
+    expect(response.headers["x-robots-tag"]).toBe("noindex, nofollow");
+  }
+  const record = await get("/constraints/FL-0042").set("Accept", html);
+  expect(record.headers["x-robots-tag"]).toBeUndefined();
+});
