@@ -11,6 +11,8 @@ const KEPT: readonly FieldName[] = [
   "scale",
   "weighting",
   "historyAssumed",
+  "heliumAssumed",
+  "truncationAssumed",
   "methodTags",
   "priorForm",
   "priorVariable",

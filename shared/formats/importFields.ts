@@ -4,12 +4,14 @@ import { formatRecordNumber, parseRecordNumber } from "~shared/identifiers/recor
 import { parseDecimal } from "~shared/statement/decimal";
 import {
   CONDITION_KINDS,
+  COSMIC_VARIANCES,
   DURATION_UNITS,
   ESTIMATORS,
   HELIUM,
   LEVELS,
   REDSHIFT_ROLES,
   SCALES,
+  SPECIES,
   STATEMENT_KINDS,
   VERSIONS_READ,
   WEIGHTINGS,
@@ -38,7 +40,8 @@ const COLUMN_SPELLINGS = {
     "paper",
   ],
   quantity: ["quantity", "what", "observable", "measures"],
-  helium: ["helium"],
+  species: ["species", "fraction printed", "printed fraction", "printed species"],
+  helium: ["helium", "helium electrons"],
   scale: ["scale", "scale as printed", "lin or log"],
   weighting: ["weighting", "weight", "average", "weighted by"],
   z: ["z", "redshift", "z mean", "z median", "z eff", "z central", "z value"],
@@ -51,7 +54,9 @@ const COLUMN_SPELLINGS = {
   fractionFrom: ["fraction from", "from fraction"],
   fractionTo: ["fraction to", "to fraction"],
   durationUnit: ["duration unit", "unit"],
-  historyAssumed: ["history", "history assumed"],
+  historyAssumed: ["history", "history assumed", "history family"],
+  heliumAssumed: ["helium assumed", "helium treatment"],
+  truncationAssumed: ["truncation", "truncation assumed", "cut off"],
   kind: ["kind", "statement", "type", "statement kind", "bound type", "sort"],
   value: ["value", "val", "best", "best value", "central value", "central", "x", "xhi", "x hi"],
   plus: [
@@ -91,14 +96,23 @@ const COLUMN_SPELLINGS = {
   furtherIntervals: ["further intervals", "other intervals"],
   printedText: ["printed", "printed text", "as printed", "quote", "verbatim", "text"],
   methodTags: ["method", "methods", "probe", "technique", "tag", "tags", "method tag"],
+  priorForm: ["prior", "prior form", "form of the prior"],
+  priorVariable: ["prior variable", "flat in"],
+  priorRange: ["prior range"],
   modelTags: ["model", "models", "simulation"],
   conditionedOn: ["conditioned on", "conditional on", "depends on", "uses", "external prior"],
+  cosmicVariance: ["cosmic variance", "sightline scatter"],
   dataUsed: ["data", "data used", "sample", "sightline", "field", "dataset", "data set", "object"],
   alternativesGroup: ["alternatives", "alternatives group", "alternative", "alt", "group"],
+  supersedes: ["supersedes", "replaces", "instead of"],
+  erratumOf: ["erratum of", "corrects"],
+  reanalysisOf: ["reanalysis of", "re-analysis of"],
+  subsetOf: ["subset of", "part of"],
   versionRead: ["version", "version read"],
   preprintVersion: ["preprint version", "arxiv version"],
   place: ["place", "where", "location", "where in paper", "table or figure"],
   page: ["page", "pages"],
+  digitizingError: ["digitizing error", "digitising error", "reading error"],
   remark: ["remark", "remarks", "note", "notes", "comment", "comments"],
 } as const satisfies Partial<Record<FieldName | "citationKey", readonly string[]>>;
 
@@ -180,6 +194,7 @@ const QUANTITY_CHOICES = [
 /** Fields whose cells hold words of a list. */
 const WORD_CHOICES = {
   quantity: QUANTITY_CHOICES,
+  species: SPECIES,
   helium: HELIUM,
   scale: SCALES,
   weighting: WEIGHTINGS,
@@ -190,6 +205,7 @@ const WORD_CHOICES = {
   estimator: ESTIMATORS,
   methodTags: METHOD_TAGS.map((entry) => entry.tag),
   conditionedOn: CONDITION_KINDS,
+  cosmicVariance: COSMIC_VARIANCES,
   versionRead: VERSIONS_READ,
 } as const satisfies Partial<Record<ImportField, readonly string[]>>;
 
@@ -313,6 +329,16 @@ const WORD_SPELLINGS: Partial<Record<WordField, Readonly<Record<string, readonly
     band: ["band", "range", "box"],
     curve: ["curve", "tabulated curve", "posterior", "pdf", "likelihood curve"],
     qualitative: ["qualitative", "words", "text"],
+  },
+  species: {
+    neutral: ["neutral", "hi", "xhi", "neutral hydrogen"],
+    ionized: ["ionized", "ionised", "hii", "xhii", "q", "ionized hydrogen"],
+    electron: ["electron", "electrons", "xe"],
+  },
+  cosmicVariance: {
+    included: ["included", "yes", "in the error"],
+    excluded: ["excluded", "no", "not included"],
+    unknown: ["unknown", "not stated", "?", "-"],
   },
   level: { notStated: ["not stated", "none", "unknown", "not given", "n/a", "na", "?", "-"] },
   estimator: {

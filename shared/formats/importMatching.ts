@@ -2,6 +2,7 @@
 import canonicalize from "canonicalize";
 import Papa from "papaparse";
 
+import { formatRecordNumber, parseRecordNumber } from "~shared/identifiers/recordNumber";
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
 import { emptyFields } from "~shared/statement/fields";
 import { openFields } from "~shared/statement/required";
@@ -129,7 +130,14 @@ const LIST_FIELDS: readonly ImportField[] = [
   "conditionedOn",
   "dataUsed",
   "modelTags",
+  "supersedes",
+  "erratumOf",
+  "reanalysisOf",
+  "subsetOf",
 ];
+
+/** Fields that name other records. */
+const RELATIONS = ["supersedes", "erratumOf", "reanalysisOf", "subsetOf"] as const;
 
 function entriesOf(field: ImportField, cell: string): string[] {
   const entries = LIST_FIELDS.includes(field) ? cell.split(";") : [cell];
@@ -320,6 +328,8 @@ const COPIED = [
   "fractionFrom",
   "fractionTo",
   "historyAssumed",
+  "heliumAssumed",
+  "truncationAssumed",
   "z",
   "zLow",
   "zHigh",
@@ -332,6 +342,10 @@ const COPIED = [
   "bandHigh",
   "furtherIntervals",
   "printedText",
+  "priorForm",
+  "priorVariable",
+  "priorRange",
+  "digitizingError",
   "alternativesGroup",
   "preprintVersion",
   "place",
@@ -369,6 +383,7 @@ function fieldsOf(
     (wordsOf(field)[0] as T | undefined) ?? null;
 
   setQuantity(fields, one("quantity"));
+  fields.species = one("species") ?? fields.species;
   fields.helium = one("helium");
   fields.scale = one("scale");
   fields.weighting = one("weighting");
@@ -377,8 +392,20 @@ function fieldsOf(
   fields.kind = one("kind");
   fields.estimator = one("estimator");
   fields.versionRead = one("versionRead");
+  fields.cosmicVariance = one("cosmicVariance");
+  if (fields.digitizingError !== null) fields.readOffFigure = true;
   fields.methodTags = [...new Set(wordsOf("methodTags"))];
   fields.conditionedOn = [...new Set(wordsOf("conditionedOn"))];
+  for (const name of RELATIONS) {
+    const entries = entriesOf(name, cell(name));
+    const numbers = entries.map((entry) => parseRecordNumber(entry));
+    fields[name] = [
+      ...new Set(numbers.filter((number) => number !== null).map(formatRecordNumber)),
+    ];
+    entries
+      .filter((_, index) => numbers[index] === null)
+      .forEach((entry) => unmatched.push(`${importFieldName(name)}: "${entry}"`));
+  }
   const level = one<string>("level");
   if (level?.startsWith("other:")) {
     fields.level = "other";

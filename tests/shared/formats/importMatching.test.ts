@@ -231,6 +231,44 @@ describe("buildRows", () => {
     expect(row?.fields.remark).toBe('Not matched at import: Method: "tea leaves".');
   });
 
+  it("takes what an optical depth assumed, a prior, and the printed fraction of a duration", () => {
+    const [row, other] = importText(
+      [
+        "key,quantity,species,fraction from,fraction to,history,helium treatment,truncation,prior,prior range,cosmic variance",
+        'Arvensis2031,optical depth,,,,tanh,"He II at z = 3.5",from z = 30,flat,0 to 1,in the error',
+        "Arvensis2031,duration,ionised,0.25,0.75,,,,,,",
+      ].join("\n"),
+    );
+    expect(row?.fields).toMatchObject({
+      quantity: "opticalDepth",
+      historyAssumed: "tanh",
+      heliumAssumed: "He II at z = 3.5",
+      truncationAssumed: "from z = 30",
+      priorForm: "flat",
+      priorRange: "0 to 1",
+      cosmicVariance: "included",
+    });
+    expect(other?.fields).toMatchObject({
+      quantity: "duration",
+      species: "ionized",
+      fractionFrom: "0.25",
+      fractionTo: "0.75",
+    });
+  });
+
+  it("takes records by their numbers, and a digitizing error as read off a figure", () => {
+    const [row] = importText(
+      "key,subset of,supersedes,digitizing error\nArvensis2031,fl-12; FL-0013; the big one,FL-0007.2,0.02\n",
+    );
+    expect(row?.fields).toMatchObject({
+      subsetOf: ["FL-0012", "FL-0013"],
+      supersedes: ["FL-0007"],
+      digitizingError: "0.02",
+      readOffFigure: true,
+      remark: 'Not matched at import: Subset of: "the big one".',
+    });
+  });
+
   it("takes the person's match before the proposal, and leaves a field open when told so", () => {
     const parsed = list("key,level\nArvensis2031,0.68\nArvensis2031,0.95\n");
     const rows = buildRows({
