@@ -206,6 +206,31 @@ describe("a form in words and in numbers", () => {
     expect(form.reach.some((end) => form.minus2LnL(end) > 79)).toBe(true);
   });
 
+  it("reaches as far as an integral has to go, and no further", () => {
+    const ends = ({ reach }: Form, low: number, high: number) => {
+      expect(reach[0]).toBeCloseTo(low, 10);
+      expect(reach[1]).toBeCloseTo(high, 10);
+    };
+    // d² = 80 (V + V′d) with V = 0.005, V′ = 0.025: d = 1 ± √1.4.
+    ends(variableWidth(0.4, 0.1, 0.2, 2), 1.4 - Math.sqrt(1.4), 1.4 + Math.sqrt(1.4));
+    const sigma = boundedHalfGaussianWidth(0.05, 0.95);
+    ends(halfGaussianBounded("upper", 0.05, 0.95), 0, sigma * OUT);
+    ends(halfGaussianBounded("lower", 0.95, 0.95), 1 - sigma * OUT, 1);
+    ends(halfGaussianBounded("upper", 0.8, 0.95), 0, 1);
+    ends(halfGaussianBounded("lower", 0.2, 0.95), 0, 1);
+    expect(halfGaussianBounded("lower", 0.01, 0.9).name).toBe("halfGaussianBounded");
+  });
+
+  it("packs a curve on even places with its step, on others without", () => {
+    // n, 1/step, places, ln p over its peak.
+    const even = tabulated([0.1, 0.35, 0.6], [1, 2, 1]);
+    expect([...even.packed]).toEqual(
+      [3, 4, 0.1, 0.35, 0.6, -Math.LN2, 0, -Math.LN2].map((value) => expect.closeTo(value, 12)),
+    );
+    expect(tabulated([0.1, 0.3, 0.6], [1, 2, 1]).packed[1]).toBe(0);
+    expect(tabulated([0.1, 0.6], [1, 2]).packed[1]).toBeCloseTo(2, 12);
+  });
+
   it("has every name in words", () => {
     expect(FORM_NAMES.map((name) => FORM_WORDS[name])).toEqual([
       ...["two-piece", "quantile-matched", "variable width", "Gaussian"],
