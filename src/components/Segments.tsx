@@ -43,7 +43,7 @@ export function Segments({
               position: "relative",
               cursor: "pointer",
               boxSizing: "border-box",
-              padding: "0 8px",
+              padding: tall ? "0 3px" : "0 8px",
               borderLeft: index === 0 ? "none" : `1px solid ${colors.outline}`,
               backgroundColor: chosen ? colors.petrolTint : colors.surface,
             }}

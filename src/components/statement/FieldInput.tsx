@@ -67,7 +67,7 @@ const OFFERED_KINDS: readonly { kind: StatementKind; label: string }[] = [
   { kind: "lowerLimit", label: "lower" },
   { kind: "band", label: "band" },
   { kind: "curve", label: "curve" },
-  { kind: "qualitative", label: "in words" },
+  { kind: "qualitative", label: "words" },
 ];
 
 const SPECIES_SHORT: Record<(typeof SPECIES)[number], string> = {
