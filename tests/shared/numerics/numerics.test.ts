@@ -151,6 +151,12 @@ describe("pchip slopes", () => {
     expect(pchipSlopes([0, 1, 2], [0, 1, -8])[0]).toBe(3);
     expect(pchipSlopes([0, 1, 2], [0, 0.1, 9])[0]).toBe(0);
   });
+  it("are the secant between two points, and refused for columns that are none", () => {
+    expect([...pchipSlopes([1, 3], [2, 8])]).toEqual([3, 3]);
+    expect(() => pchipSlopes([1], [2])).toThrow("table must be two equally long columns");
+    expect(() => pchipSlopes([1, 2], [2])).toThrow("got 2 and 1 values");
+    expect(() => pchipSlopes([1, 1], [2, 3])).toThrow("x[1] must be above 1, got 1");
+  });
 });
 
 describe("requirements", () => {
