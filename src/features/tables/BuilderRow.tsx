@@ -14,7 +14,8 @@ import type { RowPartsFragment } from "~graphql/generated/graphql";
 import { FORM_WORDS } from "~shared/likelihood";
 import { familyOf } from "~shared/methods/vocabulary";
 import { asUsed } from "~shared/statement/asUsed";
-import { notationAsUsed, percentText, recordTitle } from "~shared/statement/notation";
+import { notationAsUsed, percentText } from "~shared/statement/notation";
+import { hasBestValue } from "~shared/statement/relevant";
 
 import { DecisionNumber } from "./DecisionNumber";
 import { type TableConstraint, Where } from "./RowParts";
@@ -37,7 +38,7 @@ interface Props {
 export function BuilderRow({ built, wanted, onOpen }: Props) {
   const colors = useColors();
   const wide = useLayoutClass() === "wide";
-  const { constraint, row } = built;
+  const { row } = built;
   const waits = row.open.length > 0;
   const back = waits ? colors.emberTint : wanted ? colors.petrolTint : undefined;
   const place = useRef<View>(null);
@@ -46,10 +47,9 @@ export function BuilderRow({ built, wanted, onOpen }: Props) {
     if (wanted)
       (place.current as unknown as HTMLElement | null)?.scrollIntoView?.({ block: "center" });
   }, [wanted]);
-  const words = `${constraint.citation.shortName}: ${recordTitle(constraint.fields)}, ${row.included ? "in" : "out"}`;
   return (
     <View ref={place}>
-      <Press onPress={onOpen} label={words} style={[styles.row, { backgroundColor: back }]}>
+      <Press onPress={onOpen} style={[styles.row, { backgroundColor: back }]}>
         {wide ? <WideFacts built={built} /> : <NarrowFacts built={built} />}
         {row.included ? null : (
           <Caption muted style={styles.indent}>
@@ -61,6 +61,7 @@ export function BuilderRow({ built, wanted, onOpen }: Props) {
             {caution.replace(/\.$/, "")}.
           </Caption>
         ))}
+        <span className="fogline-hidden">{row.included ? ", in" : ", out"}</span>
       </Press>
     </View>
   );
@@ -96,7 +97,7 @@ function FamilyOf({ fields }: { fields: TableConstraint["fields"] }) {
   const family = familyOf(fields.methodTags);
   return (
     <View style={styles.marker}>
-      {family ? <Marker family={family} hollow={fields.kind !== "twoSided"} size={18} /> : null}
+      {family ? <Marker family={family} hollow={!hasBestValue(fields.kind)} size={18} /> : null}
     </View>
   );
 }

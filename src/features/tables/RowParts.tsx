@@ -6,6 +6,7 @@ import { space } from "@/theme/tokens";
 import type { ListedPartsFragment } from "~graphql/generated/graphql";
 import { familyOf } from "~shared/methods/vocabulary";
 import type { ConstraintFields } from "~shared/statement/fields";
+import { hasBestValue } from "~shared/statement/relevant";
 import { QUANTITY_WORDS } from "~shared/statement/words";
 
 export type TableConstraint = ListedPartsFragment;
@@ -23,7 +24,7 @@ export function Source({ constraint }: { constraint: TableConstraint }) {
   return (
     <View style={styles.source}>
       <View style={styles.marker}>
-        {family ? <Marker family={family} hollow={fields.kind !== "twoSided"} size={18} /> : null}
+        {family ? <Marker family={family} hollow={!hasBestValue(fields.kind)} size={18} /> : null}
       </View>
       <Dense style={styles.name}>{citation.shortName}</Dense>
     </View>

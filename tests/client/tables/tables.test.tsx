@@ -193,7 +193,7 @@ describe.each(WIDTHS)("the builder at %i points", (width) => {
     return saved;
   }
   const rowButton = (number: string) =>
-    screen.findByRole("button", { name: new RegExp(`^Paper of ${number}:`) });
+    screen.findByRole("button", { name: new RegExp(`^Paper of ${number}`) });
   const saveButton = () => screen.getByRole("button", { name: "Save the table" });
   const takeAll = () =>
     fireEvent.click(screen.getByRole("button", { name: "Take it as proposed" }));

@@ -132,3 +132,20 @@ export function pageWords(page: Page): Promise<string> {
     return [document.body.innerText, ...spoken, ...typed].join("\n");
   });
 }
+
+/** Takes every proposal of a table being built, until no decision is open. */
+export async function takeProposals(page: Page): Promise<void> {
+  const none = page.getByText("None open");
+  const take = button(page, /^Take (it|all \d+) as proposed$/);
+  // Taking one can bring the next question up.
+  for (let round = 0; round < 5; round += 1) {
+    await take.or(none).first().waitFor();
+    if (await none.isVisible()) return;
+    const before = await page.getByText(/^\d+ open$/).textContent();
+    await take.click();
+    await page.waitForFunction(
+      (words) => !document.body.innerText.includes(words ?? "\u0000"),
+      before,
+    );
+  }
+}
