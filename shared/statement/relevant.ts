@@ -13,6 +13,11 @@ export function isLimit(kind: ConstraintFields["kind"]): boolean {
   return kind === "upperLimit" || kind === "lowerLimit";
 }
 
+/** Whether the statement has a best value: its marker is filled. A limit, a band and words have none. */
+export function hasBestValue(kind: ConstraintFields["kind"]): boolean {
+  return kind === "twoSided" || kind === "curve";
+}
+
 /** Fields that say what the quantity is. */
 export function quantityFields(fields: ConstraintFields): FieldName[] {
   const names: FieldName[] = ["quantity"];

@@ -73,6 +73,8 @@ export function NotationText({
     relation === "<" || relation === ">" ? relation : relation === "=" && symbol ? "=" : "";
   const band = low !== null || high !== null;
   const text = lineText(notation);
+  // A statement without a number, a curve alone, is named by its word.
+  const word = value === null && !band;
   return (
     <View style={styles.line} role="img" aria-label={text}>
       <View style={styles.row} aria-hidden={Platform.OS === "web"}>
@@ -97,9 +99,9 @@ export function NotationText({
         {limitSigma === null ? null : (
           <Mono style={number}>{relation === ">" ? ` − ${limitSigma}` : ` + ${limitSigma}`}</Mono>
         )}
-        {unit ? <Dense style={styles.unit}>{unit}</Dense> : null}
+        {unit && !word ? <Dense style={styles.unit}>{unit}</Dense> : null}
       </View>
-      {tail && notation.tail ? (
+      {(tail || word) && notation.tail ? (
         <Dense aria-hidden style={[styles.tail, { fontSize: sizes.tail }]}>
           {notation.tail}
         </Dense>

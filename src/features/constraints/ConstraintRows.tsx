@@ -12,6 +12,7 @@ import type { ListedPartsFragment } from "~graphql/generated/graphql";
 import { familyOf } from "~shared/methods/vocabulary";
 import { asUsed } from "~shared/statement/asUsed";
 import { notationAsPrinted, notationAsUsed } from "~shared/statement/notation";
+import { hasBestValue } from "~shared/statement/relevant";
 import { QUANTITY_WORDS } from "~shared/statement/words";
 
 export type ListedConstraint = ListedPartsFragment;
@@ -83,7 +84,7 @@ export function ConstraintRows({
               <View style={styles.content}>
                 <View style={styles.marker}>
                   {family ? (
-                    <Marker family={family} hollow={fields.kind !== "twoSided"} size={18} />
+                    <Marker family={family} hollow={!hasBestValue(fields.kind)} size={18} />
                   ) : null}
                 </View>
                 <View style={styles.words}>

@@ -20,6 +20,7 @@ import { space } from "@/theme/tokens";
 import { ConstraintListDocument } from "~graphql/generated/graphql";
 import { isEmptyFilter } from "~shared/filter/address";
 import { familyOf } from "~shared/methods/vocabulary";
+import { hasBestValue } from "~shared/statement/relevant";
 import { levelPhrase } from "~shared/statement/words";
 
 import {
@@ -168,7 +169,7 @@ function WideTable({
           source: (
             <View style={styles.source}>
               {family ? (
-                <Marker family={family} hollow={fields.kind !== "twoSided"} size={18} />
+                <Marker family={family} hollow={!hasBestValue(fields.kind)} size={18} />
               ) : null}
               <View>
                 <Dense>{citation.shortName}</Dense>

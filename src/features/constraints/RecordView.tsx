@@ -28,6 +28,7 @@ import { familyOf, METHOD_TAGS } from "~shared/methods/vocabulary";
 import { asUsed, type AsUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
 import { notationAsPrinted, notationAsUsed } from "~shared/statement/notation";
+import { hasBestValue } from "~shared/statement/relevant";
 import { conditionWord, FIELD_NAMES, fieldText, levelPhrase } from "~shared/statement/words";
 
 import { DataUsedPart } from "./DataUsedPart";
@@ -74,7 +75,7 @@ export function RecordView({ record }: { record: RecordData }) {
           </Caption>
         </View>
         <View style={styles.titleLine}>
-          {family ? <Marker family={family} hollow={fields.kind !== "twoSided"} size={22} /> : null}
+          {family ? <Marker family={family} hollow={!hasBestValue(fields.kind)} size={22} /> : null}
           <View style={styles.grow}>
             <Section level={2} style={styles.title}>
               <RecordTitle fields={fields} />

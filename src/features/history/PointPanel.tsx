@@ -107,7 +107,7 @@ export function PointPanel({
           ) : (
             <>
               <NotationText notation={inOneSigma(used)} size="panel" tail={false} />
-              {used.sigmaDerived ? (
+              {used.sigmaDerived && used.kind !== "curve" ? (
                 <Dense>
                   one-sigma equivalent{form ? `, ${form}` : ""},{" "}
                   <Dense style={styles.derived}>derived</Dense>
@@ -156,7 +156,8 @@ export function PointPanel({
 function inOneSigma(used: AsUsed): Notation {
   const notation = notationAsUsed(used);
   const { sigmaMinus, sigmaPlus } = used;
-  if (!used.sigmaDerived || !sigmaMinus || !sigmaPlus) return notation;
+  // A curve is used as it stands, whatever is quoted beside it.
+  if (!used.sigmaDerived || used.kind === "curve" || !sigmaMinus || !sigmaPlus) return notation;
   const digits = Math.max(0, 1 - Math.floor(Math.log10(Math.min(sigmaMinus, sigmaPlus))));
   return { ...notation, plus: sigmaPlus.toFixed(digits), minus: sigmaMinus.toFixed(digits) };
 }
