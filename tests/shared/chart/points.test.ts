@@ -1,7 +1,7 @@
 import { markOf, nearestMark, WIDE_SIZES } from "~shared/chart/marks";
-import { planePoint } from "~shared/chart/points";
+import { planePoint, statementSpan } from "~shared/chart/points";
 import { linearScale, logScale } from "~shared/chart/scales";
-import { asUsed } from "~shared/statement/asUsed";
+import { type AsUsed, asUsed } from "~shared/statement/asUsed";
 import { type ConstraintFields, emptyFields } from "~shared/statement/fields";
 
 function point(fields: Partial<ConstraintFields>) {
@@ -148,5 +148,76 @@ describe("nearestMark", () => {
   });
   it("finds none beyond its reach", () => {
     expect(nearestMark(marks, 100, 100, 44)).toBeNull();
+  });
+});
+
+describe("a tabulated curve", () => {
+  // A triangle in ln p: highest at 0.4, e⁻² of it at 0.2 and 0.6.
+  const curve = { x: [0, 0.2, 0.4, 0.6, 0.8], p: [-4, -2, 0, -2, -4].map(Math.exp) };
+  const used: AsUsed = {
+    ...asUsed({
+      ...emptyFields(),
+      quantity: "neutralFraction",
+      species: "neutral",
+      scale: "linear",
+      z: "7.5",
+      kind: "curve",
+    })!,
+    curve: { ...curve, x: [0, 0.1, 0.4, 0.7, 0.8] },
+  };
+
+  it("is a half violin that ends at e⁻² of its peak", () => {
+    const { violin, x, xEnds, hollow, levelStated } = planePoint({ ...used, curve })!;
+    expect([x, xEnds, hollow, levelStated]).toEqual([0.4, null, false, true]);
+    expect(violin!.at.map((at) => Number(at.toFixed(9)))).toEqual([0.2, 0.4, 0.6]);
+    expect(violin!.height[1]).toBe(1);
+    expect(violin!.height[0]).toBeCloseTo(Math.exp(-2), 12);
+  });
+
+  it("crosses e⁻² between nodes where ln L is linear", () => {
+    const coarse = { x: [0, 0.4, 0.8], p: [Math.exp(-4), 1, Math.exp(-4)] };
+    expect(planePoint({ ...used, curve: coarse })!.violin!.at[0]).toBeCloseTo(0.2, 12);
+    expect(statementSpan({ ...used, curve: coarse })).toEqual({
+      centre: 0.4,
+      ends: [expect.closeTo(0.2, 12), expect.closeTo(0.6, 12)],
+    });
+  });
+
+  it("goes back to its base between two peaks", () => {
+    const two = { x: [0.1, 0.2, 0.3, 0.4, 0.5], p: [1, 1, 0.01, 0.5, 0.5] };
+    const { at, height } = planePoint({ ...used, curve: two })!.violin!;
+    expect(at[3]).toBe(0.3);
+    expect(height[3]).toBe(0);
+    expect(at[at.length - 1]).toBe(0.5);
+  });
+
+  it("stands in its fraction where it is evaluated in log10", () => {
+    const log = { x: [-3, -2, -1], p: [0.5, 1, 0.5] };
+    const point = planePoint({ ...used, evaluatedIn: "log10", curve: log })!;
+    expect(point.x).toBe(0.01);
+    expect(point.violin!.at.map((at) => Number(at.toFixed(9)))).toEqual([0.001, 0.01, 0.1]);
+  });
+
+  it("has no place without its nodes", () => {
+    const { curve: _, ...without } = used;
+    expect(planePoint(without)).toBeNull();
+    expect(statementSpan(without)).toBeNull();
+  });
+
+  it("is drawn to the right of its redshift, as wide as its peak is high", () => {
+    const point = planePoint({ ...used, curve })!;
+    const frame = { left: 0, right: 200, top: 0, bottom: 100 };
+    const mark = markOf(
+      point,
+      linearScale([7, 8], [0, 200]),
+      linearScale([0, 1], [100, 0]),
+      frame,
+      WIDE_SIZES,
+    )!;
+    const xs = mark.violin!.map(([x]) => x);
+    expect(Math.min(...xs)).toBe(mark.x);
+    expect(Math.max(...xs)).toBeCloseTo(mark.x + WIDE_SIZES.violinWidth, 9);
+    expect(mark.violin![0]).toEqual([mark.x, expect.closeTo(80, 9)]);
+    expect(mark.violin![mark.violin!.length - 1]).toEqual([mark.x, expect.closeTo(40, 9)]);
   });
 });
