@@ -1,3 +1,5 @@
+import { TextDecoder } from "node:util";
+
 import "@testing-library/jest-dom";
 import { fireEvent, render, screen, waitFor } from "@testing-library/react";
 import { useState } from "react";
@@ -47,6 +49,11 @@ function Entry({
     </ThemeProvider>
   );
 }
+
+beforeAll(() => {
+  // jsdom has none.
+  global.TextDecoder = TextDecoder as never;
+});
 
 describe("the entry of a curve", () => {
   it("says what was read of pasted rows", () => {
