@@ -14,12 +14,6 @@ export function dateTime(iso: string): string {
   return `${day}, ${clockTime(iso)}`;
 }
 
-/** "21 Mar, 16:00", where there is little room. */
-export function shortDateTime(iso: string): string {
-  const day = new Date(iso).toLocaleDateString("en-GB", { day: "numeric", month: "short" });
-  return `${day}, ${clockTime(iso)}`;
-}
-
 /** "4 days", "3 hours", "less than an hour": how long something has waited. */
 export function waitingTime(since: string, now: Date = new Date()): string {
   const hours = Math.floor((now.getTime() - new Date(since).getTime()) / 3_600_000);

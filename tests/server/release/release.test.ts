@@ -2,7 +2,6 @@ import { createHash } from "node:crypto";
 
 import canonicalize from "canonicalize";
 import Papa from "papaparse";
-import type { Response } from "superagent";
 
 import { reviseSubmission, saveDraft, submitDraft } from "~server/constraint/draft.service";
 import type { Revision } from "~server/constraint/revision.entity";
@@ -215,7 +214,7 @@ describe("releases", () => {
 });
 
 /** Superagent leaves what it does not know as bytes. */
-function asText(res: Response, done: (error: Error | null, text: string) => void): void {
+function asText(res: NodeJS.EventEmitter, done: (error: Error | null, text: string) => void): void {
   let text = "";
   res.on("data", (part: Buffer) => (text += part.toString("utf8")));
   res.on("end", () => done(null, text));

@@ -1,3 +1,4 @@
+/** @jest-environment jsdom */
 import Papa from "papaparse";
 
 import { ascii } from "~shared/formats/columnFile/ascii";
@@ -114,7 +115,6 @@ describe("csv", () => {
 
 describe("votable", () => {
   const parsed = async (): Promise<Document> => {
-    const { DOMParser } = new (await import("jsdom")).JSDOM().window;
     return new DOMParser().parseFromString(await whole(votable(HEAD, ROWS)), "application/xml");
   };
 
