@@ -44,12 +44,15 @@ const likelihood = exactly(
     redshift: { enum: ["point", "binMean", "averagedLikelihood"] },
     level: { ...numberOrNull, description: "As printed or decided, a probability." },
     smoothing: numberOrNull,
-    curve: orNull(
-      exactly({
-        x: { type: "array", items: { type: "number" } },
-        p: { type: "array", items: { type: "number", minimum: 0 } },
-      }),
-    ),
+    curve: {
+      ...orNull(
+        exactly({
+          x: { type: "array", items: { type: "number" } },
+          p: { type: "array", items: { type: "number", minimum: 0 } },
+        }),
+      ),
+      description: "Nodes decided on in place of the record's own, which stand in used.",
+    },
     reason: { ...textOrNull, description: "Why another form than the default." },
   },
   "Form and parameters of the row's likelihood; every number of the statement stands in used.",
@@ -79,7 +82,7 @@ const row = exactly({
   used: {
     type: ["object", "null"],
     description:
-      "As used: fractions are neutral, numbers stand at the printed level; a limit is told by its kind, and every width it lacks is null.",
+      "As used: fractions are neutral, numbers stand at the printed level; a limit is told by its kind, and every width it lacks is null. A tabulated curve has its nodes in curve: places x, ascending, in the variable of evaluatedIn, and likelihood p over its peak.",
     required: ["quantity", "kind", "evaluatedIn", "value", "plus", "minus", "level", "steps"],
   },
   likelihood: orNull(likelihood),
