@@ -99,7 +99,7 @@ export function RecordView({ record }: { record: RecordData }) {
         <View style={columns ? styles.parts : undefined}>
           <AsPrinted fields={fields} wide={columns} />
           <Rule upright={columns} />
-          <UsedPart used={used} wide={columns} />
+          <UsedPart used={used} fields={fields} wide={columns} />
           <Rule upright={columns} />
           <View style={[styles.part, columns && styles.third]}>
             <Block>Likelihood</Block>
@@ -198,7 +198,7 @@ function AsPrinted({ fields, wide }: { fields: ConstraintFields; wide: boolean }
   const colors = useColors();
   const words = [
     levelPhrase(fields.level, fields.levelPercent),
-    fields.kind === "twoSided" ? fieldText("estimator", fields).toLowerCase() : "",
+    hasBestValue(fields.kind) ? fieldText("estimator", fields).toLowerCase() : "",
     fields.quantity === "neutralFraction" && fields.weighting
       ? fields.weighting === "unknown"
         ? "weighting unknown"
@@ -219,7 +219,15 @@ function AsPrinted({ fields, wide }: { fields: ConstraintFields; wide: boolean }
   );
 }
 
-function UsedPart({ used, wide }: { used: AsUsed | null; wide: boolean }) {
+function UsedPart({
+  used,
+  fields,
+  wide,
+}: {
+  used: AsUsed | null;
+  fields: ConstraintFields;
+  wide: boolean;
+}) {
   return (
     <View style={[styles.part, wide && styles.third]}>
       <View style={styles.line}>
@@ -227,7 +235,11 @@ function UsedPart({ used, wide }: { used: AsUsed | null; wide: boolean }) {
         {used?.derived ? <Caption muted>derived</Caption> : null}
       </View>
       {used === null ? (
-        <Dense>Not used by a likelihood: the statement has no number to use.</Dense>
+        <Dense>
+          {fields.species === "electron"
+            ? "Not used by a likelihood: whether the electrons of helium are counted is unknown."
+            : "Not used by a likelihood: the statement has no number to use."}
+        </Dense>
       ) : (
         <>
           <NotationText notation={notationAsUsed(used)} size="stated" />
@@ -307,7 +319,12 @@ const PROVENANCE: readonly FieldName[] = [
   "modelTags",
   "cosmicVariance",
   "conditionedOn",
+  "helium",
   "historyAssumed",
+  "heliumAssumed",
+  "truncationAssumed",
+  "curveTable",
+  "curveColumn",
   "furtherIntervals",
   "readOffFigure",
   "digitizingError",
