@@ -268,7 +268,7 @@ describe.each(SIZE_NAMES)("the main job on a %s screen", (size) => {
     if (size === "phone") await button(contributor, "See the rows").click();
     await contributor.waitForURL((url) => url.searchParams.get("z") === "6-8");
     await contributor
-      .getByText(/Family: damping wing; redshift 6 to 8$/)
+      .getByText(/Family: damping wing; redshift 6 to 8/)
       .first()
       .waitFor();
     await button(contributor, /^Thessing.*7\.19.*in$/).waitFor();
