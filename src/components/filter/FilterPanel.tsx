@@ -142,7 +142,7 @@ export function FilterPanel({
       <View role="group" aria-label="Statement" style={styles.group}>
         <Label>Statement</Label>
         <View style={styles.chips}>
-          {STATEMENT_KINDS.filter((kind) => kind !== "curve").map((kind) => (
+          {STATEMENT_KINDS.map((kind) => (
             <Chip
               key={kind}
               label={KIND_WORDS[kind]}
