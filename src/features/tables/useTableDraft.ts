@@ -77,19 +77,24 @@ export function useTableDraft() {
         ...before,
         decisions: choice ? { ...before.decisions, [id]: choice } : without(before.decisions, id),
       })),
+    // A choice of one's own that has its reason stays, though the server has not answered it yet.
     takeProposals: (proposals: readonly { id: string; proposed: string }[]) =>
-      setDraft((before) => ({
-        ...before,
-        decisions: {
-          ...before.decisions,
-          ...Object.fromEntries(
-            proposals.map(({ id, proposed }) => [
-              id,
-              { option: proposed, byDefault: true, reason: "" },
-            ]),
-          ),
-        },
-      })),
+      setDraft((before) => {
+        const said = (id: string): boolean => {
+          const own = before.decisions[id];
+          return own !== undefined && !own.byDefault && own.reason.trim() !== "";
+        };
+        const taken = proposals
+          .filter(({ id }) => !said(id))
+          .map(({ id, proposed }) => [id, { option: proposed, byDefault: true, reason: "" }]);
+        return {
+          ...before,
+          decisions: {
+            ...before.decisions,
+            ...(Object.fromEntries(taken) as typeof before.decisions),
+          },
+        };
+      }),
     takeOut: (number: string, reason: string | null) =>
       setDraft((before) => ({
         ...before,
