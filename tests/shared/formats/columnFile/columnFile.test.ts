@@ -122,7 +122,7 @@ describe("votable", () => {
     const document = await parsed();
     expect(document.querySelector("parsererror")).toBeNull();
     expect(document.documentElement.getAttribute("version")).toBe("1.4");
-    const fields = [...document.querySelectorAll("FIELD")];
+    const fields = Array.from(document.querySelectorAll("FIELD"));
     expect(
       fields.map((field) => [field.getAttribute("name"), field.getAttribute("datatype")]),
     ).toEqual([
@@ -134,8 +134,8 @@ describe("votable", () => {
       ["printed_text", "unicodeChar"],
     ]);
     expect(fields[2]?.getAttribute("unit")).toBe("Gyr");
-    const cells = [...document.querySelectorAll("TR")].map((row) =>
-      [...row.children].map((cell) => cell.textContent),
+    const cells = Array.from(document.querySelectorAll("TR")).map((row) =>
+      Array.from(row.children).map((cell) => cell.textContent),
     );
     expect(cells[1]).toEqual(["FL-0002", "5.9", "", "", "true", ""]);
     expect(cells[2]?.[5]).toBe('Ly\u03b1 at "z" next line, M\u00fcller');
