@@ -23,6 +23,7 @@ import {
   ErrorReportResolver,
 } from "~server/errorReport/errorReport.resolver";
 import { ImportResolver } from "~server/import/import.resolver";
+import { MethodResolver } from "~server/method/method.resolver";
 import { NamedDataResolver, UsedDataResolver } from "~server/namedData/namedData.resolver";
 import { RecordLifeResolver, SupersededByResolver } from "~server/recordLife/life.resolver";
 import { RowsSinceResolver } from "~server/recordLife/rowsSince.resolver";
@@ -54,6 +55,7 @@ export const resolvers = [
   TableResolver,
   ReleaseResolver,
   CorrelatedSetResolver,
+  MethodResolver,
   NamedDataResolver,
   UsedDataResolver,
   RecordLifeResolver,

@@ -4,6 +4,7 @@ import { Citation } from "~server/citation/citation.entity";
 import type { RequestContext } from "~server/common/context";
 import { withoutRecordsReadBlind } from "~server/review/blindness";
 import type { ConstraintFilter, ConstraintSort } from "~shared/filter/filter";
+import { currentTags } from "~shared/methods/vocabulary";
 
 import { Constraint } from "./constraint.entity";
 import { Revision } from "./revision.entity";
@@ -110,7 +111,7 @@ function filtered(ctx: Asking, filter: ConstraintFilter): SelectQueryBuilder<Rev
       ? inUse(ctx.database.manager, ctx.viewer).andWhere("record.state IN (:...states)", { states })
       : approved(ctx);
   anyWord(query, "revision.families", "family", filter.families);
-  anyWord(query, "revision.tags", "tag", filter.tags);
+  anyWord(query, "revision.tags", "tag", filter.tags && currentTags(filter.tags));
   oneOf(query, "revision.quantity", "quantities", filter.quantities);
   oneOf(query, "revision.kind", "kinds", filter.kinds);
   oneOf(query, "revision.weighting", "weightings", filter.weightings);

@@ -12,6 +12,7 @@ import {
   evidenceOf,
   hasSameEvidence,
 } from "~server/evidence/ofRevision";
+import { holdVocabulary } from "~server/method/vocabulary";
 import { FieldCommentRecord } from "~server/review/comment.entity";
 import { tellEditors } from "~server/review/mails";
 import { formatQuotable } from "~shared/identifiers/recordNumber";
@@ -320,6 +321,7 @@ export async function submitDraft(
     if (linked) return linked;
 
     const codes = new Set(findings.map((finding) => finding.code));
+    await holdVocabulary(manager);
     const won = await updateAt(manager, draft.id, version, ["draft"], {
       state: "submitted",
       submittedAt: who.now,

@@ -3,7 +3,7 @@ import type { EntityManager } from "typeorm";
 import type { Citation } from "~server/citation/citation.entity";
 import { digestOf } from "~server/event/eventLog";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
-import { METHOD_TAGS } from "~shared/methods/vocabulary";
+import { methodsOf } from "~shared/methods/vocabulary";
 import { asUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields } from "~shared/statement/fields";
 import { comparableDataName } from "~shared/dependence/dataName";
@@ -35,7 +35,6 @@ export function indexColumns(
   citation: Citation | null,
 ): IndexColumns {
   const used = asUsed(fields);
-  const known = METHOD_TAGS.filter(({ tag }) => fields.methodTags.includes(tag));
   return {
     quantity: fields.quantity,
     kind: fields.kind,
@@ -43,8 +42,7 @@ export function indexColumns(
     versionRead: fields.versionRead,
     zUsed: representativeRedshift(used),
     year: citation?.year ?? null,
-    families: wordList(known.map(({ family }) => family)),
-    tags: wordList(known.map(({ tag }) => tag)),
+    ...methodColumns(fields.methodTags),
     alternativesKey: alternativesKey(fields, citation?.id ?? null),
     searchText: [
       formatRecordNumber(number),
@@ -57,6 +55,15 @@ export function indexColumns(
     ]
       .filter((part) => part !== null && part !== undefined && part !== "")
       .join("\n"),
+  };
+}
+
+/** Columns that follow from the method vocabulary, by the tags in use. */
+export function methodColumns(methodTags: readonly string[]): Pick<Revision, "families" | "tags"> {
+  const known = methodsOf(methodTags);
+  return {
+    families: wordList(known.map(({ family }) => family)),
+    tags: wordList(known.map(({ tag }) => tag)),
   };
 }
 

@@ -13,6 +13,7 @@ import { Evidence, EvidenceChunk, EvidenceFile } from "~server/evidence/evidence
 import { ImportMatch } from "~server/import/importMatch.entity";
 import { CaughtMailRow } from "~server/mail/caughtMail.entity";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
+import { MethodRow } from "~server/method/method.entity";
 import { NamedData, NamedDataAlias, NamedDataRelation } from "~server/namedData/namedData.entity";
 import { RecordNotice } from "~server/recordLife/recordNotice.entity";
 import { FieldCommentRecord } from "~server/review/comment.entity";
@@ -49,6 +50,7 @@ export const entities = [
   RevisionData,
   RevisionLink,
   RelationGate,
+  MethodRow,
   NamedData,
   NamedDataAlias,
   NamedDataRelation,

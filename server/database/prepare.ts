@@ -1,5 +1,7 @@
 import { TypeORMError, type DataSource } from "typeorm";
 
+import { startVocabulary } from "~server/method/vocabulary";
+
 import { migrations } from "./migrations";
 
 /** The database can't be used; the message is a sentence for whoever starts the server. */
@@ -33,6 +35,7 @@ export async function prepareDatabase(dataSource: DataSource): Promise<void> {
     await useUtf8(dataSource);
     if (migrations.length > 0) await migrate(dataSource);
     else await dataSource.synchronize();
+    await startVocabulary(dataSource.manager);
   } finally {
     await runner.query("SELECT RELEASE_LOCK(CONCAT(?, ':', DATABASE()))", [LOCK]);
     await runner.release();

@@ -1,15 +1,16 @@
 import { HttpProblem } from "~server/common/errors";
 import { paramsToFilter } from "~shared/filter/address";
 import { CONSTRAINT_SORTS, type CanonicalFilter, type ConstraintSort } from "~shared/filter/filter";
-import { METHOD_FAMILIES, METHOD_TAGS } from "~shared/methods/vocabulary";
+import { METHOD_FAMILIES, vocabulary } from "~shared/methods/vocabulary";
 import { RECORD_STATES } from "~shared/review/states";
 import { QUANTITIES, STATEMENT_KINDS, VERSIONS_READ, WEIGHTINGS } from "~shared/statement/fields";
 
 type Query = Record<string, unknown>;
 
-const WORDS: Record<string, readonly string[]> = {
+const WORDS: Record<string, readonly string[] | (() => readonly string[])> = {
   family: METHOD_FAMILIES,
-  tag: METHOD_TAGS.map((entry) => entry.tag),
+  // A retired tag still means what took it over.
+  tag: () => vocabulary().map(({ tag }) => tag),
   quantity: QUANTITIES,
   kind: STATEMENT_KINDS,
   weighting: WEIGHTINGS,
@@ -45,7 +46,8 @@ export function downloadParams(query: Query): {
 }
 
 function check(name: string, value: string): void {
-  const words = WORDS[name];
+  const known = WORDS[name];
+  const words = typeof known === "function" ? known() : known;
   const range = RANGES[name];
   if (name === "q" && value.length > LONGEST_TEXT) {
     throw bad(`“q” takes at most ${LONGEST_TEXT} characters.`);

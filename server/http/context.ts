@@ -7,6 +7,7 @@ import type { RequestContext, ViewerIdentity } from "~server/common/context";
 import { HttpProblem } from "~server/common/errors";
 import type { Config } from "~server/config/config";
 import type { RateLimits } from "~server/security/rateLimits";
+import { useKeptVocabulary } from "~server/method/vocabulary";
 import { may, type Action } from "~shared/review/policy";
 
 import { requestId } from "./requestId";
@@ -24,6 +25,7 @@ export async function buildContext(
   req: Request,
   res: Response,
 ): Promise<RequestContext> {
+  await useKeptVocabulary(parts.database.manager);
   return {
     requestId: requestId(),
     ip: req.ip ?? "unknown",

@@ -1,4 +1,5 @@
 /** Whether two records stand on the same data: by name, by alias, as a part of one another, or as stated. */
+import { carriesTag } from "~shared/methods/vocabulary";
 import type { ConstraintFields } from "~shared/statement/fields";
 
 import { comparableDataName } from "./dataName";
@@ -109,7 +110,7 @@ export class DataRegister {
 }
 
 function isJoint({ fields }: DataUser): boolean {
-  return fields.methodTags.includes("jointInference");
+  return carriesTag(fields.methodTags, "jointInference");
 }
 
 /**

@@ -1,6 +1,7 @@
 /** What each kind of event says in a sentence; the log is read in these words. */
+import { FAMILY_NAMES, type MethodFamily } from "~shared/methods/vocabulary";
 import { type FieldName } from "~shared/statement/fields";
-import { FIELD_NAMES } from "~shared/statement/words";
+import { FIELD_NAMES, tagName } from "~shared/statement/words";
 
 /** An event as its sentence needs it. */
 export interface ToldEvent {
@@ -57,6 +58,9 @@ function otherThing(event: ToldEvent, name: string): string {
   const other = text(event, name);
   return other === "" ? "others" : other.slice(other.indexOf(":") + 1);
 }
+
+const methodName = (event: ToldEvent): string => text(event, "name") || tagName(thing(event));
+const familyName = (family: string): string => FAMILY_NAMES[family as MethodFamily] ?? family;
 
 const person = (event: ToldEvent): string => event.person ?? "somebody";
 const thePerson = (event: ToldEvent): string => event.person ?? "Somebody";
@@ -159,6 +163,22 @@ const EVENT_WORDS: Readonly<Record<string, EventWords>> = {
   "demonstration.seeded": words(
     "Demonstration seeded",
     () => "The program filled the registry with the invented demonstration.",
+  ),
+  "method.added": words(
+    "Method added",
+    (event) => `${by(event)} added ${methodName(event)} to the method vocabulary.`,
+  ),
+  "method.changed": words("Method changed", (event) => {
+    const [before, family] = [text(event, "familyBefore"), text(event, "family")];
+    const moved =
+      before === "" ? "" : ` and moved it from ${familyName(before)} to ${familyName(family)}`;
+    return `${by(event)} changed the method ${methodName(event)}${moved}.`;
+  }),
+  "method.retired": words(
+    "Method retired",
+    (event) =>
+      `${by(event)} retired the method ${methodName(event)}; ` +
+      `${tagName(otherThing(event, "into"))} took it over.`,
   ),
   "namedData.added": words("Data named", (event) => `${by(event)} named the data ${thing(event)}.`),
   "namedData.edited": words(

@@ -1,5 +1,5 @@
 /** A filter as the parameters of an address, and back: once, for the client's pages and the downloads. */
-import { METHOD_FAMILIES, METHOD_TAGS } from "~shared/methods/vocabulary";
+import { currentTags, METHOD_FAMILIES, methodTags } from "~shared/methods/vocabulary";
 import { RECORD_STATES } from "~shared/review/states";
 import { QUANTITIES, STATEMENT_KINDS, VERSIONS_READ, WEIGHTINGS } from "~shared/statement/fields";
 
@@ -12,7 +12,6 @@ export type FilterParams = Record<string, string>;
 export type AddressParams = Record<string, string | readonly string[] | null | undefined>;
 
 const LONGEST_TEXT = 200;
-const TAGS = METHOD_TAGS.map((entry) => entry.tag);
 
 function canonicalList<T extends string>(
   order: readonly T[],
@@ -46,7 +45,10 @@ export function canonicalFilter(filter: ConstraintFilter): CanonicalFilter {
   const entries = {
     text: text === "" ? undefined : text,
     families: canonicalList(METHOD_FAMILIES, filter.families),
-    tags: canonicalList(TAGS, filter.tags),
+    tags: canonicalList(
+      methodTags().map(({ tag }) => tag),
+      filter.tags && currentTags(filter.tags),
+    ),
     quantities: canonicalList(QUANTITIES, filter.quantities),
     kinds: canonicalList(STATEMENT_KINDS, filter.kinds),
     weightings: canonicalList(WEIGHTINGS, filter.weightings),

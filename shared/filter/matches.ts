@@ -1,4 +1,5 @@
 /** A filter asked of one record at hand; the database asks the same of its index columns. */
+import { currentTags } from "~shared/methods/vocabulary";
 import type { Quantity, StatementKind, VersionRead, Weighting } from "~shared/statement/fields";
 
 import type { RecordState } from "~shared/review/states";
@@ -47,7 +48,7 @@ export function matchesFilter(record: FilteredRecord, filter: ConstraintFilter):
   const words = (filter.text ?? "").trim().split(/\s+/).filter(Boolean);
   return (
     anyWord(record.families, filter.families) &&
-    anyWord(record.tags, filter.tags) &&
+    anyWord(record.tags, filter.tags && currentTags(filter.tags)) &&
     oneOf(record.quantity, filter.quantities) &&
     oneOf(record.kind, filter.kinds) &&
     oneOf(record.weighting, filter.weightings) &&

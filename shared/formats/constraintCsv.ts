@@ -1,7 +1,7 @@
 /** The filtered list as CSV (RFC 4180, UTF-8), as printed and as used side by side. */
 import Papa from "papaparse";
 
-import { familiesOf } from "~shared/methods/vocabulary";
+import { currentTags, familiesOf } from "~shared/methods/vocabulary";
 import { asUsed } from "~shared/statement/asUsed";
 import type { AsUsed } from "~shared/statement/asUsed";
 import { curveFacts } from "~shared/statement/curve";
@@ -48,7 +48,11 @@ export const CONSTRAINT_COLUMNS: readonly Column<ExportRow>[] = [
     meaning: "Families of the methods",
     cell: (row) => list(familiesOf(row.fields.methodTags)),
   },
-  { name: "methods", meaning: "Tags of the methods", cell: (row) => list(row.fields.methodTags) },
+  {
+    name: "methods",
+    meaning: "Tags of the methods",
+    cell: (row) => list(currentTags(row.fields.methodTags)),
+  },
   { name: "z", meaning: "Redshift", cell: (row) => row.fields.z },
   { name: "z_low", meaning: "Low end of the redshift", cell: (row) => row.fields.zLow },
   { name: "z_high", meaning: "High end of the redshift", cell: (row) => row.fields.zHigh },

@@ -1,5 +1,5 @@
 /** Where a hand-kept list's columns and words can go: the record's fields, and how lists usually spell them. */
-import { findTag, looseWord, METHOD_TAGS } from "~shared/methods/vocabulary";
+import { findTag, looseWord, methodTags } from "~shared/methods/vocabulary";
 import { formatRecordNumber, parseRecordNumber } from "~shared/identifiers/recordNumber";
 import { parseDecimal } from "~shared/statement/decimal";
 import {
@@ -191,7 +191,7 @@ const QUANTITY_CHOICES = [
   "duration",
 ] as const;
 
-/** Fields whose cells hold words of a list. */
+/** Fields whose cells hold words of a list that never changes. */
 const WORD_CHOICES = {
   quantity: QUANTITY_CHOICES,
   species: SPECIES,
@@ -203,27 +203,27 @@ const WORD_CHOICES = {
   kind: STATEMENT_KINDS,
   level: LEVELS,
   estimator: ESTIMATORS,
-  methodTags: METHOD_TAGS.map((entry) => entry.tag),
   conditionedOn: CONDITION_KINDS,
   cosmicVariance: COSMIC_VARIANCES,
   versionRead: VERSIONS_READ,
 } as const satisfies Partial<Record<ImportField, readonly string[]>>;
 
-export type WordField = keyof typeof WORD_CHOICES;
+/** Their words, and those of the method vocabulary. */
+export type WordField = keyof typeof WORD_CHOICES | "methodTags";
 
 /** Whether a field's cells hold words that have to be matched. */
 export function isWordField(field: string): field is WordField {
-  return Object.hasOwn(WORD_CHOICES, field);
+  return field === "methodTags" || Object.hasOwn(WORD_CHOICES, field);
 }
 
 /** Words a cell of such a field can be matched to; a proposal can be more exact ("other:99.7"). */
 export function wordChoices(field: WordField): string[] {
-  return [...WORD_CHOICES[field]];
+  return field === "methodTags" ? methodTags().map(({ tag }) => tag) : [...WORD_CHOICES[field]];
 }
 
 /** Whether a value is one that buildRows understands for the field. */
 export function isWordChoice(field: WordField, value: string): boolean {
-  if ((WORD_CHOICES[field] as readonly string[]).includes(value)) return true;
+  if (wordChoices(field).includes(value)) return true;
   if (field === "level")
     return /^other:[\d.]{1,8}$/.test(value) && parseDecimal(value.slice(6)) !== null;
   if (field === "conditionedOn") return /^FL-\d{4,9}$/.test(value);

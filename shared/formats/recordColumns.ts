@@ -1,5 +1,5 @@
 /** The columns of a record in releases and fitting tables, with their units and descriptors. */
-import { familiesOf } from "~shared/methods/vocabulary";
+import { currentTags, familiesOf } from "~shared/methods/vocabulary";
 import { asUsed, type AsUsed } from "~shared/statement/asUsed";
 
 import type { FileCell, FileColumn, FileRow } from "./columnFile/columnFile";
@@ -76,7 +76,9 @@ export const RECORD_COLUMNS: readonly RecordColumn[] = [
   text("method_families", "Families of the methods", (record) =>
     listCell(familiesOf(record.fields.methodTags)),
   ),
-  text("methods", "Tags of the methods", (record) => listCell(record.fields.methodTags)),
+  text("methods", "Tags of the methods", (record) =>
+    listCell(currentTags(record.fields.methodTags)),
+  ),
   text("quantity", "Quantity", (record) => record.fields.quantity, { ucd: "meta.code.class" }),
   text("duration_unit", "Unit of a duration: redshift or myr", (_, used) =>
     used?.quantity === "duration" ? used.durationUnit : null,

@@ -1,4 +1,5 @@
 /** The method vocabulary: families drive marker and filter; a tag belongs to exactly one family. */
+import { START_VOCABULARY } from "./startVocabulary";
 
 export const METHOD_FAMILIES = [
   "dampingWing",
@@ -26,207 +27,112 @@ export const FAMILY_NAMES: Record<MethodFamily, string> = {
 };
 
 export interface MethodTag {
+  /** camelCase, never changed: records carry it. */
   tag: string;
   family: MethodFamily;
   name: string;
+  /** One line. */
   definition: string;
   /** The usual systematic, shown as a caution on the record. */
   caution: string;
   /** Other spellings met in hand-kept lists; matched without case or punctuation. */
   aliases: readonly string[];
+  /** Whether its results contain or assume others, so that they never count beside them as independent. */
+  neverIndependent: boolean;
+  /** The tag that took this one over; null while it is in use. */
+  retiredInto: string | null;
 }
 
-export const METHOD_TAGS: readonly MethodTag[] = [
-  {
-    tag: "quasarDampingWing",
-    family: "dampingWing",
-    name: "Quasar damping wing",
-    definition: "Absorption redward of Lyα in one quasar spectrum.",
-    caution: "Depends on the reconstruction of the intrinsic spectrum.",
-    aliases: ["damping wing (quasar)", "qso damping wing", "quasar wing"],
-  },
-  {
-    tag: "stackedQuasarDampingWing",
-    family: "dampingWing",
-    name: "Stacked quasar damping wing",
-    definition: "Mean damping wing of several quasar spectra.",
-    caution: "A stack shares its sightlines with single analyses.",
-    aliases: ["damping wing (stack)", "stacked damping wing"],
-  },
-  {
-    tag: "galaxyDampingWing",
-    family: "dampingWing",
-    name: "Galaxy damping wing",
-    definition: "Lyα break profile of galaxies.",
-    caution: "Local neutral gas of the galaxy mimics the signal.",
-    aliases: ["damping wing (galaxy)", "galaxy wing"],
-  },
-  {
-    tag: "burstDampingWing",
-    family: "dampingWing",
-    name: "Gamma-ray burst damping wing",
-    definition: "Damping wing in the afterglow of a gamma-ray burst.",
-    caution: "The host's own absorption must be separated.",
-    aliases: ["damping wing (gamma-ray burst)", "grb damping wing"],
-  },
-  {
-    tag: "darkPixels",
-    family: "darkPixels",
-    name: "Dark pixels",
-    definition: "Fraction of forest pixels without flux.",
-    caution: "Nearly model-independent, yet only an upper limit.",
-    aliases: ["dark pixel fraction", "dark pixel"],
-  },
-  {
-    tag: "darkGaps",
-    family: "forestOpacity",
-    name: "Dark gaps",
-    definition: "Lengths of stretches without transmission.",
-    caution: "Depends on simulated opacity fluctuations.",
-    aliases: ["dark gap", "dark gap lengths"],
-  },
-  {
-    tag: "forestOpacity",
-    family: "forestOpacity",
-    name: "Forest opacity",
-    definition: "Effective optical depth of the Lyman forests.",
-    caution: "Saturates at small neutral fractions.",
-    aliases: ["lya forest opacity", "effective optical depth"],
-  },
-  {
-    tag: "nearZones",
-    family: "forestOpacity",
-    name: "Near zones",
-    definition: "Sizes of ionized regions around quasars.",
-    caution: "Depends on quasar age and luminosity.",
-    aliases: ["near zone", "proximity zones"],
-  },
-  {
-    tag: "meanFreePath",
-    family: "forestOpacity",
-    name: "Mean free path",
-    definition: "Mean free path of ionizing photons.",
-    caution: "The step to a neutral fraction is a model.",
-    aliases: ["mfp"],
-  },
-  {
-    tag: "emitterLuminosityFunction",
-    family: "luminosityFunction",
-    name: "Lyα luminosity function",
-    definition: "Evolution of the luminosity function of Lyα emitters.",
-    caution: "Depends on the assumed intrinsic evolution.",
-    aliases: [
-      "lya emitter luminosity function",
-      "lae luminosity function",
-      "lya luminosity function",
-      "laelf",
-    ],
-  },
-  {
-    tag: "equivalentWidths",
-    family: "lineStrength",
-    name: "Lyα equivalent widths",
-    definition: "Distribution of Lyα equivalent widths of galaxies.",
-    caution: "Depends on the intrinsic line and velocity offset.",
-    aliases: ["lya equivalent widths", "equivalent width distribution"],
-  },
-  {
-    tag: "emitterFraction",
-    family: "lineStrength",
-    name: "Lyα emitter fraction",
-    definition: "Fraction of galaxies that show Lyα.",
-    caution: "Depends on selection and completeness.",
-    aliases: ["lya fraction", "lya emitter fraction"],
-  },
-  {
-    tag: "lineProfile",
-    family: "lineStrength",
-    name: "Lyα line profile",
-    definition: "Shape of the Lyα line.",
-    caution: "Depends on outflow models.",
-    aliases: ["lya line profile", "lya profile"],
-  },
-  {
-    tag: "emitterClustering",
-    family: "emitterClustering",
-    name: "Emitter clustering",
-    definition: "Angular correlation of Lyα emitters.",
-    caution: "Halo model and patchiness are degenerate.",
-    aliases: ["lya emitter clustering", "lae clustering"],
-  },
-  {
-    tag: "ionizedRegionSizes",
-    family: "emitterClustering",
-    name: "Ionized-region sizes",
-    definition: "Sizes of ionized regions around emitters.",
-    caution: "Few regions, strong cosmic variance.",
-    aliases: ["bubble sizes", "ionized bubbles"],
-  },
-  {
-    tag: "twentyOneCmPower",
-    family: "twentyOneCm",
-    name: "21-cm power",
-    definition: "Power spectrum of the 21-cm line.",
-    caution: "Foregrounds and calibration dominate the error.",
-    aliases: ["21-cm power spectrum", "21cm power"],
-  },
-  {
-    tag: "twentyOneCmGlobal",
-    family: "twentyOneCm",
-    name: "21-cm sky average",
-    definition: "Sky-averaged 21-cm signal.",
-    caution: "Degenerate with smooth foregrounds.",
-    aliases: ["21-cm global signal", "sky-averaged signal"],
-  },
-  {
-    tag: "twentyOneCmForest",
-    family: "twentyOneCm",
-    name: "21-cm forest",
-    definition: "21-cm absorption against radio sources.",
-    caution: "Depends on the heating of the gas.",
-    aliases: ["21cm forest"],
-  },
-  {
-    tag: "cmbPolarization",
-    family: "cmb",
-    name: "CMB polarization",
-    definition: "Large-scale polarization of the CMB.",
-    caution: "The optical depth came from a history family.",
-    aliases: ["cmb optical depth", "large-scale polarization"],
-  },
-  {
-    tag: "kineticSz",
-    family: "cmb",
-    name: "Kinetic SZ power",
-    definition: "Small-scale CMB power from patchy reionization.",
-    caution: "Depends on the late-time contribution that was removed.",
-    aliases: ["kinetic sz power", "ksz", "kinetic sz"],
-  },
-  {
-    tag: "thermalHistory",
-    family: "other",
-    name: "Thermal history",
-    definition: "Temperature of the gas after reionization.",
-    caution: "The step to a neutral fraction is a model.",
-    aliases: ["igm temperature"],
-  },
-  {
-    tag: "sourceBudget",
-    family: "other",
-    name: "Source budget",
-    definition: "Ionizing photons counted from galaxies.",
-    caution: "Escape fraction and faint sources are assumed; never independent.",
-    aliases: ["photon budget"],
-  },
-  {
-    tag: "jointInference",
-    family: "other",
-    name: "Joint inference",
-    definition: "Posterior from several data sets at once.",
-    caution: "Contains other constraints; never independent of them.",
-    aliases: ["joint fit", "joint constraints"],
-  },
-];
+// ---- The vocabulary in force
+
+/*
+ * Maintainers change the vocabulary while the program runs, and nearly everything reads it: so it stands
+ * here once. The server sets it from the database before it answers a request, the client from the first
+ * answer it gets.
+ */
+interface InForce {
+  all: readonly MethodTag[];
+  inUse: readonly MethodTag[];
+  byTag: ReadonlyMap<string, MethodTag>;
+}
+
+let inForce = read(START_VOCABULARY);
+const listeners = new Set<() => void>();
+
+function read(tags: readonly MethodTag[]): InForce {
+  const all = METHOD_FAMILIES.flatMap((family) => tags.filter((entry) => entry.family === family));
+  return {
+    all,
+    inUse: all.filter(({ retiredInto }) => retiredInto === null),
+    byTag: new Map(all.map((entry) => [entry.tag, entry])),
+  };
+}
+
+/** Puts a vocabulary in force, in the order given within each family. */
+export function setVocabulary(tags: readonly MethodTag[]): void {
+  inForce = read(tags);
+  for (const listener of listeners) listener();
+}
+
+/** Calls back after each change, until the returned function is called. */
+export function onVocabularyChange(listener: () => void): () => void {
+  listeners.add(listener);
+  return () => listeners.delete(listener);
+}
+
+/**
+ * Does something under another vocabulary: what a release froze is read in its own words.
+ *
+ * @param work - Must not wait for anything: the vocabulary is put back when it returns.
+ */
+export function withVocabulary<T>(tags: readonly MethodTag[], work: () => T): T {
+  const before = inForce;
+  inForce = read(tags);
+  try {
+    return work();
+  } finally {
+    inForce = before;
+  }
+}
+
+/** Every tag, retired ones too; the same array until the vocabulary changes. */
+export function vocabulary(): readonly MethodTag[] {
+  return inForce.all;
+}
+
+/** Tags in use, by family; the same array until the vocabulary changes. */
+export function methodTags(): readonly MethodTag[] {
+  return inForce.inUse;
+}
+
+/** The tag in use that a tag stands for: itself, or what took it over; null when there is no such tag. */
+export function currentTag(tag: string): MethodTag | null {
+  let entry = inForce.byTag.get(tag);
+  // As many steps as there are tags, so that a circle ends.
+  for (let step = 0; entry && step <= inForce.all.length; step += 1) {
+    if (entry.retiredInto === null) return entry;
+    entry = inForce.byTag.get(entry.retiredInto);
+  }
+  return null;
+}
+
+/** The tags in use that these stand for, each once; what is no tag stays as it is. */
+export function currentTags(tags: readonly string[]): string[] {
+  return [...new Set(tags.map((tag) => currentTag(tag)?.tag ?? tag))];
+}
+
+/** Whether one of these tags is, or was taken over by the same tag as, the one asked for. */
+export function carriesTag(tags: readonly string[], wanted: string): boolean {
+  return currentTags(tags).includes(currentTag(wanted)?.tag ?? wanted);
+}
+
+/** The entries in use of these tags, in the vocabulary's order. */
+export function methodsOf(tags: readonly string[]): MethodTag[] {
+  const current = currentTags(tags);
+  return inForce.inUse.filter(({ tag }) => current.includes(tag));
+}
+
+// ---- Families
 
 /**
  * Family a record is shown under: the one its tags share; several families make it a joint result,
@@ -242,11 +148,11 @@ export function familyOf(tags: readonly string[]): MethodFamily | null {
 
 /** Every family the tags belong to, in the order of the vocabulary: what a filter by family looks at. */
 export function familiesOf(tags: readonly string[]): MethodFamily[] {
-  const met = new Set(
-    tags.map((tag) => METHOD_TAGS.find((entry) => entry.tag === tag)?.family ?? null),
-  );
+  const met = new Set(methodsOf(tags).map(({ family }) => family));
   return METHOD_FAMILIES.filter((family) => met.has(family));
 }
+
+// ---- Spellings
 
 /** Letters and digits only, Lyα spelled one way: what two spellings of one word share. */
 export function looseWord(text: string): string {
@@ -259,13 +165,24 @@ export function looseWord(text: string): string {
     .replace(/[^a-z0-9]+/g, "");
 }
 
-/** The tag a hand-kept list means by a word: its tag, name or one of its aliases, without case or punctuation. */
+/** Every spelling a tag is met under. */
+export function spellingsOf({
+  tag,
+  name,
+  aliases,
+}: Pick<MethodTag, "tag" | "name" | "aliases">): string[] {
+  return [tag, name, ...aliases];
+}
+
+/**
+ * The tag a hand-kept list means by a word: its tag, name or one of its aliases, without case or
+ * punctuation; the words of a retired tag mean the one that took it over.
+ */
 export function findTag(word: string): MethodTag | null {
   const loose = looseWord(word);
   if (loose === "") return null;
-  return (
-    METHOD_TAGS.find((entry) =>
-      [entry.tag, entry.name, ...entry.aliases].some((spelling) => looseWord(spelling) === loose),
-    ) ?? null
+  const met = inForce.all.find((entry) =>
+    spellingsOf(entry).some((spelling) => looseWord(spelling) === loose),
   );
+  return met ? currentTag(met.tag) : null;
 }

@@ -48,6 +48,7 @@ export const ACTIONS = [
   "keepEvidence",
   "keepNamedData",
   "changeRecordLife",
+  "keepVocabulary",
 ] as const;
 export type Action = (typeof ACTIONS)[number];
 
@@ -113,6 +114,7 @@ export const MAY: Record<Action, Permission> = {
   keepEvidence: { roles: CONTRIBUTOR, own: "only" },
   keepNamedData: { roles: EDITOR_OR_MAINTAINER, own: "any" },
   changeRecordLife: { roles: MAINTAINER, own: "any" },
+  keepVocabulary: { roles: MAINTAINER, own: "any" },
 };
 
 /**

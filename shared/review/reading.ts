@@ -1,4 +1,5 @@
 /** The second reading: what an editor reads, when two texts agree, and what must be read again. */
+import { currentTags } from "~shared/methods/vocabulary";
 import { curveFacts } from "~shared/statement/curve";
 import { parseDecimal } from "~shared/statement/decimal";
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
@@ -164,7 +165,9 @@ export function fieldsAgree<K extends FieldName | CurveFact>(
   if (name === "weighting") return (a ?? "unknown") === (b ?? "unknown");
   if (isEmpty(a) || isEmpty(b)) return isEmpty(a) && isEmpty(b);
   if (Array.isArray(a) && Array.isArray(b)) {
-    const [left, right] = [new Set<string>(a), new Set<string>(b)];
+    // A retired method and the one that took it over are one.
+    const entries = (list: string[]) => new Set(name === "methodTags" ? currentTags(list) : list);
+    const [left, right] = [entries(a), entries(b)];
     return left.size === right.size && [...left].every((entry) => right.has(entry));
   }
   if (typeof a === "string" && typeof b === "string") {

@@ -1,5 +1,5 @@
 /** How a statement is set: as a paper would, as printed or as used, ready to be drawn or written. */
-import { familyOf, findTag } from "~shared/methods/vocabulary";
+import { currentTag, familyOf, methodsOf } from "~shared/methods/vocabulary";
 
 import { widthText } from "./asUsed";
 import type { AsUsed } from "./asUsed";
@@ -244,8 +244,9 @@ export function recordTitle(fields: ConstraintFields): string {
 }
 
 function methodTitle(tags: readonly string[]): string {
-  const known = tags.filter((tag) => findTag(tag) !== null);
+  const known = methodsOf(tags);
   if (known.length === 0) return "Constraint";
-  if (known.length > 1 && familyOf(known) === "other") return "Several methods";
-  return tagName(known[0] ?? "");
+  if (known.length > 1 && familyOf(tags) === "other") return "Several methods";
+  const first = tags.find((tag) => currentTag(tag) !== null);
+  return tagName(first ?? "");
 }

@@ -1,4 +1,6 @@
 /** Rules that compare a record with the registry. */
+import { currentTags } from "~shared/methods/vocabulary";
+
 import { asUsed } from "./asUsed";
 import type { AsUsed } from "./asUsed";
 import type { ConstraintFields } from "./fields";
@@ -54,7 +56,8 @@ export function registryFindings(
 }
 
 function sharesTag(a: ConstraintFields, b: ConstraintFields): boolean {
-  return a.methodTags.some((tag) => b.methodTags.includes(tag));
+  const tags = currentTags(b.methodTags);
+  return currentTags(a.methodTags).some((tag) => tags.includes(tag));
 }
 
 /** Redshift a statement stands at: its own, else the middle of its ends. */
@@ -115,13 +118,13 @@ function widthLikeOneSigma(
 ): Finding | null {
   const own = halfWidth(used);
   if (own === null || used.level === null || Math.abs(used.level - 0.95) > 0.006) return null;
-  for (const tag of fields.methodTags) {
+  for (const tag of currentTags(fields.methodTags)) {
     const compared = neighbours.flatMap((neighbour) => {
       const other = asUsed(neighbour.fields);
       const width = other && halfWidth(other);
       if (!other || width === null || other.level === null) return [];
       const fits =
-        neighbour.fields.methodTags.includes(tag) &&
+        currentTags(neighbour.fields.methodTags).includes(tag) &&
         other.quantity === used.quantity &&
         other.evaluatedIn === used.evaluatedIn &&
         Math.abs(other.level - 0.68) < 0.006 &&

@@ -1,7 +1,7 @@
 /** The rules that make a record vetted, checked in the form and again on the server. */
 import type Big from "big.js";
 
-import { findTag, METHOD_TAGS } from "~shared/methods/vocabulary";
+import { carriesTag, currentTag, findTag } from "~shared/methods/vocabulary";
 
 import { asUsed, HELIUM_PER_HYDROGEN } from "./asUsed";
 import type { AsUsed } from "./asUsed";
@@ -603,7 +603,7 @@ const COLLECTION =
 function origin(fields: ConstraintFields): Finding[] {
   const found: Finding[] = [];
   for (const tag of fields.methodTags) {
-    if (!METHOD_TAGS.some((entry) => entry.tag === tag)) {
+    if (currentTag(tag) === null) {
       const near = findTag(tag);
       found.push(
         error(
@@ -615,7 +615,8 @@ function origin(fields: ConstraintFields): Finding[] {
     }
   }
   const sightlines =
-    fields.methodTags.length > 0 && fields.methodTags.every((tag) => SIGHTLINE_TAGS.includes(tag));
+    fields.methodTags.length > 0 &&
+    fields.methodTags.every((tag) => SIGHTLINE_TAGS.some((one) => carriesTag([tag], one)));
   const only = fields.dataUsed.length === 1 ? (fields.dataUsed[0] ?? "") : "";
   if (
     fields.quantity === "neutralFraction" &&

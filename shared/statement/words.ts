@@ -1,5 +1,5 @@
 /** Words for every field and every word of the vocabulary, the same in the form, the review and the exports. */
-import { METHOD_TAGS } from "~shared/methods/vocabulary";
+import { currentTag, currentTags } from "~shared/methods/vocabulary";
 
 import { curveText } from "./curve";
 import type {
@@ -195,9 +195,9 @@ export function conditionWord(condition: string): string {
     : condition;
 }
 
-/** Name of a method tag, or the tag itself when the vocabulary does not hold it. */
+/** Name of a method tag, of what took it over if it is retired, or the tag itself when the vocabulary does not hold it. */
 export function tagName(tag: string): string {
-  return METHOD_TAGS.find((entry) => entry.tag === tag)?.name ?? tag;
+  return currentTag(tag)?.name ?? tag;
 }
 
 /** The level a statement holds at, in a sentence: "at 95 %", "at one sigma", "level not stated"; "" while open. */
@@ -234,7 +234,8 @@ export function fieldText(name: FieldName, fields: ConstraintFields): string {
   if (Array.isArray(held)) {
     const word =
       name === "methodTags" ? tagName : name === "conditionedOn" ? conditionWord : String;
-    return held.map((entry) => word(entry)).join("; ");
+    const entries = name === "methodTags" ? currentTags(held as string[]) : held;
+    return entries.map((entry) => word(entry)).join("; ");
   }
   return CHOICE_WORDS[name]?.[held] ?? held;
 }

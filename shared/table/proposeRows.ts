@@ -2,7 +2,7 @@
 import { conditionChains, conditionChainWords, conditionsIn } from "~shared/dependence/conditions";
 import { comparableDataName } from "~shared/dependence/dataName";
 import { rowLikelihood } from "~shared/likelihood";
-import { METHOD_TAGS } from "~shared/methods/vocabulary";
+import { carriesTag, familiesOf } from "~shared/methods/vocabulary";
 import type { RecordState } from "~shared/review/states";
 import { asUsed, type AsUsed } from "~shared/statement/asUsed";
 import { curveNodes } from "~shared/statement/curve";
@@ -132,7 +132,7 @@ function keepOneAlternative(rows: readonly Weighed[]): void {
 }
 
 function isJoint(row: CandidateRow): boolean {
-  return row.fields.methodTags.includes("jointInference");
+  return carriesTag(row.fields.methodTags, "jointInference");
 }
 
 function leaveJointInferenceOut(rows: readonly Weighed[]): void {
@@ -171,10 +171,8 @@ function overlaps(a: Weighed, b: Weighed): boolean {
   return !(a.citation === b.citation && atSeparateRedshifts(a.used, b.used));
 }
 
-const FAMILY_OF = new Map(METHOD_TAGS.map((tag) => [tag.tag, tag.family]));
-
 function isCmb(row: CandidateRow): boolean {
-  return row.fields.methodTags.some((tag) => FAMILY_OF.get(tag) === "cmb");
+  return familiesOf(row.fields.methodTags).includes("cmb");
 }
 
 function cautions(row: Weighed, rows: readonly Weighed[]): string[] {

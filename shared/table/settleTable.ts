@@ -8,7 +8,7 @@ import {
 import type { TableSpec } from "~shared/likelihood/compile";
 import { marginalCorrelation } from "~shared/likelihood/correlatedSet";
 import { equalMixtureSd } from "~shared/likelihood/mixture";
-import { familiesOf, type MethodFamily } from "~shared/methods/vocabulary";
+import { carriesTag, familiesOf, type MethodFamily } from "~shared/methods/vocabulary";
 import { asUsed, type AsUsed } from "~shared/statement/asUsed";
 import { CONDITION_KINDS, type ConditionKind } from "~shared/statement/fields";
 import { conditionWord } from "~shared/statement/words";
@@ -356,7 +356,8 @@ class Settling {
   }
 
   private decideJointInference(): void {
-    const isJoint = (row: Row): boolean => row.record.fields.methodTags.includes("jointInference");
+    const isJoint = (row: Row): boolean =>
+      carriesTag(row.record.fields.methodTags, "jointInference");
     const joint = this.included().filter(isJoint);
     const others = this.included().filter((row) => !isJoint(row));
     for (const row of joint) {

@@ -4,17 +4,19 @@ import { tap } from "rxjs";
 import { reportConnection } from "./connection";
 import { possibleTypes } from "./possibleTypes";
 import { isConnectionLost } from "./userMessage";
+import { vocabularyLink } from "./vocabularyLink";
 
 /** The cache with what it must know of the API; tests use the same. */
 export function createCache(): InMemoryCache {
   return new InMemoryCache({
     possibleTypes,
     typePolicies: {
-      Query: { fields: { session: { merge: true } } },
+      Query: { fields: { session: { merge: true }, methodVocabulary: { merge: false } } },
       // Content without an identity of its own: a newer answer replaces it whole.
       ConstraintFields: { keyFields: false },
       Constraint: { keyFields: ["number"], fields: { fields: { merge: false } } },
       FittingTable: { keyFields: ["slug"], fields: { constraints: { merge: false } } },
+      MethodTag: { keyFields: ["tag"], fields: { aliases: { merge: false } } },
       NamedData: { keyFields: ["slug"] },
       DataLink: { keyFields: false },
       EventMark: { keyFields: false },
@@ -41,7 +43,7 @@ export function createClient(uri = "/graphql"): ApolloClient {
     headers: { "apollo-require-preflight": "true" },
   });
   return new ApolloClient({
-    link: ApolloLink.from([watch, heard, http]),
+    link: ApolloLink.from([watch, heard, vocabularyLink(), http]),
     cache: createCache(),
     defaultOptions: { watchQuery: { fetchPolicy: "cache-and-network" } },
   });

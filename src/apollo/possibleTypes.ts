@@ -13,6 +13,7 @@ export const possibleTypes: Record<string, string[]> = {
   ImportResult: ["ImportDone", "Refusal"],
   KeepCitationsResult: ["KeptCitations", "Refusal"],
   LookUpResult: ["LookedUpCitation", "Refusal"],
+  MethodTagResult: ["MethodTag", "Refusal"],
   NamedDataResult: ["NamedData", "Refusal"],
   PersonResult: ["Person", "Refusal"],
   RecordLifeResult: ["RecordLife", "Refusal"],

@@ -1,6 +1,7 @@
 import type { MigrationInterface } from "typeorm";
 
 import { Schema1796111633401 } from "./1796111633401-Schema";
+import { MethodVocabulary1796130000003 } from "./1796130000003-MethodVocabulary";
 import { NamedDataAndLife1796130000004 } from "./1796130000004-NamedDataAndLife";
 import { CorrelatedSets1796130000005 } from "./1796130000005-CorrelatedSets";
 import { DeskAndAuthorCheck1796130000006 } from "./1796130000006-DeskAndAuthorCheck";
@@ -12,6 +13,7 @@ import { TableVersions1796130000011 } from "./1796130000011-TableVersions";
 /** Every migration, oldest first. A list, not a glob: it is the same under swc, Jest and build/. */
 export const migrations: (new () => MigrationInterface)[] = [
   Schema1796111633401,
+  MethodVocabulary1796130000003,
   NamedDataAndLife1796130000004,
   CorrelatedSets1796130000005,
   DeskAndAuthorCheck1796130000006,

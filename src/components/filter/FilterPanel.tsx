@@ -11,7 +11,8 @@ import { Label } from "@/components/Text";
 import { space } from "@/theme/tokens";
 import { isEmptyFilter } from "~shared/filter/address";
 import type { CanonicalFilter, ConstraintFilter } from "~shared/filter/filter";
-import { METHOD_FAMILIES, METHOD_TAGS } from "~shared/methods/vocabulary";
+import { useMethodTags } from "@/components/useMethodTags";
+import { METHOD_FAMILIES } from "~shared/methods/vocabulary";
 import { RECORD_STATES, type RecordState } from "~shared/review/states";
 import {
   QUANTITIES,
@@ -93,7 +94,7 @@ export function FilterPanel({
   onChange: (filter: ConstraintFilter) => void;
 }) {
   const change = (part: ConstraintFilter) => onChange({ ...filter, ...part });
-  const tags = METHOD_TAGS.filter(
+  const tags = useMethodTags().filter(
     ({ family, tag }) => filter.families?.includes(family) || filter.tags?.includes(tag),
   );
   return (
@@ -110,6 +111,14 @@ export function FilterPanel({
             />
           ))}
         </View>
+      </View>
+      <View style={styles.clear}>
+        <Button
+          label="What the methods mean"
+          kind="text"
+          icon="help-circle-outline"
+          href="/methods"
+        />
       </View>
       {tags.length > 1 ? (
         <View role="group" aria-label="Methods">

@@ -8,11 +8,12 @@ import { Field } from "@/components/Field";
 import { Marker } from "@/components/Marker";
 import { Sheet } from "@/components/Sheet";
 import { Block, Caption, Dense, Label } from "@/components/Text";
+import { useMethodTags } from "@/components/useMethodTags";
 import { useColors } from "@/theme/ThemeProvider";
 import {
+  currentTags,
   FAMILY_NAMES,
   METHOD_FAMILIES,
-  METHOD_TAGS,
   type MethodTag,
 } from "~shared/methods/vocabulary";
 
@@ -39,8 +40,11 @@ export function MethodPicker({
   const colors = useColors();
   const [open, setOpen] = useState(false);
   const [query, setQuery] = useState("");
-  const chosen = METHOD_TAGS.filter(({ tag }) => tags.includes(tag));
-  const shown = METHOD_TAGS.filter((tag) => matches(tag, query));
+  const methods = useMethodTags();
+  // A draft may carry a retired tag: what took it over stands for it.
+  const current = currentTags(tags);
+  const chosen = methods.filter(({ tag }) => current.includes(tag));
+  const shown = methods.filter((tag) => matches(tag, query));
 
   return (
     <View role="group" aria-label={label} style={{ gap: 8 }}>
@@ -51,7 +55,7 @@ export function MethodPicker({
           <Chip
             label={tag.name}
             selected
-            onRemove={() => onChange(tags.filter((one) => one !== tag.tag))}
+            onRemove={() => onChange(current.filter((one) => one !== tag.tag))}
           />
           <Caption style={{ flexShrink: 1 }}>{FAMILY_NAMES[tag.family]}</Caption>
         </View>
@@ -93,9 +97,9 @@ export function MethodPicker({
                     key={tag}
                     label={name}
                     hint={definition}
-                    checked={tags.includes(tag)}
+                    checked={current.includes(tag)}
                     onChange={(checked) =>
-                      onChange(checked ? [...tags, tag] : tags.filter((one) => one !== tag))
+                      onChange(checked ? [...current, tag] : current.filter((one) => one !== tag))
                     }
                   />
                 ))}

@@ -24,7 +24,7 @@ import { useLayoutClass } from "@/layout/useLayoutClass";
 import { useColors } from "@/theme/ThemeProvider";
 import { space } from "@/theme/tokens";
 import { RecordLifeDocument, type ConstraintByNumberQuery } from "~graphql/generated/graphql";
-import { familyOf, METHOD_TAGS } from "~shared/methods/vocabulary";
+import { familyOf, methodsOf } from "~shared/methods/vocabulary";
 import { asUsed, type AsUsed } from "~shared/statement/asUsed";
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
 import { notationAsPrinted, notationAsUsed } from "~shared/statement/notation";
@@ -35,6 +35,7 @@ import { DataUsedPart } from "./DataUsedPart";
 import { HappenedPart } from "./HappenedPart";
 import { LifeNotices } from "./LifeNotices";
 import { LifeSheet, type LifeTask } from "./LifeSheet";
+import { MethodsPart } from "./MethodsPart";
 import { RelationsPart } from "./RelationsPart";
 import { ReportCount } from "./ReportCount";
 import { ReportSheet } from "./ReportSheet";
@@ -140,6 +141,7 @@ export function RecordView({ record }: { record: RecordData }) {
           <EvidenceFiles number={record.quotable} />
         </View>
         <View style={[styles.column, beside && styles.third]}>
+          <MethodsPart tags={fields.methodTags} />
           <DataUsedPart record={record} />
           <RelationsPart record={record} life={life} />
           {lifeQuery.error && !life ? (
@@ -272,9 +274,7 @@ function preferredWords({ number, alternatives }: RecordData): string {
 function Cautions({ record }: { record: RecordData }) {
   const { fields, sharesDataWith, alternatives } = record;
   const others = alternatives.filter(({ number }) => number !== record.number);
-  const systematic = METHOD_TAGS.filter(({ tag }) => fields.methodTags.includes(tag)).map(
-    ({ caution }) => caution,
-  );
+  const systematic = methodsOf(fields.methodTags).map(({ caution }) => caution);
   const lines = [
     `Model-dependent. ${systematic.join(" ")}`.trim(),
     sharesDataWith.length > 0

@@ -17,6 +17,10 @@ export function MaintainerDesk() {
             <Dense style={{ fontWeight: "600" }}>People</Dense>
             <Dense muted>Find a person, grant and revoke roles</Dense>
           </ListRow>
+          <ListRow href="/desk/vocabulary" first={false}>
+            <Dense style={{ fontWeight: "600" }}>Method vocabulary</Dense>
+            <Dense muted>Methods, their families, definitions and cautions</Dense>
+          </ListRow>
           <ListRow href="/desk/releases" first={false}>
             <Dense style={{ fontWeight: "600" }}>Releases</Dense>
             <Dense muted>Cut a numbered snapshot of all approved records</Dense>

@@ -16,7 +16,7 @@ import { useTheme } from "@/theme/ThemeProvider";
 import { space } from "@/theme/tokens";
 import { HistoryPointDocument } from "~graphql/generated/graphql";
 import { FORM_WORDS, type RowLikelihood, rowLikelihood } from "~shared/likelihood";
-import { findTag } from "~shared/methods/vocabulary";
+import { methodsOf } from "~shared/methods/vocabulary";
 import { type Notation, notationAsPrinted, notationAsUsed } from "~shared/statement/notation";
 import type { AsUsed } from "~shared/statement/asUsed";
 import {
@@ -237,9 +237,8 @@ function PointCaution({
   row: HistoryRow;
   shared: readonly { number: string; shortName: string; via: string }[];
 }) {
-  const caution = row.fields.methodTags
-    .map((tag) => findTag(tag)?.caution)
-    .filter(Boolean)
+  const caution = methodsOf(row.fields.methodTags)
+    .map((method) => method.caution)
     .join(" ");
   const via = [...new Set(shared.map((link) => link.via))];
   return (

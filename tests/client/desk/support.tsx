@@ -57,6 +57,7 @@ export function sessionMock(roles: Role[] | null, demonstration = true): MockedR
     request: { query: SessionDocument },
     result: {
       data: {
+        methodVocabulary: [],
         session: {
           __typename: "Session",
           demonstration,

@@ -32,6 +32,7 @@ const session = {
   request: { query: SessionDocument },
   result: {
     data: {
+      methodVocabulary: [],
       session: {
         __typename: "Session" as const,
         demonstration: true,

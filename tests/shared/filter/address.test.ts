@@ -10,7 +10,7 @@ import {
 import { filterWords } from "~shared/filter/describe";
 import { CONSTRAINT_SORTS } from "~shared/filter/filter";
 import type { ConstraintFilter } from "~shared/filter/filter";
-import { METHOD_FAMILIES, METHOD_TAGS } from "~shared/methods/vocabulary";
+import { METHOD_FAMILIES, methodTags } from "~shared/methods/vocabulary";
 import { RECORD_STATES } from "~shared/review/states";
 import { QUANTITIES, STATEMENT_KINDS, VERSIONS_READ, WEIGHTINGS } from "~shared/statement/fields";
 
@@ -20,7 +20,7 @@ const listOf = <T>(words: readonly T[]) =>
 const arbitraryFilter: fc.Arbitrary<ConstraintFilter> = fc.record({
   text: fc.option(fc.string({ unit: "binary", maxLength: 300 })),
   families: listOf(METHOD_FAMILIES),
-  tags: listOf(METHOD_TAGS.map(({ tag }) => tag)),
+  tags: listOf(methodTags().map(({ tag }) => tag)),
   quantities: listOf(QUANTITIES),
   kinds: listOf(STATEMENT_KINDS),
   weightings: listOf(WEIGHTINGS),

@@ -1,6 +1,6 @@
 import fc from "fast-check";
 
-import { METHOD_TAGS } from "~shared/methods/vocabulary";
+import { methodTags } from "~shared/methods/vocabulary";
 import * as fields from "~shared/statement/fields";
 import type { ConstraintFields, FieldName } from "~shared/statement/fields";
 
@@ -60,7 +60,7 @@ function contentOf(name: FieldName): fc.Arbitrary<unknown> {
   const words = choices[name];
   if (words) return fc.option(fc.constantFrom(...words));
   if (name === "methodTags") {
-    return fc.array(fc.oneof(fc.constantFrom(...METHOD_TAGS.map(({ tag }) => tag)), typedText), {
+    return fc.array(fc.oneof(fc.constantFrom(...methodTags().map(({ tag }) => tag)), typedText), {
       maxLength: 3,
     });
   }

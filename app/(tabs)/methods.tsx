@@ -1,0 +1,1 @@
+export { MethodsScreen as default } from "@/features/vocabulary/MethodsScreen";
