@@ -24,7 +24,7 @@ export function FilePick({ label, accept, onPick, onFiles }: Props) {
   async function take(files: FileList | null) {
     const file = files?.[0];
     if (file === undefined) return;
-    if (onFiles) return onFiles([...(files ?? [])]);
+    if (onFiles) return onFiles(Array.from(files ?? []));
     try {
       const text = new TextDecoder("utf-8", { fatal: true }).decode(await file.arrayBuffer());
       setName(file.name);
