@@ -15,6 +15,7 @@ import { citedRelease, releaseAddress } from "~server/release/release.type";
 import { setNumbersReadBlind } from "~server/correlatedSet/readBlind";
 import { recordsReadBlind } from "~server/review/blindness";
 import type { RouteInstaller, RouteParts } from "~server/routes";
+import { inWordsOf } from "~server/table/surroundings";
 import { byteByByte, fieldWidths } from "~shared/formats/columnFile/byteByByte";
 import type { FileHead, FileRow } from "~shared/formats/columnFile/columnFile";
 import { csv } from "~shared/formats/columnFile/csv";
@@ -170,15 +171,18 @@ function headOf(release: Release, publicUrl: string): FileHead {
 }
 
 async function* rowsOf(manager: EntityManager, release: Release): AsyncGenerator<FileRow> {
+  const kept = releaseSurroundings(release);
   for await (const row of releaseRows(manager, release.number)) {
     const { number, state, fields, citation } = rowContent(row);
     const { key, shortName, year, doi, arxiv, bibcode } = citation;
-    yield recordCells({
-      number,
-      quotable: formatQuotable(row.constraintId, row.ordinal),
-      state,
-      fields,
-      citation: { key, shortName, year, doi, arxiv, bibcode },
-    });
+    yield inWordsOf(kept, () =>
+      recordCells({
+        number,
+        quotable: formatQuotable(row.constraintId, row.ordinal),
+        state,
+        fields,
+        citation: { key, shortName, year, doi, arxiv, bibcode },
+      }),
+    );
   }
 }

@@ -5,7 +5,7 @@ import type { ViewerIdentity } from "~server/common/context";
 import { findApproved } from "~server/constraint/constraint.query";
 import { indexColumns } from "~server/constraint/revision.index";
 import { lastEvent, type LastEvent } from "~server/event/eventLog";
-import { rowContent } from "~server/release/release.entity";
+import { releaseSurroundings, rowContent } from "~server/release/release.entity";
 import { releaseRows } from "~server/release/releaseContent";
 import { findRelease } from "~server/release/release.service";
 import { recordsReadBlind } from "~server/review/blindness";
@@ -14,6 +14,7 @@ import { matchesFilter } from "~shared/filter/matches";
 import { copyRecords } from "./copyRecords";
 import type { TableRecipe } from "./recipe";
 import type { SnapshotConstraint } from "./snapshot";
+import { inWordsOf } from "./surroundings";
 
 /** Rows a table can be built over; more than any group fits, and no more than one answer should hold. */
 export const MOST_CANDIDATES = 2000;
@@ -70,16 +71,20 @@ async function fromRelease(
 ): Promise<Candidates | Refusal> {
   const release = await findRelease(manager, number);
   if (!release) return refuse("release", `There is no release ${number}.`, "release");
+  const kept = releaseSurroundings(release);
   const blind = await recordsReadBlind(manager, viewer, new Date());
   const found: { record: SnapshotConstraint; z: number | null }[] = [];
   let total = 0;
   for await (const row of releaseRows(manager, number)) {
     if (blind.has(row.constraintId)) continue;
     const record = rowContent(row);
-    const index = indexColumns(record.id, record.fields, record.citation as never);
-    if (!matchesFilter(index, filter)) continue;
+    const { zUsed, matches } = inWordsOf(kept, () => {
+      const index = indexColumns(record.id, record.fields, record.citation as never);
+      return { zUsed: index.zUsed, matches: matchesFilter(index, filter) };
+    });
+    if (!matches) continue;
     total += 1;
-    if (total <= MOST_CANDIDATES) found.push({ record, z: index.zUsed });
+    if (total <= MOST_CANDIDATES) found.push({ record, z: zUsed });
   }
   found.sort((a, b) => (a.z ?? Infinity) - (b.z ?? Infinity) || a.record.id - b.record.id);
   return {

@@ -12,12 +12,19 @@ import { settleTable, type SettledTable } from "~shared/table/settleTable";
 import { candidatesOf, MOST_CANDIDATES, type Candidates } from "./candidates";
 import type { TableRecipe } from "./recipe";
 import type { SnapshotConstraint } from "./snapshot";
-import { presentSurroundings, surroundingsOf, type KeptSurroundings } from "./surroundings";
+import {
+  inWordsOf,
+  presentSurroundings,
+  surroundingsOf,
+  type KeptSurroundings,
+} from "./surroundings";
 
 /** A recipe followed: its candidates and what became of them. */
 export interface Followed {
   candidates: Candidates;
   settled: SettledTable;
+  /** The method vocabulary that it was followed in. */
+  methods: KeptSurroundings["methods"];
 }
 
 /** Follows a recipe as far as this person may see its records. */
@@ -36,7 +43,11 @@ export async function follow(
     );
   }
   const kept = await surroundingsFor(manager, viewer, recipe.release);
-  return { candidates, settled: settleRecords(kept, candidates.records, recipe.choices) };
+  return {
+    candidates,
+    settled: settleRecords(kept, candidates.records, recipe.choices),
+    methods: kept.methods,
+  };
 }
 
 /**
@@ -72,17 +83,19 @@ export function settleRecords(
   records: readonly SnapshotConstraint[],
   choices: TableChoices,
 ): SettledTable {
-  return settleTable(
-    records.map((record) => ({
-      number: record.number,
-      fields: record.fields,
-      citation: record.citation.id,
-      shortName: record.citation.shortName,
-      year: record.citation.year,
-      state: record.state,
-      supersededBy: record.supersededBy ?? null,
-    })),
-    surroundingsOf(kept, records),
-    choices,
+  return inWordsOf(kept, () =>
+    settleTable(
+      records.map((record) => ({
+        number: record.number,
+        fields: record.fields,
+        citation: record.citation.id,
+        shortName: record.citation.shortName,
+        year: record.citation.year,
+        state: record.state,
+        supersededBy: record.supersededBy ?? null,
+      })),
+      surroundingsOf(kept, records),
+      choices,
+    ),
   );
 }

@@ -2,12 +2,15 @@ import type { EntityManager } from "typeorm";
 
 import { CorrelatedSet } from "~server/correlatedSet/correlatedSet.entity";
 import { contentOfSet } from "~server/correlatedSet/store";
+import { keptMethods } from "~server/method/vocabulary";
 import { keptData } from "~server/namedData/register";
 import { correlations, usedCorrelations } from "~shared/correlatedSet/matrix";
 import { conditionChains, conditionsIn } from "~shared/dependence/conditions";
 import { DataRegister, overlapsAmong, type NamedThing } from "~shared/dependence/sharedData";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 import { formatSetNumber } from "~shared/identifiers/setNumber";
+import { START_VOCABULARY } from "~shared/methods/startVocabulary";
+import { withVocabulary, type MethodTag } from "~shared/methods/vocabulary";
 import { asUsed } from "~shared/statement/asUsed";
 import { emptyFields } from "~shared/statement/fields";
 import type { ConditionPath, TableSet, TableSurroundings } from "~shared/table/decision";
@@ -21,6 +24,8 @@ export interface KeptSurroundings {
   readonly sets: readonly KeptSet[];
   /** Conditions of every record, by number: kinds of data and record numbers. */
   readonly conditions: Readonly<Record<string, readonly string[]>>;
+  /** The method vocabulary; missing in releases older than it. */
+  readonly methods?: readonly MethodTag[];
 }
 
 /** An approved set as printed. */
@@ -34,12 +39,24 @@ export interface KeptSet {
 
 /** Surroundings as they stand in this transaction. */
 export async function presentSurroundings(manager: EntityManager): Promise<KeptSurroundings> {
-  const [{ register }, sets, conditions] = [
+  const [{ register }, sets, conditions, rows] = [
     await keptData(manager),
     await presentSets(manager),
     await presentConditions(manager),
+    await keptMethods(manager),
   ];
-  return { things: register.things, sets, conditions };
+  const methods = rows.map(({ position: _place, version: _version, ...method }) => method);
+  return { things: register.things, sets, conditions, methods };
+}
+
+/**
+ * Does something in the words that the registry had for methods then: what a release says of a record, and
+ * how a recipe over it is followed, doesn't change with the vocabulary.
+ *
+ * @param work - Must not wait for anything.
+ */
+export function inWordsOf<T>({ methods }: Pick<KeptSurroundings, "methods">, work: () => T): T {
+  return withVocabulary(methods ?? START_VOCABULARY, work);
 }
 
 async function presentSets(manager: EntityManager): Promise<KeptSet[]> {

@@ -14,12 +14,15 @@ import type { SettledTable } from "~shared/table/settleTable";
 
 import type { TableRecipe } from "./recipe";
 import type { SnapshotConstraint } from "./snapshot";
+import { inWordsOf, type KeptSurroundings } from "./surroundings";
 
 /** Everything a version is written from. */
 export interface TableSource {
   recipe: TableRecipe;
   records: readonly SnapshotConstraint[];
   settled: SettledTable;
+  /** The method vocabulary that it was settled in. */
+  methods: KeptSurroundings["methods"];
   lastEvent: LastEvent;
   licence: string;
   demonstration: boolean;
@@ -52,8 +55,8 @@ export const DIGEST_NOTE = "SHA-256 over the RFC 8785 form of content";
 
 export async function writeTable(source: TableSource): Promise<WrittenTable> {
   const rows = fittingRows(source);
-  const written = rows.map((row, index) =>
-    writtenRow(row, source.records[index] as SnapshotConstraint),
+  const written = inWordsOf(source, () =>
+    rows.map((row, index) => writtenRow(row, source.records[index] as SnapshotConstraint)),
   );
   const digest = await digestOfPieces(
     contentPieces(
@@ -74,17 +77,19 @@ export async function writeTable(source: TableSource): Promise<WrittenTable> {
       ...(unit === undefined ? {} : { unit }),
       ...(ucd === undefined ? {} : { ucd }),
     })),
-    methods: methodsParagraph({
-      registry: REGISTRY,
-      source: sourceWords(source),
-      sourceKey:
-        source.recipe.release === null ? null : `${REGISTRY}Release${source.recipe.release}`,
-      address: source.address,
-      digest,
-      filter: filterWords(source.recipe.filter),
-      rows,
-      decisions: source.settled.decisions,
-    }),
+    methods: inWordsOf(source, () =>
+      methodsParagraph({
+        registry: REGISTRY,
+        source: sourceWords(source),
+        sourceKey:
+          source.recipe.release === null ? null : `${REGISTRY}Release${source.recipe.release}`,
+        address: source.address,
+        digest,
+        filter: filterWords(source.recipe.filter),
+        rows,
+        decisions: source.settled.decisions,
+      }),
+    ),
   };
 }
 

@@ -2,6 +2,7 @@ import { REGISTRY } from "~server/download/header";
 import { figureSvg } from "~shared/chart/tableFigure";
 import { familiesOf } from "~shared/methods/vocabulary";
 
+import { inWordsOf } from "./surroundings";
 import type { TableSource } from "./tableContent";
 
 /** The figure of a table's rows in, with legend and sources. */
@@ -15,7 +16,7 @@ export function tableFigure(name: string, source: TableSource): string {
       return [
         {
           used: row.used,
-          family: familiesOf(record.fields.methodTags)[0] ?? "other",
+          family: inWordsOf(source, () => familiesOf(record.fields.methodTags))[0] ?? "other",
           levelStated: record.fields.level !== "notStated",
           source: record.citation.shortName,
         },

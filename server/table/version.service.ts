@@ -51,7 +51,7 @@ export async function saveRecipe(
     }
     const followed = await follow(manager, who.viewer, recipe);
     if (followed instanceof Refusal) return followed;
-    const { candidates, settled } = followed;
+    const { candidates, settled, methods } = followed;
     const incomplete = refuseIncomplete(settled);
     if (incomplete) return incomplete;
 
@@ -63,6 +63,7 @@ export async function saveRecipe(
       recipe,
       records,
       settled,
+      methods,
       lastEvent,
       licence: who.licence,
       demonstration,

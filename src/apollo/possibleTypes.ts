@@ -4,6 +4,8 @@
  * against the emitted schema.
  */
 export const possibleTypes: Record<string, string[]> = {
+  AuthorAnswerResult: ["AuthorCheckPage", "Refusal"],
+  AuthorCheckResult: ["AuthorCheck", "Refusal"],
   CorrelatedSetResult: ["CorrelatedSet", "Refusal"],
   DoneResult: ["Done", "Refusal"],
   ErrorReportResult: ["ErrorReport", "Refusal"],
@@ -17,11 +19,14 @@ export const possibleTypes: Record<string, string[]> = {
   NamedDataResult: ["NamedData", "Refusal"],
   PersonResult: ["Person", "Refusal"],
   RecordLifeResult: ["RecordLife", "Refusal"],
+  ReleaseResult: ["Refusal", "Release"],
   ReplyResult: ["Refusal", "ReportedError"],
   ReportErrorResult: ["ErrorReported", "Refusal"],
   ReviewResult: ["Refusal", "Review"],
   SetReviewResult: ["Refusal", "SetReview"],
   SignInResult: ["Refusal", "Viewer"],
   SubmissionResult: ["Refusal", "Submission"],
+  TableProposalResult: ["Refusal", "TableProposal"],
+  ThreadResult: ["CommentThread", "Refusal"],
   ViewerResult: ["Refusal", "Viewer"],
 };

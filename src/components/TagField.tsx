@@ -46,7 +46,8 @@ export function TagField({
 
   function add(text: string) {
     const next = [...values];
-    for (const part of text.split(",").map((one) => one.trim())) {
+    const parts = separator === null ? [text] : text.split(separator);
+    for (const part of parts.map((one) => one.trim())) {
       if (part !== "" && !next.some((value) => same(value, part))) next.push(part);
     }
     if (next.length > values.length) onChange(next);
