@@ -8,6 +8,8 @@ import type { ConstraintFields } from "~shared/statement/fields";
 import { keptMethods } from "./vocabulary";
 
 const PAGE = 500;
+/** Below every id; an empty text is none to compare an id with. */
+const LOWEST = "00000000-0000-0000-0000-000000000000";
 
 /**
  * Rewrites by what revisions with a method are found, after it was retired or moved to another family. What
@@ -17,7 +19,7 @@ const PAGE = 500;
  */
 export async function reindexMethod(manager: EntityManager, tag: string): Promise<void> {
   const vocabulary = await keptMethods(manager);
-  for (let after = ""; ;) {
+  for (let after = LOWEST; ;) {
     const page: { id: string; fields: string | ConstraintFields }[] = await manager.query(
       `SELECT id, fields FROM revision
         WHERE tags LIKE ? ESCAPE '!' AND id > ? ORDER BY id LIMIT ${PAGE}`,
