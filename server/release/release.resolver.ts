@@ -7,6 +7,7 @@ import { acting } from "~server/event/acting";
 import { noticeType } from "~server/recordLife/life.query";
 import { recordsReadBlind } from "~server/review/blindness";
 
+import { tellOwners } from "~server/table/tellOwners";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 
 import * as releases from "./release.service";
@@ -83,7 +84,10 @@ export class ReleaseResolver {
     @Ctx() ctx: RequestContext,
     @Arg("notes", () => String) notes: string,
   ): Promise<typeof ReleaseResult> {
-    const outcome = await releases.cutRelease(acting(ctx), notes);
-    return outcome instanceof Refusal ? outcome : releaseType(outcome, ctx.config.publicUrl);
+    const who = acting(ctx);
+    const outcome = await releases.cutRelease(who, notes);
+    if (outcome instanceof Refusal) return outcome;
+    await tellOwners(who, outcome);
+    return releaseType(outcome, ctx.config.publicUrl);
   }
 }

@@ -72,6 +72,10 @@ export class SavedTable {
   @Column({ type: "boolean", default: false })
   notify!: boolean;
 
+  /** The newest release that its owner was told about; 0 before the first. */
+  @Column({ type: "int", unsigned: true, default: 0 })
+  toldOfRelease!: number;
+
   @Column({ type: "int", unsigned: true, default: 0 })
   rowsIn!: number;
 

@@ -274,6 +274,7 @@ const LISTED = [
   "version",
   "adaptedFrom",
   "notify",
+  "toldOfRelease",
   "rowsIn",
   "rowsOut",
   "filterWords",

@@ -9,6 +9,7 @@ import { Evidence1796130000007 } from "./1796130000007-Evidence";
 import { PeopleAndReports1796130000008 } from "./1796130000008-PeopleAndReports";
 import { Releases1796130000010 } from "./1796130000010-Releases";
 import { TableVersions1796130000011 } from "./1796130000011-TableVersions";
+import { TellOwners1796130000012 } from "./1796130000012-TellOwners";
 
 /** Every migration, oldest first. A list, not a glob: it is the same under swc, Jest and build/. */
 export const migrations: (new () => MigrationInterface)[] = [
@@ -21,4 +22,5 @@ export const migrations: (new () => MigrationInterface)[] = [
   PeopleAndReports1796130000008,
   Releases1796130000010,
   TableVersions1796130000011,
+  TellOwners1796130000012,
 ];

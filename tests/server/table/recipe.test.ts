@@ -5,8 +5,12 @@ import { runInNewContext } from "node:vm";
 import Ajv2020 from "ajv/dist/2020";
 import canonicalize from "canonicalize";
 import Papa from "papaparse";
+import { Like } from "typeorm";
 
+import { tellOwners } from "~server/table/tellOwners";
 import { TableVersionRow } from "~server/table/tableVersion.entity";
+import { OutboxMail } from "~server/mail/outboxMail.entity";
+import { Release } from "~server/release/release.entity";
 import { cutRelease } from "~server/release/release.service";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 import { emptyFields } from "~shared/statement/fields";
@@ -265,6 +269,43 @@ describe("recipes of fitting tables", () => {
       recipe: { release, filter: "?q=Tarnfold" },
     });
     expect(page.data.fittingTable.files[0].path).toBe(`/api/tables/${saved.slug}@1.csv`);
+  });
+
+  it("tell an owner who asked for it once that a release would change the table, and nobody else", async () => {
+    const { manager } = server.dataSource;
+    const filter = { text: "Wendmere" };
+    const add = (z: string) =>
+      buildApproved(server.dataSource, contributor.user, editor.user, {
+        z,
+        value: "0.30",
+        dataUsed: [`Wendmere ${z}`],
+      });
+    await add("6.5");
+    await save({ name: "Told", notify: true, recipe: { filter } });
+    await save({ name: "Silent", notify: false, recipe: { filter } });
+    await save({ name: "Untouched", notify: true, recipe: { filter: { ...filter, zTo: 7 } } });
+    const cut = () =>
+      server.graphql(maintainer.agent, `mutation { cutRelease(notes: "More") { __typename } }`);
+    const mails = () =>
+      manager.find(OutboxMail, {
+        where: { subject: Like("%would change%") },
+        order: { id: "ASC" },
+      });
+
+    await cut();
+    expect(await mails()).toEqual([]);
+    const added = await add("7.5");
+    await cut();
+    const number = formatRecordNumber(added.constraintId);
+    expect(await mails()).toMatchObject([
+      { to: theorist.user.email, subject: expect.stringContaining("would change Told") },
+    ]);
+    expect((await mails())[0]?.text).toContain(`Rows: ${number}`);
+    expect((await mails())[0]?.text).not.toContain("0.30");
+    // Told of a release once, whoever asks again.
+    const [release] = await manager.find(Release, { order: { number: "DESC" }, take: 1 });
+    if (!release) throw new Error("no release was cut");
+    expect(await tellOwners(actingAs(server.dataSource, maintainer.user), release)).toBe(0);
   });
 
   it("are private, by link or public", async () => {
