@@ -71,10 +71,12 @@ function processesOverData(): string[] {
     .filter((line) => line.includes(data));
 }
 
-/** Addresses of all that a stranger can download: lists, each record's citation, each table's files. */
+const RELEASE_FILES = ["json", "csv", "ecsv", "vot", "txt", "bib", "cff", "citation.bib"];
+
+/** Addresses of all that a stranger can download: lists, each record's citation, each table's and release's files. */
 async function publicFiles(): Promise<string[]> {
   const query =
-    "{ constraints(limit: 500) { constraints { number } } fittingTables { slug digest } }";
+    "{ constraints(limit: 500) { constraints { number } } fittingTables { slug files { path } } releases { number } }";
   const response = await fetch(`http://127.0.0.1:${port}/graphql`, {
     method: "POST",
     headers: { "content-type": "application/json" },
@@ -83,17 +85,20 @@ async function publicFiles(): Promise<string[]> {
   const { data: found } = (await response.json()) as {
     data: {
       constraints: { constraints: { number: string }[] };
-      fittingTables: { slug: string; digest: string }[];
+      fittingTables: { slug: string; files: { path: string }[] }[];
+      releases: { number: number }[];
     };
   };
   const records = found.constraints.constraints.map(({ number }) => number);
-  const tables = found.fittingTables.map(({ slug }) => slug);
-  expect([records.length > 15, tables.length > 0]).toEqual([true, true]);
+  const files = found.fittingTables.flatMap((table) => table.files.map(({ path: at }) => at));
+  const releases = found.releases.map(({ number }) => number);
+  expect([records.length > 15, files.length > 20, releases.length > 0]).toEqual([true, true, true]);
   return [
     "/api/constraints.csv",
     "/api/constraints.bib",
     ...records.map((number) => `/api/constraints/${number}.bib`),
-    ...tables.flatMap((slug) => ["csv", "json", "bib"].map((end) => `/api/tables/${slug}.${end}`)),
+    ...files,
+    ...releases.flatMap((number) => RELEASE_FILES.map((kind) => `/api/releases/${number}.${kind}`)),
   ];
 }
 
