@@ -9,6 +9,8 @@ import { Like } from "typeorm";
 
 import { tellOwners } from "~server/table/tellOwners";
 import { TableVersionRow } from "~server/table/tableVersion.entity";
+import { NamedData } from "~server/namedData/namedData.entity";
+import { relateData } from "~server/namedData/namedData.service";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
 import { Release } from "~server/release/release.entity";
 import { cutRelease } from "~server/release/release.service";
@@ -123,6 +125,87 @@ describe("recipes of fitting tables", () => {
       [1 / 3, "model", "0.45"],
       [1 / 3, "model", "0.55"],
       [1 / 3, "model", "0.65"],
+    ]);
+  });
+
+  it("block a row that contains, through another record, what the table holds; an override's reason is in every file", async () => {
+    const through = await buildApproved(server.dataSource, contributor.user, editor.user, {
+      z: "6.8",
+      dataUsed: ["Farther off"],
+      conditionedOn: ["cmb"],
+    });
+    const middle = formatRecordNumber(through.constraintId);
+    const joint = await buildApproved(server.dataSource, contributor.user, editor.user, {
+      z: "7.3",
+      dataUsed: ["Yewmoor sightline"],
+      conditionedOn: [middle],
+    });
+    const number = formatRecordNumber(joint.constraintId);
+    const depth = await buildApproved(server.dataSource, contributor.user, editor.user, {
+      quantity: "opticalDepth",
+      species: null,
+      scale: null,
+      weighting: null,
+      zRole: null,
+      z: null,
+      value: "0.061",
+      plus: "0.008",
+      minus: "0.008",
+      estimator: "mean",
+      methodTags: ["cmbPolarization"],
+      dataUsed: ["Yewmoor sky"],
+    });
+    const tau = formatRecordNumber(depth.constraintId);
+    const filter = { text: "Yewmoor" };
+    const proposal = await propose({ filter });
+    const [decision] = proposal.decisions;
+    expect(decision).toMatchObject({ kind: "conditioned", taken: null });
+    expect(decision.words).toContain(
+      `${number} is conditioned on ${middle}, which is conditioned on CMB; in the table: ${tau}`,
+    );
+    const reason = "The prior is ten times wider than this row.";
+    const override = { id: decision.id, option: "keep", byDefault: false };
+    expect(
+      await save({ name: "Kept", recipe: { filter, decisions: [{ ...override, reason: " " }] } }),
+    ).toMatchObject({ code: "open" });
+    const { slug, rowsIn } = await save({
+      name: "Kept",
+      recipe: { filter, decisions: [{ ...override, reason }] },
+    });
+    expect(rowsIn).toBe(2);
+    for (const kind of ["csv", "json", "ecsv", "vot", "txt", "bib", "methods.tex"]) {
+      const text = (await file(`${slug}.${kind}`).expect(200)).body as string;
+      const flat = text.replace(/\s*\n(#\s*)?\s*/g, " ");
+      expect([kind, flat.includes("ten times wider than this row")]).toEqual([kind, true]);
+    }
+  });
+
+  it("make one cluster of two analyses of a sightline and a stack that contains it", async () => {
+    const numbers: string[] = [];
+    for (const dataUsed of ["Reedholm 1", "Reedholm 1", "Reedholm stack"]) {
+      const { constraintId } = await buildApproved(
+        server.dataSource,
+        contributor.user,
+        editor.user,
+        { z: "7.6", dataUsed: [dataUsed], value: `0.3${numbers.length}` },
+      );
+      numbers.push(formatRecordNumber(constraintId));
+    }
+    const { manager } = server.dataSource;
+    const [part, whole] = await Promise.all(
+      ["Reedholm 1", "Reedholm stack"].map((name) => manager.findOneByOrFail(NamedData, { name })),
+    );
+    if (!part || !whole) throw new Error("the names were not kept");
+    const who = actingAs(server.dataSource, editor.user);
+    granted(await relateData(who, part.slug, "subsetOf", whole.slug));
+    const { decisions, rows } = await propose({ filter: { text: "Reedholm" } });
+    expect(decisions).toMatchObject([{ kind: "overlap", rows: numbers }]);
+    // Every two of them overlap, so a largest set holds one; all else equal, the lowest number.
+    expect(decisions[0].proposed).toBe(`keep:${numbers[0]}`);
+    expect(rows.map(({ included }: { included: boolean }) => included)).toEqual([
+      true,
+      false,
+      false,
     ]);
   });
 
