@@ -19,7 +19,11 @@ import { Reading } from "~server/review/reading.entity";
 import { seedDemonstration } from "~server/seed";
 import { EVIDENCE } from "~server/seed/files";
 import { DEMONSTRATION_PASSWORD, PEOPLE } from "~server/seed/people";
+import { Refusal } from "~server/common/outcomes";
+import { candidatesOf } from "~server/table/candidates";
+import { presentSurroundings, surroundingsOf } from "~server/table/surroundings";
 import { SavedTable } from "~server/table/table.entity";
+import { chooseRows, overlapClusters } from "~shared/table/overlapClusters";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 import { METHOD_FAMILIES } from "~shared/methods/vocabulary";
 import { NOTICE_KINDS } from "~shared/review/notice";
@@ -231,6 +235,40 @@ describe("the demonstration", () => {
     expect(releases.map(({ number }) => number)).toEqual([1, 2]);
     expect(releases[1]!.records).toBeGreaterThan(releases[0]!.records);
     expect(releases[0]!.records).toBeGreaterThan(20);
+  });
+
+  it("has clusters of shared data in which the chooser finds what looking at every subset finds", async () => {
+    const { manager } = server.dataSource;
+    const found = await candidatesOf(manager, null, { release: null, filter: {} });
+    if (found instanceof Refusal) throw new Error(found.message);
+    const { records } = found;
+    const { overlaps } = surroundingsOf(await presentSurroundings(manager), records);
+    const clusters = overlapClusters(overlaps).filter(({ rows }) => rows.length <= 20);
+    expect(clusters.length).toBeGreaterThanOrEqual(3);
+    for (const cluster of clusters) {
+      const rows = cluster.rows.map((number) => {
+        const record = records.find((one) => one.number === number);
+        if (!record) throw new Error(`${number} is no candidate`);
+        const published = record.fields.versionRead !== "preprint";
+        return { number, published, year: record.citation.year };
+      });
+      // By counting in binary, apart from the search: the size of a largest set, and its published rows.
+      let best: [size: number, published: number] = [0, 0];
+      for (let mask = 1; mask < 1 << rows.length; mask += 1) {
+        const set = rows.filter((_, index) => (mask >> index) & 1);
+        const published = set.filter((row) => row.published).length;
+        if (set.length < best[0] || (set.length === best[0] && published <= best[1])) continue;
+        const held = new Set(set.map(({ number }) => number));
+        if (!cluster.overlaps.some(({ a, b }) => held.has(a) && held.has(b))) {
+          best = [set.length, published];
+        }
+      }
+      const { kept } = chooseRows(cluster, rows);
+      const published = rows.filter((row) => row.published && kept.includes(row.number)).length;
+      expect([cluster.rows, kept.length, published]).toEqual([cluster.rows, ...best]);
+      const held = new Set(kept);
+      expect(cluster.overlaps.filter(({ a, b }) => held.has(a) && held.has(b))).toEqual([]);
+    }
   });
 
   it("lets each of its people sign in", async () => {
