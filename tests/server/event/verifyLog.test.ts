@@ -242,8 +242,8 @@ describe("a chain made anew", () => {
     const { digest } = await headOf(3);
     const { user } = await server.signedIn(["maintainer"]);
     await hand.query(
-      `INSERT INTO registry_release (number, cutAt, cutById, notes, digest, records, licence, demonstration, lastEventSequence, lastEventDigest, lastEventAt)
-       VALUES (1, NOW(), ?, '', REPEAT('0', 64), 0, 'x', 0, 3, ?, NOW())`,
+      `INSERT INTO registry_release (number, cutAt, cutById, notes, digest, records, licence, demonstration, surroundings, lastEventSequence, lastEventDigest, lastEventAt)
+       VALUES (1, NOW(), ?, '', REPEAT('0', 64), 0, 'x', 0, '{}', 3, ?, NOW())`,
       [user.id, digest],
     );
     expect((await verify()).lines).toContain(
