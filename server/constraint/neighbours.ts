@@ -1,4 +1,4 @@
-import type { EntityManager } from "typeorm";
+import { In, type EntityManager } from "typeorm";
 
 import type { ViewerIdentity } from "~server/common/context";
 import { alternativesFindings } from "~shared/statement/alternatives";
@@ -7,11 +7,16 @@ import type { ConstraintFields } from "~shared/statement/fields";
 import {
   fieldFindings,
   registryFindings,
+  sentAlready,
   sortFindings,
   type Finding,
 } from "~shared/statement/rules";
 
 import { approvedFor, approvedRow, type ApprovedRow } from "./constraint.query";
+import { Revision } from "./revision.entity";
+
+/** The newest are enough to meet a copy. */
+const MOST_OWN = 500;
 
 /**
  * The approved records that findings compare with, as far as this person may see them: a
@@ -22,6 +27,40 @@ export async function neighbours(
   viewer: ViewerIdentity | null,
 ): Promise<ApprovedRow[]> {
   return (await approvedFor(manager, viewer).getMany()).map(approvedRow);
+}
+
+/** What this person has sent themselves and nobody has decided yet, with its paper. */
+export async function ownSubmissions(
+  manager: EntityManager,
+  viewer: ViewerIdentity,
+): Promise<Revision[]> {
+  return manager.find(Revision, {
+    where: { state: In(["submitted", "inReview"]), constraint: { ownerId: viewer.id } },
+    relations: { constraint: true, citation: true },
+    order: { constraintId: "DESC" },
+    take: MOST_OWN,
+  });
+}
+
+/** What a contributor is told while writing: everything there is to say, and what they have sent already. */
+export function draftFindings(
+  fields: ConstraintFields,
+  citationId: string | null,
+  own: number | null,
+  among: readonly ApprovedRow[],
+  sent: readonly Revision[],
+): Finding[] {
+  const others = sent
+    .filter(({ constraintId }) => constraintId !== own)
+    .map((revision) => ({
+      number: formatRecordNumber(revision.constraintId),
+      sameCitation: revision.citation !== null && revision.citation.id === citationId,
+      fields: revision.fields,
+    }));
+  return sortFindings([
+    ...allFindings(fields, citationId, own, among),
+    ...sentAlready(fields, others),
+  ]);
 }
 
 /**

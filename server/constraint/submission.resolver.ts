@@ -20,7 +20,7 @@ import {
 } from "./constraint.type";
 import * as drafts from "./draft.service";
 import { ConstraintFieldsInput, fieldsFromInput } from "./fields.type";
-import { allFindings, neighbours } from "./neighbours";
+import { draftFindings, neighbours, ownSubmissions } from "./neighbours";
 import { Revision } from "./revision.entity";
 import {
   SaveDraftInput,
@@ -32,6 +32,10 @@ import {
 
 const neighboursOnce = perRequest((ctx: RequestContext) =>
   neighbours(ctx.database.manager, ctx.viewer),
+);
+
+const ownOnce = perRequest((ctx: RequestContext) =>
+  ownSubmissions(ctx.database.manager, requireViewer(ctx)),
 );
 
 /** All revisions of a record, oldest first. */
@@ -98,9 +102,13 @@ export class SubmissionResolver {
     const own =
       submissionId === null ? null : await drafts.loadRevision(ctx.database.manager, submissionId);
     const number = own?.constraint.ownerId === requireViewer(ctx).id ? own.constraintId : null;
-    return allFindings(parsed.fields, citationId, number, await neighboursOnce(ctx)).map(
-      (finding) => Object.assign(new FindingType(), finding),
-    );
+    return draftFindings(
+      parsed.fields,
+      citationId,
+      number,
+      await neighboursOnce(ctx),
+      await ownOnce(ctx),
+    ).map((finding) => Object.assign(new FindingType(), finding));
   }
 
   @Requires("startDraft")
@@ -164,9 +172,13 @@ export class SubmissionResolver {
   ): Promise<FindingType[]> {
     if (revision.state === "draft") {
       const { fields, citationId, constraintId } = revision;
-      return allFindings(fields, citationId, constraintId, await neighboursOnce(ctx)).map(
-        (finding) => Object.assign(new FindingType(), finding),
-      );
+      return draftFindings(
+        fields,
+        citationId,
+        constraintId,
+        await neighboursOnce(ctx),
+        await ownOnce(ctx),
+      ).map((finding) => Object.assign(new FindingType(), finding));
     }
     const blind = await recordsReadBlind(ctx.database.manager, ctx.viewer, new Date());
     return revision.findings.map((finding) =>

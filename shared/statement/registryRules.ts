@@ -27,13 +27,8 @@ export function registryFindings(
   for (const neighbour of neighbours) {
     const other = asUsed(neighbour.fields);
     if (other === null || !samePlace(used, other)) continue;
-    const alternatives =
-      neighbour.sameCitation &&
-      fields.alternativesGroup !== null &&
-      fields.alternativesGroup === neighbour.fields.alternativesGroup;
-    if (alternatives) continue;
-    const related = neighbour.sameCitation || sharesTag(fields, neighbour.fields);
-    if (related && sameNumbers(used, other)) {
+    if (areAlternatives(fields, neighbour)) continue;
+    if (isNearDuplicate(fields, used, neighbour, other)) {
       found.push(
         mustAnswer(
           `nearDuplicate.${neighbour.number}`,
@@ -53,6 +48,50 @@ export function registryFindings(
   }
   const wide = widthLikeOneSigma(fields, used, neighbours);
   return sortFindings(wide === null ? found : [...found, wide]);
+}
+
+/**
+ * Notes about what the same person has sent and no editor has decided yet. For that person's eyes only, and
+ * never kept with a submission: an editor who reads it would learn numbers of another one that is still to
+ * be read blind.
+ */
+export function sentAlready(
+  fields: ConstraintFields,
+  ownSubmissions: readonly Neighbour[],
+): Finding[] {
+  const used = asUsed(fields);
+  if (used === null) return [];
+  return ownSubmissions.flatMap((own) => {
+    const other = asUsed(own.fields);
+    if (other === null || !samePlace(used, other) || areAlternatives(fields, own)) return [];
+    if (!isNearDuplicate(fields, used, own, other)) return [];
+    const words = own.sameCitation ? "from the same paper" : "with the same method";
+    return [
+      note(
+        `sentAlready.${own.number}`,
+        ["value", "z"],
+        `You have sent ${own.number}, which says nearly the same ${words}. Look whether this is a second copy of it.`,
+      ),
+    ];
+  });
+}
+
+function areAlternatives(fields: ConstraintFields, neighbour: Neighbour): boolean {
+  return (
+    neighbour.sameCitation &&
+    fields.alternativesGroup !== null &&
+    fields.alternativesGroup === neighbour.fields.alternativesGroup
+  );
+}
+
+function isNearDuplicate(
+  fields: ConstraintFields,
+  used: AsUsed,
+  neighbour: Neighbour,
+  other: AsUsed,
+): boolean {
+  const related = neighbour.sameCitation || sharesTag(fields, neighbour.fields);
+  return related && sameNumbers(used, other);
 }
 
 function sharesTag(a: ConstraintFields, b: ConstraintFields): boolean {

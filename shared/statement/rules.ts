@@ -30,7 +30,7 @@ export interface FindingOptions {
 
 export { FINDING_GRADES, hasErrors, sortFindings } from "./finding";
 export type { Finding, FindingGrade } from "./finding";
-export { registryFindings } from "./registryRules";
+export { registryFindings, sentAlready } from "./registryRules";
 export type { Neighbour } from "./registryRules";
 
 export const PRINTED_TEXT_LONGEST = 300;
