@@ -20,6 +20,7 @@ module.exports = {
       preset: "jest-expo/web",
       testMatch: ["<rootDir>/tests/client/**/*.test.tsx"],
       moduleNameMapper: alias,
+      setupFilesAfterEnv: ["<rootDir>/tests/client/patience.ts"],
     },
     { ...node, displayName: "ops", testMatch: ["<rootDir>/tests/ops/**/*.test.ts"] },
     {

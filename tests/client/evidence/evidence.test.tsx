@@ -92,7 +92,13 @@ describe.each(WIDTHS)("the files of a draft at %i points", (width) => {
     });
 
   it("sends what is chosen, says how far it is, and then shows it as kept", async () => {
-    at(kept(), kept(file({ name: "paper.pdf", kind: "pdf" })));
+    // What the server keeps at the moment in which it answers, however often it is asked.
+    let stored: EvidencePartsFragment[] = [];
+    at({
+      ...kept(),
+      result: () => ({ data: { evidence: stored } }),
+      maxUsageCount: Number.POSITIVE_INFINITY,
+    } as MockedResponse);
     await screen.findByLabelText(/^Attach a file/);
     choose(PDF);
     await screen.findByText("0 % of 8 bytes");
@@ -103,6 +109,7 @@ describe.each(WIDTHS)("the files of a draft at %i points", (width) => {
     expect((form.get("file") as File).name).toBe("paper.pdf");
     request.upload.onprogress?.({ loaded: 4, total: 8 });
     await screen.findByText("50 % of 8 bytes");
+    stored = [file({ name: "paper.pdf", kind: "pdf" })];
     request.status = 201;
     request.onload?.();
     expect(await screen.findByText("PDF, 1.4 MB")).toBeInTheDocument();
