@@ -8,7 +8,7 @@ import {
 import type { TableSpec } from "~shared/likelihood/compile";
 import { marginalCorrelation } from "~shared/likelihood/correlatedSet";
 import { equalMixtureSd } from "~shared/likelihood/mixture";
-import { carriesTag, familiesOf, type MethodFamily } from "~shared/methods/vocabulary";
+import { carriesTag, familiesOf, methodsOf, type MethodFamily } from "~shared/methods/vocabulary";
 import { asUsed, type AsUsed } from "~shared/statement/asUsed";
 import { CONDITION_KINDS, type ConditionKind } from "~shared/statement/fields";
 import { conditionWord } from "~shared/statement/words";
@@ -566,6 +566,9 @@ class Settling {
     const rows = this.included();
     for (const row of rows) {
       if (row.record.fields.dataKnown === false) row.cautions.push("The data it uses are unknown");
+      for (const { name, neverIndependent } of methodsOf(row.record.fields.methodTags)) {
+        if (neverIndependent) row.cautions.push(`${name}: never independent of other constraints`);
+      }
       const likelihood = rowLikelihood(row.used, row.options);
       if (!("leftOut" in likelihood)) {
         row.cautions.push(...likelihood.warnings.map(({ text }) => text));

@@ -274,9 +274,13 @@ function preferredWords({ number, alternatives }: RecordData): string {
 function Cautions({ record }: { record: RecordData }) {
   const { fields, sharesDataWith, alternatives } = record;
   const others = alternatives.filter(({ number }) => number !== record.number);
-  const systematic = methodsOf(fields.methodTags).map(({ caution }) => caution);
+  const methods = methodsOf(fields.methodTags);
+  const systematic = methods.map(({ caution }) => caution);
   const lines = [
     `Model-dependent. ${systematic.join(" ")}`.trim(),
+    methods.some(({ neverIndependent }) => neverIndependent)
+      ? "Never independent: its result contains or assumes others."
+      : "",
     sharesDataWith.length > 0
       ? `Shares data with ${sharesDataWith.length === 1 ? "another record" : `${sharesDataWith.length} other records`}: a table should use one.`
       : "",

@@ -14,6 +14,7 @@ import { useColors } from "@/theme/ThemeProvider";
 import { space } from "@/theme/tokens";
 import { MethodVocabularyDocument } from "~graphql/generated/graphql";
 import { filterToQuery } from "~shared/filter/address";
+import { currentTag, FAMILY_NAMES } from "~shared/methods/vocabulary";
 
 import { FamilyHead, byFamily, constraintWords, type KeptMethod } from "./families";
 
@@ -24,9 +25,8 @@ export function MethodsScreen() {
     fetchPolicy: "cache-and-network",
   });
   const methods = data?.methodVocabulary;
-  const named = methods?.find(({ tag }) => tag === asked);
   // A retired tag leads to what took it over.
-  const shown = named?.retiredInto ?? named?.tag ?? null;
+  const shown = methods && asked ? (currentTag(asked)?.tag ?? null) : null;
   useEffect(() => {
     if (shown !== null) document.getElementById(idOf(shown))?.scrollIntoView({ block: "center" });
   }, [shown]);
@@ -56,13 +56,17 @@ export function MethodsScreen() {
             <View key={family} style={styles.family}>
               <FamilyHead family={family} />
               <Card flush>
-                <View role="list">
+                <View role="list" aria-label={FAMILY_NAMES[family]}>
                   {members.map((method, index) => (
                     <Method
                       key={method.tag}
                       method={method}
                       first={index === 0}
                       marked={method.tag === shown}
+                      former={methods.filter(
+                        ({ tag, retiredInto }) =>
+                          retiredInto !== null && currentTag(tag)?.tag === method.tag,
+                      )}
                     />
                   ))}
                 </View>
@@ -81,13 +85,17 @@ function Method({
   method,
   first,
   marked,
+  former,
 }: {
   method: KeptMethod;
   first: boolean;
   marked: boolean;
+  /** Retired methods that it took over. */
+  former: readonly KeptMethod[];
 }) {
   const colors = useColors();
   const { tag, name, definition, caution, neverIndependent, aliases, constraintCount } = method;
+  const words = [...aliases, ...former.map((other) => other.name)];
   return (
     <View
       role="listitem"
@@ -107,7 +115,7 @@ function Method({
       {neverIndependent ? (
         <Dense muted>Never independent: its results contain or assume others.</Dense>
       ) : null}
-      {aliases.length > 0 ? <Caption>Also met as {aliases.join(", ")}</Caption> : null}
+      {words.length > 0 ? <Caption>Also met as {words.join(", ")}</Caption> : null}
       {constraintCount > 0 ? (
         <View style={styles.link}>
           <Button

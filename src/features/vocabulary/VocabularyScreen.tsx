@@ -13,6 +13,7 @@ import { Caption, Dense, Mono, Section } from "@/components/Text";
 import { useColors } from "@/theme/ThemeProvider";
 import { space } from "@/theme/tokens";
 import { MethodVocabularyDocument } from "~graphql/generated/graphql";
+import { FAMILY_NAMES } from "~shared/methods/vocabulary";
 
 import { byFamily, constraintWords, FamilyHead, type KeptMethod } from "./families";
 import { MethodSheet } from "./MethodSheet";
@@ -79,7 +80,7 @@ function Vocabulary() {
         <View key={family} style={styles.family}>
           <FamilyHead family={family} />
           <Card flush>
-            <View role="list">
+            <View role="list" aria-label={FAMILY_NAMES[family]}>
               {members.map((method, index) => (
                 <Row
                   key={method.tag}
@@ -97,7 +98,7 @@ function Vocabulary() {
         <View style={styles.family}>
           <Section>Retired</Section>
           <Card flush>
-            <View role="list">
+            <View role="list" aria-label="Retired">
               {retired.map((method, index) => (
                 <Retired
                   key={method.tag}

@@ -52,12 +52,17 @@ export function setWindow(width: number): void {
   window.dispatchEvent(new Event("resize"));
 }
 
-export function sessionMock(roles: Role[] | null, demonstration = true): MockedResponse {
+/** The session of a person; with it comes the method vocabulary, empty unless a test is about it. */
+export function sessionMock(
+  roles: Role[] | null,
+  demonstration = true,
+  methodVocabulary: object[] = [],
+): MockedResponse {
   return {
     request: { query: SessionDocument },
     result: {
       data: {
-        methodVocabulary: [],
+        methodVocabulary: methodVocabulary as never[],
         session: {
           __typename: "Session",
           demonstration,
@@ -121,13 +126,22 @@ const NOTHING_ELSE = [
 /** A page as one person sees it at one width. */
 export function show(
   page: ReactNode,
-  options: { width: number; roles: Role[] | null; mocks?: MockedResponse[] },
+  options: {
+    width: number;
+    roles: Role[] | null;
+    mocks?: MockedResponse[];
+    methods?: object[];
+  },
 ) {
   setWindow(options.width);
   return render(
     <MockedProvider
       cache={createCache()}
-      mocks={[sessionMock(options.roles), ...(options.mocks ?? []), ...NOTHING_ELSE]}
+      mocks={[
+        sessionMock(options.roles, true, options.methods),
+        ...(options.mocks ?? []),
+        ...NOTHING_ELSE,
+      ]}
     >
       <ThemeProvider>{page}</ThemeProvider>
     </MockedProvider>,

@@ -19,6 +19,7 @@ import {
 import { DEMONSTRATION_PASSWORD, startFogline, type Fogline } from "./fogline";
 import { ask, newcomer } from "./people";
 import { SET_SCREENS } from "./setScreens";
+import { VOCABULARY_SCREENS } from "./vocabularyScreens";
 import { button, chooseMethod, entry, heading, link, typeStatement, visit } from "./steps";
 
 /** Who looks: a person of the demonstration, nobody, or somebody with every role in an empty registry. */
@@ -1014,6 +1015,7 @@ const SITUATIONS = [
   EVIDENCE_REFUSED,
   ...EDITOR,
   ...SET_SCREENS,
+  ...VOCABULARY_SCREENS,
   ...MAINTAINER,
   ...EMPTY,
 ];

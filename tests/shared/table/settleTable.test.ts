@@ -400,3 +400,11 @@ describe("what is stored of a choice", () => {
     expect(settle(rows, {}, { decisions: [person(decision, "keep")] }).open).toBe(0);
   });
 });
+
+it("cautions about a method that is never independent, which one row may come from all the same", () => {
+  const table = settle([record({ methodTags: ["sourceBudget"] }), record()]);
+  expect(table.rows.map(({ included, cautions }) => [included, cautions])).toEqual([
+    [true, ["Source budget: never independent of other constraints"]],
+    [true, []],
+  ]);
+});
