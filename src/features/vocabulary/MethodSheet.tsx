@@ -23,13 +23,15 @@ import { useChange } from "./useChange";
 
 const FIELDS = ["tag", "name", "family", "definition", "caution", "aliases", "position"];
 
-/** The words of a method: a new one, or one that is there. The tag of the latter stays. */
+/** The words of a method: a new one, or one that is there, whose tag stays. What was typed stays when it is closed. */
 export function MethodSheet({
+  visible,
   method,
   methods,
   onClose,
   onDone,
 }: {
+  visible: boolean;
   method: KeptMethod | null;
   methods: readonly KeptMethod[];
   onClose: () => void;
@@ -90,7 +92,7 @@ export function MethodSheet({
   return (
     <>
       <Sheet
-        visible={!asking}
+        visible={visible && !asking}
         title={method ? `Edit ${method.name}` : "Add a method"}
         onClose={onClose}
         footer={

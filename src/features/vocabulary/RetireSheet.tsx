@@ -14,11 +14,13 @@ import { useChange } from "./useChange";
 
 /** Asks which method takes a retired one over. The sheet itself is the one question. */
 export function RetireSheet({
+  visible,
   method,
   methods,
   onClose,
   onDone,
 }: {
+  visible: boolean;
   method: KeptMethod;
   methods: readonly KeptMethod[];
   onClose: () => void;
@@ -44,7 +46,7 @@ export function RetireSheet({
 
   return (
     <Sheet
-      visible
+      visible={visible}
       title={`Retire ${name}`}
       onClose={onClose}
       footer={

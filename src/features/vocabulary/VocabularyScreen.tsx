@@ -40,6 +40,8 @@ function Vocabulary() {
     fetchPolicy: "cache-and-network",
   });
   const [task, setTask] = useState<Task | null>(null);
+  // A sheet that is closed keeps what was typed until another one is opened.
+  const [open, setOpen] = useState(false);
   const [done, setDone] = useState<string | null>(null);
   const methods = data?.methodVocabulary;
   if (!methods) {
@@ -51,8 +53,14 @@ function Vocabulary() {
   }
   const retired = methods.filter(({ retiredInto }) => retiredInto !== null);
   const nameOf = (tag: string | null) => methods.find((one) => one.tag === tag)?.name ?? "";
+  const start = (next: Task) => {
+    setTask(next);
+    setOpen(true);
+    setDone(null);
+  };
   const finish = (words: string) => {
     setTask(null);
+    setOpen(false);
     setDone(words);
     void refetch();
   };
@@ -64,7 +72,7 @@ function Vocabulary() {
           kind="filled"
           icon="plus"
           label="Add a method"
-          onPress={() => setTask({ kind: "add" })}
+          onPress={() => start({ kind: "add" })}
         />
         <Button kind="text" icon="open-in-new" label="As readers see it" href="/methods" />
       </View>
@@ -86,8 +94,8 @@ function Vocabulary() {
                   key={method.tag}
                   method={method}
                   first={index === 0}
-                  onEdit={() => setTask({ kind: "edit", method })}
-                  onRetire={() => setTask({ kind: "retire", method })}
+                  onEdit={() => start({ kind: "edit", method })}
+                  onRetire={() => start({ kind: "retire", method })}
                 />
               ))}
             </View>
@@ -113,17 +121,21 @@ function Vocabulary() {
       ) : null}
       {task && task.kind !== "retire" ? (
         <MethodSheet
+          key={task.kind === "edit" ? `${task.method.tag} ${task.method.version}` : "new"}
+          visible={open}
           method={task.kind === "edit" ? task.method : null}
           methods={methods}
-          onClose={() => setTask(null)}
+          onClose={() => setOpen(false)}
           onDone={finish}
         />
       ) : null}
       {task?.kind === "retire" ? (
         <RetireSheet
+          key={task.method.tag}
+          visible={open}
           method={task.method}
           methods={methods}
-          onClose={() => setTask(null)}
+          onClose={() => setOpen(false)}
           onDone={finish}
         />
       ) : null}

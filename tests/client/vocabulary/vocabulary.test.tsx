@@ -176,6 +176,20 @@ describe.each(WIDTHS)("the vocabulary's page at %i points", (width) => {
     expect(screen.getByLabelText("Name")).toHaveValue("Metal lines");
   });
 
+  it("keeps what was typed when the sheet is closed and opened again", async () => {
+    open();
+    fireEvent.click(await screen.findByRole("button", { name: "Add a method" }));
+    fireEvent.change(screen.getByLabelText("Name"), { target: { value: "Metal lines" } });
+    fireEvent.click(screen.getByRole("button", { name: "Close" }));
+    expect(screen.queryByLabelText("Name")).toBeNull();
+    fireEvent.click(screen.getByRole("button", { name: "Add a method" }));
+    expect(screen.getByLabelText("Name")).toHaveValue("Metal lines");
+    // Another method's sheet is its own.
+    fireEvent.click(screen.getByRole("button", { name: "Close" }));
+    fireEvent.click(screen.getByRole("button", { name: "Edit Dark gaps" }));
+    expect(screen.getByLabelText("Name")).toHaveValue("Dark gaps");
+  });
+
   it("retires a method into another one", async () => {
     const { mock, sent } = answer(
       RetireMethodTagDocument,
