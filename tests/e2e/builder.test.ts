@@ -55,9 +55,8 @@ describe.each(SIZE_NAMES)("a fitting table on a %s screen", (size) => {
     await own.check();
     await entry(page, "Why, in a few words").fill("Our model was trained on it.");
     await fits("3-decisions");
-    // It counts a moment after the last word.
-    const before = Number.parseInt((await open.textContent()) ?? "0", 10);
-    await page.getByText(`${before - 1} open`).waitFor();
+    // It counts a moment after the last word; a kept row may bring questions of its own.
+    await button(page, /^Show \d+ taken$/).waitFor();
     await takeProposals(page);
     await fits("4-taken");
     if (phone) await button(page, "To save it").click();
