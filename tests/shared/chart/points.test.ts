@@ -221,3 +221,68 @@ describe("a tabulated curve", () => {
     expect(mark.violin![mark.violin!.length - 1]).toEqual([mark.x, expect.closeTo(40, 9)]);
   });
 });
+
+describe("a redshift at a fraction", () => {
+  const frame = { left: 0, right: 200, top: 0, bottom: 100 };
+  const z = linearScale([6, 8], [0, 200]);
+  const x = linearScale([0, 1], [100, 0]);
+  const sizes = { ...WIDE_SIZES, radius: 5, arrowLength: 30, head: 8 };
+  const mark = (changes: Partial<Parameters<typeof point>[0]>) => {
+    const drawn = point({ quantity: "redshiftAtFraction", fraction: "0.5", ...changes });
+    return drawn && markOf(drawn, z, x, frame, sizes);
+  };
+
+  it("has its limit's arrow along the redshift: lower to the right, upper to the left", () => {
+    expect(mark({ kind: "lowerLimit", value: "7" })?.arrow).toEqual({
+      shaft: { x1: 105, y1: 50, x2: 122, y2: 50 },
+      head: [
+        [122, 46],
+        [122, 54],
+        [130, 50],
+      ],
+    });
+    expect(mark({ kind: "upperLimit", value: "7" })?.arrow?.head[2]).toEqual([70, 50]);
+  });
+
+  it("ends an arrow at the frame, and leaves it out where there is no room for a head", () => {
+    expect(mark({ kind: "lowerLimit", value: "7.8" })?.arrow?.head[2]).toEqual([200, 50]);
+    expect(mark({ kind: "lowerLimit", value: "7.95" })?.arrow).toBeNull();
+  });
+
+  it("has its band along the redshift, cut at the frame", () => {
+    const height = sizes.bandWidth;
+    expect(mark({ kind: "band", bandLow: "6.5", bandHigh: "7.5" })?.band).toEqual({
+      x: 50,
+      y: 50 - height / 2,
+      width: 100,
+      height,
+    });
+    expect(mark({ kind: "band", bandLow: "5.5", bandHigh: "7" })?.band).toMatchObject({
+      x: 0,
+      width: 100,
+    });
+  });
+
+  it("has its curve above its fraction, as high as its peak", () => {
+    const drawn = point({
+      quantity: "redshiftAtFraction",
+      fraction: "0.5",
+      kind: "twoSided",
+      value: "7",
+      plus: "0.1",
+      minus: "0.1",
+    });
+    const violin = { along: "z", at: [6.5, 7, 7.5], height: [0.5, 1, 0.5] } as const;
+    const { violin: outline } = markOf({ ...drawn!, violin }, z, x, frame, {
+      ...sizes,
+      violinWidth: 20,
+    })!;
+    expect(outline).toEqual([
+      [50, 50],
+      [50, 40],
+      [100, 30],
+      [150, 40],
+      [150, 50],
+    ]);
+  });
+});
