@@ -3,7 +3,7 @@ import type { EntityManager, SelectQueryBuilder } from "typeorm";
 import { Citation } from "~server/citation/citation.entity";
 import type { RequestContext } from "~server/common/context";
 import { withoutRecordsReadBlind } from "~server/review/blindness";
-import type { ConstraintFilter, ConstraintSort } from "~shared/filter/filter";
+import { searchWords, type ConstraintFilter, type ConstraintSort } from "~shared/filter/filter";
 import { currentTags } from "~shared/methods/vocabulary";
 
 import { Constraint } from "./constraint.entity";
@@ -126,11 +126,9 @@ function filtered(ctx: Asking, filter: ConstraintFilter): SelectQueryBuilder<Rev
     const bound = filter[name];
     if (bound !== null && bound !== undefined) query.andWhere(condition, { [name]: bound });
   }
-  // Each word must be found; a word is at most as long as what a person would type.
-  const words = (filter.text ?? "").trim().split(/\s+/).filter(Boolean).slice(0, 12);
-  words.forEach((word, index) => {
+  searchWords(filter).forEach((word, index) => {
     query.andWhere(`revision.searchText LIKE :word${index} ESCAPE '!'`, {
-      [`word${index}`]: `%${escapeLike(word.slice(0, 100))}%`,
+      [`word${index}`]: `%${escapeLike(word)}%`,
     });
   });
   return query;

@@ -80,7 +80,8 @@ async function fromRelease(
     const record = rowContent(row);
     const { zUsed, matches } = inWordsOf(kept, () => {
       const index = indexColumns(record.id, record.fields, record.citation as never);
-      return { zUsed: index.zUsed, matches: matchesFilter(index, filter) };
+      const matches = matchesFilter({ ...index, state: record.state }, filter);
+      return { zUsed: index.zUsed, matches };
     });
     if (!matches) continue;
     total += 1;

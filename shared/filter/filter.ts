@@ -20,6 +20,18 @@ export interface ConstraintFilter {
   yearTo?: number | null;
 }
 
+/** States that a filter lets through which names none: withdrawn records are found only by name. */
+export const STATES_UNLESS_SAID: readonly RecordState[] = ["current", "superseded"];
+
+const MOST_WORDS = 12;
+const LONGEST_WORD = 100;
+
+/** The words of a filter's text, each of which must be found; no more and no longer than a person would type. */
+export function searchWords({ text }: Pick<ConstraintFilter, "text">): string[] {
+  const words = (text ?? "").trim().split(/\s+/).filter(Boolean);
+  return words.slice(0, MOST_WORDS).map((word) => word.slice(0, LONGEST_WORD));
+}
+
 export const CONSTRAINT_SORTS = [
   "redshift",
   "redshiftDescending",

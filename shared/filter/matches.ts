@@ -4,7 +4,7 @@ import type { Quantity, StatementKind, VersionRead, Weighting } from "~shared/st
 
 import type { RecordState } from "~shared/review/states";
 
-import type { ConstraintFilter } from "./filter";
+import { searchWords, STATES_UNLESS_SAID, type ConstraintFilter } from "./filter";
 
 /** What a record is found by. Word lists have commas on both ends: ",dampingWing,other,". */
 export interface FilteredRecord {
@@ -45,7 +45,7 @@ function anyWord(list: string, words: readonly string[] | null | undefined): boo
 /** Whether the record matches every part of the filter. */
 export function matchesFilter(record: FilteredRecord, filter: ConstraintFilter): boolean {
   const text = folded(record.searchText);
-  const words = (filter.text ?? "").trim().split(/\s+/).filter(Boolean);
+  const states = filter.states && filter.states.length > 0 ? filter.states : STATES_UNLESS_SAID;
   return (
     anyWord(record.families, filter.families) &&
     anyWord(record.tags, filter.tags && currentTags(filter.tags)) &&
@@ -53,9 +53,9 @@ export function matchesFilter(record: FilteredRecord, filter: ConstraintFilter):
     oneOf(record.kind, filter.kinds) &&
     oneOf(record.weighting, filter.weightings) &&
     oneOf(record.versionRead, filter.versions) &&
-    oneOf(record.state ?? "current", filter.states) &&
+    states.includes(record.state ?? "current") &&
     within(record.zUsed, filter.zFrom ?? null, filter.zTo ?? null) &&
     within(record.year, filter.yearFrom ?? null, filter.yearTo ?? null) &&
-    words.every((word) => text.includes(folded(word)))
+    searchWords(filter).every((word) => text.includes(folded(word)))
   );
 }

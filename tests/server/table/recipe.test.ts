@@ -12,6 +12,7 @@ import { TableVersionRow } from "~server/table/tableVersion.entity";
 import { NamedData } from "~server/namedData/namedData.entity";
 import { relateData } from "~server/namedData/namedData.service";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
+import { Constraint } from "~server/constraint/constraint.entity";
 import { Release } from "~server/release/release.entity";
 import { cutRelease } from "~server/release/release.service";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
@@ -289,6 +290,35 @@ describe("recipes of fitting tables", () => {
       "table.txt",
       "table.vot",
     ]);
+  });
+
+  it("find the records of a release by the state they had in it", async () => {
+    const numbers: string[] = [];
+    for (const z of ["6.1", "6.2"]) {
+      const { constraintId } = await buildApproved(
+        server.dataSource,
+        contributor.user,
+        editor.user,
+        { z, dataUsed: [`Ashcombe ${z}`] },
+      );
+      if (z === "6.2") {
+        await server.dataSource.manager.update(Constraint, constraintId, { state: "superseded" });
+      }
+      numbers.push(formatRecordNumber(constraintId));
+    }
+    const { number: release } = granted(
+      await cutRelease(actingAs(server.dataSource, maintainer.user), "States"),
+    );
+    const found = async (source: number | null, states: string[]) =>
+      (await propose({ release: source, filter: { text: "Ashcombe", states } })).rows.map(
+        ({ number }: { number: string }) => number,
+      );
+    for (const source of [release, null]) {
+      expect(await found(source, [])).toEqual(numbers);
+      expect(await found(source, ["current"])).toEqual([numbers[0]]);
+      expect(await found(source, ["superseded"])).toEqual([numbers[1]]);
+      expect(await found(source, ["withdrawn"])).toEqual([]);
+    }
   });
 
   it("pin a release and say what the next one would change, in rows and in numbers", async () => {
