@@ -77,10 +77,7 @@ function forms(rows: readonly FittingRow[]): string[] {
     const words = FORM_WORDS[settled.likelihood.form];
     counts.set(words, (counts.get(words) ?? 0) + 1);
   }
-  return [...counts].map(
-    ([words, count]) =>
-      `${latexText(words.charAt(0).toLowerCase() + words.slice(1))} (${plural(count, "row")})`,
-  );
+  return [...counts].map(([words, count]) => `${latexText(words)} (${plural(count, "row")})`);
 }
 
 function decisionSentences(decisions: readonly Decision[]): string[] {
