@@ -1,5 +1,6 @@
 /** The published JSON Schema of a fitting table's JSON file. */
 import { FORM_NAMES } from "~shared/likelihood";
+import { RECORD_STATES } from "~shared/review/states";
 import { emptyFields } from "~shared/statement/fields";
 import { DECISION_KINDS } from "~shared/table/decision";
 
@@ -61,7 +62,7 @@ const likelihood = exactly(
 const row = exactly({
   record: { type: "string", pattern: "^FL-\\d{4,}$" },
   revision: { type: "string", pattern: "^FL-\\d{4,}\\.\\d+$" },
-  state: { enum: ["current", "superseded"] },
+  state: { enum: RECORD_STATES },
   included: flag,
   reason: { ...textOrNull, description: "Why it is out; null for a row that is in." },
   cautions: texts,
