@@ -71,7 +71,7 @@ export function printedSigma(fields: ConstraintFields): PrintedSigma | null {
   };
 }
 
-/** "x_HI at z = 7.1": what one row of the matrix is about, in words. */
+/** "z 7.1", "z 6.5 to 7.5", or the quantity: what one row of the matrix is about, in words. */
 export function memberWords(fields: ConstraintFields): string {
   const what = fields.quantity === null ? "Open" : QUANTITY_WORDS[fields.quantity];
   if (fields.quantity === "neutralFraction") {
