@@ -71,7 +71,17 @@ function processesOverData(): string[] {
     .filter((line) => line.includes(data));
 }
 
-const RELEASE_FILES = ["json", "csv", "ecsv", "vot", "txt", "bib", "cff", "citation.bib"];
+const RELEASE_FILES = [
+  "json",
+  "csv",
+  "ecsv",
+  "vot",
+  "txt",
+  "bib",
+  "cff",
+  "citation.bib",
+  "citation.json",
+];
 
 /** Addresses of all that a stranger can download: lists, each record's citation, each table's and release's files. */
 async function publicFiles(): Promise<string[]> {
