@@ -51,7 +51,8 @@ function start(env: Record<string, string> = {}): Start {
 async function untilServing(run: Start): Promise<void> {
   let over = false;
   void run.ended.then(() => (over = true));
-  while (!run.output().includes("Fogline is ready")) {
+  // The last words of what it says then: they come in pieces.
+  while (!run.output().includes("Stop with Ctrl-C")) {
     if (over) throw new Error(`npm start ended: ${run.output()}`);
     await new Promise((resolve) => setTimeout(resolve, 100));
   }

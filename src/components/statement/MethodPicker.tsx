@@ -1,5 +1,5 @@
 import { useState } from "react";
-import { View } from "react-native";
+import { StyleSheet, View } from "react-native";
 
 import { Button } from "@/components/Button";
 import { CheckRow } from "@/components/CheckRow";
@@ -52,12 +52,14 @@ export function MethodPicker({
       {chosen.map((tag) => (
         <View key={tag.tag} style={{ flexDirection: "row", alignItems: "center", gap: 8 }}>
           <Marker family={tag.family} size={12} />
-          <Chip
-            label={tag.name}
-            selected
-            onRemove={() => onChange(current.filter((one) => one !== tag.tag))}
-          />
-          <Caption style={{ flexShrink: 1 }}>{FAMILY_NAMES[tag.family]}</Caption>
+          <View style={styles.nameAndFamily}>
+            <Chip
+              label={tag.name}
+              selected
+              onRemove={() => onChange(current.filter((one) => one !== tag.tag))}
+            />
+            <Caption>{FAMILY_NAMES[tag.family]}</Caption>
+          </View>
         </View>
       ))}
       <View style={{ flexDirection: "row" }}>
@@ -112,3 +114,14 @@ export function MethodPicker({
     </View>
   );
 }
+
+const styles = StyleSheet.create({
+  /** The longest names leave no room beside them on a small phone: the family goes below then. */
+  nameAndFamily: {
+    flexDirection: "row",
+    flexWrap: "wrap",
+    alignItems: "center",
+    columnGap: 8,
+    flexShrink: 1,
+  },
+});

@@ -571,6 +571,8 @@ const EVIDENCE_REFUSED: Situation = {
   name: "where it comes from, a file refused",
   async go(page) {
     await visit(page, `${await submissionOf(page, "draft")}?step=method`, "Where it comes from");
+    // The longest name of the vocabulary, whichever draft comes first.
+    await chooseMethod(page, "Gamma-ray burst damping wing");
     const buffer = Buffer.alloc(10_000_001, "x");
     await page
       .locator("input[type=file]")

@@ -71,7 +71,7 @@ export async function typeStatement(page: Page, statement: Statement): Promise<v
 }
 
 export async function chooseMethod(page: Page, name: string): Promise<void> {
-  await button(page, "Choose the methods").click();
+  await button(page, /^(Choose|Change) the methods$/).click();
   const sheet = page.getByRole("dialog");
   await sheet.getByRole("checkbox", { name, exact: true }).check();
   await button(sheet, "Done").click();
