@@ -10,7 +10,7 @@ const importX = require("eslint-plugin-import-x");
 const SHARED_ORDER = [
   ...["errors", "numerics", "constants", "identifiers", "methods", "statement", "dependence"],
   ...["cosmology", "history", "likelihood", "inference", "review", "correlatedSet", "event"],
-  ...["filter", "formats", "chart"],
+  ...["filter", "table", "fit", "formats", "chart"],
 ];
 
 const features = foldersOf("src/features");
