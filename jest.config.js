@@ -1,3 +1,5 @@
+const web = require("jest-expo/web/jest-preset");
+
 /** @type {import('jest').Config} */
 const alias = {
   "^@/(.*)$": "<rootDir>/src/$1",
@@ -6,9 +8,12 @@ const alias = {
   "^~graphql/(.*)$": "<rootDir>/graphql/$1",
   "^@expo/vector-icons(/.*)?$": "<rootDir>/src/components/Icon.tsx",
 };
+// Packages that come as modules only, which Jest has to translate.
+const modulesOnly = "d3-array|d3-contour|internmap";
 const node = {
   testEnvironment: "node",
   transform: { "^.+\\.[cm]?[jt]sx?$": ["@swc/jest", {}] },
+  transformIgnorePatterns: [`/node_modules/(?!(${modulesOnly})/)`],
   moduleNameMapper: alias,
 };
 module.exports = {
@@ -18,6 +23,9 @@ module.exports = {
     {
       displayName: "client",
       preset: "jest-expo/web",
+      transformIgnorePatterns: web.transformIgnorePatterns.map((pattern) =>
+        pattern.replace("(?!(", `(?!(${modulesOnly}|`),
+      ),
       testMatch: ["<rootDir>/tests/client/**/*.test.tsx"],
       moduleNameMapper: alias,
       setupFilesAfterEnv: ["<rootDir>/tests/client/patience.ts"],
