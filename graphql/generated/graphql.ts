@@ -684,7 +684,7 @@ export type FittingTable = {
   notify: Scalars['Boolean']['output'];
   ownedByMe: Scalars['Boolean']['output'];
   owner: Scalars['String']['output'];
-  /** To be adapted; null for a table older than versions. */
+  /** To be adapted; null while one of its records is read blind. */
   recipe: Maybe<TableRecipeType>;
   /** Release it pins; null for the latest of its day. */
   release: Maybe<Scalars['Int']['output']>;
@@ -695,7 +695,7 @@ export type FittingTable = {
   rowsSince: Array<RowSinceType>;
   sets: Array<TableCorrelation>;
   slug: Scalars['ID']['output'];
-  /** The version shown; 0 for a table older than versions. */
+  /** The version shown. */
   version: Scalars['Int']['output'];
   /** All versions, newest first. */
   versions: Array<TableVersionMark>;
@@ -1016,7 +1016,6 @@ export type Mutation = {
   /** Saves a complete table, or a new version of one's own. */
   saveRecipe: FittingTableResult;
   saveSet: CorrelatedSetResult;
-  saveTable: FittingTableResult;
   /** Mails an author of the paper a link that shows the revision; the link is in the mail only. */
   sendAuthorCheck: AuthorCheckResult;
   signIn: SignInResult;
@@ -1381,11 +1380,6 @@ export type MutationSaveRecipeArgs = {
 
 export type MutationSaveSetArgs = {
   input: SaveSetInput;
-};
-
-
-export type MutationSaveTableArgs = {
-  input: SaveTableInput;
 };
 
 
@@ -2231,12 +2225,6 @@ export type SaveSetInput = {
   version: Scalars['Int']['input'];
 };
 
-export type SaveTableInput = {
-  filter: ConstraintFilter;
-  name: Scalars['String']['input'];
-  rows: Array<TableRowInput>;
-};
-
 export type Scale =
   | 'linear'
   | 'log10';
@@ -2536,12 +2524,6 @@ export type TableRowChange = {
   __typename?: 'TableRowChange';
   number: Scalars['String']['output'];
   words: Scalars['String']['output'];
-};
-
-export type TableRowInput = {
-  included: Scalars['Boolean']['input'];
-  number: Scalars['String']['input'];
-  reason?: InputMaybe<Scalars['String']['input']>;
 };
 
 /** What the registry knows of records beside their own content. */

@@ -5,11 +5,7 @@ const TYPES = {
   json: "application/json; charset=utf-8",
   bib: "application/x-bibtex; charset=utf-8",
 } as const;
-export type FileKind = keyof typeof TYPES;
-
-export function isFileKind(kind: string): kind is FileKind {
-  return Object.hasOwn(TYPES, kind);
-}
+type FileKind = keyof typeof TYPES;
 
 /**
  * Sends a file to be saved. Express adds the ETag and answers 304; caches must ask each time,

@@ -6,7 +6,6 @@ import { TABLE_FILES } from "~server/table/files";
 import { loadTableFile } from "~server/table/table.service";
 import { TABLE_SCHEMA } from "~shared/formats/tableSchema";
 
-import { isFileKind, sendFile } from "./send";
 import { streamFile } from "./stream";
 
 /**
@@ -40,26 +39,12 @@ async function send(parts: RouteParts, req: Request, res: Response): Promise<voi
     throw new HttpProblem(403, "READING", sentence);
   }
   const { table, version } = lookup;
-  if (!version) {
-    const content = isFileKind(kind) ? table.snapshot?.files[kind] : undefined;
-    if (!isFileKind(kind) || content === undefined) {
-      throw new HttpProblem(404, "NOT_FOUND", NO_TABLE);
-    }
-    sendFile(res, `fogline-table-${table.slug}`, kind, content);
-    return;
-  }
   const file = TABLE_FILES[kind];
   if (!file) throw new HttpProblem(404, "NOT_FOUND", NO_TABLE);
   await streamFile(req, res, {
     type: file.type,
     name: `fogline-table-${table.slug}-v${version.version}.${kind}`,
-    etag: `${version.digest}-${version.version}-${table.name}-${kind}`,
-    pieces: () =>
-      file.pieces({
-        manager: ctx.database.manager,
-        version,
-        name: table.name,
-        address: `${ctx.config.publicUrl}/tables/${table.slug}`,
-      }),
+    etag: `${version.digest}-${version.version}-${version.name}-${kind}`,
+    pieces: () => file.pieces({ manager: ctx.database.manager, version }),
   });
 }

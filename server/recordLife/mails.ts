@@ -19,12 +19,8 @@ async function tablesWith(manager: EntityManager, constraintId: number): Promise
        FROM fitting_table saved
        JOIN fitting_table_row entry ON entry.slug = saved.slug AND entry.version = saved.version
       WHERE entry.constraintId = ? AND entry.included = 1 AND saved.deletedAt IS NULL
-      UNION
-     SELECT saved.slug, saved.name, saved.ownerId FROM fitting_table saved
-      WHERE saved.version = 0 AND saved.deletedAt IS NULL
-        AND JSON_CONTAINS(JSON_EXTRACT(saved.snapshot, '$.constraints[*].id'), ?)
       ORDER BY name, slug`,
-    [constraintId, String(constraintId)],
+    [constraintId],
   );
 }
 

@@ -20,12 +20,6 @@ interface SavedRow {
 /** Rows that a table takes in. Read from what was saved; nothing here writes to it. */
 async function savedRows(manager: EntityManager, table: FittingTable): Promise<SavedRow[]> {
   const { saved, shown } = table;
-  if (!shown && saved.snapshot) {
-    const taken = new Set(
-      saved.snapshot.rows.filter(({ included }) => included).map(({ number }) => number),
-    );
-    return saved.snapshot.constraints.filter(({ number }) => taken.has(number));
-  }
   const rows: { id: number; ordinal: number }[] = await manager.query(
     `SELECT entry.constraintId AS id, JSON_VALUE(entry.record, '$.ordinal') AS ordinal
        FROM fitting_table_row entry

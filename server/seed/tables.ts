@@ -1,25 +1,25 @@
-import { findApproved } from "~server/constraint/constraint.query";
+import type { EntityManager } from "typeorm";
+
 import { Refusal } from "~server/common/outcomes";
 import type { ConstraintFilterInput } from "~server/constraint/constraint.type";
+import type { Acting } from "~server/event/acting";
+import type { TableRecipe } from "~server/table/recipe";
 import { follow } from "~server/table/settle.service";
-import { saveTable } from "~server/table/table.service";
+import type { Visibility } from "~server/table/table.entity";
 import { saveRecipe } from "~server/table/version.service";
 import { canonicalFilter } from "~shared/filter/address";
-import type { ConstraintFilter } from "~shared/filter/filter";
-import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 import { takeProposal, type TakenDecision } from "~shared/table/decision";
-import { proposeRows } from "~shared/table/proposeRows";
 
 import type { PersonName } from "./people";
 import { done, type Stage, type Step } from "./stage";
 
-/** The fitting tables of the story: one saved as rows, two as recipes with every proposal taken. */
+/** The fitting tables of the story, each with every proposal taken; the last is for its owner only. */
 export function tableSteps(stage: Stage): Step[] {
   return [
     {
       at: new Date("2026-10-29T15:00:00Z"),
       tell: (at) =>
-        rowTable(stage, at, "contributor", "Damping wings, 6 to 8", {
+        recipeTable(stage, at, "contributor", "Damping wings, 6 to 8", {
           families: ["dampingWing"],
           zFrom: 6,
           zTo: 8,
@@ -37,61 +37,58 @@ export function tableSteps(stage: Stage): Step[] {
           families: ["luminosityFunction", "lineStrength", "emitterClustering", "cmb"],
         }),
     },
+    {
+      at: new Date("2026-11-20T10:10:00Z"),
+      tell: (at) =>
+        recipeTable(
+          stage,
+          at,
+          "contributor",
+          "First try, forests only",
+          { families: ["darkPixels", "forestOpacity"] },
+          "private",
+        ),
+    },
   ];
-}
-
-/** A fitting table with the rows that the program proposes. */
-async function rowTable(
-  stage: Stage,
-  at: Date,
-  owner: PersonName,
-  name: string,
-  filter: ConstraintFilter,
-): Promise<void> {
-  const who = stage.as(owner, at);
-  const found = await findApproved(
-    { database: { manager: stage.manager }, viewer: who.viewer },
-    filter,
-  );
-  const rows = proposeRows(
-    found.map(({ constraint, revision, citation }) => ({
-      number: formatRecordNumber(constraint.id),
-      fields: revision.fields,
-      citation: citation.id,
-      year: citation.year,
-    })),
-  );
-  done(await saveTable(who, { name, filter, rows }), "table");
 }
 
 const MOST_ROUNDS = 60;
 
-/** A fitting table whose every decision is its proposal, taken one after another. */
+/** What the program proposes for every decision that a filter raises; what one settles can raise others. */
+export async function takenProposals(
+  manager: EntityManager,
+  viewer: Acting["viewer"],
+  recipe: Pick<TableRecipe, "filter" | "release"> & { out?: TableRecipe["choices"]["out"] },
+): Promise<TakenDecision[]> {
+  let decisions: TakenDecision[] = [];
+  for (let round = 0; round < MOST_ROUNDS; round += 1) {
+    const { release, filter, out = [] } = recipe;
+    const choices = { decisions, out, forms: [] };
+    const followed = await follow(manager, viewer, { release, filter, choices });
+    if (followed instanceof Refusal) throw new Error(followed.message);
+    const open = followed.settled.decisions.filter(({ taken }) => taken === null);
+    if (open.length === 0) break;
+    decisions = [...decisions, ...open.map(takeProposal)];
+  }
+  return decisions;
+}
+
+/** A fitting table whose every decision is its proposal. */
 async function recipeTable(
   stage: Stage,
   at: Date,
   owner: PersonName,
   name: string,
   filter: ConstraintFilterInput,
+  visibility: Visibility = "public",
 ): Promise<void> {
   const who = stage.as(owner, at);
-  let decisions: TakenDecision[] = [];
-  for (let round = 0; round < MOST_ROUNDS; round += 1) {
-    const followed = await follow(stage.manager, who.viewer, {
-      release: null,
-      filter: canonicalFilter(filter),
-      choices: { decisions, out: [], forms: [] },
-    });
-    if (followed instanceof Refusal) throw new Error(followed.message);
-    // What a decision settles can raise others: again until none is open.
-    const open = followed.settled.decisions.filter(({ taken }) => taken === null);
-    if (open.length === 0) break;
-    decisions = [...decisions, ...open.map(takeProposal)];
-  }
+  const recipe = { release: null, filter: canonicalFilter(filter) };
+  const decisions = await takenProposals(stage.manager, who.viewer, recipe);
   done(
     await saveRecipe(who, {
       name,
-      visibility: "public",
+      visibility,
       recipe: {
         filter,
         decisions: decisions.map(({ id, option }) => ({ id, option, byDefault: true })),

@@ -28,7 +28,7 @@ import { TableVersionRow, type TableVersion } from "./tableVersion.entity";
  * What the newest release would make of a table that pins one, or the records of now of a table over the latest.
  * The table itself never changes by it.
  *
- * @returns Null for a table older than versions, and while its source can't be read.
+ * @returns Null while its source can't be read.
  */
 export async function tableChanges(
   manager: EntityManager,

@@ -19,13 +19,9 @@ import { latexTable } from "~shared/formats/latexTable";
 import { contentPieces, DIGEST_NOTE, TABLE_FORMAT } from "./tableContent";
 import { TableVersionRow, type TableVersion } from "./tableVersion.entity";
 
-/** A version with what its files say of the table as a whole. */
 export interface FiledVersion {
   manager: EntityManager;
   version: TableVersion;
-  name: string;
-  /** Of the table's page. */
-  address: string;
 }
 
 export interface TableFileKind {
@@ -89,16 +85,17 @@ async function* papers(
   }
 }
 
-function headOf({ version, name }: FiledVersion): FileHead {
+function headOf({ version }: FiledVersion): FileHead {
   return {
-    title: `${REGISTRY}: fitting table "${name}", version ${version.version}`,
+    title: `${REGISTRY}: fitting table "${version.name}", version ${version.version}`,
     lines: version.lines,
     columns: version.columns,
   };
 }
 
 async function* json(filed: FiledVersion): AsyncGenerator<string> {
-  const { version, name, address } = filed;
+  const { version } = filed;
+  const { name, address } = version;
   const head = {
     $schema: `${new URL(address).origin}/api/schemas/fitting-table-2.json`,
     format: TABLE_FORMAT,
@@ -150,21 +147,17 @@ async function* bib(filed: FiledVersion): AsyncGenerator<string> {
 }
 
 /** The release that a table pins is a cited work like its papers. */
-async function pinnedRelease({
-  manager,
-  version,
-  address,
-}: FiledVersion): Promise<CitedRelease | null> {
+async function pinnedRelease({ manager, version }: FiledVersion): Promise<CitedRelease | null> {
   if (version.releaseNumber === null) return null;
   const release = await findRelease(manager, version.releaseNumber);
-  return release && citedRelease(release, new URL(address).origin);
+  return release && citedRelease(release, new URL(version.address).origin);
 }
 
 async function* tex(filed: FiledVersion): AsyncGenerator<string> {
   yield* latexTable(
-    `Constraints of the fitting table "${filed.name}" (${REGISTRY}).`,
+    `Constraints of the fitting table "${filed.version.name}" (${REGISTRY}).`,
     [
-      `Errors and limits as printed, turned into neutral fractions. ${filed.address}`,
+      `Errors and limits as printed, turned into neutral fractions. ${filed.version.address}`,
       `SHA-256 ${filed.version.digest}`,
     ],
     rows(filed, "latex"),

@@ -10,8 +10,6 @@ import {
 
 import { User } from "~server/account/user.entity";
 
-import type { TableSnapshot } from "./snapshot";
-
 /** private: its owner; link: who has the address; public: everybody, and it is listed. */
 export const VISIBILITIES = ["private", "link", "public"] as const;
 export type Visibility = (typeof VISIBILITIES)[number];
@@ -53,14 +51,10 @@ export class SavedTable {
   @Column({ type: "datetime", precision: 6 })
   lastEventAt!: Date;
 
-  /** Content of a table saved before tables had versions; null for every other. */
-  @Column({ type: "json", nullable: true })
-  snapshot!: TableSnapshot | null;
-
   @Column({ type: "varchar", length: 10, default: "public" })
   visibility!: Visibility;
 
-  /** The newest version; 0 for a table saved before tables had versions. */
+  /** The newest version. */
   @Column({ type: "int", unsigned: true, default: 0 })
   version!: number;
 

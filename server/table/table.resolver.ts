@@ -35,13 +35,7 @@ import { follow, surroundingsFor } from "./settle.service";
 import { surroundingsOf } from "./surroundings";
 import type { Visibility } from "./table.entity";
 import * as tables from "./table.service";
-import {
-  FittingTable,
-  FittingTableResult,
-  fittingTableType,
-  savedConstraint,
-  SaveTableInput,
-} from "./table.type";
+import { FittingTable, FittingTableResult, fittingTableType, savedConstraint } from "./table.type";
 import {
   decisionType,
   findTable,
@@ -78,7 +72,7 @@ export class TableResolver {
     const table = await findTable(manager, viewerId(ctx), slug);
     if (!table) return null;
     const shown = await findVersion(manager, table, version);
-    if (version !== null && !shown) return null;
+    if (!shown) return null;
     return fittingTableType(table, shown, viewerId(ctx));
   }
 
@@ -171,16 +165,6 @@ export class TableResolver {
     return changed instanceof Refusal ? changed : fittingTableType(changed, null, viewerId(ctx));
   }
 
-  @Requires("saveTable")
-  @Mutation(() => FittingTableResult)
-  async saveTable(
-    @Ctx() ctx: RequestContext,
-    @Arg("input", () => SaveTableInput) input: SaveTableInput,
-  ): Promise<typeof FittingTableResult> {
-    const saved = await tables.saveTable(acting(ctx), input);
-    return saved instanceof Refusal ? saved : fittingTableType(saved, null, viewerId(ctx));
-  }
-
   @Requires("deleteTable")
   @Mutation(() => DoneResult)
   deleteTable(
@@ -239,19 +223,19 @@ export class TableResolver {
   })
   async methods(@Ctx() ctx: RequestContext, @Root() root: FittingTable): Promise<string | null> {
     const { version, hidden } = await shownGroups(ctx, root);
-    return hidden ? null : (version?.methods ?? null);
+    return hidden ? null : version.methods;
   }
 
   @FieldResolver(() => TableRecipeType, {
     nullable: true,
-    description: "To be adapted; null for a table older than versions.",
+    description: "To be adapted; null while one of its records is read blind.",
   })
   async recipe(
     @Ctx() ctx: RequestContext,
     @Root() root: FittingTable,
   ): Promise<TableRecipeType | null> {
     const { version, hidden } = await shownGroups(ctx, root);
-    return version && !hidden ? recipeType(version.recipe) : null;
+    return !hidden ? recipeType(version.recipe) : null;
   }
 
   @FieldResolver(() => [TableVersionMark], { description: "All versions, newest first." })
@@ -279,12 +263,11 @@ export class TableResolver {
 
   @FieldResolver(() => [TableFileMark], { description: "Every file of the version shown." })
   files(@Root() root: FittingTable): TableFileMark[] {
-    const kinds = root.saved.version === 0 ? ["csv", "json", "bib"] : Object.keys(TABLE_FILES);
     const at = root.shown ? `${root.slug}@${root.shown.version}` : root.slug;
-    return kinds.map((kind) =>
+    return Object.entries(TABLE_FILES).map(([kind, { words }]) =>
       Object.assign(new TableFileMark(), {
         kind,
-        name: TABLE_FILES[kind]?.words ?? kind,
+        name: words,
         path: `/api/tables/${at}.${kind}`,
       }),
     );

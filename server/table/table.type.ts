@@ -1,9 +1,9 @@
-import { createUnionType, Field, ID, InputType, Int, ObjectType } from "type-graphql";
+import { createUnionType, Field, ID, Int, ObjectType } from "type-graphql";
 
 import { citationType } from "~server/citation/citation.type";
 import type { Citation } from "~server/citation/citation.entity";
 import { Refusal } from "~server/common/outcomes";
-import { ConstraintFilterInput, ConstraintType } from "~server/constraint/constraint.type";
+import { ConstraintType } from "~server/constraint/constraint.type";
 import { fieldsType } from "~server/constraint/fields.type";
 import { EventMark, eventMark } from "~server/event/event.type";
 import { formatQuotable } from "~shared/identifiers/recordNumber";
@@ -24,7 +24,7 @@ export class FittingTable {
     description: "Whether its owner is told when a release would change it.",
   })
   notify!: boolean;
-  @Field(() => Int, { description: "The version shown; 0 for a table older than versions." })
+  @Field(() => Int, { description: "The version shown." })
   version!: number;
   @Field(() => Int, {
     nullable: true,
@@ -43,20 +43,6 @@ export class FittingTable {
   // Not in the API: what its resolvers need.
   saved!: SavedTable;
   shown!: TableVersion | null;
-}
-
-@InputType()
-export class TableRowInput {
-  @Field(() => String) number!: string;
-  @Field(() => Boolean) included!: boolean;
-  @Field(() => String, { nullable: true }) reason?: string | null;
-}
-
-@InputType()
-export class SaveTableInput {
-  @Field(() => String) name!: string;
-  @Field(() => ConstraintFilterInput) filter!: ConstraintFilterInput;
-  @Field(() => [TableRowInput]) rows!: TableRowInput[];
 }
 
 export const FittingTableResult = createUnionType({

@@ -1,12 +1,10 @@
-/** What a table's version shows, whether it was saved before tables had versions or since. */
+/** What a table's version shows. */
 import { In, IsNull, type EntityManager } from "typeorm";
 
 import type { RequestContext } from "~server/common/context";
 import { setNumbersReadBlind } from "~server/correlatedSet/readBlind";
 import { recordsReadBlind } from "~server/review/blindness";
 import { choosableForms } from "~shared/table/choosableForms";
-import { rowLikelihood } from "~shared/likelihood";
-import { asUsed } from "~shared/statement/asUsed";
 import { filterToQuery } from "~shared/filter/address";
 import type { Decision } from "~shared/table/decision";
 import type { SettledRow, SettledTable } from "~shared/table/settleTable";
@@ -42,18 +40,19 @@ export async function findTable(
   return table.visibility === "private" && table.ownerId !== viewerId ? null : table;
 }
 
+/** @param version - Null for the newest, which every table has. */
 export async function findVersion(
   manager: EntityManager,
   table: SavedTable,
   version: number | null,
 ): Promise<TableVersion | null> {
-  if (table.version === 0) return null;
   return manager.findOneBy(TableVersion, { slug: table.slug, version: version ?? table.version });
 }
 
-/** The version that a FittingTable shows; null for one older than versions. */
-async function versionOf(ctx: RequestContext, root: FittingTable): Promise<TableVersion | null> {
-  root.shown ??= await findVersion(ctx.database.manager, root.saved, null);
+/** The version that a FittingTable shows. */
+async function versionOf(ctx: RequestContext, root: FittingTable): Promise<TableVersion> {
+  const { slug, version } = root.saved;
+  root.shown ??= await ctx.database.manager.findOneByOrFail(TableVersion, { slug, version });
   return root.shown;
 }
 
@@ -75,21 +74,19 @@ export async function shownRows(
   const { manager } = ctx.database;
   const blind = await recordsReadBlind(manager, ctx.viewer, new Date());
   const version = await versionOf(ctx, root);
-  const rows = version
-    ? await manager
-        .find(TableVersionRow, {
-          where: { slug: version.slug, version: version.version },
-          order: { position: "ASC" },
-          skip: offset,
-          take: limit,
-        })
-        .then((found) => found.map((row) => versionRow(row, version)))
-    : oldRows(root.saved).slice(offset, offset + limit);
-  return rows.map((shown) =>
-    blind.has(shown.record.id)
-      ? { ...shown, blind: true, row: withoutContent(shown.row) }
-      : { ...shown, blind: false },
-  );
+  const rows = await manager.find(TableVersionRow, {
+    where: { slug: version.slug, version: version.version },
+    order: { position: "ASC" },
+    skip: offset,
+    take: limit,
+  });
+  return rows
+    .map((row) => versionRow(row, version))
+    .map((shown) =>
+      blind.has(shown.record.id)
+        ? { ...shown, blind: true, row: withoutContent(shown.row) }
+        : { ...shown, blind: false },
+    );
 }
 
 function withoutContent(row: SettledRowType): SettledRowType {
@@ -152,34 +149,6 @@ function isProposed(number: string, { decisions, recipe }: TableVersion): boolea
   );
 }
 
-function oldRows({ snapshot }: SavedTable): ShownRow[] {
-  return (snapshot?.rows ?? []).flatMap((row, index): ShownRow[] => {
-    const record = snapshot?.constraints[index];
-    if (!record) return [];
-    const likelihood = rowLikelihood(asUsed(record.fields));
-    const known = "leftOut" in likelihood ? null : likelihood;
-    return [
-      {
-        record,
-        row: Object.assign(new SettledRowType(), {
-          ...row,
-          open: [],
-          cautions: [],
-          form: known?.form ?? null,
-          forms: [],
-          formula: known?.formula ?? null,
-          formReason: null,
-          redshift: known?.redshift ?? null,
-          level: null,
-          weight: 1,
-          mixture: null,
-          set: null,
-        }),
-      },
-    ];
-  });
-}
-
 /** A settled row as the API shows it while a table is being built. */
 export function settledRowType(row: SettledRow, decisions: readonly Decision[]): SettledRowType {
   const { likelihood } = row;
@@ -230,21 +199,20 @@ export function groupTypes({ mixtures, sets }: Pick<SettledTable, "mixtures" | "
   };
 }
 
-/** Decisions, mixtures and sets of the version shown; none in a table older than versions. */
+/** Decisions, mixtures and sets of the version shown. */
 export async function shownGroups(ctx: RequestContext, root: FittingTable) {
   const version = await versionOf(ctx, root);
   const { manager } = ctx.database;
   const blind = await recordsReadBlind(manager, ctx.viewer, new Date());
   const sets = await setNumbersReadBlind(manager, ctx.viewer, new Date());
   const hidden =
-    version !== null &&
-    (version.sets.some(({ id }) => sets.has(id)) ||
-      (blind.size > 0 && (await holdsAny(manager, version, blind))));
+    version.sets.some(({ id }) => sets.has(id)) ||
+    (blind.size > 0 && (await holdsAny(manager, version, blind)));
   return {
     version,
     hidden,
-    decisions: version && !hidden ? version.decisions.map(decisionType) : [],
-    ...(version && !hidden ? groupTypes(version) : { mixtures: [], sets: [] }),
+    decisions: !hidden ? version.decisions.map(decisionType) : [],
+    ...(!hidden ? groupTypes(version) : { mixtures: [], sets: [] }),
   };
 }
 

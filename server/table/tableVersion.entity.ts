@@ -34,6 +34,14 @@ export class TableVersion {
   @Column({ type: "datetime", precision: 6 })
   createdAt!: Date;
 
+  /** The table's name when it was saved: renaming a table changes no byte of its versions. */
+  @Column({ type: "varchar", length: 120 })
+  name!: string;
+
+  /** Of the table's page, as it was when it was saved. */
+  @Column({ type: "varchar", length: 500 })
+  address!: string;
+
   /** Release that its rows come from; null for the latest approved records of that moment. */
   @Column({ type: "int", unsigned: true, nullable: true })
   releaseNumber!: number | null;

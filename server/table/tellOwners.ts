@@ -1,4 +1,4 @@
-import { IsNull, MoreThan } from "typeorm";
+import { IsNull } from "typeorm";
 
 import { change, type Acting } from "~server/event/acting";
 import type { Release } from "~server/release/release.entity";
@@ -15,7 +15,7 @@ import { SavedTable } from "./table.entity";
  */
 export async function tellOwners(who: Acting, release: Release): Promise<number> {
   const tables = await who.database.manager.find(SavedTable, {
-    where: { notify: true, deletedAt: IsNull(), version: MoreThan(0) },
+    where: { notify: true, deletedAt: IsNull() },
     relations: { owner: true },
     order: { slug: "ASC" },
   });

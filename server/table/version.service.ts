@@ -97,13 +97,14 @@ export async function saveRecipe(
         createdAt: who.now,
         deletedAt: null,
         adaptedFrom: await knownTable(manager, input.adaptedFrom ?? null),
-        snapshot: null,
       });
     }
     await manager.insert(TableVersion, {
       slug,
       version,
       createdAt: who.now,
+      name,
+      address: source.address,
       recipe,
       ...facts,
       licence: who.licence,

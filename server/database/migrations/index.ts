@@ -10,6 +10,7 @@ import { PeopleAndReports1796130000008 } from "./1796130000008-PeopleAndReports"
 import { Releases1796130000010 } from "./1796130000010-Releases";
 import { TableVersions1796130000011 } from "./1796130000011-TableVersions";
 import { TellOwners1796130000012 } from "./1796130000012-TellOwners";
+import { TablesByVersionOnly1796130000038 } from "./1796130000038-TablesByVersionOnly";
 
 /** Every migration, oldest first. A list, not a glob: it is the same under swc, Jest and build/. */
 export const migrations: (new () => MigrationInterface)[] = [
@@ -23,4 +24,5 @@ export const migrations: (new () => MigrationInterface)[] = [
   Releases1796130000010,
   TableVersions1796130000011,
   TellOwners1796130000012,
+  TablesByVersionOnly1796130000038,
 ];

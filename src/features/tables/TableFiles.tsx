@@ -57,11 +57,9 @@ export function TableFiles({ table }: { table: Table }) {
           )}
         </>
       ) : null}
-      {table.version > 0 ? (
-        <Caption muted>
-          {`An address with @${table.version} in it gives the same bytes for ever; one without gives the newest version.`}
-        </Caption>
-      ) : null}
+      <Caption muted>
+        {`An address with @${table.version} in it gives the same bytes for ever; one without gives the newest version.`}
+      </Caption>
     </View>
   );
 }

@@ -106,7 +106,7 @@ function TableView({ table }: { table: Table }) {
           <TableFiles table={table} />
         </View>
       </View>
-      <RowsSince slug={table.slug} version={table.version > 0 ? table.version : null} />
+      <RowsSince slug={table.slug} version={table.version} />
       <Notice grade="caution">
         <Dense>
           The choices are this table&apos;s, not the authors&apos;; cite the originals. Rows are
@@ -141,18 +141,14 @@ function TableView({ table }: { table: Table }) {
           <Mono style={styles.methods}>{table.methods}</Mono>
         </View>
       ) : null}
-      {table.version > 0 ? <TableWouldChange table={table} /> : null}
+      <TableWouldChange table={table} />
       <TableVersions table={table} />
       <View style={styles.buttons}>
-        {table.version > 0 ? (
-          <Button
-            label="Copy and adapt"
-            icon="content-copy"
-            href={`/tables/new?from=${table.slug}`}
-          />
-        ) : (
-          <Button label="Build another table" icon="table-large-plus" href="/tables/new" />
-        )}
+        <Button
+          label="Copy and adapt"
+          icon="content-copy"
+          href={`/tables/new?from=${table.slug}`}
+        />
         {may("changeTable", table.ownedByMe) ? <TableSettings table={table} /> : null}
         {may("deleteTable", table.ownedByMe) ? <Delete table={table} /> : null}
       </View>

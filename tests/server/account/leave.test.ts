@@ -4,7 +4,6 @@ import { EventRecord } from "~server/event/event.entity";
 import { verifyChain } from "~server/event/eventLog";
 import { OutboxMail } from "~server/mail/outboxMail.entity";
 import { claim, returnSubmission, storeReading } from "~server/review/review.service";
-import { saveTable } from "~server/table/table.service";
 import { formatQuotable, formatRecordNumber } from "~shared/identifiers/recordNumber";
 
 import {
@@ -14,6 +13,7 @@ import {
   buildSubmission,
   granted,
 } from "../../factories/constraint";
+import { buildTable } from "../../factories/table";
 import { TEST_PASSWORD } from "../../factories/user";
 import { startTestServer, type TestServer } from "../support/harness";
 import { accountOperations } from "./operations";
@@ -73,13 +73,10 @@ it("an anonymous account leaves no name, ORCID, address or mail behind, and its 
   const entered = await buildApproved(server.dataSource, user, other.user, { z: "6.21" });
   const read = await buildApproved(server.dataSource, other.user, user, { z: "8.04" });
   const number = formatRecordNumber(entered.constraintId);
-  const { slug } = granted(
-    await saveTable(actingAs(server.dataSource, user), {
-      name: "Mine",
-      filter: { text: number },
-      rows: [{ number, included: true }],
-    }),
-  ) as { slug: string };
+  const { slug } = await buildTable(server.dataSource, user, {
+    name: "Mine",
+    filter: { text: number },
+  });
 
   await account.deleteAccount(agent, TEST_PASSWORD, "anonymous");
   expect(await credited(number)).toMatchObject({ submittedBy: "a former member" });

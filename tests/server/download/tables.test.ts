@@ -14,11 +14,13 @@ import { reviseSubmission } from "~server/constraint/draft.service";
 import { markDemonstration } from "~server/database/settings";
 import { createLogger } from "~server/logging/logger";
 import { claim, storeReading } from "~server/review/review.service";
-import type { SavedTable } from "~server/table/table.entity";
-import { deleteTable, saveTable } from "~server/table/table.service";
+import { deleteTable } from "~server/table/table.service";
+import type { TableVersion } from "~server/table/tableVersion.entity";
+import { changeTable } from "~server/table/version.service";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 
 import { actingAs, approveAs, buildApproved, granted, send } from "../../factories/constraint";
+import { buildTable } from "../../factories/table";
 import { startTestServer, type TestServer } from "../support/harness";
 
 // A database is made first, on a machine that may be busy.
@@ -36,7 +38,7 @@ beforeAll(async () => {
 afterAll(() => server.stop());
 
 /** Two records of a sightline and field of their own, the second left out with a reason. */
-async function buildTable(word: string): Promise<{ table: SavedTable; ids: number[] }> {
+async function tableOf(word: string): Promise<{ table: TableVersion; ids: number[] }> {
   const { dataSource } = server;
   const ids: number[] = [];
   for (const [z, value] of [
@@ -46,17 +48,12 @@ async function buildTable(word: string): Promise<{ table: SavedTable; ids: numbe
     const overrides = { z, value, dataUsed: [`${word} ${z}`] };
     ids.push((await buildApproved(dataSource, owner, editor, overrides)).constraintId);
   }
-  const [first, second] = ids.map(formatRecordNumber);
-  const table = granted(
-    await saveTable(actingAs(dataSource, owner), {
-      name: `Table of ${word}`,
-      filter: { text: word },
-      rows: [
-        { number: first!, included: true },
-        { number: second!, included: false, reason: "Read off a poor figure, they say" },
-      ],
-    }),
-  );
+  const [, second] = ids.map(formatRecordNumber);
+  const table = await buildTable(dataSource, owner, {
+    name: `Table of ${word}`,
+    filter: { text: word },
+    out: [{ number: second!, reason: "Read off a poor figure, they say" }],
+  });
   return { table, ids };
 }
 
@@ -64,7 +61,7 @@ const fetchTable = (slug: string, kind: string, agent = server.agent()) =>
   agent.get(`/api/tables/${slug}.${kind}`);
 
 it("anybody fetches a saved table in three forms, to be saved, never sniffed", async () => {
-  const { table, ids } = await buildTable("Amberfield");
+  const { table, ids } = await tableOf("Amberfield");
   const [first, second] = ids.map(formatRecordNumber);
   for (const [kind, type] of [
     ["csv", "text/csv; charset=utf-8"],
@@ -75,7 +72,7 @@ it("anybody fetches a saved table in three forms, to be saved, never sniffed", a
     expect(status).toBe(200);
     expect(headers["content-type"]).toBe(type);
     expect(headers["content-disposition"]).toBe(
-      `attachment; filename="fogline-table-${table.slug}.${kind}"`,
+      `attachment; filename="fogline-table-${table.slug}-v1.${kind}"`,
     );
     expect(headers["x-content-type-options"]).toBe("nosniff");
   }
@@ -86,11 +83,9 @@ it("anybody fetches a saved table in three forms, to be saved, never sniffed", a
     header: true,
     skipEmptyLines: true,
   });
-  expect(data.map((row) => [row.record, row.included, row.printed_value])).toEqual([
-    [first, "true", "0.21"],
-    [second, "false", "0.50"],
-  ]);
-  expect(data[1]!.reason).toBe("Read off a poor figure, they say");
+  // Rows in are columns; a row out stands at the head of the file with its reason.
+  expect(data.map((row) => [row.record, row.printed_value])).toEqual([[first, "0.21"]]);
+  expect(csv).toContain(`# Out: ${second}: Taken out: Read off a poor figure, they say`);
   expect(csv).toContain('# Filter: Text "Amberfield"');
   expect(csv).toContain(table.digest);
   expect(csv).toContain(`/tables/${table.slug}`);
@@ -115,7 +110,7 @@ it("anybody fetches a saved table in three forms, to be saved, never sniffed", a
 });
 
 it("its digest is SHA-256 over the RFC 8785 form of the content in the fetched JSON", async () => {
-  const { table } = await buildTable("Birchfield");
+  const { table } = await tableOf("Birchfield");
   const file = JSON.parse((await fetchTable(table.slug, "json")).text);
   const digest = createHash("sha256")
     .update(canonicalize(file.content) ?? "", "utf8")
@@ -137,7 +132,7 @@ const threeFiles = (slug: string, agent = server.agent()) =>
 
 it("its bytes stay when records, people and settings change and another program serves them", async () => {
   const { dataSource } = server;
-  const { table, ids } = await buildTable("Cobaltfield");
+  const { table, ids } = await tableOf("Cobaltfield");
   const before = await threeFiles(table.slug);
   const record = await dataSource.manager.findOneByOrFail(Constraint, { id: ids[0]! });
   const who = actingAs(dataSource, owner);
@@ -145,6 +140,9 @@ it("its bytes stay when records, people and settings change and another program 
   const fields = { ...draft.fields, value: "0.22", printedText: "we find 6.20, 0.22, 0.12, 0.15" };
   await approveAs(dataSource, editor, await send(dataSource, owner, { ...draft, fields }));
   await dataSource.manager.update(Constraint, { id: ids[1]! }, { state: "superseded" });
+  granted(
+    await changeTable(who, table.slug, { name: "Renamed", visibility: "link", notify: false }),
+  );
   const renamed = { nameOnPapers: "Quite Another" };
   await dataSource.manager.update(User, { id: owner.id }, renamed);
   await dataSource.manager.update(User, { id: editor.id }, renamed);
@@ -161,32 +159,8 @@ it("its bytes stay when records, people and settings change and another program 
   await restarted.close();
 });
 
-it("a row in against the proposal has its reason in every file", async () => {
-  const { dataSource } = server;
-  const numbers: string[] = [];
-  for (const z of ["6.2", "6.4"]) {
-    const fields = { z, dataUsed: ["Sightline of Hazelfield"] };
-    const revision = await buildApproved(dataSource, owner, editor, fields);
-    numbers.push(formatRecordNumber(revision.constraintId));
-  }
-  const reason = "The parts used are disjoint, says its Table 1";
-  const rows = numbers.map((number) => ({ number, included: true, reason }));
-  const table = granted(
-    await saveTable(actingAs(dataSource, owner), {
-      name: "Both halves",
-      filter: { text: "Hazelfield" },
-      rows,
-    }),
-  );
-  for (const text of await threeFiles(table.slug)) expect(text.split(reason)).not.toHaveLength(1);
-  const { content } = (await fetchTable(table.slug, "json")).body;
-  expect(content.choices).toEqual([
-    { record: expect.stringContaining(numbers[1]!), included: true, by: "person", reason },
-  ]);
-});
-
 it("answers 304 to who has it already", async () => {
-  const { table } = await buildTable("Dunefield");
+  const { table } = await tableOf("Dunefield");
   const { headers } = await fetchTable(table.slug, "json");
   const again = await fetchTable(table.slug, "json").set("If-None-Match", headers.etag as string);
   expect(again.status).toBe(304);
@@ -201,7 +175,7 @@ it.each(["nosuchtable", "%2e%2e%2fetc", "x'--"])("%s: no such table, in words", 
 });
 
 it("a deleted table's address says that it is gone", async () => {
-  const { table } = await buildTable("Elmfield");
+  const { table } = await tableOf("Elmfield");
   granted(await deleteTable(actingAs(server.dataSource, owner), table.slug));
   const { status, text } = await fetchTable(table.slug, "csv");
   expect(status).toBe(410);
@@ -210,7 +184,7 @@ it("a deleted table's address says that it is gone", async () => {
 
 it("an editor gets no table that holds what the editor reads blind, until the reading is stored", async () => {
   const { dataSource } = server;
-  const { table, ids } = await buildTable("Foxfield");
+  const { table, ids } = await tableOf("Foxfield");
   const record = await dataSource.manager.findOneByOrFail(Constraint, { id: ids[0]! });
   const draft = granted(
     await reviseSubmission(actingAs(dataSource, owner), record.approvedRevisionId!),

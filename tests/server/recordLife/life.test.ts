@@ -1,11 +1,11 @@
 import { OutboxMail } from "~server/mail/outboxMail.entity";
 import type { Revision } from "~server/constraint/revision.entity";
 import { reviseSubmission, saveDraft } from "~server/constraint/draft.service";
-import { saveTable } from "~server/table/table.service";
 import { verifyChain } from "~server/event/eventLog";
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 
 import { actingAs, approveAs, buildApproved, granted, send } from "../../factories/constraint";
+import { buildTable } from "../../factories/table";
 import { startTestServer, type TestServer } from "../support/harness";
 
 const LIFE = `__typename ... on Refusal { code message field }
@@ -185,18 +185,13 @@ describe("the life of a record", () => {
   it("tells the owner and who keeps the record in a table; the table's bytes stay, its page says so", async () => {
     const [row, stays, fresh] = [await approved(), await approved(), await approved()];
     const theorist = await server.signedIn([]);
-    const all = await listed();
-    const table = granted(
-      await saveTable(actingAs(server.dataSource, theorist.user), {
-        name: "Mine",
-        filter: {},
-        rows: all.map((one) =>
-          [number(row), number(stays)].includes(one)
-            ? { number: one, included: true }
-            : { number: one, included: false, reason: "Not wanted here" },
-        ),
-      }),
-    );
+    const table = await buildTable(server.dataSource, theorist.user, {
+      name: "Mine",
+      filter: {},
+      out: (await listed())
+        .filter((one) => ![number(row), number(stays)].includes(one))
+        .map((one) => ({ number: one, reason: "Not wanted here" })),
+    });
     const files = async () => {
       const csv = await server.agent().get(`/api/tables/${table.slug}.csv`);
       const json = await server.agent().get(`/api/tables/${table.slug}.json`);

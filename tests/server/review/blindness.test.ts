@@ -3,7 +3,6 @@ import { OutboxMail } from "~server/mail/outboxMail.entity";
 import { recordNotice } from "~server/recordLife/life.service";
 import { claim, returnSubmission, storeReading } from "~server/review/review.service";
 import { reviseSubmission, saveDraft, submitDraft } from "~server/constraint/draft.service";
-import { saveTable } from "~server/table/table.service";
 import { formatQuotable, formatRecordNumber } from "~shared/identifiers/recordNumber";
 
 import {
@@ -16,6 +15,7 @@ import {
   granted,
   send,
 } from "../../factories/constraint";
+import { buildTable } from "../../factories/table";
 import { startTestServer, type Agent, type TestServer } from "../support/harness";
 import { deskOf } from "./desk";
 import { numbersIn, walkEverything, type Known } from "./walk";
@@ -244,20 +244,11 @@ describe("blindness", () => {
       paper,
     );
     await approveAs(server.dataSource, other.user, sibling);
-    granted(
-      await saveTable(hers, {
-        name: "Both",
-        filter: {},
-        rows: [
-          { number: record, included: true },
-          {
-            number: formatRecordNumber(sibling.constraintId),
-            included: false,
-            reason: "same sightline",
-          },
-        ],
-      }),
-    );
+    await buildTable(server.dataSource, contributor.user, {
+      name: "Both",
+      filter: {},
+      out: [{ number: formatRecordNumber(sibling.constraintId), reason: "same sightline" }],
+    });
     // What became of a record may quote its numbers, too.
     granted(
       await recordNotice(actingAs(server.dataSource, editor.user), {

@@ -95,7 +95,8 @@ const CALLS: { name: string; roles: readonly Role[] | null; query: string }[] = 
   {
     name: "saveTable",
     roles: null,
-    query: 'mutation { saveTable(input: { name: "x", filter: {}, rows: [] }) { __typename } }',
+    query:
+      'mutation { saveRecipe(input: { name: "x", visibility: private, recipe: { filter: {} } }) { __typename } }',
   },
   {
     name: "deleteTable",

@@ -5,9 +5,10 @@ import { reviseSubmission, saveDraft, submitDraft } from "~server/constraint/dra
 import { formatRecordNumber } from "~shared/identifiers/recordNumber";
 
 import { actingAs, approveAs, buildApproved, granted } from "../../factories/constraint";
+import { buildTable } from "../../factories/table";
 import { startTestServer, type Agent, type TestServer } from "../support/harness";
 
-const TABLE = `slug name owner ownedByMe digest rowsIn rowsOut filter lastEvent { sequence digest }
+const TABLE = `slug version name owner ownedByMe digest rowsIn rowsOut filter lastEvent { sequence digest }
   rows { number included reason proposed }
   constraints { number ordinal quotable submittedBy readBy fields { value } citation { key title bibtex } }`;
 
@@ -18,15 +19,21 @@ describe("fitting tables", () => {
   });
   afterAll(() => server.stop());
 
-  const save = async (agent: Agent, input: object) => {
+  const save = async (
+    agent: Agent,
+    {
+      name,
+      ...recipe
+    }: { name: string; filter: object; release?: number; out?: object[]; decisions?: object[] },
+  ) => {
     const { data, errors } = await server.graphql(
       agent,
-      `mutation ($input: SaveTableInput!) { saveTable(input: $input) {
+      `mutation ($input: SaveRecipeInput!) { saveRecipe(input: $input) {
         __typename ... on Refusal { code message field } ... on FittingTable { ${TABLE} } } }`,
-      { input },
+      { input: { name, visibility: "public", recipe } },
     );
     if (errors) throw new Error(errors[0]?.message);
-    return data.saveTable;
+    return data.saveRecipe;
   };
   const load = async (agent: Agent, slug: string) =>
     (
@@ -63,13 +70,11 @@ describe("fitting tables", () => {
     const saved = await save(reader.agent, {
       name: "  My   table ",
       filter,
-      rows: [
-        { number: second, included: false, reason: "I trust it less" },
-        { number: first, included: true, reason: "ignored" },
-      ],
+      out: [{ number: second, reason: "I trust it less" }],
     });
     expect(saved).toMatchObject({
       __typename: "FittingTable",
+      version: 1,
       name: "My table",
       owner: "Sefa Lornhill",
       ownedByMe: true,
@@ -77,7 +82,12 @@ describe("fitting tables", () => {
       rowsOut: 1,
       rows: [
         { number: first, included: true, reason: null, proposed: true },
-        { number: second, included: false, reason: "I trust it less", proposed: false },
+        {
+          number: second,
+          included: false,
+          reason: "Taken out: I trust it less",
+          proposed: false,
+        },
       ],
       constraints: [
         {
@@ -95,23 +105,17 @@ describe("fitting tables", () => {
     expect(seen.ownedByMe).toBe(false);
   });
 
-  it("refuse a row without a reason, none at all, a strange and a missing one, and a bad name", async () => {
+  it("refuse a row taken out without a reason or twice, none at all, a strange one, and a bad name", async () => {
     const { contributor, first, second, filter } = await two();
-    const rows = [
-      { number: first, included: true },
-      { number: second, included: true },
-    ];
-    const base = { name: "Table", filter, rows };
+    const base = { name: "Table", filter };
     const refused = async (changes: object) =>
       (await save(contributor.agent, { ...base, ...changes })).code;
-    expect(
-      await refused({ rows: [rows[0], { number: second, included: false, reason: " " }] }),
-    ).toBe("reason");
-    expect(await refused({ rows: [] })).toBe("rows");
-    expect(await refused({ rows: [rows[0], rows[0], rows[1]] })).toBe("rows");
-    expect(await refused({ rows: [...rows, { number: "XX-1", included: true }] })).toBe("rows");
-    expect(await refused({ rows: [...rows, { number: "FL-9999", included: true }] })).toBe("stale");
-    expect(await refused({ rows: [rows[0]] })).toBe("stale");
+    const reason = "Not wanted";
+    expect(await refused({ out: [{ number: second, reason: " " }] })).toBe("reason");
+    expect(await refused({ out: [first, second].map((number) => ({ number, reason })) })).toBe(
+      "rows",
+    );
+    expect(await refused({ out: [{ number: "XX-1", reason }] })).toBe("rows");
     expect(await refused({ name: "  " })).toBe("name");
     expect(await refused({ name: "x".repeat(121) })).toBe("name");
     expect(
@@ -120,12 +124,8 @@ describe("fitting tables", () => {
   });
 
   it("stay as they were saved when a record is revised", async () => {
-    const { contributor, editor, revisions, first, second, filter } = await two();
-    const rows = [
-      { number: first, included: true },
-      { number: second, included: true },
-    ];
-    const saved = await save(contributor.agent, { name: "Kept", filter, rows });
+    const { contributor, editor, revisions, filter } = await two();
+    const saved = await save(contributor.agent, { name: "Kept", filter });
     const [old] = revisions;
     if (!old) throw new Error("a record was expected");
     const hers = actingAs(server.dataSource, contributor.user);
@@ -136,30 +136,35 @@ describe("fitting tables", () => {
     await approveAs(server.dataSource, editor.user, submitted);
 
     expect(await load(contributor.agent, saved.slug)).toEqual({ ...saved, __typename: undefined });
-    const again = await save(contributor.agent, { name: "Newer", filter, rows });
+    const again = await save(contributor.agent, { name: "Newer", filter });
     expect(again.constraints[0]).toMatchObject({ ordinal: 2, fields: { value: "0.22" } });
     expect(again.digest).not.toBe(saved.digest);
   });
 
   it("have a digest over what they say: the same choices give the same one, whoever saves them when", async () => {
-    const { contributor, editor, first, second, filter } = await two();
-    const rows = [
-      { number: first, included: true },
-      { number: second, included: false, reason: "too dim" },
-    ];
-    const one = await save(contributor.agent, { name: "One", filter, rows });
-    const other = await save(editor.agent, { name: "Other", filter, rows: [...rows].reverse() });
+    const { contributor, editor, second, filter } = await two();
+    // A release holds still, while every saved table is an event of the log.
+    const maintainer = await server.signedIn(["maintainer"]);
+    const { data } = await server.graphql(
+      maintainer.agent,
+      'mutation { cutRelease(notes: "Fixed") { ... on Release { number } } }',
+    );
+    const release = data.cutRelease.number;
+    const out = [{ number: second, reason: "too dim" }];
+    const one = await save(contributor.agent, { name: "One", filter, release, out });
+    const other = await save(editor.agent, { name: "Other", filter, release, out });
     expect(other.digest).toBe(one.digest);
     expect(other.slug).not.toBe(one.slug);
     const changed = await save(contributor.agent, {
       name: "One",
       filter,
-      rows: [rows[0], { ...rows[1], reason: "too faint" }],
+      release,
+      out: [{ number: second, reason: "too faint" }],
     });
     expect(changed.digest).not.toBe(one.digest);
   });
 
-  it("keep the reason of a row taken in against the proposal, and refuse one without", async () => {
+  it("keep a row that shares data with another out, and take it in with a reason only", async () => {
     const contributor = await server.signedIn(["contributor"]);
     const editor = await server.signedIn(["editor"]);
     const word = `Shared ${contributor.user.id}`;
@@ -173,29 +178,37 @@ describe("fitting tables", () => {
       );
       numbers.push(formatRecordNumber(constraintId));
     }
-    const input = (reason: string | null) => ({
+    const filter = { text: word };
+    const { data } = await server.graphql(
+      contributor.agent,
+      "query ($recipe: TableInput!) { tableProposal(recipe: $recipe) { ... on TableProposal { decisions { id kind proposed options { code override } } } } }",
+      { recipe: { filter } },
+    );
+    const [decision] = data.tableProposal.decisions;
+    expect(decision).toMatchObject({ kind: "overlap", proposed: `keep:${numbers[0]}` });
+    const override = decision.options.find((option: { override: boolean }) => option.override);
+    const input = (reason: string) => ({
       name: "Both",
-      filter: { text: word },
-      rows: numbers.map((number) => ({ number, included: true, reason })),
+      filter,
+      decisions: [{ id: decision.id, option: override.code, byDefault: false, reason }],
     });
-    for (const nothing of [null, "  "]) {
+    for (const nothing of ["", "  "]) {
       expect(await save(contributor.agent, input(nothing))).toMatchObject({
         __typename: "Refusal",
-        code: "reason",
-        field: "rows",
-        message: `${numbers[1]} is proposed to be left out: say why it is in all the same.`,
+        code: "open",
       });
     }
     const saved = await save(contributor.agent, input("Disjoint halves of it"));
     expect(saved.rows).toEqual([
-      { number: numbers[0], included: true, reason: null, proposed: true },
-      { number: numbers[1], included: true, reason: "Disjoint halves of it", proposed: false },
+      { number: numbers[0], included: true, reason: null, proposed: false },
+      { number: numbers[1], included: true, reason: null, proposed: false },
     ]);
   });
 
   it("never take a qualitative statement in", async () => {
     const contributor = await server.signedIn(["contributor"]);
     const editor = await server.signedIn(["editor"]);
+    const word = `Words ${contributor.user.id}`;
     const { constraintId } = await buildApproved(server.dataSource, contributor.user, editor.user, {
       kind: "qualitative",
       value: null,
@@ -203,28 +216,53 @@ describe("fitting tables", () => {
       minus: null,
       level: null,
       estimator: null,
-      dataUsed: [`Words ${contributor.user.id}`],
+      dataUsed: [word],
     });
-    const number = formatRecordNumber(constraintId);
-    expect(
-      await save(contributor.agent, {
-        name: "Words",
-        filter: { text: `Words ${contributor.user.id}` },
-        rows: [{ number, included: true, reason: "I like it" }],
+    await buildApproved(server.dataSource, contributor.user, editor.user, {
+      z: "6.9",
+      dataUsed: [`${word} 2`],
+    });
+    const saved = await save(contributor.agent, { name: "Words", filter: { text: word } });
+    expect(saved).toMatchObject({ rowsIn: 1, rowsOut: 1 });
+    expect(saved.rows).toContainEqual(
+      expect.objectContaining({
+        number: formatRecordNumber(constraintId),
+        included: false,
+        reason: "Qualitative: shown, never fitted",
       }),
-    ).toMatchObject({
-      code: "qualitative",
-      message: `${number} is qualitative: shown, never fitted.`,
+    );
+  });
+
+  it("say when weightings differ or an optical depth is among the rows", async () => {
+    const contributor = await server.signedIn(["contributor"]);
+    const editor = await server.signedIn(["editor"]);
+    const word = `Mixed ${contributor.user.id}`;
+    const build = (z: string, more: object) =>
+      buildApproved(server.dataSource, contributor.user, editor.user, {
+        z,
+        dataUsed: [`${word} ${z}`],
+        ...more,
+      });
+    await build("6.1", {});
+    await build("7.1", { weighting: "unknown" });
+    const cautions = async (filter: object) => {
+      const { slug } = await buildTable(server.dataSource, contributor.user, { filter });
+      const { body } = await server.agent().get(`/api/tables/${slug}.json`);
+      return (body.content.cautions as string[]).join(" ");
+    };
+    expect(await cautions({ text: word, zTo: 6.5 })).not.toMatch(/weightings|optical depth/);
+    expect(await cautions({ text: word })).toContain("different weightings");
+    await build("6.4", {
+      ...{ quantity: "opticalDepth", species: null, scale: null, weighting: null, zRole: null },
+      ...{ z: null, value: "0.061", plus: "0.008", minus: "0.008", estimator: "mean" },
+      methodTags: ["cmbPolarization"],
     });
+    expect(await cautions({ text: word })).toContain("came from a history family");
   });
 
   it("are deleted by their owner only; the address then says that it is gone", async () => {
-    const { contributor, editor, first, second, filter } = await two();
-    const rows = [
-      { number: first, included: true },
-      { number: second, included: true },
-    ];
-    const { slug } = await save(contributor.agent, { name: "Short-lived", filter, rows });
+    const { contributor, editor, filter } = await two();
+    const { slug } = await save(contributor.agent, { name: "Short-lived", filter });
     const drop = async (agent: Agent) =>
       (
         await server.graphql(

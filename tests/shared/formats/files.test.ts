@@ -5,13 +5,6 @@ import { bibliography } from "~shared/formats/bibliography";
 import { CONSTRAINT_COLUMNS, constraintsCsv } from "~shared/formats/constraintCsv";
 import { commentLine, safeCell } from "~shared/formats/exportRow";
 import type { ExportHeader, ExportRow } from "~shared/formats/exportRow";
-import {
-  tableBibliographyLines,
-  tableContent,
-  tableCsv,
-  tableJson,
-} from "~shared/formats/tableFiles";
-import type { TableFile, TableFileRow } from "~shared/formats/tableFiles";
 import type { ConstraintFields } from "~shared/statement/fields";
 
 import { buildFields } from "../buildFields";
@@ -41,30 +34,6 @@ const header: ExportHeader = {
   filter: "All constraints",
   licence: "CC BY 4.0",
 };
-
-function tableRow(changes: Partial<TableFileRow> = {}): TableFileRow {
-  return {
-    ...row(),
-    included: true,
-    proposed: true,
-    reason: null,
-    likelihoodForm: "Quantile-matched",
-    likelihoodFormula: "…",
-    ...changes,
-  };
-}
-
-function table(changes: Partial<TableFile> = {}): TableFile {
-  return {
-    ...header,
-    name: "Wings",
-    address: "/tables/wings",
-    filterRecipe: { families: ["dampingWing"] },
-    rows: [tableRow()],
-    papers: [{ key: "Arvensis2031", bibtex: "@misc{Arvensis2031}", csl: "{}" }],
-    ...changes,
-  };
-}
 
 function read(csv: string) {
   return Papa.parse<Record<string, string>>(csv, {
@@ -166,120 +135,6 @@ describe("safeCell", () => {
 
   it("keeps a header line on one line", () => {
     expect(commentLine("a\r\nrecord,b\u2028c")).toBe("# a record,b c");
-  });
-});
-
-describe("a fitting table", () => {
-  const rows = [
-    tableRow({
-      included: false,
-      reason: "Same data as FL-0043",
-      number: "FL-0041",
-      quotable: "FL-0041.2",
-    }),
-    tableRow(),
-    tableRow({
-      included: true,
-      proposed: false,
-      reason: "Needed at z = 7",
-      number: "FL-0044",
-      quotable: "FL-0044.1",
-    }),
-  ];
-
-  it("lists rows in, then rows out, each with its reason and who chose", () => {
-    const { data } = read(tableCsv(table({ rows }), "cd34"));
-    expect(data.map(({ record, included, by, reason }) => [record, included, by, reason])).toEqual([
-      ["FL-0042", "true", "default", ""],
-      ["FL-0044", "true", "person", "Needed at z = 7"],
-      ["FL-0041", "false", "default", "Same data as FL-0043"],
-    ]);
-    expect(data[0]).toMatchObject({
-      likelihood_form: "Quantile-matched",
-      citation_key: "Arvensis2031",
-    });
-  });
-
-  it("names filter, last event, digest, choices, licence and cautions in the header", () => {
-    const head = tableCsv(table({ rows }), "cd34")
-      .split("\r\n")
-      .filter((line) => line.startsWith("# "))
-      .join("\n");
-    for (const part of [
-      "sha256:cd34",
-      "Filter: All constraints",
-      "Last event: 7",
-      "Choice: FL-0041.2 out (default): Same data as FL-0043",
-      "Choice: FL-0044.1 in (person): Needed at z = 7",
-      "Address: /tables/wings",
-      "Weighting of the neutral fractions in: Volume-weighted 2",
-      "Rows are taken as independent",
-      "CC BY 4.0",
-      "not the authors'",
-      "Cite the original papers",
-    ]) {
-      expect(head).toContain(part);
-    }
-  });
-
-  it("holds the same in JSON", () => {
-    const { content, ...file } = JSON.parse(tableJson(table({ rows }), "cd34"));
-    expect(file).toMatchObject({ digest: "sha256:cd34", name: "Wings", address: "/tables/wings" });
-    expect(content).toMatchObject({
-      filter: { words: "All constraints" },
-      licence: "CC BY 4.0",
-      demonstration: true,
-      weighting: [{ weighting: "volume", rows: 2 }],
-      cautions: expect.arrayContaining([
-        "The choices are this table's, not the authors'; cite the originals.",
-        "Rows are taken as independent of one another.",
-      ]),
-      papers: [{ key: "Arvensis2031", bibtex: "@misc{Arvensis2031}" }],
-    });
-    expect(content.rows[1]).toMatchObject({
-      record: "FL-0042",
-      included: true,
-      printed: { value: "0.42" },
-      used: { value: "0.42", k: expect.any(Number) },
-    });
-    expect(content.choices).toEqual([
-      { record: "FL-0041.2", included: false, by: "default", reason: "Same data as FL-0043" },
-      { record: "FL-0044.1", included: true, by: "person", reason: "Needed at z = 7" },
-    ]);
-  });
-
-  it("names its address, digest and choices at the head of its bibliography, too", () => {
-    const lines = tableBibliographyLines(table({ rows }), "cd34").join("\n");
-    for (const part of ["/tables/wings", "sha256:cd34", "CC BY 4.0", "Needed at z = 7"]) {
-      expect(lines).toContain(part);
-    }
-  });
-
-  it("says when neutral fractions of different weightings or an optical depth are in it", () => {
-    const mixed = table({
-      rows: [
-        tableRow(),
-        tableRow({ fields: buildFields({ weighting: "mass" }), number: "FL-0045" }),
-        tableRow({ fields: buildFields({ quantity: "opticalDepth" }), number: "FL-0046" }),
-        tableRow({
-          fields: buildFields({ weighting: "unknown" }),
-          number: "FL-0047",
-          included: false,
-          reason: "Too dim",
-        }),
-      ],
-    });
-    const csv = tableCsv(mixed, "cd34");
-    expect(csv).toContain("Volume-weighted 1, mass-weighted 1 (mixed)");
-    expect(csv).toContain("different weightings");
-    expect(csv).toContain("came from a history family");
-    expect(tableCsv(table(), "cd34")).not.toContain("different weightings");
-    expect(tableCsv(table(), "cd34")).not.toContain("came from a history family");
-  });
-
-  it("says the same whatever its name, address, hour and last event are", () => {
-    const other = table({ rows, name: "Other", address: "/tables/other", lastEvent: null });
-    expect(tableContent(other)).toEqual(tableContent(table({ rows })));
   });
 });
 
