@@ -51,9 +51,9 @@ export function Button({
   const reasonId = useId();
   const disabled = disabledBecause !== undefined && disabledBecause !== "";
   const look = paint(kind, colors);
-  const back = disabled && kind !== "text" ? colors.hairline : look.back;
+  const back = disabled && kind !== "text" ? colors.sunken : look.back;
   const text = disabled ? colors.muted : look.text;
-  const border = disabled ? back : look.border;
+  const border = disabled && kind !== "text" ? colors.hairline : look.border;
   return (
     <View style={styles.row}>
       <Press

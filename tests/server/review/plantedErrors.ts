@@ -138,6 +138,13 @@ export const PAPERS = {
     methodTags: ["kineticSz"],
     printedText: "from 25% to 75% ionized takes Δz = 2.8 +0.6 −0.5 (68%)",
   },
+  unweighted: {
+    weighting: null,
+    methodTags: ["quasarDampingWing", "darkPixels"],
+    z: "7",
+    level: "percent68",
+    printedText: "At z = 7 we find 0.43 +0.12 −0.15 (68%).",
+  },
   curve: {
     ...NO_VALUE,
     kind: "curve",
@@ -252,6 +259,7 @@ export const PLANTED: readonly Planted[] = [
   plant("helium left out", "electrons", { helium: "notIncluded" }),
   plant("volume for mass", "logarithm", { weighting: "volume" }),
   plant("linear for log10", "logarithm", { scale: "linear" }, "outsideRange.value"),
+  plant("log10 for linear", "twoSided", { scale: "log10" }, "outsideRange.value"),
   // Another row
   plant("redshift of another row", "twoSided", { z: "6.62" }),
   plant("redshift of another row", "bin", { zLow: "7.1", zHigh: "7.7" }),
@@ -260,6 +268,10 @@ export const PLANTED: readonly Planted[] = [
     ...text("At z = 7.13 we find x_HI = 0.61 +0.14 −0.13 (68%)."),
   }),
   plant("range of another row", "depthRange", { rangeHigh: "50" }),
+  plant("ends of another band", "band", {
+    ...{ bandLow: "0.12", bandHigh: "0.55" },
+    ...text("0.12 to 0.55 (95%)"),
+  }),
   // Limits and bands
   plant("limit flipped", "upperLimit", { kind: "lowerLimit" }),
   plant("limit flipped", "lowerLimit", { kind: "upperLimit" }),
@@ -268,6 +280,9 @@ export const PLANTED: readonly Planted[] = [
     curveTable: curve(0.3).replace("0.300,0.0000\n", ""),
   }),
 ];
+
+/** Errors in themselves, by their number above: these three never reach an editor. */
+export const REFUSED_AT_SUBMISSION: readonly number[] = [19, 42, 43];
 
 export interface Honest {
   paper: Paper;
@@ -301,6 +316,12 @@ export const HONEST: readonly Honest[] = [
   { paper: "depthRange", read: { rangeLow: "15.0", rangeHigh: "30." } },
   { paper: "midpoint", read: { fraction: ".5" } },
   { paper: "duration", read: { value: "2.80", fractionFrom: "0.250" } },
+  { paper: "unweighted", read: { weighting: "unknown" } },
+  { paper: "unweighted", read: { weighting: "unknown", z: "7.0" } },
+  {
+    paper: "unweighted",
+    read: { weighting: "unknown", methodTags: ["darkPixels", "quasarDampingWing"] },
+  },
   {
     paper: "curve",
     read: { curveTable: null, curveRows: "41", curveFirst: "0", curveLast: "1", curvePeak: ".3" },
