@@ -1,13 +1,14 @@
 import { useRef, useState } from "react";
 import { StyleSheet, View } from "react-native";
+import { download, embeddedFaces, pngOf } from "@/charts/figureFile";
 import { type HistoryChartProps, HistoryDrawing } from "@/charts/HistoryChart";
 import { Button } from "@/components/Button";
 import { Notice } from "@/components/Notice";
 import { Sheet } from "@/components/Sheet";
 import { Dense } from "@/components/Text";
 import { space } from "@/theme/tokens";
-import { download, embeddedFaces, FIGURE, figureSvg, pngOf } from "./exportFigure";
-import type { HistoryRow } from "./rows";
+import { FIGURE, figureSvg } from "./exportFigure";
+import type { HistoryRow } from "@/charts/rows";
 import type { Overlay } from "./useOverlays";
 
 /** The chart as a file: the same drawing at its own size, light, with legend and citations. */

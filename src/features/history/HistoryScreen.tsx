@@ -37,7 +37,7 @@ import {
 import { ModelsProvider } from "./ModelsProvider";
 import { PointTable } from "./PointTable";
 import { stripGroups } from "./QuantityStrip";
-import { chartPoints, historyRow } from "./rows";
+import { chartPoints, historyRow } from "@/charts/rows";
 import { decideByDefault, NO_SURROUNDINGS } from "./scoring";
 import { useView } from "./useView";
 

@@ -6,7 +6,7 @@ import { useLive } from "./ModelsProvider";
 import { PointPanel } from "./PointPanel";
 import { QuantityStrip, type StripGroup } from "./QuantityStrip";
 import { ReadoutBlock, ReadoutTable, ScoreNote } from "./Readouts";
-import type { HistoryRow } from "./rows";
+import type { HistoryRow } from "@/charts/rows";
 
 export type StillChart = Omit<HistoryChartProps, "histories">;
 

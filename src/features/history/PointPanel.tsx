@@ -25,7 +25,7 @@ import {
   VERSION_WORDS,
   WEIGHTING_WORDS,
 } from "~shared/statement/words";
-import type { HistoryRow } from "./rows";
+import type { HistoryRow } from "@/charts/rows";
 import { shownNumber } from "./readouts";
 import type { Overlay } from "./useOverlays";
 

@@ -6,7 +6,7 @@ import { Dense } from "@/components/Text";
 import { FAMILY_NAMES } from "~shared/methods/vocabulary";
 import { notationAsUsed } from "~shared/statement/notation";
 import { levelPhrase } from "~shared/statement/words";
-import type { HistoryRow } from "./rows";
+import type { HistoryRow } from "@/charts/rows";
 
 /** The chart's points as a table, for those who read rather than look. */
 export function PointTable({

@@ -16,7 +16,7 @@ import { linearScale, type Scale } from "~shared/chart/scales";
 import { linearTicks } from "~shared/chart/ticks";
 import { notationAsUsed } from "~shared/statement/notation";
 import { shownNumber } from "./readouts";
-import type { HistoryRow } from "./rows";
+import type { HistoryRow } from "@/charts/rows";
 import type { Overlay } from "./useOverlays";
 
 const LINE = 60;

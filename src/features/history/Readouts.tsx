@@ -8,7 +8,7 @@ import { Sheet } from "@/components/Sheet";
 import { Caption, Dense, Label, Mono, SymbolText } from "@/components/Text";
 import { useColors } from "@/theme/ThemeProvider";
 import { fonts, radius, space, target } from "@/theme/tokens";
-import type { HistoryRow } from "./rows";
+import type { HistoryRow } from "@/charts/rows";
 import { MODEL_KINDS } from "./models";
 import { shownNumber } from "./readouts";
 import type { Overlay } from "./useOverlays";

@@ -11,7 +11,7 @@ import {
 } from "~shared/likelihood";
 import { NO_CHOICES, type ConditionPath, type TableSurroundings } from "~shared/table/decision";
 import { settleTable } from "~shared/table/settleTable";
-import type { HistoryRow } from "./rows";
+import type { HistoryRow } from "@/charts/rows";
 
 export interface ScoredRows {
   rows: readonly RowToScore[];

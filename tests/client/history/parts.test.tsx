@@ -1,4 +1,5 @@
-import { figureCitations, figureSvg, wrapWords } from "@/features/history/exportFigure";
+import { wrapWords } from "@/charts/figureFile";
+import { figureCitations, figureSvg } from "@/features/history/exportFigure";
 import { domainOf } from "@/features/history/HistoryScreen";
 import {
   DEFAULT_MODELS,

@@ -1,4 +1,4 @@
-import { type HistoryConstraint, type HistoryRow, historyRow } from "@/features/history/rows";
+import { type HistoryConstraint, type HistoryRow, historyRow } from "@/charts/rows";
 import { type ConstraintFields, emptyFields } from "~shared/statement/fields";
 
 /** A constraint as the API gives it; invented: x_HI = 0.5 ± 0.1 (one sigma) at z = 7. */

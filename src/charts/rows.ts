@@ -1,4 +1,4 @@
-import type { ChartPoint } from "@/charts/HistoryChart";
+import type { ChartPoint } from "./HistoryChart";
 import { plainFields } from "@/components/statement/plainFields";
 import type { ListedPartsFragment } from "~graphql/generated/graphql";
 import { type PlanePoint, planePoint } from "~shared/chart/points";
