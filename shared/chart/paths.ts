@@ -41,6 +41,53 @@ export function areaPath(
 }
 
 /**
+ * The area between two curves over the same places.
+ *
+ * @param xs - Positions along the horizontal axis, in its unit; [n].
+ * @param lows, highs - Lower and upper curve over them; [n].
+ */
+export function bandPath(
+  xs: readonly number[],
+  lows: readonly number[],
+  highs: readonly number[],
+  horizontal: Scale,
+  vertical: Scale,
+): string {
+  if (xs.length === 0) return "";
+  const back = [...xs.keys()]
+    .reverse()
+    .map((i) => `L${short(horizontal.at(xs[i]!))} ${short(vertical.at(lows[i]!))}`)
+    .join("");
+  return `${linePath(xs, highs, horizontal, vertical)}${back}Z`;
+}
+
+/**
+ * The part of a curve between two positions, with its ends there interpolated; for shading an interval.
+ *
+ * @param xs - Ascending; [n].
+ */
+export function cutCurve(
+  xs: readonly number[],
+  ys: readonly number[],
+  [from, to]: readonly [number, number],
+): { xs: number[]; ys: number[] } {
+  const valueAt = (x: number): number => {
+    const after = xs.findIndex((place) => place >= x);
+    if (after <= 0) return ys[after === 0 ? 0 : ys.length - 1] ?? 0;
+    const [x0, x1] = [xs[after - 1]!, xs[after]!];
+    return ys[after - 1]! + ((x - x0) / (x1 - x0)) * (ys[after]! - ys[after - 1]!);
+  };
+  const low = Math.max(from, xs[0] ?? from);
+  const high = Math.min(to, xs[xs.length - 1] ?? to);
+  if (!(high > low)) return { xs: [], ys: [] };
+  const inner = [...xs.keys()].filter((i) => xs[i]! > low && xs[i]! < high);
+  return {
+    xs: [low, ...inner.map((i) => xs[i]!), high],
+    ys: [valueAt(low), ...inner.map((i) => ys[i]!), valueAt(high)],
+  };
+}
+
+/**
  * Opacity of the fog where the neutral fraction is x. The exponent lets it thin out visibly
  * before the fraction reaches zero.
  */

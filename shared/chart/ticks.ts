@@ -101,3 +101,16 @@ function solve(
   }
   return 0.5 * (low + high);
 }
+
+/**
+ * A round step, 1, 2 or 5 times a power of ten, with about `wanted` labels over a span.
+ *
+ * @returns The step and the decimals its multiples need.
+ */
+export function roundStep(span: number, wanted = 5): { step: number; digits: number } {
+  if (!(span > 0)) throw new DomainError("span", span, "positive");
+  const raw = span / wanted;
+  const power = 10 ** Math.floor(Math.log10(raw));
+  const step = ([1, 2, 5, 10].find((factor) => factor * power >= raw * 0.999) ?? 10) * power;
+  return { step, digits: Math.max(0, Math.ceil(-Math.log10(step) - 1e-9)) };
+}

@@ -10,7 +10,7 @@ import {
   PHONE_SIZES,
   WIDE_SIZES,
 } from "~shared/chart/marks";
-import { areaPath, fogStops, linePath, spread } from "~shared/chart/paths";
+import { areaPath, bandPath, fogStops, linePath, spread } from "~shared/chart/paths";
 import type { PlanePoint } from "~shared/chart/points";
 import { type Interval, linearScale, logScale, type Scale } from "~shared/chart/scales";
 import { derivedTicks, linearTicks, logTicks, type Tick } from "~shared/chart/ticks";
@@ -35,6 +35,15 @@ export interface ChartHistory {
   history: History;
 }
 
+/** Quantiles of x(z) over redshifts, [n] each: what a posterior leaves open. */
+export interface ChartBand {
+  z: readonly number[];
+  low95: readonly number[];
+  low68: readonly number[];
+  high68: readonly number[];
+  high95: readonly number[];
+}
+
 export interface HistoryChartProps {
   width: number;
   height: number;
@@ -43,6 +52,8 @@ export interface HistoryChartProps {
   points: readonly ChartPoint[];
   /** Up to three, in the order of their lines; the first carries the fog. Null keeps a place free. */
   histories: readonly (ChartHistory | null)[];
+  /** Drawn between the fog and the histories. */
+  band?: ChartBand | null;
   domain: Interval;
   upperAxis: "age" | "frequency";
   /** Cosmic age in Gyr at a redshift. */
@@ -116,7 +127,14 @@ export function HistoryDrawing(props: HistoryChartProps & { legend?: ReactNode }
         height={frame.box.bottom - frame.box.top}
         fill={props.ground ?? colors.surface}
       />
-      <Curves frame={frame} histories={histories} domain={domain} colors={colors} scheme={scheme} />
+      <Curves
+        frame={frame}
+        histories={histories}
+        band={props.band ?? null}
+        domain={domain}
+        colors={colors}
+        scheme={scheme}
+      />
       <Marks
         points={points}
         marks={marks}
@@ -296,12 +314,14 @@ const PointStops = memo(function PointStops({
 const Curves = memo(function Curves({
   frame,
   histories,
+  band,
   domain,
   colors,
   scheme,
 }: {
   frame: Frame;
   histories: readonly (ChartHistory | null)[];
+  band: ChartBand | null;
   domain: Interval;
   colors: Colors;
   scheme: SchemeName;
@@ -382,6 +402,20 @@ const Curves = memo(function Curves({
               d={areaPath(foggy.zs, foggy.xs, z, x, box.bottom)}
               fill={`url(#${id}-fog)`}
               opacity={scheme === "light" ? 0.8 : 1}
+            />
+          </g>
+        ) : null}
+        {band ? (
+          <g fill={colors.primary} stroke={colors.primary} strokeWidth={0.75}>
+            <path
+              d={bandPath(band.z, band.low95, band.high95, z, x)}
+              fillOpacity={0.16}
+              strokeOpacity={0.35}
+            />
+            <path
+              d={bandPath(band.z, band.low68, band.high68, z, x)}
+              fillOpacity={0.24}
+              strokeOpacity={0.5}
             />
           </g>
         ) : null}

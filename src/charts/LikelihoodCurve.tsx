@@ -2,7 +2,7 @@ import { StyleSheet, View } from "react-native";
 import Svg, { Line, Path, Text as SvgText } from "react-native-svg";
 import { areaPath, linePath } from "~shared/chart/paths";
 import { linearScale } from "~shared/chart/scales";
-import { linearTicks } from "~shared/chart/ticks";
+import { linearTicks, roundStep } from "~shared/chart/ticks";
 import { Caption, SymbolText } from "@/components/Text";
 import { useColors } from "@/theme/ThemeProvider";
 import { fonts, space } from "@/theme/tokens";
@@ -106,7 +106,7 @@ function Drawing({
   const floor = height - 26;
   const horizontal = linearScale(span, [16, width - 16]);
   const vertical = linearScale([0, 1.04], [floor, 4]);
-  const { step, digits } = axisStep(span[1] - span[0]);
+  const { step, digits } = roundStep(span[1] - span[0]);
   const ticks = linearTicks(span, step, step / 2);
   return (
     <Svg width={width} height={height} viewBox={`0 0 ${width} ${height}`} aria-hidden>
@@ -185,14 +185,6 @@ function spanOf(lines: readonly LikelihoodLine[]): readonly [number, number] {
   const low = Math.min(...known);
   const high = Math.max(...known);
   return high > low ? [low, high] : [0, 1];
-}
-
-/** About five labels over a span, on a round step. */
-function axisStep(span: number): { step: number; digits: number } {
-  const raw = span / 5;
-  const power = 10 ** Math.floor(Math.log10(raw));
-  const step = ([1, 2, 5, 10].find((factor) => factor * power >= raw * 0.999) ?? 10) * power;
-  return { step, digits: Math.max(0, Math.ceil(-Math.log10(step) - 1e-9)) };
 }
 
 function peakWords(line: LikelihoodLine): string {
