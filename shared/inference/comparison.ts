@@ -16,7 +16,10 @@ export interface TermInfluence {
   readonly minus2LnL: number;
   /** Signed root of it: positive where the model lies above the row's peak; null for a group. */
   readonly pull: number | null;
-  /** Shift of each parameter's mean without the term, in units of the full posterior's width. */
+  /**
+   * Shift of each mean without the term, in units of the full posterior's width: parameters, and the derived
+   * quantities that `full` holds and the rest of the table as well.
+   */
   readonly shift: Readonly<Record<string, number>>;
 }
 
@@ -24,10 +27,12 @@ export interface TermInfluence {
 export interface FullPosterior {
   readonly best: { readonly theta: ArrayLike<number> };
   readonly parameters: Readonly<Record<string, Summary>>;
+  /** Derived quantities, where their shifts are wanted. */
+  readonly derived?: Readonly<Record<string, Summary | null>>;
 }
 
 /** Accuracy enough for a shift shown to two digits. */
-const COARSE: GridOptions = { tolerance: 5e-3, withoutDerived: true };
+const COARSE: GridOptions = { tolerance: 5e-3 };
 
 /**
  * −2 ln L, pull and leave-one-out shift of every term of a table.
@@ -58,11 +63,13 @@ export function* leaveOneOut(
       correlated: spec.correlated?.filter(({ id }) => id !== term.id) ?? [],
     };
     const without = new FitProblem(new CompiledTable(reduced), problem.family, problem.background);
-    const parameters = yield* parametersOf(without, sampler);
+    const withDerived = full.derived !== undefined;
+    const posterior = yield* posteriorWithout(without, sampler, withDerived);
+    const means: Record<string, Summary | null> = { ...posterior.derived, ...posterior.parameters };
     const shift = Object.fromEntries(
-      problem.names.map((name) => {
-        const { mean, sd } = full.parameters[name]!;
-        return [name, (parameters[name]!.mean - mean) / sd];
+      Object.entries({ ...full.derived, ...full.parameters }).flatMap(([name, summary]) => {
+        const other = means[name];
+        return summary && other ? [[name, (other.mean - summary.mean) / summary.sd]] : [];
       }),
     );
     results.push({
@@ -76,15 +83,14 @@ export function* leaveOneOut(
   return results;
 }
 
-function* parametersOf(
+function* posteriorWithout(
   problem: FitProblem,
   sampler: SamplerOptions | undefined,
-): Task<Readonly<Record<string, Summary>>> {
-  const posterior =
-    problem.dimension <= 2
-      ? yield* gridPosterior(problem, COARSE)
-      : yield* samplePosterior(problem, samplerFor(problem.dimension, sampler));
-  return posterior.parameters;
+  withDerived: boolean,
+): Task<Pick<FullPosterior, "parameters" | "derived">> {
+  return problem.dimension <= 2
+    ? yield* gridPosterior(problem, { ...COARSE, withoutDerived: !withDerived })
+    : yield* samplePosterior(problem, samplerFor(problem.dimension, sampler));
 }
 
 function samplerFor(dimension: number, sampler: SamplerOptions | undefined): SamplerOptions {
@@ -92,7 +98,8 @@ function samplerFor(dimension: number, sampler: SamplerOptions | undefined): Sam
   throw new DomainError("sampler", "nothing", `given for ${dimension} parameters`);
 }
 
-function pullOf(spec: TableSpec, id: string, model: number, minus2LnL: number): number {
+/** Signed root of a row's −2 ln L, above zero where the model lies above the row's peak. */
+export function pullOf(spec: TableSpec, id: string, model: number, minus2LnL: number): number {
   const row = spec.rows.find((candidate) => candidate.id === id)!;
   const x = row.evaluatedIn === "log10" ? Math.log10(model) : model;
   return Math.sign(x - row.shape.peak) * Math.sqrt(Math.max(0, minus2LnL));
@@ -112,6 +119,11 @@ interface Part {
   readonly parameters: Readonly<Record<string, Summary>>;
   readonly logEvidence: number;
   readonly error: number;
+}
+
+/** (μ_A − μ_B)/√(σ_A² + σ_B²). */
+export function apart(a: Summary, b: Summary): number {
+  return (a.mean - b.mean) / Math.hypot(a.sd, b.sd);
 }
 
 /**
@@ -148,7 +160,6 @@ export function* tension(
   const ofA = yield* fit(a);
   const ofB = yield* fit(b);
   const ofBoth = yield* fit(both);
-  const apart = (p: Summary, q: Summary): number => (p.mean - q.mean) / Math.hypot(p.sd, q.sd);
   return {
     parameters: Object.fromEntries(
       family.parameters.map(({ name }) => [

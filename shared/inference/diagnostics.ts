@@ -23,33 +23,32 @@ const WINDOW = 5;
  * Source: Sokal (1996), Monte Carlo Methods in Statistical Mechanics; windows as Foreman-Mackey et al. (2013).
  */
 export function autocorrelationTime(draws: Float64Array, steps: number, walkers: number): number {
-  const mean = new Float64Array(walkers);
-  for (let s = 0; s < steps; s++) {
-    for (let w = 0; w < walkers; w++) mean[w]! += draws[s * walkers + w]! / steps;
+  const count = steps * walkers;
+  // Centred and scaled walker by walker, so that one sum over all of them is the averaged autocorrelation.
+  const scaled = new Float64Array(count);
+  for (let w = 0; w < walkers; w++) {
+    let mean = 0;
+    for (let k = w; k < count; k += walkers) mean += draws[k]! / steps;
+    let variance = 0;
+    for (let k = w; k < count; k += walkers) variance += (draws[k]! - mean) ** 2;
+    const scale = 1 / Math.sqrt(variance * walkers);
+    for (let k = w; k < count; k += walkers) scaled[k] = (draws[k]! - mean) * scale;
   }
-  const variance = covariances(0);
   let time = 1;
   for (let lag = 1; lag < steps; lag++) {
-    const at = covariances(lag);
-    let correlation = 0;
-    for (let w = 0; w < walkers; w++) correlation += at[w]! / variance[w]! / walkers;
-    time += 2 * correlation;
+    const apart = lag * walkers;
+    let even = 0;
+    let odd = 0;
+    let k = 0;
+    for (; k + apart + 1 < count; k += 2) {
+      even += scaled[k]! * scaled[k + apart]!;
+      odd += scaled[k + 1]! * scaled[k + apart + 1]!;
+    }
+    if (k + apart < count) even += scaled[k]! * scaled[k + apart]!;
+    time += 2 * (even + odd);
     if (lag >= WINDOW * time) break;
   }
   return time;
-
-  /** Σ over steps of deviations this many steps apart, each walker. */
-  function covariances(lag: number): Float64Array {
-    const sums = new Float64Array(walkers);
-    for (let s = 0; s + lag < steps; s++) {
-      const a = s * walkers;
-      const b = a + lag * walkers;
-      for (let w = 0; w < walkers; w++) {
-        sums[w]! += (draws[a + w]! - mean[w]!) * (draws[b + w]! - mean[w]!);
-      }
-    }
-    return sums;
-  }
 }
 
 /**

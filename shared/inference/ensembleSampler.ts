@@ -46,6 +46,8 @@ export interface SampledPosterior {
   readonly derived: Readonly<Record<DerivedName, Summary | null>>;
   /** A quantile of a parameter or derived quantity by name; null for one the posterior does not hold. */
   quantile(name: string, p: number): number | null;
+  /** Draws of each parameter and derived quantity by name, NaN for none; one array per chain, [steps, walkers]. */
+  readonly values: Readonly<Record<string, readonly Float64Array[]>>;
   /** Parameters and derived quantities by name. */
   readonly diagnostics: Readonly<Record<string, ChainDiagnostics>>;
   /** Whether every parameter has an effective size of 2,000 or more and R̂ below 1.01. */
@@ -171,7 +173,7 @@ export function* samplePosterior(
       yield { stage: "sampling", fraction: (e + part.value.fraction) / ensembles };
     }
   }
-  return summarize(problem, best, chains, { seed, walkers, steps, burn });
+  return yield* summarize(problem, best, chains, { seed, walkers, steps, burn });
 }
 
 /** Walkers scattered over the prior's part near the best point, wide enough that the burn-in shows. */
@@ -201,12 +203,12 @@ function startAround(
   return start;
 }
 
-function summarize(
+function* summarize(
   problem: FitProblem,
   best: MaximumLikelihood,
   chains: readonly EnsembleChain[],
   run: { seed: number; walkers: number; steps: number; burn: number },
-): SampledPosterior {
+): Task<SampledPosterior> {
   const { dimension } = problem;
   const { walkers, steps } = run;
   const count = steps * walkers;
@@ -215,20 +217,32 @@ function summarize(
   const out = new Float64Array(DERIVED_NAMES.length);
   // One column per quantity and chain, [steps, walkers].
   const columns = names.map(() => chains.map(() => new Float64Array(count)));
-  chains.forEach(({ draws }, c) => {
+  for (let c = 0; c < chains.length; c++) {
+    const { draws } = chains[c]!;
     for (let k = 0; k < count; k++) {
+      // A walker that stayed where it was has its quantities already.
+      let moved = k < walkers;
       for (let d = 0; d < dimension; d++) {
         theta[d] = draws[k * dimension + d]!;
+        if (!moved && theta[d] !== draws[(k - walkers) * dimension + d]!) moved = true;
         columns[d]![c]![k] = theta[d]!;
       }
-      problem.derived(theta, out);
-      for (let q = 0; q < out.length; q++) columns[dimension + q]![c]![k] = out[q]!;
+      if (moved) problem.derived(theta, out);
+      for (let q = 0; q < out.length; q++) {
+        const column = columns[dimension + q]![c]!;
+        column[k] = moved ? out[q]! : column[k - walkers]!;
+      }
+      if ((k & 4095) === 4095) {
+        yield { stage: "derived quantities", fraction: (c + k / count) / chains.length };
+      }
     }
-  });
+  }
   const marginals = columns.map(sampleMarginal);
-  const diagnostics = Object.fromEntries(
-    names.map((name, i) => [name, chainDiagnostics(columns[i]!, steps, walkers)]),
-  );
+  const diagnostics: Record<string, ChainDiagnostics> = {};
+  for (let i = 0; i < names.length; i++) {
+    diagnostics[names[i]!] = chainDiagnostics(columns[i]!, steps, walkers);
+    yield { stage: "diagnostics", fraction: (i + 1) / names.length };
+  }
   const summary = (i: number): Summary | null => marginals[i]?.summary ?? null;
   return {
     ...run,
@@ -239,6 +253,7 @@ function summarize(
       DERIVED_NAMES.map((name, q) => [name, summary(dimension + q)]),
     ) as Record<DerivedName, Summary | null>,
     quantile: (name, p) => marginals[names.indexOf(name)]?.quantile(p) ?? null,
+    values: Object.fromEntries(names.map((name, i) => [name, columns[i]!])),
     diagnostics,
     sound: problem.names.every((name) => {
       const { effectiveSize, rHat } = diagnostics[name]!;

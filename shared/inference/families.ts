@@ -25,6 +25,8 @@ export interface FitFamily {
   readonly prior: string;
   /** Normalized log prior density inside the box of the parameters; −Infinity where it is zero. */
   logPrior(theta: ArrayLike<number>): number;
+  /** The point of the prior that a point of the unit cube stands for: even in the one is drawn from the other. */
+  fromUnit(unit: ArrayLike<number>): Float64Array;
   /** The history at a point of the box, [parameters.length]. */
   history(theta: ArrayLike<number>): History;
   /** A fast way to answer a table's requests anywhere in the box. */
@@ -56,6 +58,10 @@ function boxLogPrior(parameters: readonly FitParameter[]): number {
   return -parameters.reduce((sum, { low, high }) => sum + Math.log(high - low), 0);
 }
 
+function boxPoint(parameters: readonly FitParameter[], unit: ArrayLike<number>): Float64Array {
+  return Float64Array.from(parameters, ({ low, high }, d) => low + unit[d]! * (high - low));
+}
+
 function boxWords(parameters: readonly FitParameter[]): string {
   return `Flat in ${parameters.map(({ name, low, high }) => `${name} from ${low} to ${high}`).join(", ")}.`;
 }
@@ -81,6 +87,7 @@ export function tanhFamily({
     parameters,
     prior: boxWords(parameters) + (fixed === null ? "" : ` deltaZ fixed to ${fixed}.`),
     logPrior: () => logPrior,
+    fromUnit: (unit) => boxPoint(parameters, unit),
     history,
     predictor: (requests, background) =>
       fixed === null
@@ -122,6 +129,11 @@ export function powerLawFamily({
       const room = highest - theta[0]! - 1;
       return theta[2]! >= theta[0]! + 1 ? box - Math.log(room) : -Infinity;
     },
+    fromUnit: (unit) => {
+      const theta = boxPoint(parameters, unit);
+      if (fixed === null) theta[2] = highest - (1 - unit[2]!) * (highest - theta[0]! - 1);
+      return theta;
+    },
     history,
     predictor: (requests, background) =>
       fixed === null
@@ -160,6 +172,8 @@ export function freeFormFamily(
       for (let i = 1; i < n; i++) if (theta[i]! < theta[i - 1]!) return -Infinity;
       return logOrders;
     },
+    // Ordered values are even ones put in order.
+    fromUnit: (unit) => Float64Array.from(unit).sort(),
     history,
     predictor: (requests, background) => freeFormPredictor(requests, background, z),
   };

@@ -1,5 +1,7 @@
 export {
+  apart,
   type FullPosterior,
+  pullOf,
   leaveOneOut,
   tension,
   type TermInfluence,

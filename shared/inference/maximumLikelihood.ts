@@ -40,12 +40,12 @@ export function* maximumLikelihood(problem: FitProblem): Task<MaximumLikelihood>
   };
 
   const candidates: Point[] = [];
-  for (let i = 1; candidates.length < CANDIDATES && i < 64 * CANDIDATES; i++) {
-    const place = Float64Array.from({ length: dimension }, (_, d) => halton(i, PRIMES[d]!));
-    const theta = toTheta(problem, place);
-    if (problem.family.logPrior(theta) !== -Infinity) {
-      candidates.push({ place, height: problem.minus2LnL(theta) });
-    }
+  for (let i = 1; i <= CANDIDATES; i++) {
+    const theta = problem.family.fromUnit(
+      Float64Array.from({ length: dimension }, (_, d) => halton(i, PRIMES[d]!)),
+    );
+    const place = theta.map((value, d) => (value - lows[d]!) / (highs[d]! - lows[d]!));
+    candidates.push({ place, height: problem.minus2LnL(theta) });
   }
   candidates.sort(byHeight);
   const starts = spreadOut(candidates);
