@@ -46,7 +46,8 @@ export function autocorrelationTime(draws: Float64Array, steps: number, walkers:
     }
     if (k + apart < count) even += scaled[k]! * scaled[k + apart]!;
     time += 2 * (even + odd);
-    if (lag >= WINDOW * time) break;
+    // Also ends where a walker never moved and there is no time.
+    if (!(lag < WINDOW * time)) break;
   }
   return time;
 }
