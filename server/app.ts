@@ -5,7 +5,8 @@ import compression from "compression";
 import express, { Router, type Express, type RequestHandler } from "express";
 import type { DataSource } from "typeorm";
 
-import { HttpProblem, tooManySentence } from "~server/common/errors";
+import { bearer } from "~server/apiToken/bearer";
+import { HttpProblem } from "~server/common/errors";
 import type { Config } from "~server/config/config";
 import { isReady } from "~server/database/prepare";
 import { buildContext } from "~server/http/context";
@@ -17,7 +18,9 @@ import { createLogger, requestLog, type Logger } from "~server/logging/logger";
 import { routes, type RouteParts } from "~server/routes";
 import { createSchema } from "~server/schema";
 import { securityHeaders } from "~server/security/headers";
-import { createRateLimits, type Limit } from "~server/security/rateLimits";
+import { createRateLimits } from "~server/security/rateLimits";
+import { openToReaders } from "~server/security/openToReaders";
+import { limitByMethod, limitTo } from "~server/security/limitTo";
 import { sameOrigin } from "~server/security/sameOrigin";
 import { serveWebClient } from "~server/static/webClient";
 
@@ -66,11 +69,17 @@ export async function buildApp(
   });
 
   app.use(compression());
-  app.use(["/graphql", "/api"], noStore, sameOrigin(config.publicUrl));
+  app.use(
+    ["/graphql", "/api"],
+    noStore,
+    openToReaders,
+    bearer(dataSource, limits),
+    sameOrigin(config.publicUrl),
+  );
 
   app.post(
     "/graphql",
-    limitTo(limits.graphql),
+    limitTo(limits.graphql, "graphql"),
     express.json({ limit: GRAPHQL_BODY }),
     sessions.middleware,
     withBody,
@@ -110,24 +119,3 @@ const withBody: RequestHandler = (req, _res, next) => {
   req.body ??= {};
   next();
 };
-
-function limitTo(limit: Limit): RequestHandler {
-  return async (req, _res, next) => {
-    const wait = await limit.take(req.ip ?? "unknown");
-    if (wait > 0) throw tooManyProblem(wait);
-    next();
-  };
-}
-
-function limitByMethod(reading: Limit, writing: Limit): RequestHandler {
-  const read = limitTo(reading);
-  const write = limitTo(writing);
-  return (req, res, next) =>
-    req.method === "GET" || req.method === "HEAD" ? read(req, res, next) : write(req, res, next);
-}
-
-function tooManyProblem(seconds: number): HttpProblem {
-  return new HttpProblem(429, "TOO_MANY_REQUESTS", tooManySentence(seconds), {
-    "Retry-After": String(Math.ceil(seconds)),
-  });
-}

@@ -6,6 +6,7 @@ import { buildSchema, type BuildSchemaOptions } from "type-graphql";
 import { AccountResolver } from "~server/account/account.resolver";
 import { PeopleResolver } from "~server/account/people.resolver";
 import { SessionResolver } from "~server/account/session.resolver";
+import { ApiTokenResolver } from "~server/apiToken/apiToken.resolver";
 import {
   AuthorCheckMarkResolver,
   AuthorCheckResolver,
@@ -39,6 +40,7 @@ export const resolvers = [
   SessionResolver,
   AccountResolver,
   PeopleResolver,
+  ApiTokenResolver,
   CitationResolver,
   ImportResolver,
   CaughtMailResolver,

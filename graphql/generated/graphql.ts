@@ -31,6 +31,39 @@ export type AnsweredFinding = {
   message: Scalars['String']['output'];
 };
 
+/** A key by which a program acts for the signed-in person. Its secret is not kept. */
+export type ApiToken = {
+  __typename?: 'ApiToken';
+  /** When it was made. */
+  createdAt: Scalars['DateTimeISO']['output'];
+  /** When it ends, or ended, by itself. */
+  expiresAt: Scalars['DateTimeISO']['output'];
+  /** Names the token; it opens nothing. */
+  id: Scalars['ID']['output'];
+  /** When it was last used, to a minute; null when it never was. */
+  lastUsedAt: Maybe<Scalars['DateTimeISO']['output']>;
+  /** What its person calls it. */
+  name: Scalars['String']['output'];
+  /** When it was revoked; null when it wasn't. */
+  revokedAt: Maybe<Scalars['DateTimeISO']['output']>;
+  /** What it may do. */
+  scopes: Array<TokenScope>;
+  /** The first characters of the token, to tell it by. */
+  start: Scalars['String']['output'];
+  /** Whether it works now. */
+  state: TokenState;
+};
+
+/** A token to be made. */
+export type ApiTokenInput = {
+  /** Days until it ends, from 1 to 365. */
+  days?: Scalars['Int']['input'];
+  /** A name of 1 to 60 characters: what uses it. */
+  name: Scalars['String']['input'];
+  /** What it may do; “read” is always added. */
+  scopes: Array<TokenScope>;
+};
+
 export type AuthorAnswerResult = AuthorCheckPage | Refusal;
 
 export type AuthorCheck = {
@@ -883,6 +916,18 @@ export type LookedUpCitation = {
   known: Scalars['Boolean']['output'];
 };
 
+/** A token just made, with its secret, which is shown this once. */
+export type MadeApiToken = {
+  __typename?: 'MadeApiToken';
+  /** What a program sends as “Authorization: Bearer …”. It can't be shown again. */
+  secret: Scalars['String']['output'];
+  /** The token as it is listed. */
+  token: ApiToken;
+};
+
+/** The token with its secret, or why there is none. */
+export type MakeApiTokenResult = MadeApiToken | Refusal;
+
 export type MatrixKind =
   | 'correlation'
   | 'covariance';
@@ -977,6 +1022,8 @@ export type Mutation = {
   liftNotice: RecordLifeResult;
   /** A paper by DOI or arXiv number, as BibTeX: from the registry, or from the look-up service. */
   lookUpCitation: LookUpResult;
+  /** Makes an API token. Its secret is in this answer only; closed to tokens. */
+  makeApiToken: MakeApiTokenResult;
   /** Makes an entry an alias of another one; answers with that one. */
   mergeNamedData: NamedDataResult;
   /** Stops or undoes a change of address, by the link that went to the old one. */
@@ -1009,6 +1056,8 @@ export type Mutation = {
   reviseSet: CorrelatedSetResult;
   /** A new draft revision of a returned or approved record of one's own. */
   reviseSubmission: SubmissionResult;
+  /** Ends an API token of one's own, at once and for good; closed to tokens. */
+  revokeApiToken: DoneResult;
   revokeAuthorCheck: AuthorCheckResult;
   revokeRole: PersonResult;
   runImport: ImportResult;
@@ -1221,6 +1270,12 @@ export type MutationLookUpCitationArgs = {
 };
 
 
+export type MutationMakeApiTokenArgs = {
+  input: ApiTokenInput;
+  password: Scalars['String']['input'];
+};
+
+
 export type MutationMergeNamedDataArgs = {
   into: Scalars['ID']['input'];
   slug: Scalars['ID']['input'];
@@ -1347,6 +1402,11 @@ export type MutationReviseSetArgs = {
 
 
 export type MutationReviseSubmissionArgs = {
+  id: Scalars['ID']['input'];
+};
+
+
+export type MutationRevokeApiTokenArgs = {
   id: Scalars['ID']['input'];
 };
 
@@ -1593,6 +1653,8 @@ export type Quantity =
 
 export type Query = {
   __typename?: 'Query';
+  /** The signed-in person's API tokens, newest first; closed to tokens. */
+  apiTokens: Array<ApiToken>;
   authorCheck: Maybe<AuthorCheck>;
   /** What an author's link opens; null for a made-up link. */
   authorCheckByLink: Maybe<AuthorCheckPage>;
@@ -2561,6 +2623,16 @@ export type ThreadMessage = {
 };
 
 export type ThreadResult = CommentThread | Refusal;
+
+export type TokenScope =
+  | 'fits'
+  | 'read'
+  | 'tables';
+
+export type TokenState =
+  | 'active'
+  | 'expired'
+  | 'revoked';
 
 /** One revision of a record as its contributor looks back on it. */
 export type TrailRound = {

@@ -1,5 +1,6 @@
 import { Not, type EntityManager } from "typeorm";
 
+import { countLive, tokensGoOn } from "~server/apiToken/store";
 import { requireViewer, type RequestContext } from "~server/common/context";
 import { done, refuse, Refusal, type Done } from "~server/common/outcomes";
 import { transact } from "~server/database/transaction";
@@ -182,6 +183,10 @@ export async function withOwnPassword(
   return user;
 }
 
+/**
+ * Another password. Every other session ends with the old one. API tokens go on, and the answer and
+ * the mail say so: they hold no password, pipelines rest on them, and each can be revoked by itself.
+ */
 export async function changePassword(
   ctx: RequestContext,
   current: string,
@@ -204,16 +209,17 @@ export async function changePassword(
       .set({ passwordHash, sessionEpoch })
       .where("id = :id and sessionEpoch = :epoch", { id: user.id, epoch: user.sessionEpoch })
       .execute();
-    if (affected !== 1) return false;
+    if (affected !== 1) return null;
     await manager.delete(MailToken, { userId: user.id, purpose: "reset" });
-    await queueMail(manager, passwordChangedMail(user, ctx.config.publicUrl));
-    return true;
+    const goOn = tokensGoOn(await countLive(manager, user.id));
+    await queueMail(manager, passwordChangedMail(user, ctx.config.publicUrl, goOn));
+    return goOn;
   });
-  if (!changed) {
+  if (changed === null) {
     return refuse("PASSWORD_MOVED", "Your password was changed a moment ago. Sign in again.");
   }
   await ctx.signIn(user.id, sessionEpoch);
-  return done("Your password is changed, and your other sessions are ended.");
+  return done(`Your password is changed, and your other sessions are ended.${changed}`);
 }
 
 export async function requestPasswordReset(
@@ -247,7 +253,7 @@ export async function resetPassword(
 
   const passwordHash = await hashPassword(ctx.config.passwordCost, next);
   const changed = await transact(ctx.database, async (inside) => {
-    if (!(await spendToken(inside, token, "reset"))) return false;
+    if (!(await spendToken(inside, token, "reset"))) return null;
     await inside
       .createQueryBuilder()
       .update(User)
@@ -261,12 +267,13 @@ export async function resetPassword(
       .execute();
     // A way to object against a change of address outlives whatever is done at the new one.
     await inside.delete(MailToken, { userId: user.id, purpose: Not("objection") });
-    await queueMail(inside, passwordChangedMail(user, ctx.config.publicUrl));
-    return true;
+    const goOn = tokensGoOn(await countLive(inside, user.id));
+    await queueMail(inside, passwordChangedMail(user, ctx.config.publicUrl, goOn));
+    return goOn;
   });
-  if (!changed) return refuse("LINK_INVALID", BAD_LINK);
+  if (changed === null) return refuse("LINK_INVALID", BAD_LINK);
   await ctx.limits.signInPerAddress.forget(limitKey(user.email));
-  return done("Your new password is set. You can sign in with it now.");
+  return done(`Your new password is set. You can sign in with it now.${changed}`);
 }
 
 export async function updateProfile(

@@ -1,5 +1,6 @@
 import { IsNull, type EntityManager } from "typeorm";
 
+import { revokeAll } from "~server/apiToken/store";
 import type { RequestContext } from "~server/common/context";
 import { done, refuse, Refusal, type Done } from "~server/common/outcomes";
 import { transact } from "~server/database/transaction";
@@ -93,8 +94,8 @@ async function moveTo(manager: EntityManager, userId: string, email: string): Pr
 }
 
 /**
- * The owner of the old address objects: the change is stopped or undone, every session ends, and
- * a link to set a new password goes to the old address, since whoever asked knew the present one.
+ * The owner of the old address objects: the change is stopped or undone, every session and API
+ * token ends, and a link to set a new password goes to the old address, since whoever asked knew the present one.
  */
 export async function objectToAddressChange(
   ctx: RequestContext,
@@ -115,6 +116,7 @@ export async function objectToAddressChange(
     }
     if (!(await spendToken(manager, token, "objection"))) return refuse("LINK_INVALID", BAD_LINK);
     await manager.increment(User, { id: user.id }, "sessionEpoch", 1);
+    await revokeAll(manager, user.id);
     await manager.delete(MailToken, { userId: user.id, purpose: "address" });
     const reset = await issueToken(manager, user.id, "reset");
     await queueMail(manager, resetMail({ ...user, email: address }, ctx.config.publicUrl, reset));
@@ -124,7 +126,7 @@ export async function objectToAddressChange(
       subject: `user:${user.id}`,
     });
     return done(
-      `Your account stays with ${address}, and every session is ended. A link to set a new password is on its way there.`,
+      `Your account stays with ${address}, every session is ended and every API token revoked. A link to set a new password is on its way there.`,
     );
   });
 }

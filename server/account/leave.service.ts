@@ -2,6 +2,7 @@ import { randomBytes } from "node:crypto";
 
 import { In, type EntityManager } from "typeorm";
 
+import { ApiToken } from "~server/apiToken/apiToken.entity";
 import { AuthorCheck } from "~server/authorCheck/authorCheck.entity";
 import type { RequestContext } from "~server/common/context";
 import { done, refuse, Refusal, type Done } from "~server/common/outcomes";
@@ -112,10 +113,11 @@ async function letGo(manager: EntityManager, userId: string): Promise<void> {
   }
 }
 
-/** What concerns the person only: roles, links, files brought for an import, mails, addresses. */
+/** What concerns the person only: roles, links, API tokens, files brought for an import, mails, addresses. */
 async function forget(manager: EntityManager, { id, email }: User): Promise<void> {
   await manager.delete(RoleGrant, { userId: id });
   await manager.delete(MailToken, { userId: id });
+  await manager.delete(ApiToken, { ownerId: id });
   await manager.delete(Upload, { ownerId: id, kind: In(["csv", "bib"]) });
   await manager.delete(ImportMatch, { ownerId: id });
   await manager.delete(OutboxMail, { to: email });

@@ -40,11 +40,12 @@ export function resetMail(to: Addressee, publicUrl: string, token: string): Outg
   );
 }
 
-export function passwordChangedMail(to: Addressee, publicUrl: string): OutgoingMail {
+/** @param goOn - What to say about API tokens, which a new password doesn't end. */
+export function passwordChangedMail(to: Addressee, publicUrl: string, goOn: string): OutgoingMail {
   return mail(
     to,
     "Your password was changed",
-    "The password of your account was changed, and your other sessions were ended.",
+    `The password of your account was changed, and your other sessions were ended.${goOn}`,
     `If it was not you, set a new one at ${publicUrl}/account/reset`,
   );
 }

@@ -3,6 +3,7 @@ import type { DataSource } from "typeorm";
 import type { Config } from "~server/config/config";
 import type { RateLimits } from "~server/security/rateLimits";
 import type { Role } from "~shared/review/states";
+import type { TokenScope } from "~shared/review/tokenScopes";
 
 /** The person behind a request, as resolvers and policies see them. */
 export interface ViewerIdentity {
@@ -15,12 +16,22 @@ export interface ViewerIdentity {
   roles: readonly Role[];
 }
 
+/** The API token behind a request, where it came with one instead of a session. */
+export interface TokenIdentity {
+  id: string;
+  scopes: readonly TokenScope[];
+}
+
 /** What every resolver receives. */
 export interface RequestContext {
   requestId: string;
   /** Address of the caller, for limits only; never logged with content. */
   ip: string;
   viewer: ViewerIdentity | null;
+  /** null: nobody is signed in, or a session is. */
+  token: TokenIdentity | null;
+  /** Whether a page of another origin asks; it has no cookie and may change nothing. */
+  foreign: boolean;
   database: DataSource;
   config: Config;
   limits: RateLimits;

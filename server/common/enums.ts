@@ -28,6 +28,12 @@ import {
   type RevisionState,
   type Role,
 } from "~shared/review/states";
+import {
+  TOKEN_SCOPES,
+  TOKEN_STATES,
+  type TokenScope,
+  type TokenState,
+} from "~shared/review/tokenScopes";
 import * as fields from "~shared/statement/fields";
 import { FINDING_GRADES } from "~shared/statement/rules";
 
@@ -76,3 +82,5 @@ export const DataRelationEnum = enumOf<DataRelation>("DataRelation", DATA_RELATI
 export const LinkRelationEnum = enumOf<LinkRelation>("LinkRelation", LINK_RELATIONS);
 export const NoticeKindEnum = enumOf<NoticeKind>("NoticeKind", NOTICE_KINDS);
 export const EvidenceKindEnum = enumOf<EvidenceKind>("EvidenceKind", EVIDENCE_KINDS);
+export const TokenScopeEnum = enumOf<TokenScope>("TokenScope", TOKEN_SCOPES);
+export const TokenStateEnum = enumOf<TokenState>("TokenState", TOKEN_STATES);

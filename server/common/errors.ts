@@ -1,3 +1,4 @@
+import { HeaderMap } from "@apollo/server";
 import { GraphQLError } from "graphql";
 
 /**
@@ -31,4 +32,11 @@ export function tooManySentence(seconds: number): string {
       ? `${Math.max(1, Math.ceil(seconds))} seconds`
       : `${Math.ceil(seconds / 60)} minutes`;
   return `Too many requests. Try again in ${wait}.`;
+}
+
+/** The same answer from within GraphQL, with its status and headers. */
+export function asGraphqlError({ code, message, status, headers }: HttpProblem): GraphQLError {
+  const named = new HeaderMap();
+  for (const [name, value] of Object.entries(headers)) named.set(name.toLowerCase(), value);
+  return new GraphQLError(message, { extensions: { code, http: { status, headers: named } } });
 }

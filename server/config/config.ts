@@ -18,6 +18,10 @@ export interface Limits {
   checksPerAddress: number;
   /** Answers to such links per caller and hour. */
   checkAnswersPerCaller: number;
+  /** API tokens that open nothing per caller and minute. */
+  tokenFailuresPerMinute: number;
+  /** API tokens made per person and hour. */
+  tokensPerPerson: number;
   /** Papers looked up elsewhere per person and hour. */
   lookUpsPerPerson: number;
   /** GraphQL requests per caller and minute. */
@@ -77,6 +81,8 @@ export const DEFAULT_LIMITS: Limits = {
   checksPerRecord: 5,
   checksPerAddress: 3,
   checkAnswersPerCaller: 20,
+  tokenFailuresPerMinute: 30,
+  tokensPerPerson: 30,
   lookUpsPerPerson: 100,
   graphqlPerMinute: 600,
   uploadsPerMinute: 60,

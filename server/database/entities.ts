@@ -1,6 +1,7 @@
 import { MailToken } from "~server/account/mailToken.entity";
 import { RoleGrant } from "~server/account/roleGrant.entity";
 import { User } from "~server/account/user.entity";
+import { ApiToken } from "~server/apiToken/apiToken.entity";
 import { AuthorCheck, AuthorCheckEntry } from "~server/authorCheck/authorCheck.entity";
 import { Citation, CitationGate } from "~server/citation/citation.entity";
 import { Constraint } from "~server/constraint/constraint.entity";
@@ -34,6 +35,7 @@ export const entities = [
   User,
   RoleGrant,
   MailToken,
+  ApiToken,
   OutboxMail,
   CaughtMailRow,
   SessionRow,

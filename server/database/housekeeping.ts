@@ -2,6 +2,7 @@ import { IsNull, LessThan, Not, type EntityManager } from "typeorm";
 
 import { MailToken } from "~server/account/mailToken.entity";
 import { User } from "~server/account/user.entity";
+import { sweepTokens } from "~server/apiToken/store";
 import { AuthorCheck } from "~server/authorCheck/authorCheck.entity";
 import { ErrorReport } from "~server/errorReport/errorReport.entity";
 import { sweepUnused } from "~server/evidence/store";
@@ -19,7 +20,7 @@ const UNCONFIRMED_DAYS = 30;
 /**
  * Removes what has no use any more: old links, sent mails, registrations never confirmed, the
  * address of a reader whose report was closed long ago, name and address of an author whose check
- * has ended as long ago.
+ * has ended as long ago, API tokens that ended long ago.
  */
 export async function sweep(manager: EntityManager, now = new Date()): Promise<void> {
   const before = (days: number): Date => new Date(now.getTime() - days * DAY_MS);
@@ -46,5 +47,6 @@ export async function sweep(manager: EntityManager, now = new Date()): Promise<v
     confirmedAt: IsNull(),
     createdAt: LessThan(before(UNCONFIRMED_DAYS)),
   });
+  await sweepTokens(manager, now);
   await sweepUnused(manager);
 }

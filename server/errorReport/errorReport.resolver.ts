@@ -14,7 +14,7 @@ import {
 import { requireViewer, type RequestContext } from "~server/common/context";
 import { ReportStateEnum } from "~server/common/enums";
 import { Refusal } from "~server/common/outcomes";
-import { Requires } from "~server/common/requires";
+import { ClosedToTokens, Requires } from "~server/common/requires";
 import { ConstraintType } from "~server/constraint/constraint.type";
 import { nameOf } from "~server/constraint/names";
 import { acting } from "~server/event/acting";
@@ -121,6 +121,7 @@ export class ErrorReportResolver {
   }
 
   @Authorized()
+  @ClosedToTokens()
   @Query(() => ErrorReportType, {
     nullable: true,
     description: "For editors, maintainers and the contributor of the record.",

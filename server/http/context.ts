@@ -3,12 +3,14 @@ import type { DataSource } from "typeorm";
 
 import { User } from "~server/account/user.entity";
 import { viewerOf } from "~server/account/viewer";
+import { BEARER_CHALLENGE, closedToTokens, withoutScope } from "~server/apiToken/refusals";
 import type { RequestContext, ViewerIdentity } from "~server/common/context";
 import { HttpProblem } from "~server/common/errors";
 import type { Config } from "~server/config/config";
 import type { RateLimits } from "~server/security/rateLimits";
 import { useKeptVocabulary } from "~server/method/vocabulary";
 import { may, type Action } from "~shared/review/policy";
+import { SCOPE_OF } from "~shared/review/tokenScopes";
 
 import { requestId } from "./requestId";
 import { endSession, SESSION_COOKIE, startSession } from "./session";
@@ -29,7 +31,9 @@ export async function buildContext(
   return {
     requestId: requestId(),
     ip: req.ip ?? "unknown",
-    viewer: await findViewer(parts.database, req),
+    viewer: req.bearer?.viewer ?? (await findViewer(parts.database, req)),
+    token: req.bearer?.token ?? null,
+    foreign: req.foreign === true,
     database: parts.database,
     config: parts.config,
     limits: parts.limits,
@@ -55,7 +59,14 @@ async function findViewer(database: DataSource, req: Request): Promise<ViewerIde
 
 /** Guard of a plain HTTP address, with the answers that GraphQL's guard gives. */
 export function requireMay(ctx: RequestContext, action: Action): ViewerIdentity {
-  if (!ctx.viewer) throw new HttpProblem(401, "UNAUTHENTICATED", "Sign in first.");
+  if (!ctx.viewer) {
+    throw new HttpProblem(401, "UNAUTHENTICATED", "Sign in first.", BEARER_CHALLENGE);
+  }
+  if (ctx.token) {
+    const scope = SCOPE_OF[action];
+    if (scope === null) throw closedToTokens();
+    if (!ctx.token.scopes.includes(scope)) throw withoutScope(scope);
+  }
   if (!may(action, ctx.viewer.roles)) {
     throw new HttpProblem(403, "FORBIDDEN", "Your account may not do this.");
   }

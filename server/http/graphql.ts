@@ -4,6 +4,7 @@ import { ApolloServerPluginLandingPageDisabled } from "@apollo/server/plugin/dis
 import type { GraphQLFormattedError, GraphQLSchema } from "graphql";
 import { ArgumentValidationError } from "type-graphql";
 
+import { tokenGuard } from "~server/apiToken/tokenGuard";
 import type { RequestContext } from "~server/common/context";
 import { failure, type Logger } from "~server/logging/logger";
 import { costGuard, MAX_TOKENS, shapeGuards } from "~server/security/graphqlGuards";
@@ -23,6 +24,9 @@ const EXPECTED = new Set([
   "TOO_MANY_REQUESTS",
   "UNAUTHENTICATED",
   "FORBIDDEN",
+  "TOKEN_SCOPE",
+  "TOKEN_CLOSED",
+  "CROSS_ORIGIN",
 ]);
 
 /** What leaves the server about an error: a code and words, or INTERNAL and the request's id. */
@@ -78,7 +82,12 @@ export async function startApollo(
     stopOnTerminationSignals: false,
     parseOptions: { maxTokens: MAX_TOKENS },
     validationRules: guards.validationRules,
-    plugins: [...guards.plugins, costGuard(schema), ApolloServerPluginLandingPageDisabled()],
+    plugins: [
+      ...guards.plugins,
+      tokenGuard(schema),
+      costGuard(schema),
+      ApolloServerPluginLandingPageDisabled(),
+    ],
     formatError: (formatted, error) => formatError(logger, formatted, error),
     logger: {
       debug: () => undefined,

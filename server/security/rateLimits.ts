@@ -8,10 +8,26 @@ import {
 
 import type { Config } from "~server/config/config";
 
+/** Where a caller stands after a request was counted. */
+export interface Spent {
+  /** 0 when allowed, else the seconds to wait. */
+  wait: number;
+  /** Allowed in a window, of so many seconds. */
+  points: number;
+  windowS: number;
+  remaining: number;
+  /** Seconds until the window starts anew. */
+  resetS: number;
+}
+
 /** One counter; keys are addresses of people or callers. */
 export interface Limit {
   /** Counts one; returns 0 when allowed, else the seconds to wait. */
   take(key: string): Promise<number>;
+  /** Counts one, and says what is left. */
+  spend(key: string): Promise<Spent>;
+  /** Seconds to wait by what was counted so far; 0 when one more would be allowed. */
+  peek(key: string): Promise<number>;
   /** Takes one back, for an attempt that turned out well. */
   giveBack(key: string): Promise<void>;
   forget(key: string): Promise<void>;
@@ -28,6 +44,8 @@ export type LimitName =
   | "checkPerRecord"
   | "checkPerAddress"
   | "checkAnswerPerCaller"
+  | "tokenFailure"
+  | "tokensPerPerson"
   | "lookUp"
   | "upload"
   | "evidence"
@@ -42,8 +60,9 @@ const MINUTE_S = 60;
 
 /**
  * The limits. Those that guard accounts and uploads count in MariaDB, across processes and
- * restarts. The two on plain traffic count in memory: they protect this process, and a write to
- * disk for each read would cost more than the read.
+ * restarts. Those on plain traffic and on tokens that open nothing count in memory: they protect
+ * this process, and a write to disk for each read would cost more than the read. No count keeps
+ * 256 random bits from being guessed; their number does.
  */
 export function createRateLimits(config: Config): RateLimits {
   const { limits } = config;
@@ -76,6 +95,8 @@ export function createRateLimits(config: Config): RateLimits {
     checkPerRecord: shared("checkPerRecord", limits.checksPerRecord, DAY_S),
     checkPerAddress: shared("checkPerAddress", limits.checksPerAddress, DAY_S),
     checkAnswerPerCaller: shared("checkAnswerPerCaller", limits.checkAnswersPerCaller, HOUR_S),
+    tokenFailure: own("tokenFailure", limits.tokenFailuresPerMinute),
+    tokensPerPerson: shared("tokensPerPerson", limits.tokensPerPerson, HOUR_S),
     lookUp: shared("lookUp", limits.lookUpsPerPerson, HOUR_S),
     evidence: shared("evidence", limits.evidencePerHour, HOUR_S),
     upload: shared("upload", limits.uploadsPerMinute, MINUTE_S),
@@ -87,16 +108,32 @@ export function createRateLimits(config: Config): RateLimits {
 }
 
 function wrap(limiter: RateLimiterAbstract): Limit {
+  const { points, duration: windowS } = limiter;
+  const standing = (
+    { msBeforeNext, remainingPoints }: RateLimiterRes,
+    refused: boolean,
+  ): Spent => ({
+    wait: refused ? Math.max(1, msBeforeNext / 1000) : 0,
+    points,
+    windowS,
+    remaining: Math.max(0, remainingPoints),
+    resetS: Math.max(0, Math.ceil(msBeforeNext / 1000)),
+  });
+  const spend = async (key: string): Promise<Spent> => {
+    try {
+      return standing(await limiter.consume(key), false);
+    } catch (refused) {
+      // Anything else is a broken store: no count, no entry.
+      if (!(refused instanceof RateLimiterRes)) throw refused;
+      return standing(refused, true);
+    }
+  };
   return {
-    async take(key) {
-      try {
-        await limiter.consume(key);
-        return 0;
-      } catch (refused) {
-        // Anything else is a broken store: no count, no entry.
-        if (!(refused instanceof RateLimiterRes)) throw refused;
-        return Math.max(1, refused.msBeforeNext / 1000);
-      }
+    spend,
+    take: async (key) => (await spend(key)).wait,
+    async peek(key) {
+      const counted = await limiter.get(key);
+      return counted && counted.consumedPoints >= points ? standing(counted, true).wait : 0;
     },
     async giveBack(key) {
       await limiter.reward(key);

@@ -104,6 +104,14 @@ const EVENT_WORDS: Readonly<Record<string, EventWords>> = {
       `${thePerson(event)} deleted the account; contributions stay ` +
       `${text(event, "credit") === "named" ? "under the name" : "without the name"}.`,
   ),
+  "apiToken.made": words("API token made", (event) => {
+    const scopes = list(event, "scopes");
+    return `${by(event)} made an API token (${joined(scopes)}) that ends on ${text(event, "ends")}.`;
+  }),
+  "apiToken.revoked": words(
+    "API token revoked",
+    (event) => `${by(event)} revoked an API token of the own account.`,
+  ),
   "answer.accepted": words(
     "Answer accepted",
     (event) =>

@@ -49,6 +49,7 @@ export const ACTIONS = [
   "keepNamedData",
   "changeRecordLife",
   "keepVocabulary",
+  "keepTokens",
 ] as const;
 export type Action = (typeof ACTIONS)[number];
 
@@ -115,6 +116,7 @@ export const MAY: Record<Action, Permission> = {
   keepNamedData: { roles: EDITOR_OR_MAINTAINER, own: "any" },
   changeRecordLife: { roles: MAINTAINER, own: "any" },
   keepVocabulary: { roles: MAINTAINER, own: "any" },
+  keepTokens: { roles: null, own: "only" },
 };
 
 /**

@@ -10,6 +10,7 @@ import { PeopleAndReports1796130000008 } from "./1796130000008-PeopleAndReports"
 import { Releases1796130000010 } from "./1796130000010-Releases";
 import { TableVersions1796130000011 } from "./1796130000011-TableVersions";
 import { TellOwners1796130000012 } from "./1796130000012-TellOwners";
+import { ApiTokens1796130000035 } from "./1796130000035-ApiTokens";
 import { TablesByVersionOnly1796130000038 } from "./1796130000038-TablesByVersionOnly";
 
 /** Every migration, oldest first. A list, not a glob: it is the same under swc, Jest and build/. */
@@ -24,5 +25,6 @@ export const migrations: (new () => MigrationInterface)[] = [
   Releases1796130000010,
   TableVersions1796130000011,
   TellOwners1796130000012,
+  ApiTokens1796130000035,
   TablesByVersionOnly1796130000038,
 ];

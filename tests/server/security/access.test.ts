@@ -22,6 +22,7 @@ type Who = "nobody" | "noRole" | Role;
 /** Who may call what. An operation without a row fails the first test below. */
 const RULES: Record<"Query" | "Mutation", Record<string, Rule>> = {
   Query: {
+    apiTokens: "signedIn",
     authorCheck: "editor",
     authorCheckByLink: "public",
     authorChecks: "editor",
@@ -96,6 +97,7 @@ const RULES: Record<"Query" | "Mutation", Record<string, Rule>> = {
     leavePaper: "editor",
     liftNotice: "maintainer",
     lookUpCitation: "contributor",
+    makeApiToken: "signedIn",
     mergeNamedData: "editorOrMaintainer",
     objectToAddressChange: "public",
     previewImport: "contributor",
@@ -118,6 +120,7 @@ const RULES: Record<"Query" | "Mutation", Record<string, Rule>> = {
     returnSubmission: "editor",
     reviseSet: "contributor",
     reviseSubmission: "contributor",
+    revokeApiToken: "signedIn",
     revokeAuthorCheck: "editor",
     revokeRole: "maintainer",
     runImport: "contributor",

@@ -11,6 +11,7 @@ import { HttpProblem } from "~server/common/errors";
 import { formatError } from "~server/http/graphql";
 import { routes, type RouteInstaller } from "~server/routes";
 
+import { tokenOperations } from "../apiToken/operations";
 import { startTestServer, type TestServer } from "../support/harness";
 
 jest.mock("~server/account/people.service", () => ({
@@ -179,4 +180,27 @@ it("the log has one line a request, with its id and nothing a person typed", asy
   });
   expect(line.id).not.toBe("chosen-by-the-caller");
   expect(lines[0]).not.toMatch(/secret-token|@|fogline\.sid|a-browser|127\.0\.0\.1|::1/);
+});
+
+it("the log never holds an API token: not when it is made, used, refused or sent where it doesn't belong", async () => {
+  const { agent } = await server.signedIn();
+  const { ask, get, graphql, revoke } = tokenOperations(server);
+  lines.length = 0;
+  const { secret, token } = await ask(agent);
+  const bearer = `Bearer ${secret}`;
+  await graphql(bearer, "{ session { licence } }");
+  await get(bearer, "/api/test/throws");
+  await get(bearer, `/api/constraints.csv?access_token=${secret}`);
+  await get(`Token ${secret}`, "/api/constraints.csv");
+  await get(bearer, "/api/constraints.csv").set("Cookie", `token=${secret}`);
+  await graphql(bearer, `{ people(text: "${secret}") { id } }`);
+  await get(bearer, `/api/tables/${secret}.csv`);
+  await get(bearer, `/${secret.toUpperCase()}`);
+  await revoke(agent, token.id);
+  await get(bearer, "/api/constraints.csv");
+  await new Promise((resolve) => setImmediate(resolve));
+  expect(lines.length).toBeGreaterThanOrEqual(11);
+  expect(lines.join("\n")).not.toContain(secret.slice(4, 20));
+  expect(lines.join("\n").toLowerCase()).not.toContain(secret.slice(-20));
+  expect(lines.join("\n")).not.toMatch(/authorization|bearer/i);
 });

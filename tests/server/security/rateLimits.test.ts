@@ -5,11 +5,12 @@ import { createRateLimits } from "~server/security/rateLimits";
 
 import { TEST_PASSWORD } from "../../factories/user";
 import { accountOperations, tokenIn } from "../account/operations";
+import { plantToken, tokenOperations } from "../apiToken/operations";
 import { startTestServer, type TestServer } from "../support/harness";
 
 const servers: TestServer[] = [];
-afterAll(async () => {
-  for (const server of servers) await server.stop();
+afterEach(async () => {
+  for (const server of servers.splice(0)) await server.stop();
 });
 
 async function limited(limits: Parameters<typeof startTestServer>[0]): Promise<TestServer> {
@@ -181,6 +182,48 @@ it("uploads and downloads have counts of their own", async () => {
     await status("get"),
     await status("get"),
   ]).toEqual([404, 404, 404, 429]);
+});
+
+it("each answer says where the caller stands, in the fields of the IETF draft; a refused one too", async () => {
+  const server = await limited({ limits: { graphqlPerMinute: 2, downloadsPerMinute: 1 } });
+  const ask = () => request(server.app).post("/graphql").send({ query: "{ session { licence } }" });
+  const [first, second, third] = [await ask(), await ask(), await ask()];
+  // draft-ietf-httpapi-ratelimit-headers-08 and later: quota q, window w, remaining r, seconds t.
+  expect(first.headers["ratelimit-policy"]).toBe('"graphql";q=2;w=60');
+  expect(first.headers.ratelimit).toMatch(/^"graphql";r=1;t=(?:60|5\d)$/);
+  expect(second.headers.ratelimit).toMatch(/^"graphql";r=0;t=\d+$/);
+  expect(third.status).toBe(429);
+  expect(third.headers.ratelimit).toMatch(/^"graphql";r=0;t=\d+$/);
+  expect(third.body.errors[0].message).toMatch(/^Too many requests\. Try again in \d+ seconds\.$/);
+  await request(server.app).get("/api/constraints.csv");
+  const over = await request(server.app).get("/api/constraints.csv");
+  expect(over.status).toBe(429);
+  expect(over.headers["ratelimit-policy"]).toBe('"downloads";q=1;w=60');
+  expect(over.body).toMatchObject({ code: "TOO_MANY_REQUESTS" });
+  expect(Number(over.headers["retry-after"])).toBeGreaterThan(0);
+});
+
+it("a token's person has a count of their own, beside that of the address they share", async () => {
+  const server = await limited({ limits: { graphqlPerMinute: 3 } });
+  const { graphql } = tokenOperations(server);
+  const query = "{ session { licence } }";
+  const [one, two] = [await server.signedIn(), await server.signedIn()].map(({ user }) => user);
+  const secrets = [
+    await plantToken(server, one!.id),
+    await plantToken(server, one!.id),
+    await plantToken(server, two!.id),
+  ];
+  const statuses = async (authorization: string, times: number) => {
+    const found = [];
+    for (let i = 0; i < times; i += 1) found.push((await graphql(authorization, query)).status);
+    return found;
+  };
+  // Two sign-ins have used up two of the address's three.
+  expect(await statuses("Basic bm9ib2R5Og==", 2)).toEqual([200, 429]);
+  // Two tokens of one person share that person's count.
+  expect(await statuses(`Bearer ${secrets[0]}`, 2)).toEqual([200, 200]);
+  expect(await statuses(`Bearer ${secrets[1]}`, 2)).toEqual([200, 429]);
+  expect(await statuses(`Bearer ${secrets[2]}`, 1)).toEqual([200]);
 });
 
 it("a caller can't get a count of its own by naming another address", async () => {
