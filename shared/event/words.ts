@@ -104,12 +104,13 @@ const EVENT_WORDS: Readonly<Record<string, EventWords>> = {
       `${thePerson(event)} deleted the account; contributions stay ` +
       `${text(event, "credit") === "named" ? "under the name" : "without the name"}.`,
   ),
-  "apiToken.made": words("API token made", (event) => {
-    const scopes = list(event, "scopes");
-    return `${by(event)} made an API token (${joined(scopes)}) that ends on ${text(event, "ends")}.`;
+  "apiToken.made": words("Token made", (event) => {
+    const ends = text(event, "ends");
+    const until = ends === "" ? "" : ` that ends on ${ends}`;
+    return `${by(event)} made an API token${inBrackets(list(event, "scopes"))}${until}.`;
   }),
   "apiToken.revoked": words(
-    "API token revoked",
+    "Token revoked",
     (event) => `${by(event)} revoked an API token of the own account.`,
   ),
   "answer.accepted": words(

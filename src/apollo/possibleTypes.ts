@@ -15,6 +15,7 @@ export const possibleTypes: Record<string, string[]> = {
   ImportResult: ["ImportDone", "Refusal"],
   KeepCitationsResult: ["KeptCitations", "Refusal"],
   LookUpResult: ["LookedUpCitation", "Refusal"],
+  MakeApiTokenResult: ["MadeApiToken", "Refusal"],
   MethodTagResult: ["MethodTag", "Refusal"],
   NamedDataResult: ["NamedData", "Refusal"],
   PersonResult: ["Person", "Refusal"],

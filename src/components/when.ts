@@ -42,3 +42,15 @@ export function longDay(iso: string): string {
     year: "numeric",
   });
 }
+
+const DAY_MS = 86_400_000;
+
+/** Whole days until a time; negative when it is past. */
+export function daysUntil(iso: string, now: Date = new Date()): number {
+  return Math.floor((new Date(iso).getTime() - now.getTime()) / DAY_MS);
+}
+
+/** The time so many days from now. */
+export function inDays(days: number, now: Date = new Date()): string {
+  return new Date(now.getTime() + days * DAY_MS).toISOString();
+}

@@ -22,7 +22,7 @@ export class ApiTokens1796130000035 implements MigrationInterface {
       ) ENGINE=InnoDB`,
     );
     await queryRunner.query(
-      `ALTER TABLE \`api_token\` ADD CONSTRAINT \`FK_api_token_owner\` FOREIGN KEY (\`ownerId\`) REFERENCES \`user\`(\`id\`) ON DELETE CASCADE ON UPDATE NO ACTION`,
+      `ALTER TABLE \`api_token\` ADD CONSTRAINT \`FK_27a75ebb5cf91dcbdc882cfc3fa\` FOREIGN KEY (\`ownerId\`) REFERENCES \`user\`(\`id\`) ON DELETE CASCADE ON UPDATE NO ACTION`,
     );
   }
 

@@ -12,6 +12,7 @@ import { Screen } from "@/layout/Screen";
 import { type ThemeChoice, useTheme } from "@/theme/ThemeProvider";
 import type { Role } from "~shared/review/states";
 
+import { ApiTokens } from "./ApiTokens";
 import { AddressForm } from "./AddressForm";
 import { DeleteAccount } from "./DeleteAccount";
 import { PasswordForm } from "./PasswordForm";
@@ -24,7 +25,7 @@ const ROLE_WORDS: Record<Role, string> = {
   maintainer: "Maintainer",
 };
 
-/** The own account: who one is on papers, address, password, sessions, the look, the way out. */
+/** The own account: who one is on papers, address, password, API tokens, sessions, the look, the way out. */
 export function AccountScreen() {
   const { viewer, loading } = useSession();
   return (
@@ -50,6 +51,8 @@ export function AccountScreen() {
             <AddressForm present={viewer.email} />
             <Divider />
             <PasswordForm />
+            <Divider />
+            <ApiTokens />
           </>
         ) : (
           <Empty

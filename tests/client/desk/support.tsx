@@ -6,6 +6,7 @@ import type { ReactNode } from "react";
 import { createCache } from "@/apollo/client";
 import { ThemeProvider } from "@/theme/ThemeProvider";
 import {
+  ApiTokensDocument,
   EvidenceDocument,
   AuthorChecksDocument,
   ErrorReportsDocument,
@@ -114,6 +115,7 @@ const NOTHING_ELSE = [
     request: { query: SubmissionTrailDocument, variables: { id: "s1" } },
     result: { data: { submission: { __typename: "Submission", id: "s1", trail: [] } } },
   },
+  { request: { query: ApiTokensDocument }, result: { data: { apiTokens: [] } } },
   { request: { query: MySetsDocument }, result: { data: { mySets: [] } } },
   { request: { query: SetQueueDocument }, result: { data: { setQueue: [] } } },
   // Whatever the revision.

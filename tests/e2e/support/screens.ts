@@ -522,7 +522,47 @@ const READER: Situation[] = (
   },
 }));
 
+/** Opens the form of a new token and fills it in. */
+async function tokenForm(page: Page, name: string, password: string): Promise<void> {
+  await visit(page, "/account", "Account");
+  await button(page, "Make a token").click();
+  const form = page.getByRole("form", { name: "Make a token" });
+  await entry(form, "What uses it").fill(name);
+  await form.getByRole("checkbox", { name: "Tables" }).check();
+  await entry(form, "Your password").fill(password);
+  await button(form, "Make the token").click();
+}
+
 const ACCOUNT: Situation[] = [
+  {
+    who: "reader",
+    name: "account, a token refused",
+    async go(page) {
+      await tokenForm(page, "", "not this one, surely");
+      await page
+        .getByRole("form", { name: "Make a token" })
+        .locator("[aria-invalid=true]")
+        .waitFor();
+    },
+  },
+  {
+    who: "reader",
+    name: "account, a token just made",
+    async go(page) {
+      await tokenForm(page, "nightly run on the cluster of the institute", DEMONSTRATION_PASSWORD);
+      await page.getByRole("group", { name: "Your new token" }).waitFor();
+    },
+  },
+  {
+    who: "reader",
+    name: "account, asked whether to revoke a token",
+    async go(page) {
+      await tokenForm(page, "plots", DEMONSTRATION_PASSWORD);
+      await page.getByRole("group", { name: "Your new token" }).waitFor();
+      await button(page, "Revoke plots").first().click();
+      await dialog(page).waitFor();
+    },
+  },
   {
     who: "reader",
     name: "account, change of address refused",

@@ -47,6 +47,13 @@ const SENTENCES: readonly (readonly [kind: string, event: ToldEvent, sentence: s
     "Ottla Firn accepted the contributor's answer in FL-0042.1 (levelMismatch).",
   ],
   [
+    "apiToken.made",
+    told("user:1", { scopes: ["read", "fits"], ends: "2031-02-03" }),
+    "Ottla Firn made an API token (read and fits) that ends on 2031-02-03.",
+  ],
+  ["apiToken.made", told("user:1"), "Ottla Firn made an API token."],
+  ["apiToken.revoked", told("user:1"), "Ottla Firn revoked an API token of the own account."],
+  [
     "authorCheck.answered",
     told("FL-0042.1", { verdict: "correct" }),
     "An author of the paper checked FL-0042.1 and called it correct.",
