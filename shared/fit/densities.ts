@@ -1,4 +1,6 @@
 /** Densities of one quantity and of two together, for drawing. */
+import type { FitProblem } from "~shared/inference";
+
 import { type Cloud, type Spans, spansOf } from "./cloud";
 import type { DensityCurve, Ends, JointDensity } from "./request";
 
@@ -34,7 +36,7 @@ export interface Drawn {
  * @param support - The ends of a parameter's prior; null for a derived quantity.
  * @returns Null where no history has a value, or all have the same.
  */
-export function drawn(cloud: Cloud, name: string, support: Ends | null): Drawn | null {
+function drawn(cloud: Cloud, name: string, support: Ends | null): Drawn | null {
   const spans = spansOf(cloud, cloud.columns.get(name)!);
   let low = Infinity;
   let high = -Infinity;
@@ -71,6 +73,19 @@ export function drawn(cloud: Cloud, name: string, support: Ends | null): Drawn |
     inside[1] + margin > most - margin ? most : inside[1] + margin,
   ];
   return { name, spans, ends, sd: sqrt(max(0, second / mass - (first / mass) ** 2)) };
+}
+
+/** What of these quantities can be drawn: parameters within their prior, derived ones as far as they reach. */
+export function picturesOf(
+  problem: FitProblem,
+  cloud: Cloud,
+  quantities: readonly { readonly name: string }[],
+): Drawn[] {
+  return quantities.flatMap(({ name }) => {
+    const d = problem.names.indexOf(name);
+    const picture = drawn(cloud, name, d < 0 ? null : [problem.lows[d]!, problem.highs[d]!]);
+    return picture ? [picture] : [];
+  });
 }
 
 /** The curve of one quantity. */

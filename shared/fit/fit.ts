@@ -2,10 +2,10 @@ import { pullOf, type Task } from "~shared/inference";
 import { specOf } from "~shared/table/tableLikelihood";
 
 import { bandRedshifts, historyAt, historyBand } from "./band";
-import { type Cloud, drawCloud } from "./cloud";
-import { densityCurve, type Drawn, drawn, jointDensity } from "./densities";
+import { drawCloud } from "./cloud";
+import { densityCurve, type Drawn, jointDensity, picturesOf } from "./densities";
 import { priorDraws } from "./family";
-import { HISTORY_WORDS, inWords } from "./names";
+import { HISTORY_WORDS, inSymbols } from "./historyWords";
 import {
   fitPosterior,
   type FitPosterior,
@@ -33,7 +33,7 @@ export function* fit(setting: FitSetting): Task<FitResult> {
   const cloud = posterior.cloud();
   const quantities = quantitiesOf(posterior);
   yield { stage: "densities", fraction: 0 };
-  const pictures = picturesOf(posterior, cloud, quantities);
+  const pictures = picturesOf(posterior.problem, cloud, quantities);
   const densities = pictures.map((picture) => densityCurve(cloud, picture));
   const joint: JointDensity[] = [];
   for (const [x, y] of pairsOf(posterior, pictures)) {
@@ -50,7 +50,7 @@ export function* fit(setting: FitSetting): Task<FitResult> {
   posterior.problem.derived(best.theta, derived);
   const how = method === "grid" ? "Posterior on a grid." : samplerWords(setting);
   return {
-    prior: `${HISTORY_WORDS[request.family.kind]}. ${inWords(family.prior)} ${how}`,
+    prior: `${HISTORY_WORDS[request.family.kind]}. ${inSymbols(family.prior)} ${how}`,
     parameterNames: posterior.problem.names,
     method,
     best: {
@@ -83,18 +83,6 @@ function orNull(value: number): number | null {
 function samplerWords({ request }: FitSetting): string {
   const { seed, walkers, steps } = request.sampler;
   return `Posterior by four ensembles of ${walkers} walkers and ${steps} steps each, seed ${seed}.`;
-}
-
-function picturesOf(
-  { problem }: FitPosterior,
-  cloud: Cloud,
-  quantities: readonly QuantitySummary[],
-): Drawn[] {
-  return quantities.flatMap(({ name }) => {
-    const d = problem.names.indexOf(name);
-    const picture = drawn(cloud, name, d < 0 ? null : [problem.lows[d]!, problem.highs[d]!]);
-    return picture ? [picture] : [];
-  });
 }
 
 /** All pairs of parameters, then optical depth and midpoint; none for a family of one parameter, which is a line. */
@@ -139,7 +127,9 @@ function* priorOf(
     const own = quantitiesOf(prior);
     return {
       quantities: own,
-      densities: picturesOf(prior, cloud, own).map((picture) => densityCurve(cloud, picture)),
+      densities: picturesOf(prior.problem, cloud, own).map((picture) =>
+        densityCurve(cloud, picture),
+      ),
     };
   }
   const problem = problemOf(setting, empty);
@@ -149,9 +139,7 @@ function* priorOf(
   const own = [...cloud.columns].flatMap(([name, values]) => summaryOfDraws(name, values));
   return {
     quantities: own,
-    densities: picturesOf({ ...posterior, problem }, cloud, own).map((picture) =>
-      densityCurve(cloud, picture),
-    ),
+    densities: picturesOf(problem, cloud, own).map((picture) => densityCurve(cloud, picture)),
   };
 }
 

@@ -13,12 +13,13 @@ import {
   type Task,
 } from "~shared/inference";
 import type { Summary } from "~shared/inference/marginal";
+import { rowLikelihood } from "~shared/likelihood";
 import { CompiledTable } from "~shared/likelihood/compile";
 import { specOf, type TableLikelihood } from "~shared/table/tableLikelihood";
 
 import { type Cloud, drawCloud, gridCloud } from "./cloud";
 import { excludedEverywhere } from "./excluded";
-import { asFitError } from "./fitError";
+import { asFitError, FitError } from "./fitError";
 import type { Convergence, FitRequest, QuantitySummary } from "./request";
 
 /** What is common to all fits of one job. */
@@ -60,9 +61,27 @@ const USELESS_EVIDENCE = 0.5;
 /** Draws kept for drawing. */
 const CLOUD_DRAWS = 32_000;
 
-/** A table under the setting's family. */
+/**
+ * A table under the setting's family.
+ *
+ * @throws {FitError} If a row has no likelihood, or a group can't be.
+ */
 export function problemOf(setting: FitSetting, table: TableLikelihood): FitProblem {
-  return new FitProblem(new CompiledTable(specOf(table)), setting.family, setting.background);
+  return new FitProblem(compiled(table), setting.family, setting.background);
+}
+
+function compiled(table: TableLikelihood): CompiledTable {
+  for (const { number, used, options } of table.rows) {
+    const likelihood = rowLikelihood(used, options);
+    if ("leftOut" in likelihood) {
+      throw new FitError(`${number} has no likelihood: ${likelihood.leftOut}`);
+    }
+  }
+  try {
+    return new CompiledTable(specOf(table));
+  } catch (error) {
+    throw asFitError(error);
+  }
 }
 
 /**
@@ -75,14 +94,25 @@ export function* fitPosterior(
   table: TableLikelihood,
   effort: Effort = {},
 ): Task<FitPosterior> {
-  let problem: FitProblem | null = null;
   try {
-    problem = problemOf(setting, table);
+    return yield* fitProblem(setting, problemOf(setting, table), effort);
+  } catch (error) {
+    throw asFitError(error);
+  }
+}
+
+/** The same for a table that is compiled already. */
+export function* fitProblem(
+  setting: FitSetting,
+  problem: FitProblem,
+  effort: Effort = {},
+): Task<FitPosterior> {
+  try {
     return bySampler(setting)
       ? yield* sampled(problem, setting.request, effort)
       : yield* onGrid(problem, effort);
   } catch (error) {
-    throw (problem && excludedEverywhere(problem, error)) ?? asFitError(error);
+    throw excludedEverywhere(problem, error) ?? asFitError(error);
   }
 }
 

@@ -139,6 +139,8 @@ export interface PartFit {
   readonly quantities: readonly QuantitySummary[];
   readonly densities: readonly DensityCurve[];
   readonly logEvidence: number | null;
+  /** Whether it carries a verdict. */
+  readonly sound: boolean;
 }
 
 export interface FamilyTension {
@@ -146,14 +148,25 @@ export interface FamilyTension {
   readonly b: MethodFamily;
   /** (μ_A − μ_B)/√(σ_A² + σ_B²) of each parameter and derived quantity. */
   readonly quantities: readonly { readonly name: string; readonly tension: number }[];
-  /** ln Z_AB − ln Z_A − ln Z_B. */
-  readonly logEvidenceRatio: number;
+  /** ln Z_AB − ln Z_A − ln Z_B; null where an evidence could not be found, or no history is allowed by both. */
+  readonly logEvidenceRatio: number | null;
   readonly logEvidenceError: number;
+}
+
+/** Rows that are in no part, or a part that could not be fitted. */
+export interface LeftOutPart {
+  /** Null for rows that belong to no one family. */
+  readonly part: MethodFamily | null;
+  readonly rows: readonly string[];
+  /** Why, in a sentence. */
+  readonly reason: string;
 }
 
 export interface FamiliesResult {
   readonly kind: "families";
+  /** In the order of the vocabulary's families, "all" last. */
   readonly parts: readonly PartFit[];
+  readonly leftOut: readonly LeftOutPart[];
   readonly tensions: readonly FamilyTension[];
 }
 
@@ -195,6 +208,8 @@ export interface ChangedFit {
   readonly midpointShiftInWidths: number;
   readonly tauShift: number;
   readonly tauShiftInWidths: number;
+  /** Why this could not be fitted, in a sentence; the shifts are then 0 and the change stands last. */
+  readonly failed: string | null;
 }
 
 export interface ChoicesResult {
@@ -208,10 +223,13 @@ export interface ChoicesResult {
 
 /** One step on the way from one table to another: a row that came, went or changed. */
 export interface AttributedChange {
+  /** A row's number, or what a mixture or set is named by. */
   readonly number: string;
   readonly words: string;
   readonly midpointShift: number;
   readonly tauShift: number;
+  /** Why this step could not be fitted, in a sentence; its shifts are then 0. */
+  readonly failed: string | null;
 }
 
 export interface WhatChangedResult {

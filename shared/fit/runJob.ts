@@ -1,11 +1,15 @@
 import { background } from "~shared/cosmology/background";
 import type { Task } from "~shared/inference";
 
+import { withOtherChoices } from "./choices";
 import { familyOf } from "./family";
 import { fit } from "./fit";
-import { asFitError, FitError } from "./fitError";
+import { fitFamilies } from "./families";
+import { asFitError } from "./fitError";
+import { withoutEach } from "./leaveOneOut";
 import type { FitSetting } from "./posterior";
 import type { EngineJob, EngineResult, FitRequest } from "./request";
+import { whatChanged } from "./whatChanged";
 
 /**
  * Does what the engine is asked. The result is plain data that survives JSON; equal jobs give equal results,
@@ -18,8 +22,14 @@ export function* runJob(job: EngineJob): Task<EngineResult> {
   switch (job.kind) {
     case "fit":
       return { kind: "fit", ...(yield* fit(setting)) };
-    default:
-      throw new FitError("This can't be asked yet.");
+    case "families":
+      return yield* fitFamilies(setting);
+    case "leaveOneOut":
+      return yield* withoutEach(setting);
+    case "choices":
+      return yield* withOtherChoices(setting, job.others);
+    case "whatChanged":
+      return yield* whatChanged(setting, job.before);
   }
 }
 

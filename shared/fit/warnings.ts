@@ -1,7 +1,7 @@
 /** What must be said beside a fit, in plain sentences. */
 import { ENOUGH_EFFECTIVE_DRAWS } from "~shared/inference/ensembleSampler";
 
-import { quantityWord } from "./names";
+import { quantityWords } from "./quantityWords";
 import type { FitPosterior, FitSetting } from "./posterior";
 
 /**
@@ -28,7 +28,7 @@ export function warningsOf(
     const edges = [...new Set([...(degenerate ? [] : atEdge), ...cut])];
     // The ends of a free form's values are those of a fraction, and no choice.
     if (edges.length > 0 && request.family.kind !== "freeForm") {
-      const names = edges.map(quantityWord).join(", ");
+      const names = edges.map((name) => quantityWords(name).symbol).join(", ");
       warnings.push(
         `The fit runs into an end of the prior of ${names}: best point and intervals depend on where that end is.`,
       );

@@ -12,6 +12,7 @@ import { CompiledTable, type TableSpec } from "~shared/likelihood/compile";
 /** What one term of a table does to a fit. */
 export interface TermInfluence {
   readonly id: string;
+  readonly members: readonly string[];
   /** −2 ln L at the best point of all rows. */
   readonly minus2LnL: number;
   /** Signed root of it: positive where the model lies above the row's peak; null for a group. */
@@ -31,6 +32,9 @@ export interface FullPosterior {
   readonly derived?: Readonly<Record<string, Summary | null>>;
 }
 
+/** What a shift is measured with. */
+type Refitted = Pick<FullPosterior, "parameters" | "derived">;
+
 /** Accuracy enough for a shift shown to two digits. */
 const COARSE: GridOptions = { tolerance: 5e-3 };
 
@@ -39,8 +43,9 @@ const COARSE: GridOptions = { tolerance: 5e-3 };
  *
  * @param full - The posterior of all rows.
  * @param spec - The table; a mixture or correlated set is left out as a whole.
- * @param sampler - How to sample, for three or more parameters: each term costs a run, and its shift has
- *   the Monte-Carlo error of that run. Not asked for one or two, which go by the grid.
+ * @param options - How to sample, for three or more parameters: each term costs a run, and its shift has
+ *   the Monte-Carlo error of that run; one or two go by the grid. Or how the rest of the table is fitted, in
+ *   place of both.
  * @returns One entry for each term of the table, in its order.
  * @throws {DomainError} For three or more parameters without a sampler.
  */
@@ -48,8 +53,14 @@ export function* leaveOneOut(
   problem: FitProblem,
   full: FullPosterior,
   spec: TableSpec,
-  sampler?: SamplerOptions,
+  options: {
+    readonly sampler?: SamplerOptions;
+    readonly refit?: (rest: FitProblem) => Task<Refitted>;
+  } = {},
 ): Task<TermInfluence[]> {
+  const refit =
+    options.refit ??
+    ((rest: FitProblem) => posteriorWithout(rest, options.sampler, full.derived !== undefined));
   const values = problem.termValues(full.best.theta);
   const models = problem.modelValues(full.best.theta);
   const byRow = new Map(problem.table.rowIds.map((id, i) => [id, models[i]!]));
@@ -63,8 +74,7 @@ export function* leaveOneOut(
       correlated: spec.correlated?.filter(({ id }) => id !== term.id) ?? [],
     };
     const without = new FitProblem(new CompiledTable(reduced), problem.family, problem.background);
-    const withDerived = full.derived !== undefined;
-    const posterior = yield* posteriorWithout(without, sampler, withDerived);
+    const posterior = yield* refit(without);
     const means: Record<string, Summary | null> = { ...posterior.derived, ...posterior.parameters };
     const shift = Object.fromEntries(
       Object.entries({ ...full.derived, ...full.parameters }).flatMap(([name, summary]) => {
@@ -74,6 +84,7 @@ export function* leaveOneOut(
     );
     results.push({
       id: term.id,
+      members: term.members,
       minus2LnL: values[t]!,
       pull: term.kind === "row" ? pullOf(spec, term.id, byRow.get(term.id)!, values[t]!) : null,
       shift,
@@ -87,7 +98,7 @@ function* posteriorWithout(
   problem: FitProblem,
   sampler: SamplerOptions | undefined,
   withDerived: boolean,
-): Task<Pick<FullPosterior, "parameters" | "derived">> {
+): Task<Refitted> {
   return problem.dimension <= 2
     ? yield* gridPosterior(problem, { ...COARSE, withoutDerived: !withDerived })
     : yield* samplePosterior(problem, samplerFor(problem.dimension, sampler));

@@ -338,7 +338,7 @@ describe("what one row does, and what two sets do to each other", () => {
       const spec = { rows: [low, high] };
       const problem = problemOf([low, high], nodes);
       const full = runTask(samplePosterior(problem, sampler));
-      const [first, second] = runTask(leaveOneOut(problem, full, spec, sampler));
+      const [first, second] = runTask(leaveOneOut(problem, full, spec, { sampler }));
       // The prior of the middle of three ordered values, 6x(1 − x), is flat to 1 % here: its slope moves
       // means by σ² d ln p/dx, 0.1 σ at most.
       const width = 1 / Math.sqrt(1 / 0.02 ** 2 + 1 / 0.03 ** 2);
