@@ -1,7 +1,13 @@
 /** Writes the API's SDL from the resolvers: node -r @swc-node/register scripts/emitSchema.ts [FILE] */
-import { createSchema } from "../server/schema";
+import { writeFileSync } from "node:fs";
 
-createSchema(process.argv[2] ?? "graphql/schema.graphql").catch((error: unknown) => {
-  console.error(error);
-  process.exitCode = 1;
-});
+import { createSchema, printedSchema } from "../server/schema";
+
+createSchema()
+  .then((schema) =>
+    writeFileSync(process.argv[2] ?? "graphql/schema.graphql", printedSchema(schema)),
+  )
+  .catch((error: unknown) => {
+    console.error(error);
+    process.exitCode = 1;
+  });

@@ -1,8 +1,9 @@
 import "reflect-metadata";
 
-import type { GraphQLSchema } from "graphql";
+import { lexicographicSortSchema, printSchema, type GraphQLSchema } from "graphql";
 import { buildSchema, type BuildSchemaOptions } from "type-graphql";
 
+import { describeSchema } from "~server/apiWords/describe";
 import { AccountResolver } from "~server/account/account.resolver";
 import { PeopleResolver } from "~server/account/people.resolver";
 import { SessionResolver } from "~server/account/session.resolver";
@@ -67,12 +68,23 @@ export const resolvers = [
   EvidenceResolver,
 ] as const satisfies BuildSchemaOptions["resolvers"];
 
-/** Builds the schema; needs no database. With a path it also writes the SDL there, sorted. */
-export function createSchema(emitTo?: string): Promise<GraphQLSchema> {
+const HEAD = "# Written by npm run generate from the server's classes: never by hand.";
+
+/** The schema as the decorators make it. */
+export function createBareSchema(): Promise<GraphQLSchema> {
   return buildSchema({
     resolvers,
     authChecker: RoleChecker,
     validate: { forbidUnknownValues: false },
-    ...(emitTo === undefined ? {} : { emitSchemaFile: { path: emitTo, sortedSchema: true } }),
   });
+}
+
+/** Builds the schema with its words; needs no database. */
+export async function createSchema(): Promise<GraphQLSchema> {
+  return describeSchema(await createBareSchema());
+}
+
+/** The SDL that graphql/schema.graphql holds: sorted, so that its diff is the API's diff. */
+export function printedSchema(schema: GraphQLSchema): string {
+  return `${HEAD}\n\n${printSchema(lexicographicSortSchema(schema))}\n`;
 }

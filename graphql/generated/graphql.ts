@@ -18,16 +18,22 @@ export type Scalars = {
   DateTimeISO: { input: string; output: string; }
 };
 
+/** An answer to a finding. */
 export type AnswerInput = {
+  /** The answer in words. */
   answer: Scalars['String']['input'];
+  /** Code of the finding. */
   code: Scalars['String']['input'];
 };
 
 /** What had to be answered before a submission, and the answer. */
 export type AnsweredFinding = {
   __typename?: 'AnsweredFinding';
+  /** Whether the editor accepted it. */
   accepted: Scalars['Boolean']['output'];
+  /** The answer in words. */
   answer: Scalars['String']['output'];
+  /** What the rules found, in words. */
   message: Scalars['String']['output'];
 };
 
@@ -64,120 +70,183 @@ export type ApiTokenInput = {
   scopes: Array<TokenScope>;
 };
 
+/** AuthorCheckPage; or a Refusal, which says why not in words and by a code. */
 export type AuthorAnswerResult = AuthorCheckPage | Refusal;
 
+/** A revision that was sent to an author of its paper for a check. */
 export type AuthorCheck = {
   __typename?: 'AuthorCheck';
+  /** When the author answered last. */
   answeredAt: Maybe<Scalars['DateTimeISO']['output']>;
+  /** The author's address; null once it is forgotten. */
   authorEmail: Maybe<Scalars['String']['output']>;
   /** Null once it is forgotten. */
   authorName: Maybe<Scalars['String']['output']>;
   /** Why the viewer can't close it, in words. */
   barredBecause: Maybe<Scalars['String']['output']>;
+  /** The paper. */
   citation: Maybe<Citation>;
+  /** When it was closed or revoked. */
   endedAt: Maybe<Scalars['DateTimeISO']['output']>;
   /** Whether the link has run out. */
   expired: Scalars['Boolean']['output'];
+  /** When the link runs out. */
   expiresAt: Scalars['DateTimeISO']['output'];
+  /** Identifier of the check. */
   id: Scalars['ID']['output'];
   /** The answer trail, oldest first. */
   lines: Array<AuthorCheckLine>;
+  /** Number of the record, FL-0042. */
   number: Scalars['String']['output'];
+  /** Revision that was shown, FL-0042.3. */
   quotable: Scalars['String']['output'];
+  /** When the link was mailed. */
   sentAt: Scalars['DateTimeISO']['output'];
+  /** Name of whoever sent it. */
   sentBy: Scalars['String']['output'];
+  /** Where it stands. */
   state: CheckState;
+  /** What the author says; null: not yet. */
   verdict: Maybe<CheckVerdict>;
+  /** To be sent back with a change; an older one is refused as stale. */
   version: Scalars['Int']['output'];
 };
 
 /** One entry of a check's answer trail. */
 export type AuthorCheckLine = {
   __typename?: 'AuthorCheckLine';
+  /** When it was written. */
   at: Scalars['DateTimeISO']['output'];
   /** The editor; null for the author. */
   by: Maybe<Scalars['String']['output']>;
+  /** Identifier of the line. */
   id: Scalars['ID']['output'];
+  /** What was written. */
   text: Maybe<Scalars['String']['output']>;
+  /** What the author says with it. */
   verdict: Maybe<CheckVerdict>;
 };
 
 /** What the public learns of an author's check. */
 export type AuthorCheckMark = {
   __typename?: 'AuthorCheckMark';
+  /** When the author answered. */
   at: Scalars['DateTimeISO']['output'];
+  /** Whether the editors have closed the check. */
   closed: Scalars['Boolean']['output'];
+  /** Identifier of the check. */
   id: Scalars['ID']['output'];
   /** The revision that was checked. */
   ordinal: Scalars['Int']['output'];
+  /** What the author says. */
   verdict: CheckVerdict;
 };
 
+/** What an author's link opens. */
 export type AuthorCheckPage = {
   __typename?: 'AuthorCheckPage';
+  /** Whether the revision is approved by now. */
   approved: Scalars['Boolean']['output'];
+  /** When the link was mailed. */
   askedAt: Scalars['DateTimeISO']['output'];
+  /** Name of whoever asks. */
   askedBy: Scalars['String']['output'];
+  /** Address that the link went to. */
   authorEmail: Maybe<Scalars['String']['output']>;
+  /** Name that the link went to. */
   authorName: Maybe<Scalars['String']['output']>;
+  /** The paper. */
   citation: Maybe<Citation>;
+  /** When the link runs out. */
   expiresAt: Scalars['DateTimeISO']['output'];
   /** The record as the revision has it; null where the link is not open any more. */
   fields: Maybe<ConstraintFields>;
+  /** What was answered so far, oldest first. */
   lines: Array<AuthorCheckLine>;
   /** The record's address for everybody, once it is approved. */
   number: Scalars['String']['output'];
   /** Whether a newer revision is in use. */
   outdated: Scalars['Boolean']['output'];
+  /** Revision that is shown, FL-0042.3. */
   quotable: Scalars['String']['output'];
+  /** What the link opens now. */
   standing: LinkStanding;
+  /** Answer given last; null: none yet. */
   verdict: Maybe<CheckVerdict>;
+  /** To be sent back with the answer; an older one is refused as stale. */
   version: Scalars['Int']['output'];
 };
 
+/** AuthorCheck; or a Refusal, which says why not in words and by a code. */
 export type AuthorCheckResult = AuthorCheck | Refusal;
 
+/** A mail that the demonstration caught instead of sending it. */
 export type CaughtMail = {
   __typename?: 'CaughtMail';
+  /** When it would have left. */
   at: Scalars['DateTimeISO']['output'];
+  /** Identifier of the mail. */
   id: Scalars['ID']['output'];
+  /** Subject line. */
   subject: Scalars['String']['output'];
+  /** Text of the mail. */
   text: Scalars['String']['output'];
+  /** Address it would have gone to. */
   to: Scalars['String']['output'];
 };
 
+/** A record that stands in both releases at different revisions. */
 export type ChangedRecord = {
   __typename?: 'ChangedRecord';
   /** Its revision in the earlier release. */
   before: Scalars['String']['output'];
+  /** Fields that differ. */
   changes: Array<FieldChange>;
+  /** Number of the record, FL-0042. */
   number: Scalars['String']['output'];
   /** Number with revision. */
   quotable: Scalars['String']['output'];
+  /** First author and year of its paper. */
   shortName: Scalars['String']['output'];
 };
 
+/** Where a check by an author stands. */
 export type CheckState =
+  /** The author has answered; the editors look at it. */
   | 'answered'
+  /** The editors have closed it. */
   | 'closed'
+  /** Taken back; its link opens nothing. */
   | 'revoked'
+  /** The link is with the author. */
   | 'sent';
 
+/** What an author says of the record. */
 export type CheckVerdict =
+  /** There is something to correct or add. */
   | 'comments'
+  /** It says what the paper says. */
   | 'correct';
 
+/** One point that an editor looks at before approving. */
 export type ChecklistPoint = {
   __typename?: 'ChecklistPoint';
+  /** Stable word for the point. */
   code: Scalars['String']['output'];
+  /** What to look at, in words. */
   text: Scalars['String']['output'];
+  /** Whether the editor has ticked it. */
   ticked: Scalars['Boolean']['output'];
 };
 
+/** A paper in the registry's bibliography; records of one paper share it. */
 export type Citation = {
   __typename?: 'Citation';
+  /** arXiv number without version, 2301.01234 say. */
   arxiv: Maybe<Scalars['String']['output']>;
+  /** Names in the order of the paper, family name first. */
   authors: Array<Scalars['String']['output']>;
+  /** Nineteen-character bibliographic code. */
   bibcode: Maybe<Scalars['String']['output']>;
   /** BibTeX with the registry's key, compilable by itself. */
   bibtex: Scalars['String']['output'];
@@ -185,27 +254,38 @@ export type Citation = {
   container: Maybe<Scalars['String']['output']>;
   /** CSL-JSON, as text. */
   csl: Scalars['String']['output'];
+  /** Digital object identifier in lower case, without an address before it. */
   doi: Maybe<Scalars['String']['output']>;
+  /** BibTeX type of the entry, in lower case; article, say. */
   entryType: Scalars['String']['output'];
+  /** Identifier of the citation in this registry. */
   id: Scalars['ID']['output'];
   /** Citation key of the registry, unique. */
   key: Scalars['String']['output'];
+  /** Pages or article number as printed. */
   pages: Maybe<Scalars['String']['output']>;
   /** Tarrowin et al. 2025 */
   shortName: Scalars['String']['output'];
+  /** Title as plain text. */
   title: Scalars['String']['output'];
+  /** Volume as printed. */
   volume: Maybe<Scalars['String']['output']>;
+  /** Year of publication. */
   year: Maybe<Scalars['Int']['output']>;
 };
 
 /** One entry of pasted BibTeX, parsed and not yet kept. */
 export type CitationPreview = {
   __typename?: 'CitationPreview';
+  /** What was read; null where the entry can't be read. */
   citation: Maybe<ParsedCitation>;
   /** The paper in the registry that this entry is, if there is one. */
   existing: Maybe<Citation>;
+  /** Citation key as it came. */
   givenKey: Scalars['String']['output'];
+  /** Position among the entries of the text, from 0. */
   index: Scalars['Int']['output'];
+  /** Line of the text on which the entry begins, from 1. */
   line: Scalars['Int']['output'];
   /** How it was found: doi, arxiv, bibcode, title. */
   matchedBy: Maybe<Scalars['String']['output']>;
@@ -215,23 +295,32 @@ export type CitationPreview = {
   remarks: Array<Scalars['String']['output']>;
 };
 
+/** How a report is closed. */
 export type CloseReportInput = {
   /** FL-0042.3, where it was corrected. */
   correctedBy?: InputMaybe<Scalars['String']['input']>;
+  /** Identifier of the report. */
   id: Scalars['ID']['input'];
+  /** What became of it. */
   outcome: ReportOutcome;
+  /** Last words to the reporter. */
   text?: InputMaybe<Scalars['String']['input']>;
+  /** Version last read of the report; another one is refused as stale. */
   version: Scalars['Int']['input'];
 };
 
+/** An answer to an editor's comment. */
 export type CommentAnswerInput = {
+  /** The answer in words. */
   answer: Scalars['String']['input'];
+  /** The comment that is answered. */
   commentId: Scalars['ID']['input'];
 };
 
 /** A comment with everything written below it. */
 export type CommentThread = {
   __typename?: 'CommentThread';
+  /** The comment that the thread hangs from. */
   comment: FieldComment;
 };
 
@@ -258,187 +347,333 @@ export type Constraint = {
   __typename?: 'Constraint';
   /** Members of the same alternatives group, this one included. */
   alternatives: Array<RecordLink>;
+  /** When the revision in use was approved. */
   approvedAt: Scalars['DateTimeISO']['output'];
   /** Answered checks of the approved revisions by authors of the paper. */
   authorChecks: Array<AuthorCheckMark>;
+  /** The paper that it reads. */
   citation: Citation;
   /** Approved correlated sets that this record is part of. */
   correlatedSets: Array<SetLink>;
+  /** Sightlines, fields and samples that it stands on, as entries of the registry. */
   dataEntries: Array<UsedData>;
   /** Readers' reports of errors in this record; their words are not public. */
   errorReports: ErrorReportCount;
+  /** As printed, number by number. */
   fields: ConstraintFields;
   /** FL-0042 */
   number: Scalars['String']['output'];
+  /** Number of the revision in use, from 1: the 3 of FL-0042.3. */
   ordinal: Scalars['Int']['output'];
   /** FL-0042.3 */
   quotable: Scalars['String']['output'];
+  /** Name of whoever read the paper a second time. */
   readBy: Scalars['String']['output'];
+  /** Approved revisions, newest first. */
   revisions: Array<PublicRevision>;
   /** Other approved records that stand on the same data: by name or alias, as parts of one another, or stated to overlap. */
   sharesDataWith: Array<RecordLink>;
+  /** Whether it is in use, superseded or withdrawn. */
   state: RecordState;
+  /** Name of whoever entered it. */
   submittedBy: Scalars['String']['output'];
   /** FL-0042: the record in the place of a superseded one. */
   supersededBy: Maybe<Scalars['String']['output']>;
 };
 
+/** What one paper prints about one quantity, number by number as typed. Null: left open, or of no use to this quantity. */
 export type ConstraintFields = {
   __typename?: 'ConstraintFields';
+  /** Label shared by several answers of one paper to one question; they are never multiplied. */
   alternativesGroup: Maybe<Scalars['String']['output']>;
+  /** Whether the authors prefer this one of several alternatives. */
   alternativesPreferred: Maybe<Scalars['Boolean']['output']>;
+  /** Upper end of a band, in the unit of the value, as typed. */
   bandHigh: Maybe<Scalars['String']['output']>;
+  /** Lower end of a band, in the unit of the value, as typed. */
   bandLow: Maybe<Scalars['String']['output']>;
+  /** What the value already contains: numbers of records (FL-0012) or kinds of data (cmb, lymanAlpha, luminosityFunction, twentyOneCm). */
   conditionedOn: Array<Scalars['String']['output']>;
+  /** Whether the printed errors include cosmic variance. */
   cosmicVariance: Maybe<CosmicVariance>;
+  /** What the second column of a tabulated curve holds. */
   curveColumn: Maybe<CurveColumn>;
+  /** A tabulated curve as CSV text of two columns: the value as printed, then probability density or ln L. */
   curveTable: Maybe<Scalars['String']['output']>;
+  /** False where the paper does not say which data it used: unknown is a value, not an empty list. Null: not answered yet. */
   dataKnown: Maybe<Scalars['Boolean']['output']>;
+  /** Named sightlines, fields and samples that the value was measured on. */
   dataUsed: Array<Scalars['String']['output']>;
+  /** Error of reading off the figure, in the unit of the value, as typed. */
   digitizingError: Maybe<Scalars['String']['output']>;
+  /** Unit of a duration: redshift, or millions of years. */
   durationUnit: Maybe<DurationUnit>;
+  /** Numbers of records whose printed numbers the paper's own erratum corrects here. */
   erratumOf: Array<Scalars['String']['output']>;
+  /** Which point of the distribution the printed value is. */
   estimator: Maybe<Estimator>;
+  /** Fraction that a redshift is given for, in the printed species, 0 to 1, as typed. */
   fraction: Maybe<Scalars['String']['output']>;
+  /** Fraction at which a duration begins, in the printed species, 0 to 1, as typed; 0.75 of neutral hydrogen, say. */
   fractionFrom: Maybe<Scalars['String']['output']>;
+  /** Fraction at which a duration ends, in the printed species, 0 to 1, as typed. */
   fractionTo: Maybe<Scalars['String']['output']>;
+  /** Further intervals that the same paper prints for it, in words. */
   furtherIntervals: Maybe<Scalars['String']['output']>;
+  /** Whether a printed electron fraction counts electrons of helium. */
   helium: Maybe<Helium>;
+  /** How electrons of helium were counted in an optical depth, in words. */
   heliumAssumed: Maybe<Scalars['String']['output']>;
+  /** Family of histories with which an optical depth or a duration was derived, in words. */
   historyAssumed: Maybe<Scalars['String']['output']>;
+  /** Shape of the statement: two-sided value, limit, band, curve, or words only. */
   kind: Maybe<StatementKind>;
+  /** Credible or confidence level of the printed errors, limit or band. */
   level: Maybe<Level>;
+  /** Level in percent, as typed, where it is none of the usual ones; 99.7, say. */
   levelPercent: Maybe<Scalars['String']['output']>;
+  /** Value from which a limit's own sigma is counted, as typed; below it (above it for a lower limit) the likelihood is flat. */
   limitBase: Maybe<Scalars['String']['output']>;
+  /** Sigma that the paper gives for a limit, in the unit of the value, as typed. */
   limitSigma: Maybe<Scalars['String']['output']>;
+  /** Methods, by tags of the method vocabulary; the families follow from them. */
   methodTags: Array<Scalars['String']['output']>;
+  /** Downward error in the unit of the value, as typed, without sign. */
   minus: Maybe<Scalars['String']['output']>;
+  /** Models and simulations that the value depends on, by name. */
   modelTags: Array<Scalars['String']['output']>;
+  /** Page on which it stands. */
   page: Maybe<Scalars['String']['output']>;
+  /** Where it stands in the paper: table and row, figure, section. */
   place: Maybe<Scalars['String']['output']>;
+  /** Upward error in the unit of the value, as typed, without sign. */
   plus: Maybe<Scalars['String']['output']>;
+  /** Number of the preprint's version, 2 for v2, where a preprint was read. */
   preprintVersion: Maybe<Scalars['String']['output']>;
+  /** The sentence or table cell of the paper, letter by letter; at most 300 characters. */
   printedText: Maybe<Scalars['String']['output']>;
+  /** Shape of the prior that the paper used, in words; flat, say. */
   priorForm: Maybe<Scalars['String']['output']>;
+  /** Range of that prior, in words. */
   priorRange: Maybe<Scalars['String']['output']>;
+  /** Variable in which that prior is given; the fraction or its logarithm, say. */
   priorVariable: Maybe<Scalars['String']['output']>;
+  /** What is constrained; decides which of the other fields apply. */
   quantity: Maybe<Quantity>;
+  /** Upper end of the redshift range of an optical depth, as typed. */
   rangeHigh: Maybe<Scalars['String']['output']>;
+  /** Lower end of the redshift range of an optical depth, as typed. */
   rangeLow: Maybe<Scalars['String']['output']>;
+  /** Whether the numbers were read off a figure instead of text or a table. */
   readOffFigure: Maybe<Scalars['Boolean']['output']>;
+  /** Numbers of records of the same data, which are analysed anew here. */
   reanalysisOf: Array<Scalars['String']['output']>;
+  /** What else whoever uses it should know, in words. */
   remark: Maybe<Scalars['String']['output']>;
+  /** Whether the fraction is printed itself or as its decimal logarithm. */
   scale: Maybe<Scale>;
+  /** Which fraction of hydrogen the paper prints: neutral, ionized, or electrons per hydrogen. The registry converts to neutral. */
   species: Maybe<Species>;
+  /** Numbers of records whose data contain those of this one. */
   subsetOf: Array<Scalars['String']['output']>;
+  /** Numbers of records that this one takes the place of once it is approved. */
   supersedes: Array<Scalars['String']['output']>;
+  /** Where the history or the integral was cut off, in words. */
   truncationAssumed: Maybe<Scalars['String']['output']>;
+  /** Value of a two-sided statement, or the limit, in the printed species and scale, as typed (0.30 keeps its zero). */
   value: Maybe<Scalars['String']['output']>;
+  /** Which version of the paper the numbers were read from. */
   versionRead: Maybe<VersionRead>;
+  /** Whether the mean over space is weighted by volume or by mass. */
   weighting: Maybe<Weighting>;
+  /** Redshift of the value, as typed: centre of a bin, mean of a sample, or the point itself. */
   z: Maybe<Scalars['String']['output']>;
+  /** Upper end of the bin, of the uncertainty or of the sample in redshift, as typed. */
   zHigh: Maybe<Scalars['String']['output']>;
+  /** Lower end of the bin, of the uncertainty or of the sample in redshift, as typed. */
   zLow: Maybe<Scalars['String']['output']>;
+  /** What the redshift and its ends mean; decides what a history is asked for. */
   zRole: Maybe<RedshiftRole>;
 };
 
+/** What a paper prints, field by field; whatever is left out stays open. */
 export type ConstraintFieldsInput = {
+  /** Label shared by several answers of one paper to one question; they are never multiplied. */
   alternativesGroup?: InputMaybe<Scalars['String']['input']>;
+  /** Whether the authors prefer this one of several alternatives. */
   alternativesPreferred?: InputMaybe<Scalars['Boolean']['input']>;
+  /** Upper end of a band, in the unit of the value, as typed. */
   bandHigh?: InputMaybe<Scalars['String']['input']>;
+  /** Lower end of a band, in the unit of the value, as typed. */
   bandLow?: InputMaybe<Scalars['String']['input']>;
+  /** What the value already contains: numbers of records (FL-0012) or kinds of data (cmb, lymanAlpha, luminosityFunction, twentyOneCm). */
   conditionedOn?: InputMaybe<Array<Scalars['String']['input']>>;
+  /** Whether the printed errors include cosmic variance. */
   cosmicVariance?: InputMaybe<CosmicVariance>;
+  /** What the second column of a tabulated curve holds. */
   curveColumn?: InputMaybe<CurveColumn>;
+  /** A tabulated curve as CSV text of two columns: the value as printed, then probability density or ln L. */
   curveTable?: InputMaybe<Scalars['String']['input']>;
+  /** False where the paper does not say which data it used: unknown is a value, not an empty list. Null: not answered yet. */
   dataKnown?: InputMaybe<Scalars['Boolean']['input']>;
+  /** Named sightlines, fields and samples that the value was measured on. */
   dataUsed?: InputMaybe<Array<Scalars['String']['input']>>;
+  /** Error of reading off the figure, in the unit of the value, as typed. */
   digitizingError?: InputMaybe<Scalars['String']['input']>;
+  /** Unit of a duration: redshift, or millions of years. */
   durationUnit?: InputMaybe<DurationUnit>;
+  /** Numbers of records whose printed numbers the paper's own erratum corrects here. */
   erratumOf?: InputMaybe<Array<Scalars['String']['input']>>;
+  /** Which point of the distribution the printed value is. */
   estimator?: InputMaybe<Estimator>;
+  /** Fraction that a redshift is given for, in the printed species, 0 to 1, as typed. */
   fraction?: InputMaybe<Scalars['String']['input']>;
+  /** Fraction at which a duration begins, in the printed species, 0 to 1, as typed; 0.75 of neutral hydrogen, say. */
   fractionFrom?: InputMaybe<Scalars['String']['input']>;
+  /** Fraction at which a duration ends, in the printed species, 0 to 1, as typed. */
   fractionTo?: InputMaybe<Scalars['String']['input']>;
+  /** Further intervals that the same paper prints for it, in words. */
   furtherIntervals?: InputMaybe<Scalars['String']['input']>;
+  /** Whether a printed electron fraction counts electrons of helium. */
   helium?: InputMaybe<Helium>;
+  /** How electrons of helium were counted in an optical depth, in words. */
   heliumAssumed?: InputMaybe<Scalars['String']['input']>;
+  /** Family of histories with which an optical depth or a duration was derived, in words. */
   historyAssumed?: InputMaybe<Scalars['String']['input']>;
+  /** Shape of the statement: two-sided value, limit, band, curve, or words only. */
   kind?: InputMaybe<StatementKind>;
+  /** Credible or confidence level of the printed errors, limit or band. */
   level?: InputMaybe<Level>;
+  /** Level in percent, as typed, where it is none of the usual ones; 99.7, say. */
   levelPercent?: InputMaybe<Scalars['String']['input']>;
+  /** Value from which a limit's own sigma is counted, as typed; below it (above it for a lower limit) the likelihood is flat. */
   limitBase?: InputMaybe<Scalars['String']['input']>;
+  /** Sigma that the paper gives for a limit, in the unit of the value, as typed. */
   limitSigma?: InputMaybe<Scalars['String']['input']>;
+  /** Methods, by tags of the method vocabulary; the families follow from them. */
   methodTags?: InputMaybe<Array<Scalars['String']['input']>>;
+  /** Downward error in the unit of the value, as typed, without sign. */
   minus?: InputMaybe<Scalars['String']['input']>;
+  /** Models and simulations that the value depends on, by name. */
   modelTags?: InputMaybe<Array<Scalars['String']['input']>>;
+  /** Page on which it stands. */
   page?: InputMaybe<Scalars['String']['input']>;
+  /** Where it stands in the paper: table and row, figure, section. */
   place?: InputMaybe<Scalars['String']['input']>;
+  /** Upward error in the unit of the value, as typed, without sign. */
   plus?: InputMaybe<Scalars['String']['input']>;
+  /** Number of the preprint's version, 2 for v2, where a preprint was read. */
   preprintVersion?: InputMaybe<Scalars['String']['input']>;
+  /** The sentence or table cell of the paper, letter by letter; at most 300 characters. */
   printedText?: InputMaybe<Scalars['String']['input']>;
+  /** Shape of the prior that the paper used, in words; flat, say. */
   priorForm?: InputMaybe<Scalars['String']['input']>;
+  /** Range of that prior, in words. */
   priorRange?: InputMaybe<Scalars['String']['input']>;
+  /** Variable in which that prior is given; the fraction or its logarithm, say. */
   priorVariable?: InputMaybe<Scalars['String']['input']>;
+  /** What is constrained; decides which of the other fields apply. */
   quantity?: InputMaybe<Quantity>;
+  /** Upper end of the redshift range of an optical depth, as typed. */
   rangeHigh?: InputMaybe<Scalars['String']['input']>;
+  /** Lower end of the redshift range of an optical depth, as typed. */
   rangeLow?: InputMaybe<Scalars['String']['input']>;
+  /** Whether the numbers were read off a figure instead of text or a table. */
   readOffFigure?: InputMaybe<Scalars['Boolean']['input']>;
+  /** Numbers of records of the same data, which are analysed anew here. */
   reanalysisOf?: InputMaybe<Array<Scalars['String']['input']>>;
+  /** What else whoever uses it should know, in words. */
   remark?: InputMaybe<Scalars['String']['input']>;
+  /** Whether the fraction is printed itself or as its decimal logarithm. */
   scale?: InputMaybe<Scale>;
+  /** Which fraction of hydrogen the paper prints: neutral, ionized, or electrons per hydrogen. The registry converts to neutral. */
   species?: InputMaybe<Species>;
+  /** Numbers of records whose data contain those of this one. */
   subsetOf?: InputMaybe<Array<Scalars['String']['input']>>;
+  /** Numbers of records that this one takes the place of once it is approved. */
   supersedes?: InputMaybe<Array<Scalars['String']['input']>>;
+  /** Where the history or the integral was cut off, in words. */
   truncationAssumed?: InputMaybe<Scalars['String']['input']>;
+  /** Value of a two-sided statement, or the limit, in the printed species and scale, as typed (0.30 keeps its zero). */
   value?: InputMaybe<Scalars['String']['input']>;
+  /** Which version of the paper the numbers were read from. */
   versionRead?: InputMaybe<VersionRead>;
+  /** Whether the mean over space is weighted by volume or by mass. */
   weighting?: InputMaybe<Weighting>;
+  /** Redshift of the value, as typed: centre of a bin, mean of a sample, or the point itself. */
   z?: InputMaybe<Scalars['String']['input']>;
+  /** Upper end of the bin, of the uncertainty or of the sample in redshift, as typed. */
   zHigh?: InputMaybe<Scalars['String']['input']>;
+  /** Lower end of the bin, of the uncertainty or of the sample in redshift, as typed. */
   zLow?: InputMaybe<Scalars['String']['input']>;
+  /** What the redshift and its ends mean; decides what a history is asked for. */
   zRole?: InputMaybe<RedshiftRole>;
 };
 
+/** Which records; conditions of different kinds all hold, words within one are alternatives. */
 export type ConstraintFilter = {
+  /** Families of methods, any of them. */
   families?: InputMaybe<Array<MethodFamily>>;
+  /** Shapes of statement, any of them. */
   kinds?: InputMaybe<Array<StatementKind>>;
+  /** Quantities, any of them. */
   quantities?: InputMaybe<Array<Quantity>>;
   /** Current and superseded records unless said. */
   states?: InputMaybe<Array<RecordState>>;
+  /** Tags of the method vocabulary, any of them. */
   tags?: InputMaybe<Array<Scalars['String']['input']>>;
   /** Free text over authors, title, key, number, printed text, data used. */
   text?: InputMaybe<Scalars['String']['input']>;
+  /** Versions of the paper that was read, any of them. */
   versions?: InputMaybe<Array<VersionRead>>;
+  /** Weightings of the mean, any of them. */
   weightings?: InputMaybe<Array<Weighting>>;
+  /** First year of publication. */
   yearFrom?: InputMaybe<Scalars['Int']['input']>;
+  /** Last year of publication. */
   yearTo?: InputMaybe<Scalars['Int']['input']>;
+  /** Lowest redshift, inclusive; records without a redshift are left out. */
   zFrom?: InputMaybe<Scalars['Float']['input']>;
+  /** Highest redshift, inclusive; records without a redshift are left out. */
   zTo?: InputMaybe<Scalars['Float']['input']>;
 };
 
+/** Records by position in the list. For a pipeline constraintPage is safer: a record that comes in between shifts positions. */
 export type ConstraintPage = {
   __typename?: 'ConstraintPage';
+  /** Records from offset on, at most limit. */
   constraints: Array<Constraint>;
+  /** Newest event of the log at the moment of the answer; null in an empty registry. */
   lastEvent: Maybe<EventMark>;
+  /** Approved records of the registry, without the filter. */
   registryTotal: Scalars['Int']['output'];
+  /** Records of the filter, over all pages. */
   total: Scalars['Int']['output'];
 };
 
+/** Order of records; ties by number. */
 export type ConstraintSort =
+  /** Approved last first. */
   | 'newest'
+  /** By number, FL-0001 first. */
   | 'number'
+  /** Lowest redshift first; quantities without one last. */
   | 'redshift'
+  /** Highest redshift first; quantities without one last. */
   | 'redshiftDescending'
+  /** Newest publication first. */
   | 'year';
 
 /** Records of one paper with the matrix it prints for them: all of them count together, or a part by its exact marginal. */
 export type CorrelatedSet = {
   __typename?: 'CorrelatedSet';
+  /** Answers to findings that ask for one. */
   answers: Array<FindingAnswer>;
   /** Members whose revision in use is a later one by now. */
   changedMembers: Array<Scalars['String']['output']>;
+  /** The paper that prints the matrix. */
   citation: Citation;
+  /** When it was decided. */
   decidedAt: Maybe<Scalars['DateTimeISO']['output']>;
   /** The editor's comment; for its owner. */
   decisionNote: Maybe<Scalars['String']['output']>;
@@ -446,162 +681,251 @@ export type CorrelatedSet = {
   findings: Array<Finding>;
   /** The set that this one follows. */
   follows: Maybe<Scalars['String']['output']>;
+  /** What the set is, in words. */
   label: Maybe<Scalars['String']['output']>;
+  /** What the paper prints. */
   matrixKind: Maybe<MatrixKind>;
   /** In the order of the matrix. */
   members: Array<SetMemberType>;
+  /** Whether the asking person submitted it. */
   mine: Scalars['Boolean']['output'];
+  /** What else should be known of it. */
   note: Maybe<Scalars['String']['output']>;
   /** FLS-0003 */
   number: Scalars['String']['output'];
+  /** Page on which the matrix stands. */
   page: Maybe<Scalars['String']['output']>;
+  /** Table or figure in which the matrix stands. */
   place: Maybe<Scalars['String']['output']>;
   /** Correlations as printed; null while an entry is open. */
   printedRho: Maybe<Array<Array<Scalars['Float']['output']>>>;
+  /** Name of whoever read the paper a second time. */
   readBy: Maybe<Scalars['String']['output']>;
+  /** State of the set. */
   state: SetState;
+  /** When it was submitted. */
   submittedAt: Maybe<Scalars['DateTimeISO']['output']>;
+  /** Name of whoever submitted it. */
   submittedBy: Scalars['String']['output'];
   /** Lower triangle as printed. */
   triangle: Array<Array<Scalars['String']['output']>>;
+  /** When it was last changed. */
   updatedAt: Scalars['DateTimeISO']['output'];
   /** Correlations as used: turned round where one of two records is an ionized fraction. */
   usedRho: Maybe<Array<Array<Scalars['Float']['output']>>>;
+  /** To be sent back with a change; an older one is refused as stale. */
   version: Scalars['Int']['output'];
+  /** Why it was withdrawn, in words. */
   withdrawnBecause: Maybe<Scalars['String']['output']>;
 };
 
+/** CorrelatedSet; or a Refusal, which says why not in words and by a code. */
 export type CorrelatedSetResult = CorrelatedSet | Refusal;
 
+/** Whether errors contain the scatter between regions of the universe. */
 export type CosmicVariance =
+  /** The printed errors leave it out. */
   | 'excluded'
+  /** The printed errors contain it. */
   | 'included'
+  /** The paper does not say. */
   | 'unknown';
 
+/** Who is credited with a step of a record. */
 export type Credit = {
   __typename?: 'Credit';
+  /** Name as on papers, or the words for a former member. */
   name: Scalars['String']['output'];
   /** Address of the person's page, /people/…; null for an anonymous former member. */
   personId: Maybe<Scalars['ID']['output']>;
 };
 
+/** How the records of somebody who leaves are credited. */
 export type CreditAfterwards =
+  /** To a former member, without a name. */
   | 'anonymous'
+  /** Under the name as on papers. */
   | 'named';
 
+/** Second column of a tabulated curve. */
 export type CurveColumn =
+  /** Probability density, up to a factor. */
   | 'density'
+  /** Natural logarithm of the likelihood, up to a constant. */
   | 'lnLikelihood';
 
+/** What a name of data stands for. */
 export type DataKind =
+  /** An area of the sky. */
   | 'field'
+  /** A sample of objects. */
   | 'sample'
+  /** One line of sight, to a quasar say. */
   | 'sightline'
+  /** Nobody has said yet. */
   | 'unknown';
 
 /** A named thing as another entry points to it. */
 export type DataLink = {
   __typename?: 'DataLink';
+  /** Sightline, field, sample, or not yet known. */
   kind: DataKind;
+  /** Name as papers use it. */
   name: Scalars['String']['output'];
+  /** Its word in addresses. */
   slug: Scalars['String']['output'];
 };
 
+/** How two entries of named data share data. */
 export type DataRelation =
+  /** They share a part. */
   | 'overlaps'
+  /** One is part of the other. */
   | 'subsetOf';
 
+/** A decision taken. */
 export type DecisionInput = {
   /** True for the proposal as it stands. */
   byDefault: Scalars['Boolean']['input'];
+  /** Id of the decision. */
   id: Scalars['String']['input'];
+  /** Code of the option taken. */
   option: Scalars['String']['input'];
+  /** Why, in words; needed where it is not the proposed one. */
   reason?: InputMaybe<Scalars['String']['input']>;
 };
 
 /** What a table has to settle before it is complete. */
 export type DecisionKind =
+  /** Several answers of one paper: one of them, or an equal mixture. */
   | 'alternatives'
+  /** A row is conditioned on data that are in the table as well. */
   | 'conditioned'
+  /** Part of a correlated set is in: its marginal, all, or none. */
   | 'correlatedSet'
+  /** A joint inference contains what other rows stand on. */
   | 'jointInference'
+  /** The paper states no level for its errors or limit. */
   | 'levelNotStated'
+  /** A limit that no form fits without a choice. */
   | 'limitForm'
+  /** A value weighted by mass among values weighted by volume. */
   | 'massWeighted'
+  /** Two rows share data. */
   | 'overlap'
+  /** The numbers stand in a preprint only. */
   | 'preprintOnly'
+  /** The numbers were read off a figure. */
   | 'readOffFigure'
+  /** The record was superseded by another one. */
   | 'superseded';
 
+/** One way to settle a decision. */
 export type DecisionOption = {
   __typename?: 'DecisionOption';
+  /** What to send as option; keep:FL-0003, mixture or level:0.6827, say. */
   code: Scalars['String']['output'];
   /** Goes against a rule: it always needs a reason. */
   override: Scalars['Boolean']['output'];
+  /** What it does, in words. */
   words: Scalars['String']['output'];
 };
 
+/** It worked, and there is nothing else to give back. */
 export type Done = {
   __typename?: 'Done';
+  /** What was done, in words. */
   message: Scalars['String']['output'];
 };
 
+/** Done; or a Refusal, which says why not in words and by a code. */
 export type DoneResult = Done | Refusal;
 
+/** Unit of a duration. */
 export type DurationUnit =
+  /** Millions of Julian years, under the paper's cosmology. */
   | 'myr'
+  /** Difference of redshifts; dimensionless. */
   | 'redshift';
 
+/** An error that a reader reported. */
 export type ErrorReport = {
   __typename?: 'ErrorReport';
   /** Why the viewer can't answer, in words. */
   barredBecause: Maybe<Scalars['String']['output']>;
+  /** The paper of the record. */
   citation: Maybe<Citation>;
+  /** When it was closed. */
   closedAt: Maybe<Scalars['DateTimeISO']['output']>;
+  /** Correcting revision, FL-0042.3. */
   correctedBy: Maybe<Scalars['String']['output']>;
   /** The answer trail, oldest first. */
   entries: Array<ErrorReportEntry>;
+  /** Identifier of the report. */
   id: Scalars['ID']['output'];
   /** Whether answers reach the reporter by mail. */
   mailed: Scalars['Boolean']['output'];
+  /** Number of the report. */
   number: Scalars['String']['output'];
+  /** What became of it; null: open. */
   outcome: Maybe<ReportOutcome>;
+  /** Revision that it is about, FL-0042.3. */
   quotable: Scalars['String']['output'];
+  /** When it was sent. */
   reportedAt: Scalars['DateTimeISO']['output'];
+  /** Where it stands. */
   state: ReportState;
+  /** The report, 10 to 2000 characters. */
   text: Scalars['String']['output'];
+  /** To be sent back with a change; an older one is refused as stale. */
   version: Scalars['Int']['output'];
 };
 
+/** How much work reported errors are. */
 export type ErrorReportCount = {
   __typename?: 'ErrorReportCount';
+  /** Reports that were answered and not yet closed. */
   answered: Scalars['Int']['output'];
+  /** Reports that wait for an answer. */
   open: Scalars['Int']['output'];
 };
 
+/** A message about a report. */
 export type ErrorReportEntry = {
   __typename?: 'ErrorReportEntry';
+  /** When it was written. */
   at: Scalars['DateTimeISO']['output'];
   /** Null for whoever reported it. */
   by: Maybe<Scalars['String']['output']>;
+  /** Identifier of the message. */
   id: Scalars['ID']['output'];
+  /** The message. */
   text: Scalars['String']['output'];
 };
 
+/** ErrorReport; or a Refusal, which says why not in words and by a code. */
 export type ErrorReportResult = ErrorReport | Refusal;
 
+/** The report has reached the editors. */
 export type ErrorReported = {
   __typename?: 'ErrorReported';
+  /** What happens next, in words. */
   message: Scalars['String']['output'];
   /** Opens the page where the answer will stand: /report/… */
   token: Scalars['String']['output'];
 };
 
+/** Which point of its distribution a value is. */
 export type Estimator =
+  /** Maximum of the likelihood. */
   | 'bestFit'
+  /** Mean of the distribution. */
   | 'mean'
+  /** Half of the probability lies on either side. */
   | 'median'
+  /** Where the distribution peaks. */
   | 'mode'
+  /** The paper does not say. */
   | 'notStated';
 
 /** Whatever is left out or empty does not narrow the log. */
@@ -610,6 +934,7 @@ export type EventLogFilterInput = {
   about?: InputMaybe<Scalars['String']['input']>;
   /** First day, as 2031-02-03, in UTC. */
   from?: InputMaybe<Scalars['String']['input']>;
+  /** Kind of event; revision.approved, say. */
   kind?: InputMaybe<Scalars['String']['input']>;
   /** Part of a name or address, or an id. */
   person?: InputMaybe<Scalars['String']['input']>;
@@ -617,8 +942,10 @@ export type EventLogFilterInput = {
   to?: InputMaybe<Scalars['String']['input']>;
 };
 
+/** A page of the event log. */
 export type EventLogPage = {
   __typename?: 'EventLogPage';
+  /** Newest first. */
   events: Array<LoggedEvent>;
   /** Ask again with it as `before`; null: no more. */
   next: Maybe<Scalars['Int']['output']>;
@@ -626,10 +953,14 @@ export type EventLogPage = {
   total: Scalars['Int']['output'];
 };
 
+/** A place in the append-only event log; whoever keeps it can prove later that nothing before it was changed. */
 export type EventMark = {
   __typename?: 'EventMark';
+  /** When the event was written. */
   at: Scalars['DateTimeISO']['output'];
+  /** Hexadecimal SHA-256 of the event, which contains that of the one before. */
   digest: Scalars['String']['output'];
+  /** Number of the event, from 1. */
   sequence: Scalars['Int']['output'];
 };
 
@@ -638,63 +969,100 @@ export type Evidence = {
   __typename?: 'Evidence';
   /** Where the file itself is. */
   address: Maybe<Scalars['String']['output']>;
+  /** Size of the file in bytes. */
   bytes: Scalars['Int']['output'];
+  /** What it shows, in the contributor's words. */
   caption: Maybe<Scalars['String']['output']>;
   /** SHA-256 of its bytes. */
   digest: Scalars['String']['output'];
+  /** Identifier of the file. */
   id: Maybe<Scalars['ID']['output']>;
+  /** Kind of file, found from its bytes. */
   kind: EvidenceKind;
+  /** Name under which it was uploaded. */
   name: Maybe<Scalars['String']['output']>;
+  /** When it was uploaded. */
   uploadedAt: Maybe<Scalars['DateTimeISO']['output']>;
 };
 
+/** Kinds of file that are kept as evidence. */
 export type EvidenceKind =
+  /** Comma-separated text in UTF-8. */
   | 'csv'
+  /** JPEG picture. */
   | 'jpeg'
+  /** PDF document. */
   | 'pdf'
+  /** PNG picture. */
   | 'png';
 
+/** Evidence; or a Refusal, which says why not in words and by a code. */
 export type EvidenceResult = Evidence | Refusal;
 
+/** One field that differs between two revisions. */
 export type FieldChange = {
   __typename?: 'FieldChange';
+  /** What it holds now, as text; null: nothing. */
   after: Maybe<Scalars['String']['output']>;
+  /** What it held before, as text; null: nothing. */
   before: Maybe<Scalars['String']['output']>;
+  /** Name of the field, as in ConstraintFields. */
   field: Scalars['String']['output'];
 };
 
+/** An editor's comment at a field. */
 export type FieldComment = {
   __typename?: 'FieldComment';
+  /** The contributor's answer; null: none yet. */
   answer: Maybe<Scalars['String']['output']>;
+  /** When it was written. */
   at: Scalars['DateTimeISO']['output'];
+  /** Name of the editor. */
   by: Scalars['String']['output'];
+  /** Field that it stands at, as in ConstraintFields. */
   field: Scalars['String']['output'];
+  /** Identifier of the comment. */
   id: Scalars['ID']['output'];
   /** What followed the answer, oldest first. */
   messages: Array<ThreadMessage>;
+  /** The comment. */
   text: Scalars['String']['output'];
 };
 
+/** What the rules say about a statement. */
 export type Finding = {
   __typename?: 'Finding';
+  /** Stable word for the rule. */
   code: Scalars['String']['output'];
+  /** Fields that it concerns. */
   fields: Array<Scalars['String']['output']>;
+  /** How much it weighs. */
   grade: FindingGrade;
+  /** What is wrong or odd, in words. */
   message: Scalars['String']['output'];
 };
 
+/** A contributor's answer to a finding. */
 export type FindingAnswer = {
   __typename?: 'FindingAnswer';
+  /** Whether the editor accepted it. */
   accepted: Scalars['Boolean']['output'];
+  /** The answer in words. */
   answer: Scalars['String']['output'];
+  /** Code of the finding. */
   code: Scalars['String']['output'];
 };
 
+/** How much a finding weighs. */
 export type FindingGrade =
+  /** Can't be submitted as it is. */
   | 'error'
+  /** Goes to the editor together with the contributor's answer. */
   | 'mustAnswer'
+  /** Worth knowing; asks for nothing. */
   | 'note';
 
+/** A saved fitting table, seen at one of its versions: rows, decisions, forms and numbers that never change. */
 export type FittingTable = {
   __typename?: 'FittingTable';
   /** The table that it began as a copy of. */
@@ -703,211 +1071,335 @@ export type FittingTable = {
   constraints: Array<Constraint>;
   /** When the version shown was saved. */
   createdAt: Scalars['DateTimeISO']['output'];
+  /** What the table had to settle, and how it was settled. */
   decisions: Array<TableDecision>;
+  /** Hexadecimal SHA-256 over the RFC 8785 form of the version's JSON content. */
   digest: Scalars['String']['output'];
   /** Every file of the version shown. */
   files: Array<TableFileMark>;
+  /** The recipe's filter in words. */
   filter: Scalars['String']['output'];
+  /** Newest event of the log when the version was saved. */
   lastEvent: EventMark;
   /** The paragraph for a paper's section on methods, in LaTeX with natbib. */
   methods: Maybe<Scalars['String']['output']>;
+  /** Alternatives that count as one equal mixture. */
   mixtures: Array<TableMixture>;
+  /** Name that its owner gave it. */
   name: Scalars['String']['output'];
   /** Whether its owner is told when a release would change it. */
   notify: Scalars['Boolean']['output'];
+  /** Whether it is the asking person's own. */
   ownedByMe: Scalars['Boolean']['output'];
+  /** Name of its owner. */
   owner: Scalars['String']['output'];
   /** To be adapted; null while one of its records is read blind. */
   recipe: Maybe<TableRecipeType>;
   /** Release it pins; null for the latest of its day. */
   release: Maybe<Scalars['Int']['output']>;
+  /** Rows as they were settled, those left out too, in the order of the files. */
   rows: Array<SettledRow>;
+  /** How many rows take part. */
   rowsIn: Scalars['Int']['output'];
+  /** How many rows are left out, each with its reason. */
   rowsOut: Scalars['Int']['output'];
   /** Rows in whose records were superseded, withdrawn, given an erratum or corrected since the table took them. The table itself never changes by it. */
   rowsSince: Array<RowSinceType>;
+  /** Correlated sets of which rows take part. */
   sets: Array<TableCorrelation>;
+  /** Its word in addresses: /api/tables/SLUG@VERSION.json is the pinned file. */
   slug: Scalars['ID']['output'];
   /** The version shown. */
   version: Scalars['Int']['output'];
   /** All versions, newest first. */
   versions: Array<TableVersionMark>;
+  /** Who may see it. */
   visibility: TableVisibility;
 };
 
 
+/** A saved fitting table, seen at one of its versions: rows, decisions, forms and numbers that never change. */
 export type FittingTableConstraintsArgs = {
   limit?: InputMaybe<Scalars['Int']['input']>;
   offset?: InputMaybe<Scalars['Int']['input']>;
 };
 
 
+/** A saved fitting table, seen at one of its versions: rows, decisions, forms and numbers that never change. */
 export type FittingTableRowsArgs = {
   limit?: InputMaybe<Scalars['Int']['input']>;
   offset?: InputMaybe<Scalars['Int']['input']>;
 };
 
+/** FittingTable; or a Refusal, which says why not in words and by a code. */
 export type FittingTableResult = FittingTable | Refusal;
 
+/** Whether an electron fraction counts electrons of helium. */
 export type Helium =
+  /** Electrons of helium are counted; converted by Q = x_e/(1 + f_He). */
   | 'included'
+  /** Only electrons of hydrogen are counted. */
   | 'notIncluded'
+  /** The paper does not say. */
   | 'unknown';
 
+/** A column of the table. */
 export type ImportColumn = {
   __typename?: 'ImportColumn';
+  /** Its head. */
   column: Scalars['String']['output'];
+  /** Field that it seems to be; null: unknown. */
   proposedField: Maybe<Scalars['String']['output']>;
+  /** Its first cells. */
   sample: Array<Scalars['String']['output']>;
 };
 
+/** Which field a column holds. */
 export type ImportColumnMatch = {
+  /** Head of the column. */
   column: Scalars['String']['input'];
+  /** Field, as in ConstraintFields; null: leave the column out. */
   field?: InputMaybe<Scalars['String']['input']>;
 };
 
+/** What an import did. */
 export type ImportDone = {
   __typename?: 'ImportDone';
+  /** Lines whose constraint was already in the registry. */
   alreadyHere: Scalars['Int']['output'];
+  /** Lines that became drafts. */
   created: Scalars['Int']['output'];
+  /** Lines that were not taken. */
   refused: Scalars['Int']['output'];
+  /** Identifiers of the drafts. */
   submissionIds: Array<Scalars['ID']['output']>;
 };
 
+/** A table of constraints and its bibliography, uploaded before (POST /api/uploads). */
 export type ImportInput = {
+  /** Id of the uploaded bibliography. */
   bibUploadId: Scalars['ID']['input'];
+  /** Which column is which field; left out: as proposed or remembered. */
   columns?: InputMaybe<Array<ImportColumnMatch>>;
+  /** Id of the uploaded table. */
   csvUploadId: Scalars['ID']['input'];
+  /** Which printed word is which of the vocabulary. */
   words?: InputMaybe<Array<ImportWordMatch>>;
 };
 
+/** What an import would do. */
 export type ImportPreview = {
   __typename?: 'ImportPreview';
+  /** Lines whose constraint is already in the registry. */
   alreadyHere: Scalars['Int']['output'];
+  /** Columns of the table with their proposed fields. */
   columns: Array<ImportColumn>;
+  /** Lines that would become drafts. */
   good: Scalars['Int']['output'];
+  /** Lines that can't be taken. */
   refused: Scalars['Int']['output'];
+  /** Whether the match of columns is that of an earlier import. */
   remembered: Scalars['Boolean']['output'];
+  /** Line by line. */
   rows: Array<ImportRow>;
+  /** Words to be matched. */
   words: Array<ImportWord>;
 };
 
+/** ImportPreview; or a Refusal, which says why not in words and by a code. */
 export type ImportPreviewResult = ImportPreview | Refusal;
 
+/** Why a line or an entry can't be taken. */
 export type ImportRefusal = {
   __typename?: 'ImportRefusal';
+  /** Column that is at fault, where it is one. */
   column: Maybe<Scalars['String']['output']>;
+  /** Name of the file. */
   file: Scalars['String']['output'];
+  /** Line of the file, from 1. */
   line: Scalars['Int']['output'];
+  /** Reason in words. */
   reason: Scalars['String']['output'];
 };
 
+/** ImportDone; or a Refusal, which says why not in words and by a code. */
 export type ImportResult = ImportDone | Refusal;
 
+/** A line of the table as read. */
 export type ImportRow = {
   __typename?: 'ImportRow';
+  /** First author and year of its paper; null: not found. */
   citationShortName: Maybe<Scalars['String']['output']>;
+  /** As it would be entered. */
   fields: Maybe<ConstraintFields>;
+  /** good, alreadyHere or refused. */
   grade: Scalars['String']['output'];
+  /** Citation key in the line. */
   key: Scalars['String']['output'];
+  /** Line of the file, from 1. */
   line: Scalars['Int']['output'];
+  /** Fields that are still open in it. */
   openFields: Array<Scalars['String']['output']>;
   /** good, refused or already here */
   outcome: Scalars['String']['output'];
+  /** Why it can't be taken, in words. */
   refusals: Array<ImportRefusal>;
 };
 
+/** A word of the table that is none of the vocabulary. */
 export type ImportWord = {
   __typename?: 'ImportWord';
+  /** Words it can stand for. */
   choices: Array<Scalars['String']['output']>;
+  /** Field that it stands in. */
   field: Scalars['String']['output'];
+  /** Word that it seems to be; null: unknown. */
   proposed: Maybe<Scalars['String']['output']>;
+  /** As it stands in the table. */
   word: Scalars['String']['output'];
 };
 
+/** What a word of the table stands for. */
 export type ImportWordMatch = {
+  /** Field that it stands in. */
   field: Scalars['String']['input'];
+  /** Word of the vocabulary; null: leave the field open. */
   value?: InputMaybe<Scalars['String']['input']>;
+  /** As it stands in the table. */
   word: Scalars['String']['input'];
 };
 
+/** KeptCitations; or a Refusal, which says why not in words and by a code. */
 export type KeepCitationsResult = KeptCitations | Refusal;
 
+/** An entry that is now in the registry. */
 export type KeptCitation = {
   __typename?: 'KeptCitation';
+  /** The paper as the registry holds it. */
   citation: Citation;
+  /** False where the paper was already there. */
   created: Scalars['Boolean']['output'];
+  /** Position among the entries of the text, from 0. */
   index: Scalars['Int']['output'];
 };
 
+/** What became of the entries of a bibliography. */
 export type KeptCitations = {
   __typename?: 'KeptCitations';
+  /** Entries that are in the registry now. */
   kept: Array<KeptCitation>;
+  /** Entries that could not be kept, each with its reason. */
   problems: Array<CitationPreview>;
 };
 
 /** A paper that the viewer leaves to other editors. */
 export type LeftPaper = {
   __typename?: 'LeftPaper';
+  /** When it was left. */
   at: Scalars['DateTimeISO']['output'];
+  /** The paper. */
   citation: Citation;
+  /** Why, in the editor's words. */
   reason: Maybe<Scalars['String']['output']>;
 };
 
+/** Probability that an interval holds or that a limit leaves. */
 export type Level =
+  /** The paper states none; a fitting table has to decide. */
   | 'notStated'
+  /** 68.27 %, said as one sigma. */
   | 'oneSigma'
+  /** Another level: see levelPercent. */
   | 'other'
+  /** 68 % as printed (0.99446 sigma). */
   | 'percent68'
+  /** 90 %. */
   | 'percent90'
+  /** 95 %. */
   | 'percent95'
+  /** 95.45 %, said as two sigma. */
   | 'twoSigma';
 
 /** How a statement becomes a likelihood. */
 export type LikelihoodForm =
+  /** 0 inside, (distance/s)² outside, s such that a flat prior puts the level inside. */
   | 'band'
+  /** 0 inside, (distance/w)² outside, w the half-width over k. */
   | 'bandWideTails'
+  /** 0 on the allowed side of the base, ((x - base)/s)² beyond. */
   | 'flatThenGaussian'
+  /** ((q - m)/sigma)², for symmetric errors. */
   | 'gaussian'
+  /** Half a Gaussian about 0 (1 for a lower limit), its width such that the level's share of its area within 0 and 1 is allowed. */
   | 'halfGaussianBounded'
+  /** Half a Gaussian whose width is the limit over k of its level. */
   | 'halfGaussianUnbounded'
+  /** 0 on the allowed side, infinite beyond. */
   | 'hardStep'
+  /** A smooth density whose median and two quantiles are the printed ones; for medians. */
   | 'quantileMatched'
+  /** -2 ln of half the complementary error function: a step smeared by s. */
   | 'smoothedStep'
+  /** ln p linear between the nodes of a printed curve, infinite outside. */
   | 'tabulated'
+  /** Two half-parabolas that meet at the value: ((x - m)/sigma)², a sigma for either side. */
   | 'twoPiece'
+  /** (x - m)² over a variance that grows linearly from one end to the other. */
   | 'variableWidth';
 
+/** How one record stands to another. */
 export type LinkRelation =
+  /** Its value already contains the other one. */
   | 'conditionedOn'
+  /** Corrects its printed numbers by the paper's own erratum. */
   | 'erratumOf'
+  /** Analyses the same data anew. */
   | 'reanalysisOf'
+  /** Its data are part of the other one's. */
   | 'subsetOf'
+  /** Takes its place. */
   | 'supersedes';
 
+/** What an author's link opens at this moment. */
 export type LinkStanding =
+  /** The revision with the answer given, which can still be changed. */
   | 'answered'
+  /** The answer only: the editors have closed the check. */
   | 'closed'
+  /** Nothing: the link has run out. */
   | 'expired'
+  /** Nothing: whoever asks is reading this record blind. */
   | 'hidden'
+  /** The revision and the question. */
   | 'open'
+  /** Nothing: the check was taken back. */
   | 'revoked';
 
+/** One entry of the append-only log. */
 export type LoggedEvent = {
   __typename?: 'LoggedEvent';
+  /** When it was written. */
   at: Scalars['DateTimeISO']['output'];
+  /** Hexadecimal SHA-256 of the event with the digest before it. */
   digest: Scalars['String']['output'];
+  /** Kind of event; revision.approved, say. */
   kind: Scalars['String']['output'];
+  /** Digest of the event before. */
   previousDigest: Scalars['String']['output'];
+  /** What happened, in words. */
   sentence: Scalars['String']['output'];
+  /** Number of the event, from 1. */
   sequence: Scalars['Int']['output'];
+  /** What it happened to; FL-0042.3, say. */
   subject: Scalars['String']['output'];
   /** Null: the program itself. */
   who: Maybe<Scalars['String']['output']>;
 };
 
+/** LookedUpCitation; or a Refusal, which says why not in words and by a code. */
 export type LookUpResult = LookedUpCitation | Refusal;
 
+/** A paper found by its identifier, as BibTeX. */
 export type LookedUpCitation = {
   __typename?: 'LookedUpCitation';
   /** For the preview of pasted BibTeX; nothing is kept yet. */
@@ -928,19 +1420,32 @@ export type MadeApiToken = {
 /** The token with its secret, or why there is none. */
 export type MakeApiTokenResult = MadeApiToken | Refusal;
 
+/** What a paper prints for several values together. */
 export type MatrixKind =
+  /** Correlation coefficients, 1 on the diagonal. */
   | 'correlation'
+  /** Covariances, in the squared unit of the values. */
   | 'covariance';
 
+/** Family of methods; marker and colour of a record in every chart. */
 export type MethodFamily =
+  /** Cosmic microwave background. */
   | 'cmb'
+  /** Damping wing of a quasar, a galaxy or a gamma-ray burst. */
   | 'dampingWing'
+  /** Share of dark pixels in quasar spectra; needs no model. */
   | 'darkPixels'
+  /** Clustering of Lyα emitters and sizes of ionized regions. */
   | 'emitterClustering'
+  /** Opacity of the Lyα forest, dark gaps, near zones, mean free path. */
   | 'forestOpacity'
+  /** Lyα equivalent widths, fraction of emitters, line profiles. */
   | 'lineStrength'
+  /** Evolution of the Lyα luminosity function. */
   | 'luminosityFunction'
+  /** Thermal history, source budget, joint inference. */
   | 'other'
+  /** 21-cm signal of neutral hydrogen. */
   | 'twentyOneCm';
 
 /** A method of the vocabulary that maintainers keep. */
@@ -954,7 +1459,9 @@ export type MethodTag = {
   constraintCount: Scalars['Int']['output'];
   /** One line. */
   definition: Scalars['String']['output'];
+  /** Family that the method belongs to. */
   family: MethodFamily;
+  /** Name of the method in words. */
   name: Scalars['String']['output'];
   /** Its results contain or assume others. */
   neverIndependent: Scalars['Boolean']['output'];
@@ -968,51 +1475,83 @@ export type MethodTag = {
   version: Scalars['Int']['output'];
 };
 
+/** A method of the vocabulary as a maintainer writes it. */
 export type MethodTagInput = {
+  /** Other words by which an import or a search finds it. */
   aliases: Array<Scalars['String']['input']>;
+  /** What every user of such a record should know; one or two sentences. */
   caution: Scalars['String']['input'];
+  /** What the method measures and how; one or two sentences. */
   definition: Scalars['String']['input'];
+  /** Family that it belongs to. */
   family: MethodFamily;
+  /** Name in words. */
   name: Scalars['String']['input'];
+  /** Whether it overlaps with every other row, as a joint inference does. */
   neverIndependent: Scalars['Boolean']['input'];
+  /** Place in lists, from 1. */
   position: Scalars['Int']['input'];
+  /** Its word in addresses and files: lower case with hyphens; it can't be changed later. */
   tag: Scalars['ID']['input'];
 };
 
+/** MethodTag; or a Refusal, which says why not in words and by a code. */
 export type MethodTagResult = MethodTag | Refusal;
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type Mutation = {
   __typename?: 'Mutation';
+  /** Accepts a contributor's answer to a finding. */
   acceptAnswer: ReviewResult;
+  /** Adds a method to the vocabulary. */
   addMethodTag: MethodTagResult;
   /** Takes an author's answer; a later one corrects it until the editors close it. */
   answerAuthorCheck: AuthorAnswerResult;
+  /** Answers the reporter of an error, by mail where an address was left. */
   answerErrorReport: ErrorReportResult;
+  /** Approves a correlated set whose reading agrees. */
   approveSet: DoneResult;
+  /** Approves a submission whose reading agrees in every field. */
   approveSubmission: DoneResult;
+  /** Changes words, family or place of a method. */
   changeMethodTag: MethodTagResult;
+  /** Changes the password; other sessions end. */
   changePassword: DoneResult;
   /** Renames a table of one's own, says who sees it and whether its owner is told. */
   changeTable: FittingTableResult;
+  /** Takes a correlated set for review, for 72 hours. */
   claimSet: SetReviewResult;
+  /** Takes a submission for review, for 72 hours. */
   claimSubmission: ReviewResult;
+  /** Closes an author's check once it is dealt with. */
   closeAuthorCheck: AuthorCheckResult;
+  /** Closes a report with its outcome. */
   closeErrorReport: ErrorReportResult;
+  /** Makes a new address the account's. */
   confirmAddressChange: DoneResult;
+  /** Confirms the address of a new account. */
   confirmEmail: DoneResult;
   /** Reads one differing field again after the comparison; the first reading stays on record. */
   correctReading: ReviewResult;
   /** Reads one differing entry again after the comparison; the first reading stays on record. */
   correctSetReading: SetReviewResult;
+  /** Cuts a release of all approved records, which never changes again. */
   cutRelease: ReleaseResult;
   /** Deletes the account; what the person brought to the registry stays in it. */
   deleteAccount: DoneResult;
+  /** Deletes a table of one's own with all its versions. */
   deleteTable: DoneResult;
+  /** Changes what is said of an evidence file. */
   describeEvidence: EvidenceResult;
+  /** Gives up a draft or a waiting submission. */
   discardDraft: DoneResult;
+  /** Gives up a draft or a waiting correlated set. */
   discardSet: DoneResult;
+  /** Changes an entry of named data. */
   editNamedData: NamedDataResult;
+  /** Gives a person a role. */
   grantRole: PersonResult;
+  /** Gives a claim to another editor. */
   handOverClaim: DoneResult;
   /** Keeps the readable entries; a paper that is already there is found and used. */
   keepCitations: KeepCitationsResult;
@@ -1028,29 +1567,41 @@ export type Mutation = {
   mergeNamedData: NamedDataResult;
   /** Stops or undoes a change of address, by the link that went to the old one. */
   objectToAddressChange: DoneResult;
+  /** Reads an import without entering anything. */
   previewImport: ImportPreviewResult;
   /** A notice on a record; it stays current until a new revision corrects it. */
   recordErratum: RecordLifeResult;
+  /** Opens an account and mails a link to confirm the address. */
   register: DoneResult;
+  /** Says that two entries share data. */
   relateNamedData: NamedDataResult;
+  /** Gives a submission back to the queue. */
   releaseClaim: DoneResult;
+  /** Gives a correlated set back to the queue. */
   releaseSet: DoneResult;
+  /** Takes an evidence file off a draft. */
   removeEvidence: DoneResult;
   /** Starts the hours of one's own claim anew; in its last day only, and twice at most. */
   renewClaim: ReviewResult;
   /** Goes on with a comment's thread while its answer is with the editors; answers with the comment. */
   replyToComment: ThreadResult;
+  /** Adds to one's own report of an error. */
   replyToReport: ReplyResult;
   /** Tells the editors what is wrong with a record; anybody may, without an account. */
   reportError: ReportErrorResult;
   /** Mails a link to the new address; the change is made when it is opened. */
   requestAddressChange: DoneResult;
+  /** Mails a link to choose a new password, if there is such an account. */
   requestPasswordReset: DoneResult;
+  /** Mails the link to confirm an address once more. */
   resendConfirmation: DoneResult;
+  /** Chooses a new password by a mailed link. */
   resetPassword: DoneResult;
   /** Makes a method a word for another one; answers with that one. */
   retireMethodTag: MethodTagResult;
+  /** Sends a correlated set back to its contributor. */
   returnSet: DoneResult;
+  /** Sends a submission back with comments at its fields. */
   returnSubmission: DoneResult;
   /** A new set that answers a return, or corrects an approved or withdrawn one. */
   reviseSet: CorrelatedSetResult;
@@ -1058,48 +1609,69 @@ export type Mutation = {
   reviseSubmission: SubmissionResult;
   /** Ends an API token of one's own, at once and for good; closed to tokens. */
   revokeApiToken: DoneResult;
+  /** Takes a check back; its link opens nothing from then on. */
   revokeAuthorCheck: AuthorCheckResult;
+  /** Takes a role from a person. */
   revokeRole: PersonResult;
+  /** Enters the good lines of an import as drafts. */
   runImport: ImportResult;
+  /** Keeps a draft as it stands; fields may be open. */
   saveDraft: SubmissionResult;
   /** Saves a complete table, or a new version of one's own. */
   saveRecipe: FittingTableResult;
+  /** Keeps a draft of a correlated set; entries may be open. */
   saveSet: CorrelatedSetResult;
   /** Mails an author of the paper a link that shows the revision; the link is in the mail only. */
   sendAuthorCheck: AuthorCheckResult;
+  /** Starts a session, kept in a cookie. */
   signIn: SignInResult;
+  /** Ends this session. */
   signOut: Done;
   /** Ends every session of this person, this one included. */
   signOutEverywhere: Done;
   /** Starts a record with a first draft; from another submission it keeps the citation and its context. */
   startDraft: SubmissionResult;
+  /** Starts a correlated set of a paper's records. */
   startSet: CorrelatedSetResult;
+  /** Stores an editor's second reading; only then the submission is shown. */
   storeReading: ReviewResult;
+  /** Stores an editor's reading of a matrix; only then the submission is shown. */
   storeSetReading: SetReviewResult;
+  /** Submits a draft for a second reading. */
   submitDraft: SubmissionResult;
+  /** Submits a correlated set for a second reading. */
   submitSet: CorrelatedSetResult;
+  /** Says that another record takes the place of this one. */
   supersedeRecord: RecordLifeResult;
+  /** Reads a paper after all that one had left to others. */
   takePaperBack: DoneResult;
   /** Keeps which points of the checklist are ticked: these and no others. */
   tickChecklist: ReviewResult;
+  /** Takes back that two entries share data. */
   unrelateNamedData: NamedDataResult;
+  /** Changes name, further names and ORCID iD. */
   updateProfile: ViewerResult;
+  /** Takes a record out of use; it stays readable at its address. */
   withdrawRecord: RecordLifeResult;
+  /** Takes an approved correlated set out of use. */
   withdrawSet: DoneResult;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationAcceptAnswerArgs = {
   code: Scalars['String']['input'];
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationAddMethodTagArgs = {
   input: MethodTagInput;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationAnswerAuthorCheckArgs = {
   text?: InputMaybe<Scalars['String']['input']>;
   token: Scalars['String']['input'];
@@ -1108,6 +1680,7 @@ export type MutationAnswerAuthorCheckArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationAnswerErrorReportArgs = {
   id: Scalars['ID']['input'];
   text: Scalars['String']['input'];
@@ -1115,6 +1688,7 @@ export type MutationAnswerErrorReportArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationApproveSetArgs = {
   acceptedAnswers: Array<Scalars['String']['input']>;
   note?: InputMaybe<Scalars['String']['input']>;
@@ -1123,6 +1697,7 @@ export type MutationApproveSetArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationApproveSubmissionArgs = {
   id: Scalars['ID']['input'];
   note?: InputMaybe<Scalars['String']['input']>;
@@ -1130,18 +1705,21 @@ export type MutationApproveSubmissionArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationChangeMethodTagArgs = {
   input: MethodTagInput;
   version: Scalars['Int']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationChangePasswordArgs = {
   current: Scalars['String']['input'];
   next: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationChangeTableArgs = {
   name: Scalars['String']['input'];
   notify: Scalars['Boolean']['input'];
@@ -1150,16 +1728,19 @@ export type MutationChangeTableArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationClaimSetArgs = {
   number: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationClaimSubmissionArgs = {
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationCloseAuthorCheckArgs = {
   id: Scalars['ID']['input'];
   text?: InputMaybe<Scalars['String']['input']>;
@@ -1167,21 +1748,25 @@ export type MutationCloseAuthorCheckArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationCloseErrorReportArgs = {
   input: CloseReportInput;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationConfirmAddressChangeArgs = {
   token: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationConfirmEmailArgs = {
   token: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationCorrectReadingArgs = {
   field: Scalars['String']['input'];
   id: Scalars['ID']['input'];
@@ -1190,92 +1775,108 @@ export type MutationCorrectReadingArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationCorrectSetReadingArgs = {
   entry: SetEntryInput;
   number: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationCutReleaseArgs = {
   notes: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationDeleteAccountArgs = {
   credit: CreditAfterwards;
   password: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationDeleteTableArgs = {
   slug: Scalars['ID']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationDescribeEvidenceArgs = {
   caption: Scalars['String']['input'];
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationDiscardDraftArgs = {
   id: Scalars['ID']['input'];
   version: Scalars['Int']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationDiscardSetArgs = {
   number: Scalars['String']['input'];
   version: Scalars['Int']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationEditNamedDataArgs = {
   input: NamedDataInput;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationGrantRoleArgs = {
   personId: Scalars['ID']['input'];
   role: Role;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationHandOverClaimArgs = {
   editorId: Scalars['ID']['input'];
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationKeepCitationsArgs = {
   bibtex: Scalars['String']['input'];
   indices?: InputMaybe<Array<Scalars['Int']['input']>>;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationLeavePaperArgs = {
   citationId: Scalars['ID']['input'];
   reason?: InputMaybe<Scalars['String']['input']>;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationLiftNoticeArgs = {
   notice: Scalars['ID']['input'];
   reason: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationLookUpCitationArgs = {
   identifier: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationMakeApiTokenArgs = {
   input: ApiTokenInput;
   password: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationMergeNamedDataArgs = {
   into: Scalars['ID']['input'];
   slug: Scalars['ID']['input'];
@@ -1283,22 +1884,26 @@ export type MutationMergeNamedDataArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationObjectToAddressChangeArgs = {
   token: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationPreviewImportArgs = {
   input: ImportInput;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationRecordErratumArgs = {
   number: Scalars['String']['input'];
   reason: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationRegisterArgs = {
   email: Scalars['String']['input'];
   nameOnPapers: Scalars['String']['input'];
@@ -1306,6 +1911,7 @@ export type MutationRegisterArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationRelateNamedDataArgs = {
   other: Scalars['ID']['input'];
   relation: DataRelation;
@@ -1313,38 +1919,45 @@ export type MutationRelateNamedDataArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationReleaseClaimArgs = {
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationReleaseSetArgs = {
   number: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationRemoveEvidenceArgs = {
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationRenewClaimArgs = {
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationReplyToCommentArgs = {
   commentId: Scalars['ID']['input'];
   text: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationReplyToReportArgs = {
   text: Scalars['String']['input'];
   token: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationReportErrorArgs = {
   email?: InputMaybe<Scalars['String']['input']>;
   number: Scalars['String']['input'];
@@ -1352,28 +1965,33 @@ export type MutationReportErrorArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationRequestAddressChangeArgs = {
   email: Scalars['String']['input'];
   password: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationRequestPasswordResetArgs = {
   email: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationResendConfirmationArgs = {
   email: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationResetPasswordArgs = {
   next: Scalars['String']['input'];
   token: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationRetireMethodTagArgs = {
   into: Scalars['ID']['input'];
   tag: Scalars['ID']['input'];
@@ -1381,6 +1999,7 @@ export type MutationRetireMethodTagArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationReturnSetArgs = {
   comment: Scalars['String']['input'];
   number: Scalars['String']['input'];
@@ -1388,6 +2007,7 @@ export type MutationReturnSetArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationReturnSubmissionArgs = {
   comments: Array<ReturnComment>;
   id: Scalars['ID']['input'];
@@ -1396,87 +2016,103 @@ export type MutationReturnSubmissionArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationReviseSetArgs = {
   number: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationReviseSubmissionArgs = {
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationRevokeApiTokenArgs = {
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationRevokeAuthorCheckArgs = {
   id: Scalars['ID']['input'];
   version: Scalars['Int']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationRevokeRoleArgs = {
   personId: Scalars['ID']['input'];
   role: Role;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationRunImportArgs = {
   input: ImportInput;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationSaveDraftArgs = {
   input: SaveDraftInput;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationSaveRecipeArgs = {
   input: SaveRecipeInput;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationSaveSetArgs = {
   input: SaveSetInput;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationSendAuthorCheckArgs = {
   input: SendAuthorCheckInput;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationSignInArgs = {
   email: Scalars['String']['input'];
   password: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationStartDraftArgs = {
   citationId?: InputMaybe<Scalars['ID']['input']>;
   fromSubmissionId?: InputMaybe<Scalars['ID']['input']>;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationStartSetArgs = {
   input: StartSetInput;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationStoreReadingArgs = {
   id: Scalars['ID']['input'];
   reading: ReadingInput;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationStoreSetReadingArgs = {
   number: Scalars['String']['input'];
   reading: SetReadingInput;
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationSubmitDraftArgs = {
   agreeToLicence: Scalars['Boolean']['input'];
   id: Scalars['ID']['input'];
@@ -1484,6 +2120,7 @@ export type MutationSubmitDraftArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationSubmitSetArgs = {
   agreeToLicence: Scalars['Boolean']['input'];
   number: Scalars['String']['input'];
@@ -1491,6 +2128,7 @@ export type MutationSubmitSetArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationSupersedeRecordArgs = {
   number: Scalars['String']['input'];
   reason: Scalars['String']['input'];
@@ -1498,23 +2136,27 @@ export type MutationSupersedeRecordArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationTakePaperBackArgs = {
   citationId: Scalars['ID']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationTickChecklistArgs = {
   codes: Array<Scalars['String']['input']>;
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationUnrelateNamedDataArgs = {
   other: Scalars['ID']['input'];
   slug: Scalars['ID']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationUpdateProfileArgs = {
   furtherNames?: InputMaybe<Array<Scalars['String']['input']>>;
   nameOnPapers: Scalars['String']['input'];
@@ -1522,12 +2164,14 @@ export type MutationUpdateProfileArgs = {
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationWithdrawRecordArgs = {
   number: Scalars['String']['input'];
   reason: Scalars['String']['input'];
 };
 
 
+/** What can be changed. An outcome that can be expected is part of the answer: a Refusal with its reason. */
 export type MutationWithdrawSetArgs = {
   number: Scalars['String']['input'];
   reason: Scalars['String']['input'];
@@ -1547,15 +2191,21 @@ export type NamedData = {
   contains: Array<DataLink>;
   /** Degrees, J2000. */
   dec: Maybe<Scalars['String']['output']>;
+  /** Range or area that it covers, in words. */
   extent: Maybe<Scalars['String']['output']>;
+  /** Sightline, field, sample, or not yet known. */
   kind: DataKind;
+  /** Name as papers use it. */
   name: Scalars['String']['output'];
+  /** What else should be known of it. */
   note: Maybe<Scalars['String']['output']>;
+  /** Entries that share part of their data with it. */
   overlaps: Array<DataLink>;
   /** Degrees, J2000. */
   ra: Maybe<Scalars['String']['output']>;
   /** The same, as 07h12m04.80s +05°30′00.0″. */
   sexagesimal: Maybe<Scalars['String']['output']>;
+  /** Its word in addresses. */
   slug: Scalars['ID']['output'];
   /** What it is a part of. */
   subsetOf: Array<DataLink>;
@@ -1563,107 +2213,169 @@ export type NamedData = {
   version: Scalars['Int']['output'];
 };
 
+/** An entry of named data as it shall stand. */
 export type NamedDataInput = {
+  /** Other names under which papers know it. */
   aliases: Array<Scalars['String']['input']>;
+  /** Declination of a sightline or field centre, degrees or sexagesimal, J2000. */
   dec?: InputMaybe<Scalars['String']['input']>;
+  /** Range or area that it covers, in words. */
   extent?: InputMaybe<Scalars['String']['input']>;
+  /** Sightline, field, sample, or not yet known. */
   kind: DataKind;
+  /** Name as papers use it. */
   name: Scalars['String']['input'];
+  /** What else should be known of it. */
   note?: InputMaybe<Scalars['String']['input']>;
+  /** Right ascension of a sightline or field centre, degrees or sexagesimal hours, J2000. */
   ra?: InputMaybe<Scalars['String']['input']>;
+  /** Entry to change. */
   slug: Scalars['ID']['input'];
+  /** Version last read of the entry; another one is refused as stale. */
   version: Scalars['Int']['input'];
 };
 
+/** NamedData; or a Refusal, which says why not in words and by a code. */
 export type NamedDataResult = NamedData | Refusal;
 
+/** What a notice says of a record. */
 export type NoticeKind =
+  /** Something in it is wrong; a new revision is to correct it. */
   | 'erratum'
+  /** Another record takes its place. */
   | 'superseded'
+  /** It is taken out of use. */
   | 'withdrawn';
 
 /** An editor who can take a submission over. */
 export type OtherEditor = {
   __typename?: 'OtherEditor';
+  /** Identifier of the person. */
   id: Scalars['ID']['output'];
+  /** Name as on papers. */
   nameOnPapers: Scalars['String']['output'];
 };
 
+/** A bibliography entry as read, before it is kept. */
 export type ParsedCitation = {
   __typename?: 'ParsedCitation';
+  /** arXiv number found in it, without version. */
   arxiv: Maybe<Scalars['String']['output']>;
+  /** Names in the order of the entry, family name first. */
   authors: Array<Scalars['String']['output']>;
+  /** Nineteen-character bibliographic code found in it. */
   bibcode: Maybe<Scalars['String']['output']>;
+  /** Journal or book, macros written out. */
   container: Maybe<Scalars['String']['output']>;
+  /** Digital object identifier found in it, in lower case. */
   doi: Maybe<Scalars['String']['output']>;
+  /** BibTeX type of the entry, in lower case. */
   entryType: Scalars['String']['output'];
+  /** Citation key that the registry would give it. */
   key: Scalars['String']['output'];
+  /** Pages or article number as printed. */
   pages: Maybe<Scalars['String']['output']>;
+  /** First author and year, as a text would cite it. */
   shortName: Scalars['String']['output'];
+  /** Title as plain text. */
   title: Scalars['String']['output'];
+  /** Volume as printed. */
   volume: Maybe<Scalars['String']['output']>;
+  /** Year of publication. */
   year: Maybe<Scalars['Int']['output']>;
 };
 
+/** An account as maintainers see it. */
 export type Person = {
   __typename?: 'Person';
+  /** Whether the address was confirmed. */
   confirmed: Scalars['Boolean']['output'];
+  /** Address of the account. */
   email: Scalars['String']['output'];
+  /** Identifier of the person. */
   id: Scalars['ID']['output'];
+  /** Name as on papers. */
   nameOnPapers: Scalars['String']['output'];
+  /** When the account was opened. */
   registeredAt: Scalars['DateTimeISO']['output'];
+  /** Roles granted. */
   roles: Array<Role>;
 };
 
+/** What a person has brought to the registry. */
 export type PersonCredit = {
   __typename?: 'PersonCredit';
   /** Records this person entered, newest first. */
   entered: Array<Constraint>;
+  /** Records entered and approved. */
   enteredTotal: Scalars['Int']['output'];
   /** True for who has deleted the account. */
   former: Scalars['Boolean']['output'];
+  /** Identifier of the person. */
   id: Scalars['ID']['output'];
+  /** Name as on papers. */
   nameOnPapers: Scalars['String']['output'];
+  /** ORCID iD with hyphens. */
   orcid: Maybe<Scalars['String']['output']>;
   /** Records of which this person did a second reading that was approved. */
   read: Array<Constraint>;
+  /** Records read a second time and approved. */
   readTotal: Scalars['Int']['output'];
   /** First approval of something this person entered or read. */
   since: Scalars['DateTimeISO']['output'];
 };
 
+/** Person; or a Refusal, which says why not in words and by a code. */
 export type PersonResult = Person | Refusal;
 
+/** An approved revision of a record. */
 export type PublicRevision = {
   __typename?: 'PublicRevision';
+  /** When it was decided. */
   at: Scalars['DateTimeISO']['output'];
+  /** What it changed against the revision before. */
   changes: Array<FieldChange>;
+  /** Who entered it. */
   enteredBy: Credit;
+  /** Number of the revision, from 1. */
   ordinal: Scalars['Int']['output'];
+  /** Who read the paper a second time. */
   readBy: Credit;
+  /** State of the revision. */
   state: RevisionState;
 };
 
+/** What a record constrains. */
 export type Quantity =
+  /** How long the mean fraction takes from one value to another. */
   | 'duration'
+  /** Mean neutral fraction of hydrogen x at a redshift, 0 to 1. */
   | 'neutralFraction'
+  /** Thomson optical depth to the last scattering, from z = 0 on; dimensionless. */
   | 'opticalDepth'
+  /** Thomson optical depth between two redshifts; dimensionless. */
   | 'opticalDepthRange'
+  /** Redshift at which the mean fraction has a given value. */
   | 'redshiftAtFraction';
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type Query = {
   __typename?: 'Query';
   /** The signed-in person's API tokens, newest first; closed to tokens. */
   apiTokens: Array<ApiToken>;
+  /** One check by an author; for editors and whoever sent it. */
   authorCheck: Maybe<AuthorCheck>;
   /** What an author's link opens; null for a made-up link. */
   authorCheckByLink: Maybe<AuthorCheckPage>;
   /** Checks by authors; comments that wait stand first, the oldest on top. */
   authorChecks: Array<AuthorCheck>;
+  /** Mails of the demonstration, newest first; empty elsewhere. */
   caughtMails: Array<CaughtMail>;
   /** Findings for fields not yet saved; needs the registry (near-duplicates, medians). */
   checkFields: Array<Finding>;
+  /** One approved record, withdrawn ones too; null where there is none. */
   constraint: Maybe<Constraint>;
+  /** Approved records by position in the list. */
   constraints: ConstraintPage;
   /** An approved or withdrawn set, or one that this person submitted or has read. */
   correlatedSet: Maybe<CorrelatedSet>;
@@ -1677,6 +2389,7 @@ export type Query = {
   eventLog: EventLogPage;
   /** Files of a revision (FL-0042.3), or of a record's approved one (FL-0042). */
   evidence: Array<Evidence>;
+  /** One saved table; null where there is none that the asking person may see. */
   fittingTable: Maybe<FittingTable>;
   /** Public tables and one's own, newest first. */
   fittingTables: Array<FittingTable>;
@@ -1684,34 +2397,49 @@ export type Query = {
   handOverList: Array<OtherEditor>;
   /** Every method, retired ones too, by place. The list is short. */
   methodVocabulary: Array<MethodTag>;
+  /** A paper that one's own drafts use, or that is public. */
   myCitation: Maybe<Citation>;
+  /** Correlated sets of one's own, newest first. */
   mySets: Array<CorrelatedSet>;
+  /** Drafts and submissions of one's own, last changed first. */
   mySubmissions: Array<Submission>;
+  /** One entry of named data; by an alias' old address too. */
   namedData: Maybe<NamedData>;
   /** Sightlines, fields and samples, by name. */
   namedDataList: Array<NamedData>;
   /** Papers that one leaves to other editors. */
   papersLeft: Array<LeftPaper>;
+  /** Accounts, for maintainers. */
   people: Array<Person>;
   /** A contributor's or an editor's page; null for who has brought nothing yet. */
   personCredit: Maybe<PersonCredit>;
+  /** Reads a bibliography without keeping it. */
   previewCitations: Array<CitationPreview>;
+  /** Submissions that wait for a second reading, the oldest first. */
   queue: Array<QueueItem>;
+  /** What was recorded about a record since its approval, for maintainers. */
   recordLife: Maybe<RecordLife>;
+  /** One release; null where there is none. */
   release: Maybe<Release>;
   /** What changed from one release to another, in the order of record numbers. */
   releaseDifference: ReleaseDifference;
+  /** What a release would hold now, and what speaks against cutting it. */
   releaseReadiness: ReleaseReadiness;
   /** All releases, newest first. */
   releases: Array<Release>;
   /** By the token of a reporter's link. */
   reportedError: Maybe<ReportedError>;
+  /** A submission that the asking editor has claimed. */
   review: Maybe<Review>;
+  /** Who asks, and what the client needs to begin. */
   session: Session;
   /** Records of a paper for a set: approved ones, and submissions of one's own; each with why it can't join. */
   setCandidates: Array<SetMemberType>;
+  /** Correlated sets that wait for a second reading, the oldest first. */
   setQueue: Array<SetQueueItem>;
+  /** A set that the asking editor has claimed. */
   setReview: Maybe<SetReview>;
+  /** A draft or submission of one's own. */
   submission: Maybe<Submission>;
   /** What the newest release, or the records of now, would make of a table. */
   tableChanges: Maybe<TableChanges>;
@@ -1722,21 +2450,25 @@ export type Query = {
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryAuthorCheckArgs = {
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryAuthorCheckByLinkArgs = {
   token: Scalars['String']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryAuthorChecksArgs = {
   text?: InputMaybe<Scalars['String']['input']>;
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryCheckFieldsArgs = {
   citationId?: InputMaybe<Scalars['ID']['input']>;
   fields: ConstraintFieldsInput;
@@ -1744,11 +2476,13 @@ export type QueryCheckFieldsArgs = {
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryConstraintArgs = {
   number: Scalars['String']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryConstraintsArgs = {
   filter?: InputMaybe<ConstraintFilter>;
   limit?: InputMaybe<Scalars['Int']['input']>;
@@ -1757,27 +2491,32 @@ export type QueryConstraintsArgs = {
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryCorrelatedSetArgs = {
   number: Scalars['String']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryCorrelatedSetsArgs = {
   member?: InputMaybe<Scalars['String']['input']>;
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryErrorReportArgs = {
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryErrorReportsArgs = {
   state?: InputMaybe<ReportState>;
   text?: InputMaybe<Scalars['String']['input']>;
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryEventLogArgs = {
   before?: InputMaybe<Scalars['Int']['input']>;
   filter?: InputMaybe<EventLogFilterInput>;
@@ -1785,104 +2524,124 @@ export type QueryEventLogArgs = {
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryEvidenceArgs = {
   number: Scalars['String']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryFittingTableArgs = {
   slug: Scalars['ID']['input'];
   version?: InputMaybe<Scalars['Int']['input']>;
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryHandOverListArgs = {
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryMyCitationArgs = {
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryNamedDataArgs = {
   slug: Scalars['ID']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryNamedDataListArgs = {
   kind?: InputMaybe<DataKind>;
   text?: InputMaybe<Scalars['String']['input']>;
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryPeopleArgs = {
   text?: InputMaybe<Scalars['String']['input']>;
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryPersonCreditArgs = {
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryPreviewCitationsArgs = {
   bibtex: Scalars['String']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryRecordLifeArgs = {
   number: Scalars['String']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryReleaseArgs = {
   number: Scalars['Int']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryReleaseDifferenceArgs = {
   from: Scalars['Int']['input'];
   to: Scalars['Int']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryReportedErrorArgs = {
   token: Scalars['String']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryReviewArgs = {
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QuerySetCandidatesArgs = {
   citationId: Scalars['ID']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QuerySetReviewArgs = {
   number: Scalars['String']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QuerySubmissionArgs = {
   id: Scalars['ID']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryTableChangesArgs = {
   slug: Scalars['ID']['input'];
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryTableProposalArgs = {
   recipe: TableInput;
 };
 
 
+/** What can be read. Whatever the asking person may not see is answered as if it did not exist. */
 export type QueryTableSurroundingsArgs = {
   filter?: InputMaybe<ConstraintFilter>;
 };
@@ -1892,118 +2651,207 @@ export type QueueItem = {
   __typename?: 'QueueItem';
   /** Why this person can't claim it, or null. */
   barredBecause: Maybe<Scalars['String']['output']>;
+  /** The paper to read. */
   citation: Citation;
+  /** Whether the asking editor holds it. */
   claimedByMe: Scalars['Boolean']['output'];
+  /** When the claim ends; null: nobody holds it. */
   claimedUntil: Maybe<Scalars['DateTimeISO']['output']>;
+  /** Identifier of the submission. */
   id: Scalars['ID']['output'];
   /** Whether this person leaves the paper to other editors. */
   leftToOthers: Scalars['Boolean']['output'];
   /** Why one's own claim can't be lengthened now; null when it can, or is not one's own. */
   notRenewable: Maybe<Scalars['String']['output']>;
+  /** Number of the record, FL-0042. */
   number: Scalars['String']['output'];
+  /** Number of the revision, from 1. */
   ordinal: Scalars['Int']['output'];
+  /** Page on which the value stands. */
   page: Maybe<Scalars['String']['output']>;
+  /** Table or figure in which the value stands. */
   place: Maybe<Scalars['String']['output']>;
+  /** State of the revision. */
   state: RevisionState;
+  /** When it was submitted. */
   submittedAt: Scalars['DateTimeISO']['output'];
+  /** To be sent back with a decision; an older one is refused as stale. */
   version: Scalars['Int']['output'];
+  /** Version of the paper to read. */
   versionRead: Maybe<VersionRead>;
 };
 
 /** What an editor reads in the paper. Of a tabulated curve the rows are not typed again: their number, the first and the last value and that of the highest row are. */
 export type ReadingInput = {
+  /** Label shared by several answers of one paper to one question; they are never multiplied. */
   alternativesGroup?: InputMaybe<Scalars['String']['input']>;
+  /** Whether the authors prefer this one of several alternatives. */
   alternativesPreferred?: InputMaybe<Scalars['Boolean']['input']>;
+  /** Upper end of a band, in the unit of the value, as typed. */
   bandHigh?: InputMaybe<Scalars['String']['input']>;
+  /** Lower end of a band, in the unit of the value, as typed. */
   bandLow?: InputMaybe<Scalars['String']['input']>;
+  /** What the value already contains: numbers of records (FL-0012) or kinds of data (cmb, lymanAlpha, luminosityFunction, twentyOneCm). */
   conditionedOn?: InputMaybe<Array<Scalars['String']['input']>>;
+  /** Whether the printed errors include cosmic variance. */
   cosmicVariance?: InputMaybe<CosmicVariance>;
+  /** What the second column of a tabulated curve holds. */
   curveColumn?: InputMaybe<CurveColumn>;
+  /** First value of the curve's first column, as printed. */
   curveFirst?: InputMaybe<Scalars['String']['input']>;
+  /** Last value of the curve's first column, as printed. */
   curveLast?: InputMaybe<Scalars['String']['input']>;
+  /** Value in the first column where the curve is highest, as printed. */
   curvePeak?: InputMaybe<Scalars['String']['input']>;
+  /** How many rows the printed curve has. */
   curveRows?: InputMaybe<Scalars['String']['input']>;
+  /** A tabulated curve as CSV text of two columns: the value as printed, then probability density or ln L. */
   curveTable?: InputMaybe<Scalars['String']['input']>;
+  /** False where the paper does not say which data it used: unknown is a value, not an empty list. Null: not answered yet. */
   dataKnown?: InputMaybe<Scalars['Boolean']['input']>;
+  /** Named sightlines, fields and samples that the value was measured on. */
   dataUsed?: InputMaybe<Array<Scalars['String']['input']>>;
+  /** Error of reading off the figure, in the unit of the value, as typed. */
   digitizingError?: InputMaybe<Scalars['String']['input']>;
+  /** Unit of a duration: redshift, or millions of years. */
   durationUnit?: InputMaybe<DurationUnit>;
+  /** Numbers of records whose printed numbers the paper's own erratum corrects here. */
   erratumOf?: InputMaybe<Array<Scalars['String']['input']>>;
+  /** Which point of the distribution the printed value is. */
   estimator?: InputMaybe<Estimator>;
+  /** Fraction that a redshift is given for, in the printed species, 0 to 1, as typed. */
   fraction?: InputMaybe<Scalars['String']['input']>;
+  /** Fraction at which a duration begins, in the printed species, 0 to 1, as typed; 0.75 of neutral hydrogen, say. */
   fractionFrom?: InputMaybe<Scalars['String']['input']>;
+  /** Fraction at which a duration ends, in the printed species, 0 to 1, as typed. */
   fractionTo?: InputMaybe<Scalars['String']['input']>;
+  /** Further intervals that the same paper prints for it, in words. */
   furtherIntervals?: InputMaybe<Scalars['String']['input']>;
+  /** Whether a printed electron fraction counts electrons of helium. */
   helium?: InputMaybe<Helium>;
+  /** How electrons of helium were counted in an optical depth, in words. */
   heliumAssumed?: InputMaybe<Scalars['String']['input']>;
+  /** Family of histories with which an optical depth or a duration was derived, in words. */
   historyAssumed?: InputMaybe<Scalars['String']['input']>;
+  /** Shape of the statement: two-sided value, limit, band, curve, or words only. */
   kind?: InputMaybe<StatementKind>;
+  /** Credible or confidence level of the printed errors, limit or band. */
   level?: InputMaybe<Level>;
+  /** Level in percent, as typed, where it is none of the usual ones; 99.7, say. */
   levelPercent?: InputMaybe<Scalars['String']['input']>;
+  /** Value from which a limit's own sigma is counted, as typed; below it (above it for a lower limit) the likelihood is flat. */
   limitBase?: InputMaybe<Scalars['String']['input']>;
+  /** Sigma that the paper gives for a limit, in the unit of the value, as typed. */
   limitSigma?: InputMaybe<Scalars['String']['input']>;
+  /** Methods, by tags of the method vocabulary; the families follow from them. */
   methodTags?: InputMaybe<Array<Scalars['String']['input']>>;
+  /** Downward error in the unit of the value, as typed, without sign. */
   minus?: InputMaybe<Scalars['String']['input']>;
+  /** Models and simulations that the value depends on, by name. */
   modelTags?: InputMaybe<Array<Scalars['String']['input']>>;
+  /** Page on which it stands. */
   page?: InputMaybe<Scalars['String']['input']>;
+  /** Where it stands in the paper: table and row, figure, section. */
   place?: InputMaybe<Scalars['String']['input']>;
+  /** Upward error in the unit of the value, as typed, without sign. */
   plus?: InputMaybe<Scalars['String']['input']>;
+  /** Number of the preprint's version, 2 for v2, where a preprint was read. */
   preprintVersion?: InputMaybe<Scalars['String']['input']>;
+  /** The sentence or table cell of the paper, letter by letter; at most 300 characters. */
   printedText?: InputMaybe<Scalars['String']['input']>;
+  /** Shape of the prior that the paper used, in words; flat, say. */
   priorForm?: InputMaybe<Scalars['String']['input']>;
+  /** Range of that prior, in words. */
   priorRange?: InputMaybe<Scalars['String']['input']>;
+  /** Variable in which that prior is given; the fraction or its logarithm, say. */
   priorVariable?: InputMaybe<Scalars['String']['input']>;
+  /** What is constrained; decides which of the other fields apply. */
   quantity?: InputMaybe<Quantity>;
+  /** Upper end of the redshift range of an optical depth, as typed. */
   rangeHigh?: InputMaybe<Scalars['String']['input']>;
+  /** Lower end of the redshift range of an optical depth, as typed. */
   rangeLow?: InputMaybe<Scalars['String']['input']>;
+  /** Whether the numbers were read off a figure instead of text or a table. */
   readOffFigure?: InputMaybe<Scalars['Boolean']['input']>;
+  /** Numbers of records of the same data, which are analysed anew here. */
   reanalysisOf?: InputMaybe<Array<Scalars['String']['input']>>;
+  /** What else whoever uses it should know, in words. */
   remark?: InputMaybe<Scalars['String']['input']>;
+  /** Whether the fraction is printed itself or as its decimal logarithm. */
   scale?: InputMaybe<Scale>;
+  /** Which fraction of hydrogen the paper prints: neutral, ionized, or electrons per hydrogen. The registry converts to neutral. */
   species?: InputMaybe<Species>;
+  /** Numbers of records whose data contain those of this one. */
   subsetOf?: InputMaybe<Array<Scalars['String']['input']>>;
+  /** Numbers of records that this one takes the place of once it is approved. */
   supersedes?: InputMaybe<Array<Scalars['String']['input']>>;
+  /** Where the history or the integral was cut off, in words. */
   truncationAssumed?: InputMaybe<Scalars['String']['input']>;
+  /** Value of a two-sided statement, or the limit, in the printed species and scale, as typed (0.30 keeps its zero). */
   value?: InputMaybe<Scalars['String']['input']>;
+  /** Which version of the paper the numbers were read from. */
   versionRead?: InputMaybe<VersionRead>;
+  /** Whether the mean over space is weighted by volume or by mass. */
   weighting?: InputMaybe<Weighting>;
+  /** Redshift of the value, as typed: centre of a bin, mean of a sample, or the point itself. */
   z?: InputMaybe<Scalars['String']['input']>;
+  /** Upper end of the bin, of the uncertainty or of the sample in redshift, as typed. */
   zHigh?: InputMaybe<Scalars['String']['input']>;
+  /** Lower end of the bin, of the uncertainty or of the sample in redshift, as typed. */
   zLow?: InputMaybe<Scalars['String']['input']>;
+  /** What the redshift and its ends mean; decides what a history is asked for. */
   zRole?: InputMaybe<RedshiftRole>;
 };
 
+/** A decision as the recipe keeps it. */
 export type RecipeDecision = {
   __typename?: 'RecipeDecision';
+  /** Whether the proposal was taken without a person's word. */
   byDefault: Scalars['Boolean']['output'];
+  /** Id of the decision. */
   id: Scalars['String']['output'];
+  /** Code of the option taken. */
   option: Scalars['String']['output'];
+  /** Why, in words. */
   reason: Maybe<Scalars['String']['output']>;
 };
 
+/** A row whose form or redshift a person chose. */
 export type RecipeForm = {
   __typename?: 'RecipeForm';
+  /** Form chosen; null: the default. */
   form: Maybe<LikelihoodForm>;
+  /** Number of the row's record, FL-0042. */
   number: Scalars['String']['output'];
+  /** Why, in words. */
   reason: Scalars['String']['output'];
+  /** Treatment of the redshift chosen; null: the one that follows from its role. */
   redshift: Maybe<RedshiftTreatment>;
+  /** Sigma of a smoothed step, in the unit of the quantity. */
   smoothing: Maybe<Scalars['Float']['output']>;
 };
 
+/** A row that a person left out. */
 export type RecipeOut = {
   __typename?: 'RecipeOut';
+  /** Number of the row's record, FL-0042. */
   number: Scalars['String']['output'];
+  /** Why, in words. */
   reason: Scalars['String']['output'];
 };
 
 /** One thing that happened to a record, by the event log. */
 export type RecordEventType = {
   __typename?: 'RecordEventType';
+  /** When it happened. */
   at: Scalars['DateTimeISO']['output'];
+  /** Name of whoever did it. */
   by: Scalars['String']['output'];
   /** revision.approved, record.superseded, … */
   kind: Scalars['String']['output'];
+  /** Number of the record that took its place, for a supersession. */
   replacedBy: Maybe<Scalars['String']['output']>;
+  /** Number of the event in the log. */
   sequence: Scalars['Int']['output'];
   /** FL-0042 or FL-0042.3 */
   subject: Scalars['String']['output'];
@@ -2014,6 +2862,7 @@ export type RecordLife = {
   __typename?: 'RecordLife';
   /** What it is conditioned on, followed through records to kinds of data. */
   conditionChains: Array<ConditionChainType>;
+  /** The record itself. */
   constraint: Constraint;
   /** What happened to the record since its approval, newest first. */
   happened: Array<RecordEventType>;
@@ -2023,28 +2872,40 @@ export type RecordLife = {
   relations: Array<RecordRelationType>;
 };
 
+/** RecordLife; or a Refusal, which says why not in words and by a code. */
 export type RecordLifeResult = RecordLife | Refusal;
 
+/** Another record that has to do with this one. */
 export type RecordLink = {
   __typename?: 'RecordLink';
+  /** Number of the other record, FL-0042. */
   number: Scalars['String']['output'];
   /** Whether the authors prefer this one of several alternatives; null elsewhere. */
   preferred: Maybe<Scalars['Boolean']['output']>;
+  /** First author and year of its paper. */
   shortName: Scalars['String']['output'];
+  /** What links them, in words. */
   via: Scalars['String']['output'];
 };
 
 /** What was recorded about a record after its approval. */
 export type RecordNotice = {
   __typename?: 'RecordNotice';
+  /** When it was recorded. */
   at: Scalars['DateTimeISO']['output'];
+  /** Name of the maintainer who recorded it. */
   by: Scalars['String']['output'];
   /** When it was taken back or corrected. */
   endedAt: Maybe<Scalars['DateTimeISO']['output']>;
+  /** What ended it: a correcting revision, or the maintainer's name; null while it holds. */
   endedBy: Maybe<Scalars['String']['output']>;
+  /** Why it was ended, in words. */
   endedReason: Maybe<Scalars['String']['output']>;
+  /** Identifier of the notice. */
   id: Scalars['ID']['output'];
+  /** What it says of the record. */
   kind: NoticeKind;
+  /** Reason in words, for readers. */
   reason: Scalars['String']['output'];
   /** FL-0042: the record in its place. */
   replacedBy: Maybe<Scalars['String']['output']>;
@@ -2055,58 +2916,85 @@ export type RecordRelationType = {
   __typename?: 'RecordRelationType';
   /** Whether the other record says it of this one. */
   inverse: Scalars['Boolean']['output'];
+  /** Number of the other record, FL-0042. */
   number: Scalars['String']['output'];
+  /** How the two are related. */
   relation: LinkRelation;
+  /** First author and year of its paper. */
   shortName: Scalars['String']['output'];
+  /** State of the other record. */
   state: RecordState;
 };
 
+/** State of a record. */
 export type RecordState =
+  /** In use. */
   | 'current'
+  /** Another record has taken its place. */
   | 'superseded'
+  /** Taken out of use; it stays readable at its address. */
   | 'withdrawn';
 
+/** What the redshift of a statement means. */
 export type RedshiftRole =
+  /** A mean over the bin: a history is asked for its mean of x between the ends. */
   | 'binAverage'
+  /** The value holds at this redshift: a history is asked for x(z). */
   | 'point'
+  /** The sample spans the range; x is taken at the representative redshift. */
   | 'sampleRange'
+  /** At some redshift between the ends: the likelihood is averaged over them. */
   | 'uncertain';
 
 /** How a history's redshift range meets a row. */
 export type RedshiftTreatment =
+  /** Likelihood averaged over the redshifts between the ends. */
   | 'averagedLikelihood'
+  /** Mean of x between the ends of the bin. */
   | 'binMean'
+  /** x at the representative redshift. */
   | 'point';
 
 /** A stated outcome that is not success. The message is a sentence for the person. */
 export type Refusal = {
   __typename?: 'Refusal';
+  /** Stable word for programs, in capitals; STALE, say. */
   code: Scalars['String']['output'];
+  /** Field that it concerns, where it concerns one. */
   field: Maybe<Scalars['String']['output']>;
+  /** Reason in words, for people. */
   message: Scalars['String']['output'];
 };
 
 /** A numbered snapshot of all approved records that never changes. */
 export type Release = {
   __typename?: 'Release';
+  /** How to cite it. */
   citation: ReleaseCitation;
+  /** When it was cut. */
   cutAt: Scalars['DateTimeISO']['output'];
+  /** Name of the maintainer who cut it. */
   cutBy: Scalars['String']['output'];
   /** Hexadecimal SHA-256 over the RFC 8785 form of its content. */
   digest: Scalars['String']['output'];
+  /** Newest event of the log when it was cut. */
   lastEvent: EventMark;
+  /** Licence of its data. */
   licence: Scalars['String']['output'];
+  /** What is new in it, in words. */
   notes: Scalars['String']['output'];
   /** Errata, supersessions and withdrawals recorded since it was cut. Its bytes never change by them. */
   notices: Array<ReleaseNotice>;
   /** Counts from 1. */
   number: Scalars['Int']['output'];
+  /** How many records it holds. */
   records: Scalars['Int']['output'];
 };
 
 /** How to cite a release. */
 export type ReleaseCitation = {
   __typename?: 'ReleaseCitation';
+  /** Entry for a bibliography, in BibTeX. */
   bibtex: Scalars['String']['output'];
   /** A CITATION.cff file. */
   cff: Scalars['String']['output'];
@@ -2114,16 +3002,21 @@ export type ReleaseCitation = {
   csl: Scalars['String']['output'];
 };
 
+/** What changed between two releases. */
 export type ReleaseDifference = {
   __typename?: 'ReleaseDifference';
+  /** Records that the later one has and the earlier one lacks. */
   added: Array<ReleasedRecord>;
+  /** Records whose revision is another one. */
   changed: Array<ChangedRecord>;
+  /** Records that the later one lacks. */
   removed: Array<ReleasedRecord>;
 };
 
 /** What was recorded about a record of a release since it was cut. */
 export type ReleaseNotice = {
   __typename?: 'ReleaseNotice';
+  /** What was recorded about the record since. */
   notice: RecordNotice;
   /** FL-0042 */
   number: Scalars['String']['output'];
@@ -2134,112 +3027,175 @@ export type ReleaseReadiness = {
   __typename?: 'ReleaseReadiness';
   /** Sentences; empty when it can be cut. */
   blockers: Array<Scalars['String']['output']>;
+  /** Number of the newest release; null: none yet. */
   latest: Maybe<Scalars['Int']['output']>;
+  /** Approved records that a release would hold now. */
   records: Scalars['Int']['output'];
 };
 
+/** Release; or a Refusal, which says why not in words and by a code. */
 export type ReleaseResult = Refusal | Release;
 
+/** A record of a release. */
 export type ReleasedRecord = {
   __typename?: 'ReleasedRecord';
+  /** Number of the record, FL-0042. */
   number: Scalars['String']['output'];
   /** Number with revision. */
   quotable: Scalars['String']['output'];
+  /** First author and year of its paper. */
   shortName: Scalars['String']['output'];
 };
 
+/** ReportedError; or a Refusal, which says why not in words and by a code. */
 export type ReplyResult = Refusal | ReportedError;
 
+/** ErrorReported; or a Refusal, which says why not in words and by a code. */
 export type ReportErrorResult = ErrorReported | Refusal;
 
+/** What became of a report. */
 export type ReportOutcome =
+  /** A new revision corrects it. */
   | 'corrected'
+  /** An erratum stands at the record. */
   | 'erratumRecorded'
+  /** The record says what the paper says. */
   | 'noError'
+  /** The paper itself is in doubt; its authors were told. */
   | 'passedToAuthors';
 
+/** Where a report stands. */
 export type ReportState =
+  /** The editors have answered. */
   | 'answered'
+  /** Closed with an outcome. */
   | 'closed'
+  /** Waits for an answer. */
   | 'open';
 
+/** A report as its reporter follows it. */
 export type ReportedError = {
   __typename?: 'ReportedError';
+  /** The paper of the record. */
   citation: Maybe<Citation>;
+  /** Correcting revision, FL-0042.3. */
   correctedBy: Maybe<Scalars['String']['output']>;
+  /** Answers and replies, oldest first. */
   entries: Array<ErrorReportEntry>;
   /** Whether the one reply is still to be given. */
   mayReply: Scalars['Boolean']['output'];
+  /** Number of the report. */
   number: Scalars['String']['output'];
+  /** What became of it; null: open. */
   outcome: Maybe<ReportOutcome>;
+  /** Revision that it is about, FL-0042.3. */
   quotable: Scalars['String']['output'];
+  /** When it was sent. */
   reportedAt: Scalars['DateTimeISO']['output'];
+  /** Where it stands. */
   state: ReportState;
+  /** The report as sent. */
   text: Scalars['String']['output'];
 };
 
+/** A comment with which a submission is returned. */
 export type ReturnComment = {
+  /** Field that it stands at, as in ConstraintFields. */
   field: Scalars['String']['input'];
+  /** What is to be done, in words. */
   text: Scalars['String']['input'];
 };
 
+/** A submission under review; what was submitted stays hidden until the reading is stored. */
 export type Review = {
   __typename?: 'Review';
+  /** The contributor's answers to findings. */
   answers: Array<FindingAnswer>;
   /** Why approval is not open yet, in words; empty when it is. */
   blockers: Array<Scalars['String']['output']>;
+  /** What the revision changes against the one in use. */
   changes: Array<FieldChange>;
   /** All are ticked before it can be approved. */
   checklist: Array<ChecklistPoint>;
+  /** Comments of the return that it answers. */
   comments: Array<FieldComment>;
   /** Everything below is null or empty until the reading is stored. */
   comparison: Array<ReviewField>;
+  /** Name of the contributor. */
   contributor: Maybe<Scalars['String']['output']>;
   /** Fields to read again; the second reading is stored when all are given. */
   fieldsToRead: Array<Scalars['String']['output']>;
+  /** What the rules say about the submission. */
   findings: Array<Finding>;
+  /** The submission, without its numbers. */
   item: QueueItem;
+  /** When the reading was stored; null before. */
   readingStoredAt: Maybe<Scalars['DateTimeISO']['output']>;
+  /** As submitted. */
   submission: Maybe<ConstraintFields>;
 };
 
+/** One field, submitted and read. */
 export type ReviewField = {
   __typename?: 'ReviewField';
+  /** Whether the two agree by the printed digits. */
   agrees: Scalars['Boolean']['output'];
   /** Earlier readings of this field, oldest first. */
   earlier: Array<Scalars['String']['output']>;
+  /** Name of the field, as in ConstraintFields. */
   field: Scalars['String']['output'];
   /** Stored reading, latest. */
   reading: Maybe<Scalars['String']['output']>;
+  /** As submitted, as text. */
   submitted: Maybe<Scalars['String']['output']>;
 };
 
+/** Review; or a Refusal, which says why not in words and by a code. */
 export type ReviewResult = Refusal | Review;
 
+/** State of a revision. */
 export type RevisionState =
+  /** Read twice and agreed on. */
   | 'approved'
+  /** Given up by its contributor. */
   | 'discarded'
+  /** Being written; its contributor alone sees it. */
   | 'draft'
+  /** An editor has claimed it. */
   | 'inReview'
+  /** Sent back with comments; the answer is a new revision. */
   | 'returned'
+  /** Waits for a second reading. */
   | 'submitted';
 
+/** What a person may do beyond reading, building tables and fitting. */
 export type Role =
+  /** Submits constraints and imports files. */
   | 'contributor'
+  /** Reads papers a second time, approves and returns. */
   | 'editor'
+  /** Grants roles, keeps the vocabulary, cuts releases, records errata, reads the log. */
   | 'maintainer';
 
+/** A form or a treatment of the redshift for one row, other than the default. */
 export type RowFormInput = {
+  /** Form wanted; left out: the default. */
   form?: InputMaybe<LikelihoodForm>;
+  /** Number of the row's record, FL-0042. */
   number: Scalars['String']['input'];
+  /** Why, in words. */
   reason: Scalars['String']['input'];
+  /** Treatment of the redshift wanted; left out: the one that follows from its role. */
   redshift?: InputMaybe<RedshiftTreatment>;
   /** Width of a smoothed step. */
   smoothing?: InputMaybe<Scalars['Float']['input']>;
 };
 
+/** A row to leave out. */
 export type RowOutInput = {
+  /** Number of the row's record, FL-0042. */
   number: Scalars['String']['input'];
+  /** Why, in words. */
   reason: Scalars['String']['input'];
 };
 
@@ -2250,97 +3206,144 @@ export type RowSinceType = {
   newerRevision: Maybe<Scalars['String']['output']>;
   /** Notices since then that hold. */
   notices: Array<RecordNotice>;
+  /** Number of the row's record, FL-0042. */
   number: Scalars['String']['output'];
+  /** State of the record now. */
   state: RecordState;
 };
 
+/** A draft as it shall stand. */
 export type SaveDraftInput = {
+  /** Answers to findings that ask for one. */
   answers?: InputMaybe<Array<AnswerInput>>;
+  /** The paper; left out: none. */
   citationId?: InputMaybe<Scalars['ID']['input']>;
+  /** Answers to the comments of a return. */
   commentAnswers?: InputMaybe<Array<CommentAnswerInput>>;
+  /** As printed, number by number. */
   fields: ConstraintFieldsInput;
+  /** Identifier of the draft. */
   id: Scalars['ID']['input'];
+  /** Version last read of the draft; another one is refused as stale. */
   version: Scalars['Int']['input'];
 };
 
+/** A recipe with the name under which it is saved. */
 export type SaveRecipeInput = {
   /** The table that this one is a copy of. */
   adaptedFrom?: InputMaybe<Scalars['ID']['input']>;
+  /** Name of the table, 3 to 120 characters. */
   name: Scalars['String']['input'];
+  /** Whether its owner is told when a release would change it. */
   notify?: InputMaybe<Scalars['Boolean']['input']>;
+  /** The recipe; every decision must be taken. */
   recipe: TableInput;
   /** A table of one's own, for a new version of it. */
   slug?: InputMaybe<Scalars['ID']['input']>;
+  /** Who may see the table. */
   visibility: TableVisibility;
 };
 
+/** A draft of a correlated set as it shall stand. */
 export type SaveSetInput = {
+  /** Answers to findings that ask for one. */
   answers?: InputMaybe<Array<AnswerInput>>;
+  /** What the set is, in words. */
   label?: InputMaybe<Scalars['String']['input']>;
+  /** What the paper prints. */
   matrixKind?: InputMaybe<MatrixKind>;
+  /** Numbers of records, in the order of the matrix. */
   members: Array<Scalars['String']['input']>;
+  /** What else should be known of it. */
   note?: InputMaybe<Scalars['String']['input']>;
+  /** Number of the set, FLS-0003. */
   number: Scalars['String']['input'];
+  /** Page on which the matrix stands. */
   page?: InputMaybe<Scalars['String']['input']>;
+  /** Table or figure in which the matrix stands. */
   place?: InputMaybe<Scalars['String']['input']>;
+  /** Lower triangle as printed, row by row with its diagonal; an open entry is empty. */
   triangle: Array<Array<Scalars['String']['input']>>;
+  /** Version last read of the set; another one is refused as stale. */
   version: Scalars['Int']['input'];
 };
 
+/** How a fraction is printed. */
 export type Scale =
+  /** The fraction itself. */
   | 'linear'
+  /** Its decimal logarithm. */
   | 'log10';
 
+/** Whom to ask for a check, and about which revision. */
 export type SendAuthorCheckInput = {
+  /** The author's address. */
   email: Scalars['String']['input'];
+  /** The author's name as on the paper. */
   name: Scalars['String']['input'];
   /** FL-0042.3 */
   quotable: Scalars['String']['input'];
 };
 
+/** Who asks, and what the client needs to begin. */
 export type Session = {
   __typename?: 'Session';
   /** True when the registry holds the invented demonstration data. */
   demonstration: Scalars['Boolean']['output'];
+  /** Newest event of the log; null in an empty registry. */
   lastEvent: Maybe<EventMark>;
   /** Data licence every export names. */
   licence: Scalars['String']['output'];
   /** Whether papers can be looked up by DOI or arXiv number. */
   looksUpCitations: Scalars['Boolean']['output'];
+  /** Null for whoever is not signed in. */
   viewer: Maybe<Viewer>;
 };
 
+/** One entry of the matrix, submitted and read. */
 export type SetEntry = {
   __typename?: 'SetEntry';
+  /** Whether the two agree by the printed digits. */
   agrees: Scalars['Boolean']['output'];
+  /** From 0; null for the kind of matrix. */
   column: Maybe<Scalars['Int']['output']>;
   /** Earlier readings of this entry, oldest first. */
   earlier: Array<Scalars['String']['output']>;
+  /** As read by the editor. */
   reading: Scalars['String']['output'];
   /** From 0; null for the kind of matrix. */
   row: Maybe<Scalars['Int']['output']>;
+  /** As submitted. */
   submitted: Scalars['String']['output'];
 };
 
+/** One entry read again. */
 export type SetEntryInput = {
+  /** From 0; null for the kind of matrix. */
   column?: InputMaybe<Scalars['Int']['input']>;
+  /** From 0; null for the kind of matrix. */
   row?: InputMaybe<Scalars['Int']['input']>;
   /** The entry as read now, or the kind of matrix. */
   text: Scalars['String']['input'];
+  /** Why the first reading was another one, in words. */
   why: Scalars['String']['input'];
 };
 
 /** An approved correlated set, for its records. */
 export type SetLink = {
   __typename?: 'SetLink';
+  /** What the set is, in words. */
   label: Scalars['String']['output'];
+  /** Numbers of its records. */
   members: Array<Scalars['String']['output']>;
+  /** Number of the set, FLS-0003. */
   number: Scalars['String']['output'];
 };
 
 /** A record in a correlated set, or one that could stand in it. */
 export type SetMemberType = {
   __typename?: 'SetMemberType';
+  /** Whether the record is approved. */
   approved: Scalars['Boolean']['output'];
   /** Why it can't be part of a set, as the end of a sentence, or null. */
   cannotJoin: Maybe<Scalars['String']['output']>;
@@ -2357,49 +3360,79 @@ export type SetQueueItem = {
   __typename?: 'SetQueueItem';
   /** Why this person can't claim it, or null. */
   barredBecause: Maybe<Scalars['String']['output']>;
+  /** The paper to read. */
   citation: Citation;
+  /** Whether the asking editor holds it. */
   claimedByMe: Scalars['Boolean']['output'];
+  /** When the claim ends; null: nobody holds it. */
   claimedUntil: Maybe<Scalars['DateTimeISO']['output']>;
+  /** Numbers of its records. */
   members: Array<Scalars['String']['output']>;
+  /** Number of the set, FLS-0003. */
   number: Scalars['String']['output'];
+  /** Page on which the matrix stands. */
   page: Maybe<Scalars['String']['output']>;
+  /** Table or figure in which the matrix stands. */
   place: Maybe<Scalars['String']['output']>;
+  /** State of the set. */
   state: SetState;
+  /** When it was submitted. */
   submittedAt: Scalars['DateTimeISO']['output'];
+  /** To be sent back with a decision; an older one is refused as stale. */
   version: Scalars['Int']['output'];
 };
 
+/** The matrix as an editor reads it in the paper. */
 export type SetReadingInput = {
+  /** What the paper prints. */
   matrixKind?: InputMaybe<MatrixKind>;
+  /** Lower triangle as printed, row by row with its diagonal. */
   triangle: Array<Array<Scalars['String']['input']>>;
 };
 
+/** A set under review; the submitted matrix stays hidden until the reading is stored. */
 export type SetReview = {
   __typename?: 'SetReview';
+  /** Why it can't be approved yet, in words; empty when it can. */
   blockers: Array<Scalars['String']['output']>;
   /** Empty until the reading is stored. */
   comparison: Array<SetEntry>;
+  /** The set, without its numbers. */
   item: SetQueueItem;
+  /** Records of the set, in the order of the matrix. */
   members: Array<SetMemberType>;
+  /** When the reading was stored; null before. */
   readingStoredAt: Maybe<Scalars['DateTimeISO']['output']>;
   /** Null until the reading is stored. */
   set: Maybe<CorrelatedSet>;
 };
 
+/** SetReview; or a Refusal, which says why not in words and by a code. */
 export type SetReviewResult = Refusal | SetReview;
 
+/** State of a correlated set. */
 export type SetState =
+  /** Read twice and agreed on. */
   | 'approved'
+  /** Given up by its contributor. */
   | 'discarded'
+  /** Being written. */
   | 'draft'
+  /** An editor has claimed it. */
   | 'inReview'
+  /** Sent back with a comment. */
   | 'returned'
+  /** Waits for a second reading. */
   | 'submitted'
+  /** Taken out of use. */
   | 'withdrawn';
 
+/** A row of a fitting table as it was settled: what a likelihood takes of a record. */
 export type SettledRow = {
   __typename?: 'SettledRow';
+  /** What a user of this row should know, in words. */
   cautions: Array<Scalars['String']['output']>;
+  /** Form of its likelihood; null for a row that is left out. */
   form: Maybe<LikelihoodForm>;
   /** Why another form than the default. */
   formReason: Maybe<Scalars['String']['output']>;
@@ -2407,9 +3440,11 @@ export type SettledRow = {
   forms: Array<LikelihoodForm>;
   /** Its -2 ln L with the row's numbers. */
   formula: Maybe<Scalars['String']['output']>;
+  /** Whether it takes part. */
   included: Scalars['Boolean']['output'];
   /** As printed or decided, a probability. */
   level: Maybe<Scalars['Float']['output']>;
+  /** Label of the equal mixture that it is a member of. */
   mixture: Maybe<Scalars['String']['output']>;
   /** FL-0042 */
   number: Scalars['String']['output'];
@@ -2419,6 +3454,7 @@ export type SettledRow = {
   proposed: Scalars['Boolean']['output'];
   /** Why it is out, or in against a proposal. */
   reason: Maybe<Scalars['String']['output']>;
+  /** What a history is asked for; null for quantities without a redshift. */
   redshift: Maybe<RedshiftTreatment>;
   /** Number of its correlated set. */
   set: Maybe<Scalars['String']['output']>;
@@ -2429,30 +3465,47 @@ export type SettledRow = {
 /** Two records that share data directly. */
 export type SharedDataPair = {
   __typename?: 'SharedDataPair';
+  /** Number of the first record. */
   a: Scalars['String']['output'];
+  /** Number of the second record. */
   b: Scalars['String']['output'];
   /** What they share, in words. */
   via: Scalars['String']['output'];
 };
 
+/** Viewer; or a Refusal, which says why not in words and by a code. */
 export type SignInResult = Refusal | Viewer;
 
+/** Which fraction of hydrogen a paper prints. */
 export type Species =
+  /** Free electrons per hydrogen; above 1 where helium is counted. */
   | 'electron'
+  /** Ionized hydrogen per hydrogen, Q = 1 - x. */
   | 'ionized'
+  /** Neutral hydrogen per hydrogen, x. */
   | 'neutral';
 
+/** A correlated set to begin with. */
 export type StartSetInput = {
+  /** The paper that prints the matrix. */
   citationId: Scalars['ID']['input'];
+  /** Numbers of records, in the order of the matrix. */
   members: Array<Scalars['String']['input']>;
 };
 
+/** Shape of a statement. */
 export type StatementKind =
+  /** The quantity lies between two ends, none of which is preferred. */
   | 'band'
+  /** A tabulated probability density or likelihood. */
   | 'curve'
+  /** The quantity lies above the value at the given level. */
   | 'lowerLimit'
+  /** Words only: shown, never fitted. */
   | 'qualitative'
+  /** A value with an error on each side. */
   | 'twoSided'
+  /** The quantity lies below the value at the given level. */
   | 'upperLimit';
 
 /** A revision as its contributor sees it. */
@@ -2460,27 +3513,41 @@ export type Submission = {
   __typename?: 'Submission';
   /** The revision that follows this one, if there is one: the answer to a return, or a later correction. */
   answeredBy: Maybe<Scalars['ID']['output']>;
+  /** Answers to findings that ask for one. */
   answers: Array<FindingAnswer>;
+  /** What it changes against the revision in use. */
   changes: Array<FieldChange>;
+  /** The paper; null: none chosen yet. */
   citation: Maybe<Citation>;
   /** Comments of the return this revision answers, or of the return of this revision. */
   comments: Array<FieldComment>;
+  /** The editor's note on the decision. */
   decisionNote: Maybe<Scalars['String']['output']>;
+  /** As printed, number by number; null where still open. */
   fields: ConstraintFields;
+  /** What the rules say about it. */
   findings: Array<Finding>;
+  /** Approved revisions of the record, newest first. */
   history: Array<PublicRevision>;
+  /** Identifier of the revision. */
   id: Scalars['ID']['output'];
+  /** Number of the record, FL-0042. */
   number: Scalars['String']['output'];
+  /** Number of the revision, from 1. */
   ordinal: Scalars['Int']['output'];
+  /** State of the revision. */
   state: RevisionState;
+  /** When it was submitted; null for a draft. */
   submittedAt: Maybe<Scalars['DateTimeISO']['output']>;
   /** What was sent, asked, answered, changed and decided, oldest round first. */
   trail: Array<TrailRound>;
+  /** When it was last saved. */
   updatedAt: Scalars['DateTimeISO']['output'];
   /** Version to send back with the next save; a save with an older one is refused. */
   version: Scalars['Int']['output'];
 };
 
+/** Submission; or a Refusal, which says why not in words and by a code. */
 export type SubmissionResult = Refusal | Submission;
 
 /** What the newest release, or the records of now, would make of a table. */
@@ -2488,23 +3555,30 @@ export type TableChanges = {
   __typename?: 'TableChanges';
   /** Midpoint of the best tanh history, now. */
   midpoint: Maybe<Scalars['Float']['output']>;
+  /** Midpoint of the best tanh history when the table was saved, a redshift. */
   midpointThen: Maybe<Scalars['Float']['output']>;
   /** Decisions that would be open. */
   open: Scalars['Int']['output'];
   /** Its total optical depth, now. */
   opticalDepth: Maybe<Scalars['Float']['output']>;
+  /** Its total optical depth when the table was saved; dimensionless. */
   opticalDepthThen: Maybe<Scalars['Float']['output']>;
   /** Release compared with; null for the latest records. */
   release: Maybe<Scalars['Int']['output']>;
+  /** What would change, row by row. */
   rows: Array<TableRowChange>;
 };
 
+/** A correlated set whose rows count together. */
 export type TableCorrelation = {
   __typename?: 'TableCorrelation';
   /** Number of the set. */
   id: Scalars['ID']['output'];
+  /** What the set is, in words. */
   label: Scalars['String']['output'];
+  /** Numbers of the rows, in the order of the matrix. */
   members: Array<Scalars['String']['output']>;
+  /** Correlation matrix as used, row by row; dimensionless, -1 to 1. */
   rho: Array<Array<Scalars['Float']['output']>>;
   /** False for the exact marginal of a part. */
   whole: Scalars['Boolean']['output'];
@@ -2517,21 +3591,30 @@ export type TableDecision = {
   because: Scalars['String']['output'];
   /** Taken as proposed, by nobody in particular. */
   byDefault: Scalars['Boolean']['output'];
+  /** Names the kind and the rows concerned; other rows make another decision. */
   id: Scalars['ID']['output'];
+  /** What is to be settled. */
   kind: DecisionKind;
+  /** Ways to settle it. */
   options: Array<DecisionOption>;
+  /** Code of the option that is proposed. */
   proposed: Scalars['String']['output'];
+  /** Why a person chose otherwise, in words. */
   reason: Maybe<Scalars['String']['output']>;
+  /** Numbers of the rows concerned. */
   rows: Array<Scalars['String']['output']>;
   /** Option taken; null while it is open. */
   taken: Maybe<Scalars['String']['output']>;
+  /** The question in words. */
   words: Scalars['String']['output'];
 };
 
+/** A file that a table can be downloaded as. */
 export type TableFileMark = {
   __typename?: 'TableFileMark';
   /** csv, json, ecsv, vot, txt, tex, bib, methods.tex, svg or zip. */
   kind: Scalars['String']['output'];
+  /** What the file is, in words. */
   name: Scalars['String']['output'];
   /** Path on this server. */
   path: Scalars['String']['output'];
@@ -2539,17 +3622,24 @@ export type TableFileMark = {
 
 /** A table's recipe: where its rows come from, which, and what was chosen. */
 export type TableInput = {
+  /** Decisions taken. */
   decisions?: InputMaybe<Array<DecisionInput>>;
+  /** Which records become rows. */
   filter: ConstraintFilter;
+  /** Rows whose form or redshift is chosen by hand. */
   forms?: InputMaybe<Array<RowFormInput>>;
+  /** Rows left out by hand. */
   out?: InputMaybe<Array<RowOutInput>>;
   /** Null for the latest approved records. */
   release?: InputMaybe<Scalars['Int']['input']>;
 };
 
+/** Alternatives that count as one: the equal mixture of their densities. */
 export type TableMixture = {
   __typename?: 'TableMixture';
+  /** Label of the group, as the paper's records share it. */
   label: Scalars['String']['output'];
+  /** Numbers of the rows. */
   members: Array<Scalars['String']['output']>;
   /** Of the equal mixture on the real line. */
   standardDeviation: Maybe<Scalars['Float']['output']>;
@@ -2558,131 +3648,198 @@ export type TableMixture = {
 /** A recipe followed: rows in and out, and what is still to be decided. */
 export type TableProposal = {
   __typename?: 'TableProposal';
+  /** Records of the rows, in their order. */
   constraints: Array<Constraint>;
+  /** What has to be settled, and what was. */
   decisions: Array<TableDecision>;
+  /** The recipe's filter in words. */
   filter: Scalars['String']['output'];
+  /** Newest event of the log at the moment of the answer. */
   lastEvent: EventMark;
+  /** Alternatives that count as one equal mixture. */
   mixtures: Array<TableMixture>;
   /** Decisions still open; a table is complete at none. */
   open: Scalars['Int']['output'];
+  /** Rows in and out. */
   rows: Array<SettledRow>;
+  /** Correlated sets of which rows take part. */
   sets: Array<TableCorrelation>;
 };
 
+/** TableProposal; or a Refusal, which says why not in words and by a code. */
 export type TableProposalResult = Refusal | TableProposal;
 
 /** The recipe of a table, to be adapted; the shape of TableInput. */
 export type TableRecipeType = {
   __typename?: 'TableRecipeType';
+  /** Decisions as they were taken. */
   decisions: Array<RecipeDecision>;
   /** The filter as an address carries it: ?q=… */
   filter: Scalars['String']['output'];
+  /** Rows whose form or redshift was chosen by hand. */
   forms: Array<RecipeForm>;
+  /** Rows left out by hand. */
   out: Array<RecipeOut>;
+  /** Release it pins; null for the latest records. */
   release: Maybe<Scalars['Int']['output']>;
 };
 
+/** What would become of one row. */
 export type TableRowChange = {
   __typename?: 'TableRowChange';
+  /** Number of the row's record, FL-0042. */
   number: Scalars['String']['output'];
+  /** What would change, in words. */
   words: Scalars['String']['output'];
 };
 
 /** What the registry knows of records beside their own content. */
 export type TableSurroundings = {
   __typename?: 'TableSurroundings';
+  /** What the records are conditioned on, directly or through others. */
   conditions: Array<ConditionWay>;
+  /** Pairs that share data. */
   overlaps: Array<SharedDataPair>;
 };
 
+/** A saved version of a table. */
 export type TableVersionMark = {
   __typename?: 'TableVersionMark';
+  /** When the version was saved. */
   createdAt: Scalars['DateTimeISO']['output'];
+  /** Hexadecimal SHA-256 over the RFC 8785 form of the version's JSON content. */
   digest: Scalars['String']['output'];
+  /** Release it pins; null for the latest records of its day. */
   release: Maybe<Scalars['Int']['output']>;
+  /** How many rows take part. */
   rowsIn: Scalars['Int']['output'];
+  /** How many rows are left out. */
   rowsOut: Scalars['Int']['output'];
+  /** Number of the version, from 1. */
   version: Scalars['Int']['output'];
 };
 
 /** private: its owner; link: who has the address; public: everybody, and it is listed. */
 export type TableVisibility =
+  /** Whoever knows the address. */
   | 'link'
+  /** Its owner alone. */
   | 'private'
+  /** Everybody, and it is listed. */
   | 'public';
 
 /** What was written below a comment after its first answer. */
 export type ThreadMessage = {
   __typename?: 'ThreadMessage';
+  /** When it was written. */
   at: Scalars['DateTimeISO']['output'];
+  /** Name of whoever wrote it. */
   by: Scalars['String']['output'];
+  /** Identifier of the message. */
   id: Scalars['ID']['output'];
   /** Whether the viewer wrote it. */
   mine: Scalars['Boolean']['output'];
+  /** The message. */
   text: Scalars['String']['output'];
 };
 
+/** CommentThread; or a Refusal, which says why not in words and by a code. */
 export type ThreadResult = CommentThread | Refusal;
 
+/** What an API token may be used for. */
 export type TokenScope =
+  /** Starts and stops fits. */
   | 'fits'
+  /** Reads what its owner may read, private tables included. */
   | 'read'
+  /** Saves and changes the owner's tables. */
   | 'tables';
 
+/** Whether an API token still opens anything. */
 export type TokenState =
+  /** It works. */
   | 'active'
+  /** Its last day has passed. */
   | 'expired'
+  /** Its owner took it back. */
   | 'revoked';
 
 /** One revision of a record as its contributor looks back on it. */
 export type TrailRound = {
   __typename?: 'TrailRound';
+  /** Findings and the answers to them. */
   answers: Array<AnsweredFinding>;
+  /** When the revision was begun. */
   begunAt: Scalars['DateTimeISO']['output'];
   /** Against the revision that it follows. */
   changes: Array<FieldChange>;
+  /** Comments of its return. */
   comments: Array<FieldComment>;
+  /** When it was decided. */
   decidedAt: Maybe<Scalars['DateTimeISO']['output']>;
+  /** The editor's note on the decision. */
   decisionNote: Maybe<Scalars['String']['output']>;
+  /** Name of whoever entered it. */
   enteredBy: Scalars['String']['output'];
+  /** Identifier of the revision. */
   id: Scalars['ID']['output'];
+  /** Number of the revision, from 1. */
   ordinal: Scalars['Int']['output'];
+  /** When the second reading was stored. */
   readAt: Maybe<Scalars['DateTimeISO']['output']>;
   /** Who read the paper again and decided; null until it is decided. */
   readBy: Maybe<Scalars['String']['output']>;
+  /** State of the revision. */
   state: RevisionState;
+  /** When it was submitted. */
   submittedAt: Maybe<Scalars['DateTimeISO']['output']>;
 };
 
 /** A name of a record's data, and the entry that it leads to. */
 export type UsedData = {
   __typename?: 'UsedData';
+  /** Entry of the registry that the printed name stands for. */
   entry: DataLink;
   /** As the record spells it. */
   spelled: Scalars['String']['output'];
 };
 
+/** Version of a paper from which numbers were read. */
 export type VersionRead =
+  /** The journal's erratum. */
   | 'erratum'
+  /** A preprint, whose numbers may still change. */
   | 'preprint'
+  /** As the journal printed it. */
   | 'published';
 
+/** The person who is signed in. */
 export type Viewer = {
   __typename?: 'Viewer';
+  /** Address of the account; shown to nobody else but maintainers. */
   email: Scalars['String']['output'];
   /** Other names under which this person has published; they keep an editor off such papers. */
   furtherNames: Array<Scalars['String']['output']>;
+  /** Identifier of the person. */
   id: Scalars['ID']['output'];
+  /** Name as on papers; stands beside what the person brings. */
   nameOnPapers: Scalars['String']['output'];
+  /** ORCID iD with hyphens. */
   orcid: Maybe<Scalars['String']['output']>;
+  /** Roles; a theorist needs none. */
   roles: Array<Role>;
 };
 
+/** Viewer; or a Refusal, which says why not in words and by a code. */
 export type ViewerResult = Refusal | Viewer;
 
+/** How the mean over space is weighted. */
 export type Weighting =
+  /** By mass; never converted. */
   | 'mass'
+  /** The paper does not say. */
   | 'unknown'
+  /** By volume: what the registry's histories are. */
   | 'volume';
 
 export type ViewerPartsFragment = { __typename?: 'Viewer', id: string, email: string, nameOnPapers: string, furtherNames: Array<string>, orcid: string | null, roles: Array<Role> };
